@@ -1,0 +1,3 @@
+"""Export: what leaves the office."""
+
+ROOM = "cutworthy"

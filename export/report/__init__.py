@@ -1,0 +1,1 @@
+"""Report: the drawing sheet an engineer signs and a checker reads."""

@@ -1,0 +1,3 @@
+"""Ingest: what was received, in metres, and where each fact came from."""
+
+ROOM = "cutworthy"

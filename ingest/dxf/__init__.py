@@ -1,0 +1,1 @@
+"""DXF: the only reader that imports ezdxf."""

@@ -1,0 +1,1 @@
+"""IFC: the only folder that imports ifcopenshell."""

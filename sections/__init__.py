@@ -1,0 +1,3 @@
+"""Sections: where a two-dimensional cut is fair, and what goes into it."""
+
+ROOM = "cutworthy"

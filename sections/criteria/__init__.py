@@ -1,0 +1,1 @@
+"""Criteria: one engineering question a file, all with the same signature."""

@@ -1,0 +1,1 @@
+"""Screening: the folded wall on spreading ground and its two-dimensional twin."""
