@@ -3,7 +3,7 @@
 from __future__ import annotations
 
 from collections.abc import Callable
-from dataclasses import dataclass
+from dataclasses import dataclass, field
 from typing import TypeVar, dataclass_transform
 
 from pydantic import ConfigDict
@@ -13,7 +13,7 @@ T = TypeVar("T")
 STRICT = ConfigDict(extra="forbid", strict=True, allow_inf_nan=False)
 
 
-@dataclass_transform(frozen_default=True, kw_only_default=True)
+@dataclass_transform(frozen_default=True, kw_only_default=True, field_specifiers=(field,))
 def record(cls: type[T]) -> type[T]:
     """Turn a class into a frozen, slotted, keyword-only dataclass that refuses unknown keys and non-finite numbers.
 
