@@ -1,3 +1,4 @@
 """Export: what leaves the office."""
 
 ROOM = "cutworthy"
+VERSION = "0.1.0"

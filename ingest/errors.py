@@ -1,8 +1,9 @@
-"""The one error an engineer sees: which file, where in it, what is wrong, what to do."""
+"""The one error an engineer sees (file, place, problem, remedy), and the refusal of physical nonsense."""
 
 from __future__ import annotations
 
 from collections.abc import Sequence
+from math import isfinite
 
 
 class InputError(Exception):
@@ -32,3 +33,49 @@ class InputError(Exception):
         where = ", ".join(part for part in (self.file, self.place) if part)
         more = f" (and {len(self.others)} more)" if self.others else ""
         return f"{where}: {self.problem}{more}\n  To fix: {self.remedy}"
+
+
+def require(
+    value: float | None,
+    what: str,
+    unit: str = "",
+    *,
+    above: float | None = None,
+    least: float | None = None,
+    most: float | None = None,
+    below: float | None = None,
+) -> float:
+    """Return a value that lies in its physical range; refuse it otherwise.
+
+    Args:
+        value: The value; None stands for not given.
+        what: Its name in the words of the trade.
+        unit: Its unit, "" for a plain number.
+        above: Open lower end of the allowed range.
+        least: Closed lower end.
+        most: Closed upper end.
+        below: Open upper end.
+
+    Raises:
+        ValueError: Not given, not finite or out of range; names value, unit and allowed range.
+    """
+    ends = ((above, "above"), (least, "at least"), (most, "at most"), (below, "below"))
+    allowed = " and ".join(f"{word} {end:g}" for end, word in ends if end is not None) or "any finite number"
+    allowed = f"{allowed} {unit}".strip()
+    if value is None:
+        raise ValueError(f"{what} is not given; allowed is {allowed}")
+    out = (
+        not isfinite(value)
+        or (above is not None and value <= above)
+        or (least is not None and value < least)
+        or (most is not None and value > most)
+        or (below is not None and value >= below)
+    )
+    if out:
+        raise ValueError(f"{what} = {value:g} {unit}".rstrip() + f": allowed is {allowed}")
+    return value
+
+
+def require_positive(value: float | None, what: str, unit: str = "") -> float:
+    """Return a finite value above zero; refuse any other with `ValueError`."""
+    return require(value, what, unit, above=0.0)

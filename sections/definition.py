@@ -134,6 +134,10 @@ class RealMember:
     k_end_kN_per_m: float | None = None
     k_effective_kN_per_m: float | None = None
     L_eff: float | None = None
+    free_strain: float | None = None
+    """Thermal strain or lack of fit of the member, lengthening positive."""
+    contact_kPa: float | None = None
+    """Limit of friction between grout or shaft and ground."""
 
 
 @record
@@ -189,11 +193,14 @@ class SmearParts:
     phi: float = 1.0
     EI_factor: float = 1.0
     plane_strain: float = 1.0
+    net_of_soil: float = 1.0
+    """Weight less that of the soil displaced, over the full weight."""
 
     @property
     def product(self) -> float:
         """The factor itself."""
-        return self.per_spacing * self.cos_beta_power * self.phi * self.EI_factor * self.plane_strain
+        stiffness = self.per_spacing * self.cos_beta_power * self.phi * self.EI_factor * self.plane_strain
+        return stiffness * self.net_of_soil
 
 
 @record

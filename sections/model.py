@@ -6,6 +6,7 @@ The definition of one section is in `sections.definition`.
 
 from __future__ import annotations
 
+from collections.abc import Sequence
 from dataclasses import dataclass, field
 from typing import Annotated, Literal
 
@@ -448,9 +449,19 @@ class Bands:
 class CriterionResult:
     """What one criterion says along one perimeter, arrays (n stations, o outputs).
 
-    `low`, `high` are nan where `assessed` is False; `why` says, per station, why it could not be assessed or, where it
-    could, the plain sentence. `gate` is True where the criterion says that no 2D section may be trusted at all.
-    `inputs` are arrays of length n that go into the record.
+    `low`, `high` are nan where `assessed` is False; `sentence` says, per station, why it could not be assessed or,
+    where it could, the plain sentence. `inputs` are arrays of length n that go into the record.
+
+    Attributes:
+        gate: True where the criterion says that no 2D section may be trusted at all.
+        missing: True where what the criterion looks at is there and bears on the output, but could not be evaluated
+            in full: no relief may be claimed there. None: nowhere.
+        own_margin: The band holds its own margin of error.
+        by_class_only: The band comes from the class of wall and place alone, so it can never be `holds`.
+        cross_check: The band widens that of another criterion of its mechanism and never stands alone.
+        recalled: A constant in it is quoted from memory, so a verdict on it is provisional.
+        carries: Further mechanisms that the same computation contains.
+        settled_by: What would narrow the band or close the gap, in words that fit behind "settled by".
     """
 
     code: str
@@ -461,10 +472,15 @@ class CriterionResult:
     high: Floats
     assessed: Bools
     gate: Bools
-    sentence: tuple[str, ...]
+    sentence: Sequence[str]
     inputs: dict[str, Floats] = field(default_factory=dict)
     own_margin: bool = False
     by_class_only: bool = False
+    missing: Bools | None = None
+    cross_check: bool = False
+    recalled: bool = False
+    carries: tuple[Mechanism, ...] = ()
+    settled_by: str = ""
 
 
 @dataclass(frozen=True, kw_only=True)
@@ -505,8 +521,9 @@ class SupportRow:
         member: The row as the proposal lists it.
         supports: (k,) indices into `Site.supports`, duplicates left out, in order of chainage of the head.
         head_at, far_at: (k,) chainage where head and far end meet this pit's wall; nan where they do not.
-        tributary_head, tributary_far: (k,) length of wall each one stands for at either end, m; nan where it meets none.
+        tributary_head, tributary_far: (k,) wall length each one stands for at either end, m; nan where none.
         waler: True when a waler carries the row, None when not known.
+        turned: (k,) True where the row's head is the `far` of the site's support (a strut drawn the other way round).
     """
 
     member: Member
@@ -516,11 +533,15 @@ class SupportRow:
     tributary_head: Floats
     tributary_far: Floats
     waler: bool | None
+    turned: Bools | None = None
 
 
 @dataclass(frozen=True, kw_only=True)
 class FoundPit:
-    """Everything found about one pit: the record, its shape and stations in local coordinates, its support rows."""
+    """Everything found about one pit: the record, its shape and stations in local coordinates, its support rows.
+
+    `loads` says which of `Site.loads` each id of `Pit.loads` is.
+    """
 
     pit: Pit
     shape: PitShape
@@ -529,3 +550,4 @@ class FoundPit:
     findings: tuple[Finding, ...] = ()
     questions: tuple[Question, ...] = ()
     assumptions: tuple[Assumption, ...] = ()
+    loads: dict[str, int] = field(default_factory=dict)

@@ -1,0 +1,110 @@
+"""What each command does: from parsed options to an exit code and the text for standard output."""
+
+from __future__ import annotations
+
+import argparse
+import json
+from contextlib import AbstractContextManager
+from pathlib import Path
+from typing import TYPE_CHECKING
+
+from ingest.errors import InputError
+from ingest.model import Site
+
+if TYPE_CHECKING:
+    from export.progress import Tell
+
+Answer = tuple[int, str]
+
+
+def run_inspect(options: argparse.Namespace) -> Answer:
+    """Read the files and tell what was found, what is missing and what is in doubt."""
+    from ingest.site import write_starting_brief
+    from sections.find import find_pits
+
+    from export.inventory import describe, describe_json
+
+    site = _read(options)
+    pits = find_pits(site)
+    if options.write_brief:
+        write_starting_brief(site, Path(options.write_brief))
+    if options.json:
+        return 0, json.dumps(describe_json(site, pits), indent=2, ensure_ascii=False)
+    return 0, "" if options.quiet else describe(site, pits)
+
+
+def run_propose(options: argparse.Namespace) -> Answer:
+    """Do the main job and write the folder; 1 when no section could be written."""
+    from sections.propose import propose
+
+    from export.folder import check_folder
+    from export.inventory import summarise, summarise_json
+    from export.writer import write_all
+
+    folder = Path(options.out)
+    check_folder(folder)
+    site = _read(options)
+    with _progress(options) as tell:
+        proposal, definitions = propose(site, progress=tell)
+        tell("write", 0, 1)
+        written = write_all(proposal, definitions, site, folder)
+    code = 0 if definitions else 1
+    if options.json:
+        return code, json.dumps(summarise_json(proposal, folder, written), indent=2, ensure_ascii=False)
+    return code, "" if options.quiet else summarise(proposal, folder)
+
+
+def run_members(options: argparse.Namespace) -> Answer:
+    """Turn results of sections back into member forces."""
+    from ingest.results import read_results
+
+    from export.member_table import members_json, write_governing, write_members
+    from export.section_json import read_section
+    from sections.members import find_governing, member_actions
+
+    definitions = [read_section(Path(name)) for name in options.sections]
+    rows = read_results(Path(options.results))
+    try:
+        forces = member_actions(definitions, rows)
+    except InputError as error:
+        raise InputError(options.results, error.place, error.problem, error.remedy, error.others) from None
+    if options.json:
+        return 0, members_json(forces)
+    text = write_members(forces)
+    if not options.out:
+        return 0, text.rstrip("\n")
+    target = Path(options.out)
+    target.parent.mkdir(parents=True, exist_ok=True)
+    target.write_text(text, encoding="utf-8", newline="")
+    governing = target.with_name(target.name + ".governing.csv")
+    governing.write_text(write_governing(find_governing(forces)), encoding="utf-8", newline="")
+    return 0, "" if options.quiet else f"{target}: {len(forces)} member values\n{governing}: governing values"
+
+
+def run_schema(options: argparse.Namespace) -> Answer:
+    """Print one published schema, or their names."""
+    from export.schema import SCHEMAS, read_schema
+
+    if not options.name:
+        return 0, "\n".join(SCHEMAS)
+    return 0, read_schema(options.name)
+
+
+def _read(options: argparse.Namespace) -> Site:
+    from ingest.site import read_site
+
+    brief = Path(options.brief) if options.brief else None
+    with _progress(options) as tell:
+        return read_site(
+            [Path(name) for name in options.files],
+            brief,
+            skip_unreadable=options.skip_unreadable,
+            read_limit=options.read_limit,
+            progress=tell,
+        )
+
+
+def _progress(options: argparse.Namespace) -> AbstractContextManager[Tell]:
+    from export.progress import show_progress
+
+    return show_progress(quiet=options.quiet or options.json)

@@ -1,0 +1,174 @@
+"""Inserts: nested, scaled unevenly, mirrored, turned, in arrays, with attributes."""
+
+from __future__ import annotations
+
+import math
+from dataclasses import replace
+from typing import Any
+
+import numpy as np
+
+from ingest.dxf.curves import Floats, entity_axes
+from ingest.dxf.figures import sketch
+from ingest.dxf.linework import layer_of
+from ingest.dxf.sketch import Batch, Left, Sketch, settle
+from ingest.dxf.text import decode, sketch_text
+
+MOST_FIGURES = 1_000_000
+"""More figures than this from one insert are a fault of the file or an attack."""
+
+
+def insert_matrices(known: dict[str, Any], base: Any) -> tuple[Floats, list[Floats]]:
+    """The matrix of an insert and the shift of each of its copies: placed = vertex @ matrix + shift.
+
+    Args:
+        known: Attributes of the INSERT: insert, xscale, yscale, zscale, rotation, row and column counts and spacings, extrusion.
+        base: Base point of the block.
+
+    Returns:
+        The 3 x 3 matrix for row vectors, and one shift of shape (3,) a copy, row by row. Rows and columns of an array
+        turn with the insert but are not scaled.
+    """
+    turn = math.radians(known.get("rotation", 0.0))
+    cos, sin = math.cos(turn), math.sin(turn)
+    rotation = np.array([[cos, sin, 0.0], [-sin, cos, 0.0], [0.0, 0.0, 1.0]])
+    scale = np.array([known.get("xscale") or 1.0, known.get("yscale") or 1.0, known.get("zscale") or 1.0])
+    axes = entity_axes(known.get("extrusion"))
+    at = known.get("insert")
+    place = np.array([at.x, at.y, at.z]) if at is not None else np.zeros(3)
+    matrix = scale[:, None] * rotation
+    if axes is not None:
+        matrix, rotation, place = matrix @ axes, rotation @ axes, place @ axes
+    first = place - np.array([base.x, base.y, base.z]) @ matrix
+    columns, rows = copies(known)
+    dx, dy = known.get("column_spacing", 0.0), known.get("row_spacing", 0.0)
+    shifts = [first + np.array([j * dx, i * dy, 0.0]) @ rotation for i in range(rows) for j in range(columns)]
+    return matrix, shifts
+
+
+def copies(known: dict[str, Any]) -> tuple[int, int]:
+    """Columns and rows of an insert; counts below one and spacings of zero mean a single one."""
+    columns = max(1, known.get("column_count", 1)) if known.get("column_spacing", 0.0) else 1
+    rows = max(1, known.get("row_count", 1)) if known.get("row_spacing", 0.0) else 1
+    return columns, rows
+
+
+class BlockBook:
+    """The blocks of one drawing, each drawn once and kept."""
+
+    def __init__(self, document: Any, sagitta: float) -> None:
+        """Args: document as loaded; sagitta in drawing units at scale 1."""
+        self._blocks = document.blocks
+        self._sagitta = sagitta
+        self._drawn: dict[tuple[str, int], Batch] = {}
+        self._sizes: dict[str, int] = {}
+        self.left: dict[str, int] = {}
+
+    def figures(self, name: str) -> int:
+        """Number of figures one insert of the block gives, nested ones included; -1 where a block holds itself."""
+        return self._count(name.lower(), ())
+
+    def _count(self, key: str, path: tuple[str, ...]) -> int:
+        if key in path:
+            return -1
+        if key in self._sizes:
+            return self._sizes[key]
+        total = 0
+        for entity in self._entities(key):
+            if entity.dxftype() != "INSERT":
+                total += 1
+                continue
+            known = vars(entity.dxf)
+            inner = self._count(str(known.get("name", "")).lower(), (*path, key))
+            if inner < 0:
+                total = -1
+                break
+            columns, rows = copies(known)
+            total += inner * columns * rows + len(entity.attribs)
+        self._sizes[key] = total
+        return total
+
+    def _entities(self, name: str) -> list[Any]:
+        block = self._blocks.get(name)
+        return list(block) if block is not None else []
+
+    def content(self, name: str, matrix: Floats) -> Batch:
+        """The figures of a block in its own units, fine enough for the scale it is inserted at."""
+        level = math.ceil(math.log2(max(_stretch(matrix), 1e-9)) - 1e-9)
+        key = (name.lower(), level)
+        if key not in self._drawn:
+            self._drawn[key] = self._draw(name, self._sagitta * 2.0**-level)
+        return self._drawn[key]
+
+    def _draw(self, name: str, sagitta: float) -> Batch:
+        sketches: list[Sketch] = []
+        for entity in self._entities(name):
+            if entity.dxftype() == "INSERT":
+                sketches += self.nested(entity, self._sagitta / sagitta)
+                continue
+            figures = sketch(entity, sagitta)
+            if isinstance(figures, Left):
+                self.left[figures.reason] = self.left.get(figures.reason, 0) + 1
+                continue
+            for figure in figures:
+                figure.name = name
+                figure.layer = decode(figure.layer)
+            sketches += figures
+        return settle(sketches, sagitta)
+
+    def nested(self, entity: Any, outer: float) -> list[Sketch]:
+        """The figures of an insert inside a block, in the units of that block."""
+        known = vars(entity.dxf)
+        name = str(known.get("name", ""))
+        block = self._blocks.get(name)
+        if block is None:
+            self.left["insert of a block that is not in the file"] = 1
+            return []
+        matrix, shifts = insert_matrices(known, block.block.dxf.base_point)
+        inner = self.content(name, matrix * outer)
+        layer, tags = decode(layer_of(known)), attributes(entity)
+        plan = math.sqrt(abs(float(np.linalg.det(matrix[:2, :2]))))
+        placed = attribute_texts(entity)
+        for shift in shifts:
+            moved = inner.xyz @ matrix + shift
+            for figure, a, b in zip(inner.sketches, inner.starts, inner.starts[1:], strict=False):
+                placed.append(
+                    replace(
+                        figure,
+                        xyz=moved[a:b].ravel(),
+                        layer=layer if figure.layer == "0" else figure.layer,
+                        width=figure.width * plan if figure.width else None,
+                        rise=figure.rise * float(matrix[2, 2]),
+                        tags={**(figure.tags or {}), **tags} if tags else figure.tags,
+                    )
+                )
+        return placed
+
+
+def _stretch(matrix: Floats) -> float:
+    """Largest factor by which a matrix stretches the plan."""
+    return float(np.linalg.norm(matrix[:2], axis=1).max())
+
+
+def attributes(entity: Any) -> dict[str, str]:
+    """Attributes of an insert, tag to plain text; empty ones are left out."""
+    found: dict[str, str] = {}
+    for attrib in entity.attribs:
+        known = vars(attrib.dxf)
+        words = decode(str(known.get("text", ""))).strip()
+        if words:
+            found[decode(str(known.get("tag", "")))] = words
+    return found
+
+
+def attribute_texts(entity: Any) -> list[Sketch]:
+    """Attributes of an insert as texts at their own places."""
+    sketches: list[Sketch] = []
+    for attrib in entity.attribs:
+        figures = sketch_text(attrib, 0.0)
+        if isinstance(figures, Left):
+            continue
+        for figure in figures:
+            figure.tags = {"attribute": decode(str(vars(attrib.dxf).get("tag", "")))}
+        sketches += figures
+    return sketches

@@ -1,0 +1,230 @@
+"""The bare tags of a DXF file, without a library: group codes, where each value stands, and in which section."""
+
+from __future__ import annotations
+
+import struct
+from collections import Counter
+from dataclasses import dataclass, field
+
+import numpy as np
+from numpy.typing import NDArray
+
+Ints = NDArray[np.int64]
+
+BINARY_MARK = b"AutoCAD Binary DXF\r\n\x1a\x00"
+SUBENTITIES = {"VERTEX", "SEQEND", "ATTRIB"}
+"""Listed after the entity they belong to, never counted alone."""
+NUMBER_CODES = ((10, 59), (110, 149), (210, 239), (460, 469), (1010, 1059))
+
+
+@dataclass(slots=True)
+class Tags:
+    """All tags up to the end mark. `starts` and `stops` bound the bytes of each value."""
+
+    data: bytes
+    binary: bool
+    codes: Ints
+    starts: Ints
+    stops: Ints
+    ended: bool
+    """Whether the end mark (0, EOF) was found."""
+    bad_code: int | None = None
+    """Index of the first tag whose group code is none; tags from there on mean nothing."""
+    zeros: Ints = field(default_factory=lambda: np.empty(0, dtype=np.int64))
+    names: list[str] = field(default_factory=list)
+    """Value of each tag with group code 0, in step with `zeros`."""
+    sections: dict[str, tuple[int, int]] = field(default_factory=dict)
+    """Section name -> first and last tag index (last excluded); the first one of a name."""
+
+    def value(self, index: int) -> bytes:
+        """The bytes of a value."""
+        return self.data[self.starts[index] : self.stops[index]]
+
+    def place(self, index: int) -> str:
+        """Where a value stands: its line in a text file, its byte in a binary one."""
+        if self.binary or index >= len(self.codes):
+            return f"byte {int(self.starts[index]) if index < len(self.codes) else len(self.data)}"
+        return f"line {2 * index + 2}"
+
+    def header(self, variable: str) -> str | None:
+        """First value of a header variable, None where the file does not set it."""
+        first, last = self.sections.get("HEADER", (0, 0))
+        wanted = variable.encode()
+        for index in (np.flatnonzero(self.codes[first:last] == 9) + first).tolist():
+            if self.value(index) == wanted and index + 1 < last:
+                return self._plain(index + 1)
+        return None
+
+    def _plain(self, index: int) -> str:
+        raw = self.value(index)
+        if self.binary and 60 <= self.codes[index] <= 79:
+            return str(int.from_bytes(raw, "little", signed=True))
+        return raw.decode("latin-1").strip()
+
+    def count_entities(self) -> Counter[str]:
+        """Entities by type in the sections ENTITIES and BLOCKS; what belongs to another entity is not counted."""
+        counts: Counter[str] = Counter()
+        for section in ("ENTITIES", "BLOCKS"):
+            first, last = self.sections.get(section, (0, 0))
+            a, b = np.searchsorted(self.zeros, (first, last)).tolist()
+            counts.update(self.names[a:b])
+        for name in (*SUBENTITIES, "BLOCK", "ENDBLK", "SECTION", "ENDSEC", "EOF"):
+            counts.pop(name, None)
+        return counts
+
+
+def scan_tags(data: bytes) -> Tags:
+    """Index the tags of a whole file.
+
+    Args:
+        data: Bytes of a text or binary DXF file.
+
+    Returns:
+        Its tags; a file cut short has `ended` False, a damaged one `bad_code`.
+    """
+    tags = _scan_binary(data) if data.startswith(BINARY_MARK) else _scan_text(data)
+    _find_sections(tags)
+    return tags
+
+
+def _scan_text(data: bytes) -> Tags:
+    raw = np.frombuffer(data, dtype=np.uint8)
+    breaks = np.flatnonzero(raw == 10)
+    if len(data) and data[-1:] != b"\n":
+        breaks = np.append(breaks, len(data))
+    begins = np.concatenate(([0], breaks[:-1] + 1)) if len(breaks) else breaks
+    if data.startswith(b"\xef\xbb\xbf"):
+        begins[0] = 3
+    ends = _strip_end(raw, begins, breaks)
+    pairs = len(ends) // 2
+    codes, bad = _read_codes(raw, begins[0 : 2 * pairs : 2], ends[0 : 2 * pairs : 2])
+    starts, stops = _strip_start(raw, begins[1::2][:pairs], ends[1::2][:pairs]), ends[1::2][:pairs]
+    tags = Tags(data, False, codes, starts, stops, ended=False)
+    _cut(tags, bad)
+    return tags
+
+
+def _strip_end(raw: NDArray[np.uint8], begins: Ints, ends: Ints) -> Ints:
+    """Take carriage returns and blanks off the end of each line."""
+    ends = ends.copy()
+    while True:
+        last = raw[np.maximum(ends - 1, 0)] if len(raw) else ends
+        blank = (ends > begins) & ((last == 13) | (last == 32) | (last == 9))
+        if not blank.any():
+            return ends
+        ends[blank] -= 1
+
+
+def _strip_start(raw: NDArray[np.uint8], begins: Ints, ends: Ints) -> Ints:
+    """Take blanks off the start of each line."""
+    begins = begins.copy()
+    while True:
+        first = raw[np.minimum(begins, len(raw) - 1)] if len(raw) else begins
+        blank = (begins < ends) & ((first == 32) | (first == 9))
+        if not blank.any():
+            return begins
+        begins[blank] += 1
+
+
+def _read_codes(raw: NDArray[np.uint8], begins: Ints, ends: Ints) -> tuple[Ints, NDArray[np.bool_]]:
+    """Group codes of the code lines, and which of them are none."""
+    begins = _strip_start(raw, begins, ends)
+    length = ends - begins
+    codes = np.zeros(len(begins), dtype=np.int64)
+    bad = (length < 1) | (length > 4)
+    for back in range(4):
+        there = length > back
+        digit = raw[np.where(there, ends - 1 - back, 0)].astype(np.int64) - 48 if len(raw) else codes
+        bad |= there & ((digit < 0) | (digit > 9))
+        codes += np.where(there, digit * 10**back, 0)
+    return codes, bad | (codes > 1071)
+
+
+def _cut(tags: Tags, bad: NDArray[np.bool_]) -> None:
+    """Keep the tags up to the end mark, or up to the first group code that is none."""
+    faults = np.flatnonzero(bad)
+    zeros = np.flatnonzero((tags.codes == 0) & ~bad)
+    ending = next((z for z in zeros[tags.stops[zeros] - tags.starts[zeros] == 3].tolist() if tags.value(z) == b"EOF"), None)
+    if len(faults) and (ending is None or faults[0] < ending):
+        tags.bad_code = int(faults[0])
+        ending_at = tags.bad_code + 1
+    else:
+        tags.ended = ending is not None
+        ending_at = len(tags.codes) if ending is None else ending + 1
+    tags.codes, tags.starts, tags.stops = tags.codes[:ending_at], tags.starts[:ending_at], tags.stops[:ending_at]
+    tags.zeros = zeros[zeros < ending_at]
+    tags.names = [tags.value(z).decode("latin-1") for z in tags.zeros.tolist()]
+
+
+def _find_sections(tags: Tags) -> None:
+    """Note where each section begins and ends."""
+    for k, (at, name) in enumerate(zip(tags.zeros.tolist(), tags.names, strict=True)):
+        if name != "SECTION" or at + 1 >= len(tags.codes) or tags.codes[at + 1] != 2:
+            continue
+        title = tags.value(at + 1).decode("latin-1")
+        stop = next((j for j in range(k + 1, len(tags.names)) if tags.names[j] in ("ENDSEC", "SECTION", "EOF")), None)
+        last = int(tags.zeros[stop]) if stop is not None else len(tags.codes)
+        tags.sections.setdefault(title, (at + 2, last))
+
+
+_STRINGS = "s"
+_KINDS: tuple[tuple[int, int, str], ...] = (
+    (0, 9, "s"), (10, 59, "d"), (60, 79, "h"), (90, 99, "i"), (100, 102, "s"), (105, 105, "s"), (110, 149, "d"),
+    (160, 169, "q"), (170, 179, "h"), (210, 239, "d"), (270, 289, "h"), (290, 299, "b"), (300, 309, "s"),
+    (310, 319, "x"), (320, 369, "s"), (370, 389, "h"), (390, 399, "s"), (400, 409, "h"), (410, 419, "s"),
+    (420, 429, "i"), (430, 439, "s"), (440, 459, "i"), (460, 469, "d"), (470, 481, "s"), (999, 1003, "s"),
+    (1004, 1004, "x"), (1005, 1009, "s"), (1010, 1059, "d"), (1060, 1070, "h"), (1071, 1071, "i"),
+)  # fmt: skip
+_SIZES = {"d": 8, "h": 2, "i": 4, "q": 8, "b": 1}
+_KIND = {code: kind for low, high, kind in _KINDS for code in range(low, high + 1)}
+
+
+def _scan_binary(data: bytes) -> Tags:
+    """Walk through a binary file; one-byte codes up to R12, two-byte codes since R13."""
+    at, short = len(BINARY_MARK), len(data) > 23 and data[23] != 0
+    codes, starts, stops = [], [], []
+    ended, bad = False, None
+    while at < len(data) and not ended:
+        code, begin = _binary_code(data, at, short)
+        kind = _KIND.get(code)
+        stop = _binary_stop(data, begin, kind)
+        if kind is None or stop < 0:
+            bad = len(codes) if kind is None else None
+            codes, starts, stops = [*codes, max(code, 0)], [*starts, at], [*stops, at]
+            break
+        first = begin + 1 if kind == "x" else begin
+        codes.append(code)
+        starts.append(first)
+        stops.append(stop)
+        at = stop + 1 if kind == "s" else stop
+        ended = code == 0 and data[first:stop] == b"EOF"
+    arrays = [np.array(values, dtype=np.int64) for values in (codes, starts, stops)]
+    tags = Tags(data, True, arrays[0], arrays[1], arrays[2], ended, bad)
+    tags.zeros = np.flatnonzero(tags.codes == 0)
+    tags.names = [tags.value(z).decode("latin-1") for z in tags.zeros.tolist()]
+    return tags
+
+
+def _binary_code(data: bytes, at: int, short: bool) -> tuple[int, int]:
+    """The group code at a byte and where its value begins; -1 past the end."""
+    if not short:
+        return (int.from_bytes(data[at : at + 2], "little"), at + 2) if at + 2 <= len(data) else (-1, at)
+    if data[at] != 255:
+        return data[at], at + 1
+    return (int.from_bytes(data[at + 1 : at + 3], "little"), at + 3) if at + 3 <= len(data) else (-1, at)
+
+
+def _binary_stop(data: bytes, begin: int, kind: str | None) -> int:
+    """Where a value ends; -1 when the file ends before it."""
+    if kind == "s":
+        return data.find(b"\0", begin)
+    if kind == "x":
+        stop = begin + 1 + data[begin] if begin < len(data) else len(data) + 1
+    else:
+        stop = begin + _SIZES.get(kind or "", 0)
+    return stop if stop <= len(data) else -1
+
+
+def read_double(raw: bytes) -> float:
+    """An eight-byte number of a binary file."""
+    return float(struct.unpack("<d", raw)[0])

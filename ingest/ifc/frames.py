@@ -1,0 +1,110 @@
+"""Axis placements gathered as raw numbers and turned into matrices all at once."""
+
+from __future__ import annotations
+
+from typing import Any
+
+import numpy as np
+from numpy.typing import NDArray
+
+from ingest.ifc.attributes import (
+    AXIS,
+    COORDINATES,
+    LOCATION,
+    REF_DIRECTION,
+    REF_DIRECTION_2D,
+)
+
+Entity = Any
+Floats = NDArray[np.float64]
+Triple = tuple[float, float, float]
+
+NO_FRAME = 0
+"""Row of the identity, for an omitted placement."""
+
+
+class FrameTable:
+    """Axis placements, each gathered once; `matrices` turns them all into 4 x 4 arrays in one go.
+
+    The third axis defaults to up, the first to the file's x axis made square to it, as ISO 10303-42 has it.
+    """
+
+    def __init__(self) -> None:
+        self._rows: dict[int, int] = {}
+        self._directions: dict[int, Triple] = {}
+        self._origins: list[Triple] = [(0.0, 0.0, 0.0)]
+        self._ups: list[Triple] = [(0.0, 0.0, 1.0)]
+        self._firsts: list[Triple] = [(1.0, 0.0, 0.0)]
+
+    def row(self, frame: Entity | None) -> int:
+        """Row of an IfcAxis2Placement2D, 3D or IfcAxis1Placement; `NO_FRAME` for None."""
+        if frame is None:
+            return NO_FRAME
+        key = frame.id()
+        known = self._rows.get(key)
+        if known is not None:
+            return known
+        flat = frame.is_a() == "IfcAxis2Placement2D"
+        up = None if flat else frame.get_argument(AXIS)
+        first = None if frame.is_a() == "IfcAxis1Placement" else frame.get_argument(
+            REF_DIRECTION_2D if flat else REF_DIRECTION
+        )
+        row = self.add(
+            triple(frame.get_argument(LOCATION).get_argument(COORDINATES)),
+            (0.0, 0.0, 1.0) if up is None else self.direction(up),
+            (1.0, 0.0, 0.0) if first is None else self.direction(first),
+        )
+        self._rows[key] = row
+        return row
+
+    def add(self, origin: Triple, up: Triple, first: Triple) -> int:
+        """Append a frame given by its numbers."""
+        self._origins.append(origin)
+        self._ups.append(up)
+        self._firsts.append(first)
+        return len(self._origins) - 1
+
+    def direction(self, direction: Entity) -> Triple:
+        """Ratios of an IfcDirection, not normalised."""
+        key = direction.id()
+        known = self._directions.get(key)
+        if known is None:
+            known = self._directions[key] = triple(direction.get_argument(COORDINATES))
+        return known
+
+    def matrices(self) -> Floats:
+        """All frames as (n, 4, 4), lengths in the file's units."""
+        return frame_matrices(np.array(self._origins), np.array(self._ups), np.array(self._firsts))
+
+
+def triple(numbers: tuple[float, ...]) -> Triple:
+    """Two or three coordinates as three.
+
+    Raises:
+        ValueError: If there are fewer than two.
+    """
+    if len(numbers) == 3:
+        return numbers  # type: ignore[return-value]
+    x, y = numbers
+    return (x, y, 0.0)
+
+
+def frame_matrices(origins: Floats, ups: Floats, firsts: Floats) -> Floats:
+    """Matrices (n, 4, 4) from origins, third axes and reference directions, each (n, 3)."""
+    z = _unit(ups, np.array([0.0, 0.0, 1.0]))
+    along = firsts - np.einsum("ij,ij->i", firsts, z)[:, None] * z
+    lost = np.linalg.norm(along, axis=1) < 1e-9 * np.maximum(np.linalg.norm(firsts, axis=1), 1e-300)
+    if lost.any():
+        spare = np.where(np.abs(z[lost, :1]) < 0.9, [[1.0, 0.0, 0.0]], [[0.0, 1.0, 0.0]])
+        along[lost] = spare - np.einsum("ij,ij->i", spare, z[lost])[:, None] * z[lost]
+    x = _unit(along, np.array([1.0, 0.0, 0.0]))
+    matrices = np.zeros((len(origins), 4, 4))
+    matrices[:, :3, 0], matrices[:, :3, 1], matrices[:, :3, 2] = x, np.cross(z, x), z
+    matrices[:, :3, 3], matrices[:, 3, 3] = origins, 1.0
+    return matrices
+
+
+def _unit(vectors: Floats, spare: Floats) -> Floats:
+    length = np.linalg.norm(vectors, axis=1)
+    ok = length > 0
+    return np.where(ok[:, None], vectors / np.where(ok, length, 1.0)[:, None], spare)

@@ -1,0 +1,108 @@
+"""Where products stand: chains of object placements, multiplied all at once."""
+
+from __future__ import annotations
+
+from typing import Any
+
+import numpy as np
+from numpy.typing import NDArray
+
+from ingest.ifc.attributes import RELATIVE_PLACEMENT, RELATIVE_TO
+from ingest.ifc.frames import NO_FRAME, FrameTable
+from ingest.ifc.grids import grid_frame
+
+Entity = Any
+Floats = NDArray[np.float64]
+
+
+class PlacementTable:
+    """Object placements with their parents; `solve` multiplies the chains by pointer doubling."""
+
+    def __init__(self, frames: FrameTable) -> None:
+        self._frames = frames
+        self._rows: dict[int, int] = {}
+        self._parents: list[int] = [0]
+        self._frame_rows: list[int] = [NO_FRAME]
+        self.unread: dict[int, str] = {}
+        """Rows whose own placement could not be read, and why."""
+
+    def row(self, placement: Entity | None) -> int:
+        """Row of an IfcObjectPlacement; row 0, the world, for None. Walks up the chain once per placement."""
+        if placement is None:
+            return 0
+        key = placement.id()
+        known = self._rows.get(key)
+        if known is not None:
+            return known
+        first = len(self._parents)
+        below = None
+        while placement is not None:
+            key = placement.id()
+            known = self._rows.get(key)
+            if below is not None:
+                self._parents[below] = len(self._parents) if known is None else known
+            if known is not None:
+                break
+            below, placement = self._append(key, placement)
+        return first
+
+    def _append(self, key: int, placement: Entity) -> tuple[int, Entity | None]:
+        row = len(self._parents)
+        self._rows[key] = row
+        self._parents.append(0)
+        self._frame_rows.append(NO_FRAME)
+        try:
+            self._frame_rows[row] = self._own_frame(placement)
+            parent = self._parent(placement)
+            if parent is None or parent.is_a("IfcObjectPlacement"):
+                return row, parent
+            raise ValueError(f"placed relative to a {parent.is_a()}")
+        except (AttributeError, TypeError, ValueError, RuntimeError, IndexError, KeyError) as error:
+            self.unread[row] = str(error)[:80] or type(error).__name__
+        return row, None
+
+    def _own_frame(self, placement: Entity) -> int:
+        kind = placement.is_a()
+        if kind == "IfcLocalPlacement":
+            return self._frames.row(placement.get_argument(RELATIVE_PLACEMENT))
+        if kind == "IfcGridPlacement":
+            return self._frames.add(*grid_frame(placement))
+        spare = getattr(placement, "CartesianPosition", None)
+        if spare is None:
+            raise ValueError(f"{kind} without a Cartesian position")
+        return self._frames.row(spare)
+
+    @staticmethod
+    def _parent(placement: Entity) -> Entity | None:
+        kind = placement.is_a()
+        if kind == "IfcLocalPlacement":
+            return placement.get_argument(RELATIVE_TO)
+        if kind == "IfcGridPlacement":
+            own = getattr(placement, "PlacementRelTo", None)
+            if own is not None:
+                return own
+            axis = placement.PlacementLocation.IntersectingAxes[0]
+            grids = [*axis.PartOfU, *axis.PartOfV, *axis.PartOfW]
+            return grids[0].ObjectPlacement if grids else None
+        return None
+
+    def solve(self) -> tuple[Floats, NDArray[np.bool_]]:
+        """World matrices (n, 4, 4) in file units, and which rows cannot be placed (a cycle, or an unread link).
+
+        Each round halves the length of every chain, so a chain that has not reached the world after log2(n) rounds
+        goes in a circle.
+        """
+        world = self._frames.matrices()[np.array(self._frame_rows)]
+        up = np.array(self._parents)
+        bad = np.zeros(len(up), bool)
+        bad[list(self.unread)] = True
+        with np.errstate(all="ignore"):  # chains that go in a circle run over; they are reported
+            for _ in range(len(up).bit_length() + 1):
+                live = np.flatnonzero(up)
+                if not len(live):
+                    break
+                ahead = up[live]
+                world[live] = world[ahead] @ world[live]
+                bad[live] |= bad[ahead]
+                up[live] = up[ahead]
+        return world, bad | (up != 0)

@@ -1,0 +1,113 @@
+"""Demands of the folded wall and of its twin, facet by facet, and their ratio over construction stages."""
+
+from __future__ import annotations
+
+from collections.abc import Callable, Sequence
+from dataclasses import dataclass
+
+import numpy as np
+
+from sections.model import Floats, Ints
+from sections.screening.hermite import moments
+from sections.screening.solve import Answer
+from sections.screening.twin import TwinAnswer
+from sections.screening.wall import FoldedWall
+
+FLOOR_OF_MOMENT = 0.25
+"""A face moment is taken against at least this share of the section's largest: below it a ratio means nothing."""
+NAMES = ("wall_deflection", "wall_moment_excavated_face", "wall_moment_retained_face", "support_force")
+
+
+@dataclass(frozen=True)
+class Demands:
+    """Demands at every facet (ns,), and per support row (ns, rows) the force per metre of wall; nan where no row."""
+
+    deflection: Floats
+    excavated: Floats
+    retained: Floats
+    support: Floats
+
+
+def wall_demands(wall: FoldedWall, answer: Answer, support: Floats) -> Demands:
+    """Demands of the three-dimensional answer at the middle of each facet; `support` is (ns, rows) kN/m."""
+    ends, normals, length = wall.ends, wall.normals, np.hypot(*wall.chords.T)
+    w = [np.einsum("sd,sdz->sz", normals, answer.value[ends[:, i], :2]) for i in (0, 1)]
+    slope = [np.einsum("sd,sdz->sz", normals, answer.slope[ends[:, i], :2]) for i in (0, 1)]
+    turn = [answer.value[ends[:, i], 2] for i in (0, 1)]
+    turn_slope = [answer.slope[ends[:, i], 2] for i in (0, 1)]
+    # Cubic between columns: the middle is the mean plus h/8 of the change of slope.
+    middle = (w[0] + w[1]) / 2 + length[:, None] / 8 * (turn[0] - turn[1])
+    middle_slope = (slope[0] + slope[1]) / 2 + length[:, None] / 8 * (turn_slope[0] - turn_slope[1])
+    M = moments(wall.z, middle, middle_slope, np.where(wall.on, wall.Dv[:, None], 0.0))
+    return Demands(_largest(middle), _largest(M), _largest(-M), support)
+
+
+def twin_demands(groups: Ints, answers: Sequence[TwinAnswer], rows: Sequence[Sequence[int]], count: int) -> Demands:
+    """Demands of the twins laid out along the facets.
+
+    Args:
+        groups: (ns,) which twin each facet has.
+        answers: One per group. rows: Per group the support row of each prop. count: Number of rows.
+    """
+    per = {
+        "deflection": np.array([_largest(a.w) for a in answers]),
+        "excavated": np.array([_largest(a.M) for a in answers]),
+        "retained": np.array([_largest(-a.M) for a in answers]),
+    }
+    support = np.full((len(answers), count), np.nan)
+    for g, (twin, which) in enumerate(zip(answers, rows, strict=True)):
+        support[g, list(which)] = twin.force
+    return Demands(per["deflection"][groups], per["excavated"][groups], per["retained"][groups], support[groups])
+
+
+def _largest(values: Floats) -> Floats:
+    return np.asarray(np.maximum(values.max(axis=-1), 0.0))
+
+
+def over_stages(stages: Sequence[Demands]) -> tuple[Demands, dict[str, Ints]]:
+    """Largest of each demand over stages, and the stage it comes from by output name."""
+    out, where = {}, {}
+    for name, key in zip(NAMES, ("deflection", "excavated", "retained", "support"), strict=True):
+        stack = np.array([getattr(stage, key) for stage in stages])
+        known = np.where(np.isnan(stack), -1.0, stack)
+        out[key] = np.where(np.all(np.isnan(stack), axis=0), np.nan, known.max(axis=0))
+        where[name] = known.max(axis=2, initial=-1.0).argmax(axis=0) if key == "support" else known.argmax(axis=0)
+    return Demands(**out), where
+
+
+def ratios(real: Demands, flat: Demands, smooth: Callable[[Floats], Floats], rows: bool) -> Floats:
+    """(ns, 4) real over flat for `NAMES`; nan where the flat demand is nothing.
+
+    Args:
+        real: Demands of the folded wall, over stages.
+        flat: Demands of the twins, over stages.
+        smooth: Mean over one bay of supports along the wall.
+        rows: True for rows of piles, whose every output is the mean over a bay.
+    """
+    largest = np.maximum(flat.excavated, flat.retained)
+    floor = FLOOR_OF_MOMENT * largest
+    mean = smooth if rows else (lambda values: values)
+    out = np.column_stack(
+        [
+            _over(mean(real.deflection), flat.deflection),
+            _over(mean(real.excavated), np.maximum(flat.excavated, floor)),
+            _over(smooth(real.retained), np.maximum(flat.retained, floor)),
+            _support_ratio(real.support, flat.support),
+        ]
+    )
+    return np.asarray(out)
+
+
+def _support_ratio(real: Floats, flat: Floats) -> Floats:
+    """Worst row at each facet; a row is taken against at least a quarter of the largest row of the section."""
+    if flat.shape[1] == 0:
+        return np.full(len(flat), np.nan)
+    known = np.where(np.isnan(flat), 0.0, flat)
+    largest = known.max(axis=1, keepdims=True)
+    each = np.where(np.isnan(flat) | np.isnan(real), -np.inf, _over(real, np.maximum(known, FLOOR_OF_MOMENT * largest)))
+    worst = np.where(np.isnan(each), -np.inf, each).max(axis=1)
+    return np.where(np.isfinite(worst), worst, np.nan)
+
+
+def _over(real: Floats, flat: Floats) -> Floats:
+    return np.asarray(np.divide(real, flat, out=np.full(np.shape(real), np.nan), where=flat > 1e-12))

@@ -1,0 +1,103 @@
+"""Every drawn or derived wall as a line on plan: pile rows, axes, and centre lines of faces and outlines."""
+
+from __future__ import annotations
+
+from collections.abc import Iterable
+from dataclasses import dataclass
+
+import numpy as np
+
+from ingest.model import Point, Site, WallKind, WallPiece
+from ingest.trail import Question
+from sections.double_lines import centre_lines
+from sections.model import Floats, Ints
+from sections.pile_rows import EMBEDDED, PileRow, find_pile_rows, pile_size, row_kind
+
+PLAIN_REACH = 0.6
+"""How far the end of a line of unknown thickness is extended to meet another, m (judgement)."""
+NO_PILES: Ints = np.zeros(0, dtype=np.int64)
+
+
+@dataclass(frozen=True, kw_only=True, eq=False)
+class WallLine:
+    """One line of wall of one construction, in the working frame of the finder.
+
+    Attributes:
+        points: (m, 2) vertices; a closed line ends on its first point.
+        kind: Kind of wall, as given or as the row of piles shows.
+        thickness: Thickness or pile diameter, m; None when not given.
+        reach: How far either end may be extended to meet another wall, m.
+        piles: (m,) index into `Site.piles` of each vertex; empty for a wall that is not a row of piles.
+        piece: Index into `Site.walls`; -1 for a row of piles.
+        toe: Deepest toe along the line; None when not given.
+        paired: True where the line is the middle of two faces.
+    """
+
+    points: Floats
+    kind: WallKind
+    thickness: float | None
+    reach: float
+    piles: Ints
+    piece: int
+    toe: float | None
+    paired: bool = False
+
+    @property
+    def embedded(self) -> bool:
+        """True for walls that are built from the ground down to retain it."""
+        return self.kind in EMBEDDED
+
+
+def gather_lines(site: Site, origin: Point) -> tuple[tuple[WallLine, ...], tuple[Question, ...]]:
+    """All wall lines of a site relative to `origin`, in an order that does not depend on the order of the input."""
+    rows = tuple(_row_line(site, row, origin) for row in find_pile_rows(site.piles))
+    drawn = sorted(range(len(site.walls)), key=lambda i: _place(site.walls[i]))
+    centred, questions = centre_lines([(i, site.walls[i]) for i in drawn], origin)
+    lines = [_drawn_line(site.walls[i], i, points, origin, None) for i, points in centred.axes]
+    lines += [_drawn_line(site.walls[i], i, points, (0.0, 0.0), t) for i, points, t in centred.middles]
+    return (*rows, *(line for line in lines if len(line.points) > 1)), questions
+
+
+def _place(piece: WallPiece) -> tuple[Point, Point, str]:
+    ends = sorted((piece.axis[0], piece.axis[-1])) if piece.axis else [(0.0, 0.0)] * 2
+    return ends[0], ends[1], piece.id
+
+
+def _row_line(site: Site, row: PileRow, origin: Point) -> WallLine:
+    piles = [site.piles[i] for i in row.piles]
+    points = np.array([pile.centre for pile in piles]) - origin
+    sizes = [size for size in map(pile_size, piles) if size is not None]
+    size = float(np.median(sizes)) if sizes else None
+    index = np.array(row.piles, dtype=np.int64)
+    return WallLine(
+        points=np.vstack((points, points[:1])) if row.closed else points,
+        kind=row_kind([pile.kind for pile in piles], row.spacing, size),
+        thickness=size,
+        reach=1.3 * row.spacing + 0.1,
+        piles=np.append(index, index[:1]) if row.closed else index,
+        piece=-1,
+        toe=lowest(pile.toe for pile in piles),
+    )
+
+
+def lowest(levels: Iterable[float | None]) -> float | None:
+    """The lowest of the levels that are given."""
+    return min((level for level in levels if level is not None), default=None)
+
+
+def _drawn_line(piece: WallPiece, index: int, points: Floats, origin: Point, thickness: float | None) -> WallLine:
+    local = points - origin
+    if piece.closed and thickness is None and np.hypot(*(local[0] - local[-1])) > 1e-9:
+        local = np.vstack((local, local[:1]))
+    step = np.hypot(*np.diff(local, axis=0).T) > 1e-6
+    thick = thickness if thickness is not None else piece.thickness
+    return WallLine(
+        points=local[np.append(True, step)],
+        kind=piece.kind,
+        thickness=thick,
+        reach=PLAIN_REACH if thick is None else max(1.3 * thick, 0.3),
+        piles=NO_PILES,
+        piece=index,
+        toe=piece.toe,
+        paired=thickness is not None,
+    )
