@@ -19,10 +19,9 @@ Answer = tuple[int, str]
 
 def run_inspect(options: argparse.Namespace) -> Answer:
     """Read the files and tell what was found, what is missing and what is in doubt."""
+    from export.inventory import describe, describe_json
     from ingest.site import write_starting_brief
     from sections.find import find_pits
-
-    from export.inventory import describe, describe_json
 
     site = _read(options)
     pits = find_pits(site)

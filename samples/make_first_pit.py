@@ -1,4 +1,7 @@
-"""Draw the setting-out drawing of `first_pit`, an invented rectangular basement. Run: python samples/make_first_pit.py"""
+"""Draw the setting-out drawing of `first_pit`, an invented rectangular basement.
+
+Run: python samples/make_first_pit.py
+"""
 
 from __future__ import annotations
 

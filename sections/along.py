@@ -7,7 +7,7 @@ from itertools import chain
 
 import numpy as np
 
-from sections.model import Bools, Corner, Floats, FoundPit, Ints, Stations
+from sections.model import Bools, Corner, Floats, FoundPit, Ints, Run, Stations
 
 NONE, INSIDE, FREE, CURVE, REENTRANT = range(5)
 """Kinds of end of a straight wall, mildest first: where two coincide the later one counts."""
@@ -53,7 +53,7 @@ class WallEnds:
 
     def has(self, kind: int) -> Bools:
         """True where either end is of this kind."""
-        return (self.back_kind == kind) | (self.ahead_kind == kind)
+        return np.asarray((self.back_kind == kind) | (self.ahead_kind == kind))
 
 
 def find_ends(found: FoundPit) -> WallEnds:
@@ -96,12 +96,12 @@ def _corner_kind(found: FoundPit, corner: Corner) -> int:
     """Tell what a corner does: it holds nothing where the wall on one of its sides is not there."""
     if corner.interior_angle > 180.0:
         return REENTRANT
-    touching = [
-        run.wall.kind
-        for run in found.shape.runs
-        if any(_same_place(found, corner.at, end) for end in (run.start, run.to)) or _inside_run(run.start, run.to, corner.at)
-    ]
+    touching = [run.wall.kind for run in found.shape.runs if _touches(found, run, corner.at)]
     return FREE if "none" in touching else INSIDE
+
+
+def _touches(found: FoundPit, run: Run, at: float) -> bool:
+    return any(_same_place(found, at, end) for end in (run.start, run.to)) or _inside_run(run.start, run.to, at)
 
 
 def _inside_run(start: float, to: float, at: float) -> bool:
@@ -180,3 +180,21 @@ def changes_of(found: FoundPit) -> Floats:
 def steps_of(found: FoundPit) -> Floats:
     """Chainages at which a step of the dig floor meets the wall."""
     return np.array(sorted(at for step in found.pit.steps for at in step.at))
+
+
+def gaps_of(found: FoundPit) -> Floats:
+    """Chainages of support heads whose tributary width is out of step with their row by more than a tenth."""
+    at: list[Floats] = []
+    for row in found.rows:
+        for place, width in ((row.head_at, row.tributary_head), (row.far_at, row.tributary_far)):
+            at.append(place[out_of_step(width)])
+    return np.concatenate(at) if at else np.zeros(0)
+
+
+def out_of_step(width: Floats, ratio: float = 0.1) -> Bools:
+    """True for members that stand for a length of wall clearly larger than the usual one of their row."""
+    known = width[~np.isnan(width)]
+    if len(known) == 0:
+        return np.zeros(len(width), dtype=bool)
+    usual = float(np.median(known))
+    return np.asarray(np.nan_to_num(width, nan=0.0) > usual * (1.0 + ratio) + 1e-9)

@@ -77,9 +77,9 @@ def check_bearing_row(diameter: float, spacing: float, where: str) -> tuple[Find
     if ratio <= WALL_LIMIT * (1 + 1e-9):
         return ()
     if ratio <= SHEET_LIMIT * (1 + 1e-9):
-        text = f"bearing piles at {ratio:.2f} D: as a sheet only with the factors on shaft and base, it blocks the ground"
+        text = f"bearing piles at {ratio:.2f} D: a sheet needs the factors on shaft and base, and blocks the ground"
     else:
-        text = f"bearing piles at {ratio:.2f} D, limit {SHEET_LIMIT:g} D: not to be drawn as a wall, use springs or leave out"
+        text = f"bearing piles at {ratio:.2f} D, limit {SHEET_LIMIT:g} D: no wall, use springs or leave them out"
     return (Finding(id=f"bearing-row:{where}", code="bearing-row", severity="check", where=where, text=text),)
 
 

@@ -47,18 +47,24 @@ def _wall_rows(member: SectionMember, section: PerMetre) -> list[Implied]:
         shaft = pi * real.diameter**2 / 4 / real.spacing
         rows.append(
             _row(
-                member.id, "volume", shaft, section.thickness,
+                member.id,
+                "volume",
+                shaft,
+                section.thickness,
                 "hand over EA and EI per metre, and the weight of the real piles, not of a wall this thick",
                 "moments come back per pile by the spacing; the gaps between piles are not in the section",
             )
-        )  # fmt: skip
+        )
         rows.append(
             _row(
-                member.id, "count", 1 / real.spacing, 1.0,
+                member.id,
+                "count",
+                1 / real.spacing,
+                1.0,
                 "none: piles become an endless straight wall; bending along the wall is not in the section",
                 "read deflection as the mean of a row of piles, not of the pile at mid-bay",
             )
-        )  # fmt: skip
+        )
     return rows
 
 
@@ -69,19 +75,25 @@ def _bar_rows(member: SectionMember, section: PerMetre) -> list[Implied]:
         return rows
     rows.append(
         _row(
-            member.id, "count", 1 / real.spacing, 1.0,
-            f"one member each {real.spacing:.2f} m becomes a sheet: stiffness, preload and limit are divided by the spacing",
+            member.id,
+            "count",
+            1 / real.spacing,
+            1.0,
+            f"one member each {real.spacing:.2f} m becomes a sheet: its values are divided by the spacing",
             f"multiply back by {_back(member):.3f}; between members the wall moves more than the section shows",
         )
-    )  # fmt: skip
+    )
     if real.EA_kN and section.EA_kN_per_m:
         rows.append(
             _row(
-                member.id, "stiffness", real.EA_kN / real.spacing, section.EA_kN_per_m,
+                member.id,
+                "stiffness",
+                real.EA_kN / real.spacing,
+                section.EA_kN_per_m,
                 "the true projection of a skewed member is in the factor: do not divide by the spacing again",
                 "the along-wall part of the force is lost; see actions without a 2D twin",
             )
-        )  # fmt: skip
+        )
     return rows
 
 
@@ -91,11 +103,14 @@ def _bond_rows(member: SectionMember) -> list[Implied]:
         return []
     return [
         _row(
-            member.id, "contact_area", pi * real.bond_diameter / real.spacing, 2.0,
+            member.id,
+            "contact_area",
+            pi * real.bond_diameter / real.spacing,
+            2.0,
             "reduce the interface strength of the sheet by this ratio; let ground pass the sheet",
             "the section shows an endless sheet in the ground: it shields and stiffens more than separate grout bodies",
         )
-    ]  # fmt: skip
+    ]
 
 
 def _bearing_rows(member: SectionMember, section: PerMetre) -> list[Implied]:
@@ -105,19 +120,25 @@ def _bearing_rows(member: SectionMember, section: PerMetre) -> list[Implied]:
         return rows
     rows.append(
         _row(
-            member.id, "contact_area", pi * real.diameter / real.spacing, 2.0,
+            member.id,
+            "contact_area",
+            pi * real.diameter / real.spacing,
+            2.0,
             "scale the shaft strength of the sheet by real over implied",
             "ground cannot flow between the piles in the section: lateral coupling is overstated",
         )
-    )  # fmt: skip
+    )
     if section.thickness:
         rows.append(
             _row(
-                member.id, "volume", pi * real.diameter**2 / 4 / real.spacing, section.thickness,
+                member.id,
+                "volume",
+                pi * real.diameter**2 / 4 / real.spacing,
+                section.thickness,
                 "scale the base resistance by real over implied",
                 "settlement of the row is kept; punching between piles is not shown",
             )
-        )  # fmt: skip
+        )
     return rows
 
 
@@ -128,11 +149,14 @@ def _load_rows(load: SectionLoad) -> list[Implied]:
         return []
     return [
         _row(
-            load.id, "load", load.section.value, naive.value,
+            load.id,
+            "load",
+            load.section.value,
+            naive.value,
             "hand over the equal-effect value; the drawn load extruded is endless along the wall",
             "valid in the plane through the load only; run the neighbour with and without it",
         )
-    ]  # fmt: skip
+    ]
 
 
 def _back(member: SectionMember) -> float:

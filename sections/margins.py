@@ -14,7 +14,7 @@ from typing import Literal
 import numpy as np
 
 from ingest.model import OUTPUTS
-from sections.along import bay_of, changes_of, distance_along, find_ends, steps_of
+from sections.along import changes_of, distance_along, find_ends, gaps_of, steps_of
 from sections.model import Bools, Floats, FoundPit
 
 Class = Literal["far", "near", "change", "unlike", "rows"]
@@ -95,7 +95,7 @@ def margins_at(found: FoundPit) -> StationMargins:
     reach = FAR * np.where(np.isnan(stations.depth), np.inf, stations.depth)
     change = _distance_to_changes(found) <= reach
     ends = find_ends(found)
-    felt = np.minimum(np.where(np.isfinite(ends.back), ends.back, np.inf), ends.ahead) <= reach
+    felt = np.minimum(ends.back, ends.ahead) <= reach
     near = change | felt | ~stations.facing_like
     members: dict[Class, Bools] = {
         "far": np.ones(len(reach), dtype=bool),
@@ -118,21 +118,3 @@ def _distance_to_changes(found: FoundPit) -> Floats:
     """Distance along the wall to the nearest change of wall, step of the floor or gap in a row of supports, m."""
     changes = np.concatenate([changes_of(found), steps_of(found), gaps_of(found)])
     return distance_along(found, changes)
-
-
-def gaps_of(found: FoundPit) -> Floats:
-    """Chainages of support heads whose tributary width is out of step with their row by more than a tenth."""
-    at: list[Floats] = []
-    for row in found.rows:
-        for place, width in ((row.head_at, row.tributary_head), (row.far_at, row.tributary_far)):
-            at.append(place[out_of_step(width)])
-    return np.concatenate(at) if at else np.zeros(0)
-
-
-def out_of_step(width: Floats, ratio: float = 0.1) -> Bools:
-    """True for members that stand for a length of wall clearly larger than the usual one of their row."""
-    known = width[~np.isnan(width)]
-    if len(known) == 0:
-        return np.zeros(len(width), dtype=bool)
-    usual = float(np.median(known))
-    return np.asarray(np.nan_to_num(width, nan=0.0) > usual * (1.0 + ratio) + 1e-9)

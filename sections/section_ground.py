@@ -10,8 +10,10 @@ from shapely import Polygon, make_valid
 from shapely.geometry.base import BaseGeometry
 
 from ingest.model import Site, Stratum
+from ingest.trail import Finding
 from sections.cut import Cut
 from sections.definition import XZ, Curve, GroundLayer, SectionMaterial, Water
+from sections.ground import downwards, layers_along
 from sections.model import Floats
 
 THIN = 1e-6
@@ -66,9 +68,18 @@ def _ring(shape: Polygon) -> Curve:
 
 
 SOIL_FIELDS = (
-    "unit_weight", "unit_weight_sat", "E", "nu", "K0", "c", "phi", "su", "permeability", "drainage",
+    "unit_weight",
+    "unit_weight_sat",
+    "E",
+    "nu",
+    "K0",
+    "c",
+    "phi",
+    "su",
+    "permeability",
+    "drainage",
     "wall_friction_ratio",
-)  # fmt: skip
+)
 
 
 def soil_material(stratum: Stratum, base: float) -> SectionMaterial:
@@ -118,3 +129,83 @@ def water_lines(site: Site, cut: Cut) -> tuple[Water, ...]:
 def _water(name: str, side: str, span: tuple[float, float], level: float, kind: str) -> Water:
     line = ((span[0], level), (span[1], level))
     return Water(id=name, side=side, line=line, kind=kind)  # type: ignore[arg-type]
+
+
+def layers_of_cut(
+    site: Site, cut: Cut, base: float
+) -> tuple[tuple[GroundLayer, ...], dict[str, tuple[tuple[float, str], ...]], tuple[Finding, ...]]:
+    """Layers of a section, the column of layer tops behind each wall, and what is missing.
+
+    Args:
+        site: Its strata and boreholes.
+        cut: The cut.
+        base: Bottom of the model.
+
+    Returns:
+        Layers; per side ("left", "right") the tops just behind that wall, highest first; findings.
+    """
+    order = list(downwards(site))
+    x = sample_x(site, cut)
+    tops = layers_along(site, np.array([cut.point(float(v)) for v in x]))
+    told = [i for i in order if not np.any(np.isnan(tops[i]))]
+    findings = tuple(
+        Finding(
+            id=f"stratum-{site.strata[i].name}",
+            code="stratum_without_level",
+            severity="check",
+            where=site.strata[i].name,
+            text=f"Stratum {site.strata[i].name} has no level along this cut: it is not in the section",
+        )
+        for i in order
+        if i not in told
+    )
+    if not told:
+        return (), {}, (*findings, _no_ground())
+    names = [site.strata[i].name for i in told]
+    surface = _surface_levels(cut, x)
+    kept = np.minimum(tops[told], surface)
+    kept[0] = surface  # made ground or not, the uppermost stratum reaches the surface
+    columns = {wall.side: _column(x, kept, names, wall.x) for wall in cut.walls}
+    return layer_outlines(x, kept, base, names), columns, findings
+
+
+def sample_x(site: Site, cut: Cut) -> Floats:
+    """Where the ground is sampled along a cut: its ends for level strata, every metre where boreholes tell."""
+    if not any(stratum.from_boreholes for stratum in site.strata):
+        return np.array([0.0, cut.length])
+    return np.linspace(0.0, cut.length, max(2, int(np.ceil(cut.length)) + 1))
+
+
+def _surface_levels(cut: Cut, x: Floats) -> Floats:
+    """Ground level along the cut: that of the nearest wall; the middle of the pit takes the line between them."""
+    levels = [(wall.x, wall.level["ground"]) for wall in cut.walls]
+    known = [(at, level) for at, level in levels if level is not None]
+    if not known:
+        return np.zeros(len(x))
+    return np.asarray(np.interp(x, [at for at, _ in known], [level for _, level in known]))
+
+
+def surface_line(cut: Cut) -> Curve:
+    """Ground surface before work: level behind each wall, straight between them."""
+    inner = [wall.x for wall in cut.walls]
+    x = np.array(sorted({0.0, cut.length, *inner}))
+    z = _surface_levels(cut, x)
+    line = [(float(a), float(b)) for a, b in zip(x, z, strict=True)]
+    flat = len({level for _, level in line}) == 1
+    return (line[0], line[-1]) if flat else tuple(line)
+
+
+def _column(x: Floats, tops: Floats, names: Sequence[str], at: float) -> tuple[tuple[float, str], ...]:
+    levels = [float(np.interp(at, x, row)) for row in tops]
+    below = [*levels[1:], -np.inf]
+    return tuple((top, name) for top, name, base in zip(levels, names, below, strict=True) if top - base > THIN)
+
+
+def _no_ground() -> Finding:
+    return Finding(
+        id="ground",
+        code="ground_not_given",
+        severity="check",
+        where="ground",
+        text="No strata are given: the section has no ground; add [[strata]] to the brief or AGS boreholes",
+    )

@@ -25,6 +25,8 @@ class Prop:
     preload: float | None
     names: frozenset[str]
     parts: tuple[str, ...] = ()
+    permanent: bool = False
+    """A slab: cast from the bottom up after the last dig unless the brief says otherwise."""
 
 
 @dataclass(frozen=True, kw_only=True)
@@ -50,7 +52,12 @@ class DigProfile:
 
 
 def plan_stages(
-    site: Site, dig: DigProfile, walls: Sequence[str], props: Sequence[Prop], loads: Sequence[str], water: Sequence[str]
+    site: Site,
+    dig: DigProfile,
+    walls: Sequence[str],
+    props: Sequence[Prop],
+    loads: Mapping[str, str | None],
+    water: Sequence[str],
 ) -> tuple[tuple[SectionStage, ...], tuple[Assumption, ...], tuple[Finding, ...]]:
     """Lay out the stages of a section.
 
@@ -59,29 +66,36 @@ def plan_stages(
         dig: Final dig profile.
         walls: Wall member ids.
         props: Supports of the section.
-        loads: Load ids; a load whose brief stage is None acts from the start.
+        loads: Load ids with the stage of the brief in which each comes on; None from the start.
         water: Ids of the water lines.
 
     Returns:
         Stages (stage 0 = stress in the ground before work), what was assumed, and what did not fit.
     """
-    acting = {load.id: load.stage for load in site.loads}
-    from_start = tuple(load for load in loads if acting.get(load) is None)
+    from_start = tuple(load for load, stage in loads.items() if stage is None)
     first = (
         SectionStage(
-            id="T0", order=0, text="stress in the ground before work", level=dig.ground, loads_on=from_start, water=(*water,),
+            id="T0",
+            order=0,
+            text="stress in the ground before work",
+            level=dig.ground,
+            loads_on=from_start,
+            water=(*water,),
             assumed=False,
         ),
-        SectionStage(id="T1", order=1, text="wall installed", level=dig.ground, install=(*walls,), assumed=not site.stages),
-    )  # fmt: skip
+        SectionStage(
+            id="T1", order=1, text="wall installed", level=dig.ground, install=(*walls,), assumed=not site.stages
+        ),
+    )
     if site.stages:
-        stages, findings = _given(site.stages, first, dig, props, {k: v for k, v in acting.items() if k in loads and v})
+        stages, findings = _given(site.stages, first, dig, props, {k: v for k, v in loads.items() if v})
         return stages, (), findings
     assumption = Assumption(
         id="stages",
         code="stages_by_template",
         about="construction stages",
-        text=f"Dug from the top down to {OVER_DIG} m below each support, which is then installed, then to the dig level",
+        text=f"Dug from the top down to {OVER_DIG} m below each support, which is then installed, then to the dig "
+        "level; slabs are cast from the bottom up, no support is removed",
         basis="common practice, no source; sequence not given",
     )
     findings = _untold_sequence(site)
@@ -90,15 +104,17 @@ def plan_stages(
 
 def _template(first: tuple[SectionStage, ...], dig: DigProfile, props: Sequence[Prop]) -> tuple[SectionStage, ...]:
     stages, above = list(first), dig.ground
-    for level in sorted({prop.level for prop in props}, reverse=True):
-        here = [prop for prop in props if prop.level == level]
-        below = max(level - OVER_DIG, dig.lowest)
-        text = f"dig to {below:.2f} and install {', '.join(prop.id for prop in here)}"
+    for level in sorted({prop.level for prop in props if not prop.permanent}, reverse=True):
+        here = [prop for prop in props if prop.level == level and not prop.permanent]
+        below = min(above, max(level - OVER_DIG, dig.lowest))
         stages.append(_dig_stage(len(stages), f"dig to {below:.2f}", dig, above, below))
-        stages.append(_install_stage(len(stages), text.split(" and ")[1], below, here))
-        above = min(above, below)
+        stages.append(_install_stage(len(stages), "install", below, here))
+        above = below
     if above - dig.lowest > 1e-9:
         stages.append(_dig_stage(len(stages), f"dig to {dig.lowest:.2f}", dig, above, dig.lowest))
+    for level in sorted({prop.level for prop in props if prop.permanent}):
+        here = [prop for prop in props if prop.level == level and prop.permanent]
+        stages.append(_install_stage(len(stages), "cast", dig.lowest, here))
     return tuple(stages)
 
 
@@ -106,11 +122,11 @@ def _dig_stage(order: int, text: str, dig: DigProfile, above: float, below: floa
     return SectionStage(id=f"T{order}", order=order, text=text, level=below, dig=dig.outlines(above, below))
 
 
-def _install_stage(order: int, text: str, level: float, props: Sequence[Prop]) -> SectionStage:
+def _install_stage(order: int, verb: str, level: float, props: Sequence[Prop]) -> SectionStage:
     return SectionStage(
         id=f"T{order}",
         order=order,
-        text=text,
+        text=f"{verb} {', '.join(prop.id for prop in props)}",
         level=level,
         install=tuple(part for prop in props for part in (prop.id, *prop.parts)),
         preload={prop.id: prop.preload for prop in props if prop.preload is not None},
@@ -159,18 +175,25 @@ def _named(props: Sequence[Prop], names: Sequence[str]) -> list[Prop]:
 def _gaps_in_sequence(props: Sequence[Prop], installed: set[str], reached: float, dig: DigProfile) -> list[Finding]:
     findings = [
         Finding(
-            id=f"stage-{prop.id}", code="never_installed", severity="check", where=prop.id,
+            id=f"stage-{prop.id}",
+            code="never_installed",
+            severity="check",
+            where=prop.id,
             text=f"No stage of the brief installs {prop.id} at level {prop.level:.2f}",
         )
-        for prop in props if prop.id not in installed
-    ]  # fmt: skip
+        for prop in props
+        if prop.id not in installed
+    ]
     if reached - dig.lowest > 1e-6:
         findings.append(
             Finding(
-                id="stage-dig", code="dig_not_reached", severity="check", where="stages",
+                id="stage-dig",
+                code="dig_not_reached",
+                severity="check",
+                where="stages",
                 text=f"The stages of the brief stop at {reached:.2f}; the dig level here is {dig.lowest:.2f}",
             )
-        )  # fmt: skip
+        )
     return findings
 
 
@@ -183,7 +206,7 @@ def _untold_sequence(site: Site) -> tuple[Finding, ...]:
             code="sequence_not_laid_out",
             severity="check",
             where="stages",
-            text=f"Sequence {site.sequence!r} has no template yet: give the stages in the brief; a bottom-up one is shown",
+            text=f"Sequence {site.sequence!r} has no template: give [[stages]] in the brief; a bottom-up one is shown",
         ),
     )
 

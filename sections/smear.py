@@ -169,7 +169,7 @@ def corner_length(length: float, skew: float) -> float:
 
 
 def corner_force(EA: float, length: float, skew: float, movement: float) -> float:
-    """Force of a corner strut when both walls move alike into the pit, EA u (cos + sin)/L, kN (compression positive)."""
+    """Shortening force of a corner strut when both walls move `movement` (m) into the pit, EA u (cos + sin)/L, kN."""
     c, s = _corner_parts(skew)
     require_positive(EA, "axial rigidity EA", "kN")
     return EA * movement * (c + s) / require_positive(length, "strut length", "m")
@@ -182,7 +182,7 @@ def corner_stiffness(EA: float, length: float, skew: float, spacing: float) -> f
 
 
 def on_other_wall(spacing: float, skew: float) -> tuple[float, float]:
-    """Spacing and skew of the same corner struts as the other wall of a right-angled corner has them: s/tan, 90 - skew."""
+    """Spacing and skew of corner struts as the other wall of a right-angled corner has them: s/tan, 90 - skew."""
     require(skew, "skew of a corner strut", "degrees", above=0.0, below=90.0)
     return require_positive(spacing, "spacing", "m") / tan(radians(skew)), 90.0 - skew
 

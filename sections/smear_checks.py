@@ -43,11 +43,11 @@ def check_skew(
     """Flag a skewed row: from 15 degrees with care, from 40 degrees not smeared (corner struts have their own rule)."""
     beta = direction.beta
     if not may_be_smeared(direction, role):
-        text = f"{beta:.1f} degrees out of the plane of the cut, limit {REFUSE_BETA:g}: not smeared, its force is not assessed"
+        text = f"{beta:.1f} degrees out of the plane of the cut, limit {REFUSE_BETA:g}: not smeared, force not assessed"
         return (_finding("skew-refused", "check", where, text),)
     if role != "corner_strut" and beta > CARE_BETA + ANGLE_TOLERANCE:
         left = cos(radians(beta)) ** 3
-        text = f"{beta:.1f} degrees out of the plane of the cut (care from {CARE_BETA:g}): {left:.3f} of EA/s is handed over"
+        text = f"{beta:.1f} degrees out of the plane of the cut, care above {CARE_BETA:g}: {left:.3f} of EA/s is left"
         return (_finding("skew-care", "check", where, text),)
     return ()
 
@@ -63,7 +63,7 @@ def check_spacing(widths: Floats, where: str) -> RowSpacing:
     low, high = require_positive(float(np.min(widths)), "tributary width", "m"), float(np.max(widths))
     if high <= low * (1 + TRIBUTARY_RATIO) * (1 + 1e-9):
         return RowSpacing(spacing=float(np.mean(widths)), spacing_range=None)
-    text = f"tributary widths run from {low:.2f} to {high:.2f} m, more than {TRIBUTARY_RATIO:.0%} apart: no single spacing"
+    text = f"tributary widths {low:.2f} to {high:.2f} m, more than {TRIBUTARY_RATIO:.0%} apart: no single spacing"
     finding = _finding("spacing-range", "check", where, text)
     return RowSpacing(spacing=None, spacing_range=(low, high), findings=(finding,))
 

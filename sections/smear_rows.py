@@ -43,7 +43,7 @@ def direction_of(real: RealMember) -> Direction:
 
 
 def chain_factor(real: RealMember) -> float:
-    """phi = k_effective L_eff/EA of a member whose support chain is known, else 1.
+    """Chain factor phi = k_effective L_eff/EA of a member whose support chain is known, else 1.
 
     Raises:
         ValueError: The chain would be stiffer than the member itself.

@@ -30,13 +30,14 @@ class LooseEnds:
 
 @dataclass(frozen=True, kw_only=True)
 class Join:
-    """One way to close a loose end: with another end at a meeting point, or onto an edge."""
+    """One way to close a loose end: with another end or onto an edge, at a new point or straight to a node."""
 
     cost: float
     end: int
-    other: int | None
-    edge: int | None
-    point: tuple[float, float] | None
+    other: int | None = None
+    edge: int | None = None
+    point: tuple[float, float] | None = None
+    node: int | None = None
 
 
 def close_joins(graph: WallGraph, lines: Sequence[WallLine], tolerance: float) -> WallGraph:
@@ -50,7 +51,7 @@ def close_joins(graph: WallGraph, lines: Sequence[WallLine], tolerance: float) -
     if not len(ends.node):
         return graph
     joins = sorted(
-        [*_end_to_end(ends, tolerance), *_end_to_edge(graph, ends)],
+        [*_end_to_end(ends, tolerance), *_end_to_edge(graph, ends, tolerance)],
         key=lambda j: (round(j.cost, 6), *np.round(ends.at[j.end], 3)),
     )
     free = [True] * len(ends.node)
@@ -116,14 +117,15 @@ def _end_to_end(ends: LooseEnds, tolerance: float) -> list[Join]:
     facing &= span <= np.maximum(ends.reach[i], ends.reach[j])
     meet = ends.at[i] + s[:, None] * di
     cost = np.where(facing, span, np.maximum(s, 0.0) + np.maximum(t, 0.0))
+    straight = facing | (np.minimum(np.abs(s), np.abs(t)) <= tolerance)
     return [
-        Join(cost=float(cost[k]), end=int(i[k]), other=int(j[k]), edge=None,
-             point=None if facing[k] else (float(meet[k, 0]), float(meet[k, 1])))
+        Join(cost=float(cost[k]), end=int(i[k]), other=int(j[k]), node=int(ends.node[j[k]]) if straight[k] else None,
+             point=None if straight[k] else (float(meet[k, 0]), float(meet[k, 1])))
         for k in np.flatnonzero(corner | facing)
     ]  # fmt: skip
 
 
-def _end_to_edge(graph: WallGraph, ends: LooseEnds) -> list[Join]:
+def _end_to_edge(graph: WallGraph, ends: LooseEnds, tolerance: float) -> list[Join]:
     rays = shapely.linestrings(np.stack((ends.at, ends.at + ends.ahead * ends.reach[:, None]), axis=1))
     tree = shapely.STRtree(shapely.linestrings(graph.xy[graph.ends]))
     end, edge = tree.query(rays, predicate="intersects")
@@ -135,9 +137,12 @@ def _end_to_edge(graph: WallGraph, ends: LooseEnds) -> list[Join]:
     ok = np.abs(det) > 0.03 * np.hypot(*along.T)
     s = cross(graph.xy[a] - ends.at[end], along) / np.where(ok, det, 1.0)
     meet = ends.at[end] + s[:, None] * ends.ahead[end]
+    to_a, to_b = np.hypot(*(meet - graph.xy[a]).T), np.hypot(*(meet - graph.xy[b]).T)
+    at_node = np.minimum(to_a, to_b) <= tolerance
+    nearer = np.where(to_a < to_b, a, b)
     return [
-        Join(cost=float(s[k]), end=int(end[k]), other=None, edge=int(edge[k]),
-             point=(float(meet[k, 0]), float(meet[k, 1])))
+        Join(cost=float(s[k]), end=int(end[k]), node=int(nearer[k])) if at_node[k] else
+        Join(cost=float(s[k]), end=int(end[k]), edge=int(edge[k]), point=(float(meet[k, 0]), float(meet[k, 1])))
         for k in np.flatnonzero(ok & (s >= 0))
     ]  # fmt: skip
 
@@ -151,7 +156,7 @@ def _apply(graph: WallGraph, ends: LooseEnds, joins: Sequence[Join]) -> WallGrap
     cuts: list[tuple[int, int]] = []
     for join in joins:
         mine, here = int(ends.node[join.end]), int(graph.line[ends.edge[join.end]])
-        to = next(numbers) if join.point is not None else int(ends.node[join.other or 0])
+        to = next(numbers) if join.node is None else join.node
         pairs.append((mine, to))
         line.append(here)
         if join.other is not None and join.point is not None:

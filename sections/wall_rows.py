@@ -41,7 +41,7 @@ def round_pile(
 
 
 def post(
-    *, E: float, A: float, I: float, unit_weight: float | None, spacing: float, width: float | None = None  # noqa: E741
+    *, E: float, A: float, I: float, unit_weight: float | None, spacing: float  # noqa: E741
 ) -> RealMember:
     """One real king post from its modulus (kPa), area (m2), second moment across the wall (m4) and spacing (m)."""
     require_positive(E, "modulus E", "kPa")
@@ -52,7 +52,6 @@ def post(
         weight_kN_per_m=None if unit_weight is None else require_positive(unit_weight, "unit weight", "kN/m3") * area,
         spacing=require_positive(spacing, "post spacing", "m"),
         centres=spacing,
-        thickness=width,
         E_kPa=E,
     )
 

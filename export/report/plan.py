@@ -4,7 +4,7 @@ from __future__ import annotations
 
 from collections.abc import Sequence
 from importlib import resources
-from math import hypot
+from math import cos, hypot, radians, sin
 
 from export.report import plan_site as on_site
 from export.report.along import Perimeter, stretches, worst_words
@@ -18,7 +18,7 @@ from ingest.model import NOTICE, Point, Site
 from sections.model import ChosenSection, Pit, Proposal, Represents, StationTable, Unrepresented
 
 HEIGHT = 860.0
-FOOT = 94.0
+FOOT = 122.0
 VERDICT_OFF = 15.0
 STANDS_OFF = 27.0
 GOVERNING_KEY = "governing"
@@ -37,6 +37,7 @@ def plan_drawing(proposal: Proposal, site: Site | None) -> Html:
         tag("title", "Plan of the excavation with verdicts and chosen cuts", id="plan-title"),
         tag("desc", _description(proposal), id="plan-desc"),
         grid(view),
+        tag("g", *(mark for pit in proposal.pits for mark in _symmetry(pit, view)), class_="layer-symmetry"),
         _cuts(proposal.sections, view),
         *(_pit(pit, site, view, world) for pit in proposal.pits),
         tag("g", on_site.corners(proposal.pits, view), class_="layer-corners"),
@@ -45,8 +46,10 @@ def plan_drawing(proposal: Proposal, site: Site | None) -> Html:
         *(_stands_for(pit, proposal, view) for pit in proposal.pits),
         tag("g", id="plan-marker", hidden=True),
         north((WIDTH - 40, 30)),
+        letters((28, view.height + 110), NOTICE, SMALL, class_="soft"),
         scale_bar((28, view.height + 50), view),
-        legend((28, view.height + 78), 163.0),
+        legend((28, view.height + 80), 158.0),
+        _legend_of_cuts((430, view.height + 50)),
     ]
     return tag(
         "svg", join_lines(body), class_="drawing plan", viewBox=f"0 0 {WIDTH:g} {view.height + FOOT:.0f}",
@@ -61,14 +64,9 @@ def plan_file(proposal: Proposal, site: Site | None) -> str:
     style = Html(f"<style>\n{css}.output-band:not(.for-{GOVERNING_KEY}) {{ display: none; }}\n</style>\n")
     drawing = plan_drawing(proposal, site)
     head, _, rest = drawing.partition(">")
-    foot = letters((WIDTH - 12, _height(drawing) - 10), NOTICE, SMALL, "end", "soft")
     inner = rest[: rest.rindex("</svg>")]
     defs = tag("defs", area_patterns(), load_hatch())
-    return f'<?xml version="1.0" encoding="UTF-8"?>\n{head}>\n{style}{defs}\n{inner}\n{foot}\n</svg>\n'
-
-
-def _height(drawing: str) -> float:
-    return float(drawing.partition('viewBox="')[2].partition('"')[0].split()[3])
+    return f'<?xml version="1.0" encoding="UTF-8"?>\n{head}>\n{style}{defs}\n{inner}\n</svg>\n'
 
 
 def load_hatch() -> Html:
@@ -114,14 +112,11 @@ def _pit(pit: Pit, site: Site | None, view: View, world: ToWorld) -> Html:
         on_site.walls(pit, site, view, world),
         on_site.supports(pit, site, view, world),
         _zones(pit, view),
-        tag("g", *_symmetry(pit, view), class_="layer-symmetry"),
         class_="pit",
     )
 
 
 def _symmetry(pit: Pit, view: View) -> list[Html]:
-    from math import cos, radians, sin
-
     marks = []
     for axis in pit.symmetry:
         dx, dy = cos(radians(axis.direction)), sin(radians(axis.direction))
@@ -232,6 +227,17 @@ def _cuts(sections: Sequence[ChosenSection], view: View) -> Html:
             tag("a", named(about, line, *ends), href=f"#section-{section.id}", class_="cut-link", aria_label=about)
         )
     return tag("g", *marks, class_="layer-cuts")
+
+
+def _legend_of_cuts(at: Point) -> Html:
+    x, y = at
+    rows = (("cut", "section cut", 0), ("stands-shown", "stands for: shown", 125), ("stands-provisional", "provisional", 285),
+            ("stands-none", "own analysis", 405))  # fmt: skip
+    return tag(
+        "g",
+        *(tag("path", d=f"M{x + off} {y + 3}h36", class_=class_) for class_, _, off in rows),
+        *(letters((x + off + 42, y + 7), words, SMALL) for _, words, off in rows),
+    )
 
 
 def _cut_end(at: Point, inward: Point, name: str, turn: int = 1) -> Html:

@@ -122,7 +122,7 @@ def member_words(row: Member) -> str:
 def _row_label(row: Member, line: Perimeter, view: View) -> Html:
     stand = next((one for one in row.along if one.end == "head"), row.along[0])
     middle = line.straight_middle(stand.start, stand.to)
-    inward = (18.0 if row.role == "waler" else 42.0) / view.k
+    inward = (32.0 if row.role == "waler" else 46.0) / view.k
     at = view.at(line.square_off(middle, -inward))
     nx, ny = line.normal(middle)
     turn = readable_turn((0, 0), (-ny, -nx)) if abs(nx) < 0.999 else -90.0

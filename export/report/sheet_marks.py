@@ -26,7 +26,7 @@ def letters(
 def readable_turn(a: Point, b: Point) -> float:
     """Turn of lettering along a line on the sheet so that it is never upside down, degrees."""
     turn = degrees(atan2(b[1] - a[1], b[0] - a[0]))
-    return turn - 180 if turn > 90 else turn + 180 if turn <= -90 else turn
+    return turn - 180 if turn > 89.9 else turn + 180 if turn < -90.1 else turn
 
 
 def grid(view: View) -> Html:

@@ -114,3 +114,26 @@ def entity_axes(extrusion: Any) -> Floats | None:
     first = np.cross(up, normal)
     first /= np.linalg.norm(first)
     return np.array([first, np.cross(normal, first), normal])
+
+
+def circle_of_bulges(points: Floats, bulges: Floats) -> tuple[float, float, float] | None:
+    """Centre and radius of a closed polyline whose arcs are one full circle.
+
+    Args:
+        points: Vertices, shape (n, 2), any unit; the last one joins the first.
+        bulges: Bulges, shape (n,), of each vertex to the next.
+
+    Returns:
+        x, y and radius in the same unit, or None when the polyline is anything else.
+    """
+    if abs(abs(float(np.arctan(bulges).sum())) - math.pi / 2) > 1e-6 or not (np.abs(bulges) > 1e-3).all():
+        return None
+    ahead = np.roll(points, -1, axis=0)
+    chord = ahead - points
+    lift = ((1.0 - bulges**2) / (4.0 * bulges))[:, None]
+    centres = (points + ahead) / 2.0 + lift * np.column_stack((-chord[:, 1], chord[:, 0]))
+    radii = np.hypot(*(points - centres).T)
+    centre, radius = centres.mean(axis=0), float(radii.mean())
+    if np.abs(centres - centre).max() > 1e-6 * radius or np.abs(radii - radius).max() > 1e-6 * radius:
+        return None
+    return float(centre[0]), float(centre[1]), radius

@@ -5,7 +5,8 @@ from __future__ import annotations
 from collections.abc import Callable
 from typing import Any
 
-from ingest.dxf.areas import sketch_face, sketch_hatch, sketch_mline, sketch_solid
+from ingest.dxf.annotation import sketch_dimension, sketch_multileader
+from ingest.dxf.areas import sketch_face, sketch_hatch, sketch_mesh, sketch_mline, sketch_solid
 from ingest.dxf.linework import (
     sketch_arc,
     sketch_circle,
@@ -39,6 +40,11 @@ SKETCHERS: dict[str, Sketcher] = {
     "TRACE": sketch_solid,
     "3DFACE": sketch_face,
     "MLINE": sketch_mline,
+    "MESH": sketch_mesh,
+    "DIMENSION": sketch_dimension,
+    "ARC_DIMENSION": sketch_dimension,
+    "LARGE_RADIAL_DIMENSION": sketch_dimension,
+    "MULTILEADER": sketch_multileader,
 }
 
 SOLIDS = {"3DSOLID", "REGION", "BODY", "SURFACE", "EXTRUDEDSURFACE", "LOFTEDSURFACE", "REVOLVEDSURFACE",
@@ -77,6 +83,8 @@ def sketch(entity: Any, sagitta: float) -> list[Sketch] | Left:
         Its figures, or why there are none. A fault in one entity never ends the reading of the others.
     """
     kind = entity.dxftype()
+    if vars(entity.dxf).get("invisible", 0):
+        return Left("context", "hidden entity")
     sketcher = SKETCHERS.get(kind)
     if sketcher is None:
         return ASIDE.get(kind) or Left("ignored", f"unreadable object of another program: {kind}")

@@ -8,7 +8,7 @@ from typing import Any
 
 import numpy as np
 
-from ingest.dxf.curves import Floats, entity_axes
+from ingest.dxf.curves import Floats, circle_of_bulges, entity_axes
 from ingest.dxf.sketch import Left, Sketch
 
 
@@ -46,19 +46,32 @@ def sketch_lwpolyline(entity: Any, sagitta: float) -> list[Sketch] | Left:
     xyz[:, :2] = values[:, :2]
     xyz[:, 2] = known.get("elevation", 0.0)
     bulges, widths = values[:, 4], values[:, 2:4]
-    return [
-        Sketch(
-            cls="LWPOLYLINE",
-            layer=layer_of(known),
-            form="path",
-            xyz=xyz.ravel(),
-            closed=bool(known.get("flags", 0) & 1),
-            bulges=bulges if bulges.any() else None,
-            axes=entity_axes(known.get("extrusion")),
-            width=known.get("const_width") or (even_width(widths) if widths.any() else None),
-            rise=known.get("thickness", 0.0),
-        )
-    ]
+    width = known.get("const_width") or (even_width(widths) if widths.any() else None)
+    line = Sketch(
+        cls="LWPOLYLINE",
+        layer=layer_of(known),
+        form="path",
+        xyz=xyz.ravel(),
+        closed=bool(known.get("flags", 0) & 1),
+        bulges=bulges if bulges.any() else None,
+        axes=entity_axes(known.get("extrusion")),
+        width=width,
+        rise=known.get("thickness", 0.0),
+    )
+    return [_disc(line) or line]
+
+
+def _disc(line: Sketch) -> Sketch | None:
+    """A closed polyline whose arcs are one circle, as that circle out to the edge of its width."""
+    if not line.closed or line.bulges is None or not 1 < len(line.bulges) < 9:
+        return None
+    vertices = np.asarray(line.xyz, dtype=np.float64).reshape(-1, 3)
+    found = circle_of_bulges(vertices[:, :2], np.asarray(line.bulges, dtype=np.float64))
+    if found is None:
+        return None
+    at, radius = (found[0], found[1], float(vertices[0, 2])), found[2] + (line.width or 0.0) / 2
+    words = "polyline of arcs that make one circle"
+    return conic(line.cls, line.layer, at, radius, None, line.axes, rise=line.rise, evidence=words)
 
 
 def even_width(widths: Floats) -> float | None:
@@ -69,43 +82,53 @@ def even_width(widths: Floats) -> float | None:
 
 def sketch_circle(entity: Any, sagitta: float) -> list[Sketch] | Left:
     """A CIRCLE, kept as its centre and two half axes."""
-    known = vars(entity.dxf)
-    return _round(entity, known, None)
+    return _round(entity, None)
 
 
 def sketch_arc(entity: Any, sagitta: float) -> list[Sketch] | Left:
     """An ARC, counter-clockwise from its start to its end angle in its own plane."""
     known = vars(entity.dxf)
-    start = math.radians(known.get("start_angle", 0.0))
-    end = math.radians(known.get("end_angle", 360.0))
-    return _round(entity, known, _forward(start, end))
+    start, end = known.get("start_angle", 0.0), known.get("end_angle", 360.0)
+    return _round(entity, forward(math.radians(start), math.radians(end)))
 
 
-def _forward(start: float, end: float) -> tuple[float, float]:
-    """The span from start to end counter-clockwise; equal angles are a whole turn."""
+def forward(start: float, end: float) -> tuple[float, float]:
+    """The span from start to end counter-clockwise, radians; equal angles are a whole turn."""
     sweep = math.fmod(end - start, math.tau)
     if sweep <= 1e-12:
         sweep += math.tau
     return start, start + sweep
 
 
-def _round(entity: Any, known: dict[str, Any], span: tuple[float, float] | None) -> list[Sketch] | Left:
+def _round(entity: Any, span: tuple[float, float] | None) -> list[Sketch] | Left:
+    known = vars(entity.dxf)
     centre, radius = known.get("center"), known.get("radius")
     cls = entity.dxftype()
     if centre is None or radius is None:
         return incomplete(f"{cls} without centre or radius")
-    x, y, z, r = centre.x, centre.y, centre.z, abs(radius)
-    return [
-        Sketch(
-            cls=cls,
-            layer=layer_of(known),
-            form="conic",
-            xyz=(x, y, z, x + r, y, z, x, y + r, z),
-            span=span,
-            axes=entity_axes(known.get("extrusion")),
-            rise=known.get("thickness", 0.0),
-        )
-    ]
+    axes = entity_axes(known.get("extrusion"))
+    at = (centre.x, centre.y, centre.z)
+    return [conic(cls, layer_of(known), at, abs(radius), span, axes, rise=known.get("thickness", 0.0))]
+
+
+def conic(
+    cls: str,
+    layer: str,
+    at: tuple[float, float, float],
+    radius: float,
+    span: tuple[float, float] | None,
+    axes: Floats | None,
+    *,
+    rise: float = 0.0,
+    tags: dict[str, str] | None = None,
+    evidence: str = "",
+) -> Sketch:
+    """A circle, or with a span an arc, in the plane of the axes."""
+    x, y, z = at
+    xyz = (x, y, z, x + radius, y, z, x, y + radius, z)
+    return Sketch(
+        cls=cls, layer=layer, form="conic", xyz=xyz, span=span, axes=axes, rise=rise, tags=tags, evidence=evidence
+    )
 
 
 def sketch_ellipse(entity: Any, sagitta: float) -> list[Sketch] | Left:
@@ -118,7 +141,7 @@ def sketch_ellipse(entity: Any, sagitta: float) -> list[Sketch] | Left:
     normal = axes[2] if axes is not None else np.array([0.0, 0.0, 1.0])
     c, u = np.array([centre.x, centre.y, centre.z]), np.array([long.x, long.y, long.z])
     v = np.cross(normal, u) * known.get("ratio", 1.0)
-    span = _forward(known.get("start_param", 0.0), known.get("end_param", math.tau))
+    span = forward(known.get("start_param", 0.0), known.get("end_param", math.tau))
     xyz = np.concatenate((c, c + u, c + v))
     return [Sketch(cls="ELLIPSE", layer=layer_of(known), form="conic", xyz=xyz, span=span)]
 
@@ -153,19 +176,18 @@ def sketch_polyline(entity: Any, sagitta: float) -> list[Sketch] | Left:
     bulges = [v.get("bulge", 0.0) for v in own]
     width = known.get("default_start_width", 0.0), known.get("default_end_width", 0.0)
     widths = [(v.get("start_width", width[0]), v.get("end_width", width[1])) for v in own]
-    return [
-        Sketch(
-            cls="POLYLINE",
-            layer=layer_of(known),
-            form="path",
-            xyz=tuple(chain.from_iterable(xyz)),
-            closed=bool(flags & 1),
-            bulges=bulges if planar and any(bulges) else None,
-            axes=entity_axes(known.get("extrusion")) if planar else None,
-            width=even_width(np.array(widths)) if planar else None,
-            rise=known.get("thickness", 0.0),
-        )
-    ]
+    line = Sketch(
+        cls="POLYLINE",
+        layer=layer_of(known),
+        form="path",
+        xyz=tuple(chain.from_iterable(xyz)),
+        closed=bool(flags & 1),
+        bulges=bulges if planar and any(bulges) else None,
+        axes=entity_axes(known.get("extrusion")) if planar else None,
+        width=even_width(np.array(widths)) if planar else None,
+        rise=known.get("thickness", 0.0),
+    )
+    return [_disc(line) or line]
 
 
 def _is_control(vertex: Any) -> bool:

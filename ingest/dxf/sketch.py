@@ -29,8 +29,9 @@ class Left(NamedTuple):
 class Sketch:
     """One figure in drawing units, not yet placed.
 
-    `xyz` is flat: x, y, z of each vertex. A conic has three: centre and the two half-axis points; a text has three: its
-    point, one letter height along it, one letter height up. `bulges` belongs to each vertex and its next. `axes` are the
+    `xyz` is flat: x, y, z of each vertex. A conic has three: centre and the two half-axis points; a text has its
+    point, one letter height along it, one letter height up, then the points of its leaders. `measure` is the length a
+    dimension measures. `bulges` belongs to each vertex and its next. `axes` are the
     rows of the entity's own plane when its vertices are not in world axes yet. `rings` counts the vertices of the outer
     ring and of each hole.
     """
@@ -46,6 +47,7 @@ class Sketch:
     span: tuple[float, float] | None = None
     rings: tuple[int, ...] = ()
     width: float | None = None
+    measure: float | None = None
     rise: float = 0.0
     name: str = ""
     text: str = ""
@@ -223,10 +225,13 @@ class _Mover:
         return self._make(sketch, "path", path[:-1] if whole else path, closed=whole, tags=tags)
 
     def _text(self, sketch: Sketch, points: tuple[Point3, ...]) -> Part | str:
-        start, along, up = points
-        height = math.dist(start, up)
+        start, along, up, *tips = points
         turn = math.degrees(math.atan2(along[1] - start[1], along[0] - start[0]))
-        tags = {"height": f"{height:.6g}", "rotation": f"{turn:.6g}"}
+        tags = {"height": f"{math.dist(start, up):.6g}", "rotation": f"{turn:.6g}"}
+        if tips:
+            tags["leader"] = "; ".join(f"{x!r} {y!r}" for x, y, _ in tips)
+        if sketch.measure is not None:
+            tags["measured"] = f"{sketch.measure * self.plan_scale:.9g}"
         return self._make(sketch, "text", points[:1], tags=tags)
 
     def _make(

@@ -88,6 +88,8 @@ def scan_tags(data: bytes) -> Tags:
 
 
 def _scan_text(data: bytes) -> Tags:
+    if b"\n" not in data:
+        data = data.replace(b"\r", b"\n")
     raw = np.frombuffer(data, dtype=np.uint8)
     breaks = np.flatnonzero(raw == 10)
     if len(data) and data[-1:] != b"\n":

@@ -71,7 +71,7 @@ def sketch_text(entity: Any, sagitta: float) -> list[Sketch] | Left:
         return Left("context", "empty text")
     turn = math.radians(known.get("rotation", 0.0))
     height = abs(known.get("height", 1.0)) or 1.0
-    return [_written(entity, known, (at.x, at.y, at.z), words, height, turn, planar=True)]
+    return [written(entity, (at.x, at.y, at.z), words, height, turn, planar=True)]
 
 
 def sketch_mtext(entity: Any, sagitta: float) -> list[Sketch] | Left:
@@ -80,12 +80,7 @@ def sketch_mtext(entity: Any, sagitta: float) -> list[Sketch] | Left:
     at = known.get("insert")
     if at is None:
         return incomplete("MTEXT without its place")
-    raw = str(entity.text)
-    if any(c in raw for c in "\\{}^"):
-        from ezdxf.tools.text import fast_plain_mtext
-
-        raw = str(fast_plain_mtext(raw))
-    words = decode(raw).strip()
+    words = decode(plain_mtext(str(entity.text))).strip()
     if not words:
         return Left("context", "empty text")
     direction = known.get("text_direction")
@@ -93,12 +88,20 @@ def sketch_mtext(entity: Any, sagitta: float) -> list[Sketch] | Left:
     if direction is not None:
         turn = math.atan2(direction.y, direction.x)
     height = abs(known.get("char_height", 1.0)) or 1.0
-    return [_written(entity, known, (at.x, at.y, at.z), words, height, turn, planar=False)]
+    return [written(entity, (at.x, at.y, at.z), words, height, turn, planar=False)]
 
 
-def _written(
+def plain_mtext(raw: str) -> str:
+    """Text of a MTEXT without its formatting, lines kept apart."""
+    if not any(c in raw for c in "\\{}^"):
+        return raw
+    from ezdxf.tools.text import fast_plain_mtext
+
+    return str(fast_plain_mtext(raw))
+
+
+def written(
     entity: Any,
-    known: dict[str, Any],
     at: tuple[float, float, float],
     words: str,
     height: float,
@@ -106,6 +109,8 @@ def _written(
     *,
     planar: bool,
 ) -> Sketch:
+    """A text figure at a point, its height in drawing units, its turn in radians, in its own plane when planar."""
+    known = vars(entity.dxf)
     x, y, z = at
     dx, dy = height * math.cos(turn), height * math.sin(turn)
     axes = entity_axes(known.get("extrusion")) if planar else None

@@ -30,7 +30,7 @@ class CurveReader:
 
     def __init__(self, length: float, angle: float) -> None:
         self._sagitta = SAGITTA / length
-        self._angle = angle
+        self.angle = angle
         self._known: dict[int, Floats] = {}
 
     def points(self, curve: Entity, depth: int = 0) -> Floats:
@@ -133,7 +133,7 @@ class CurveReader:
         """Angle of a trim; a point is taken before a parameter, whose angle unit files often get wrong."""
         at = _cartesian(trim)
         if at is None:
-            return float(_parameter(trim) or 0.0) * self._angle
+            return float(_parameter(trim) or 0.0) * self.angle
         c, x, y, a, b = conic(basis)
         return float(np.arctan2((at - c) @ y / b, (at - c) @ x / a))
 
@@ -198,8 +198,7 @@ _READERS = {
 def conic(curve: Entity) -> tuple[Floats, Floats, Floats, float, float]:
     """Centre, both axes (unit vectors) and both half axes of an IfcCircle or IfcEllipse."""
     frames = FrameTable()
-    row = frames.row(curve.Position)
-    matrix = frames.matrices()[row]
+    matrix = frames.matrix(frames.row(curve.Position))
     half = (curve.Radius, curve.Radius) if curve.is_a("IfcCircle") else (curve.SemiAxis1, curve.SemiAxis2)
     return matrix[:3, 3], matrix[:3, 0], matrix[:3, 1], float(half[0]), float(half[1])
 

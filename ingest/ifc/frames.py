@@ -72,6 +72,19 @@ class FrameTable:
             known = self._directions[key] = triple(direction.get_argument(COORDINATES))
         return known
 
+    def is_plain(self, row: int) -> bool:
+        """True for a frame at the origin that is not turned."""
+        return (self._origins[row], self._ups[row], self._firsts[row]) == (
+            (0.0, 0.0, 0.0),
+            (0.0, 0.0, 1.0),
+            (1.0, 0.0, 0.0),
+        )
+
+    def matrix(self, row: int) -> Floats:
+        """One frame as (4, 4); `matrices` for many."""
+        one = (np.array([numbers[row]]) for numbers in (self._origins, self._ups, self._firsts))
+        return np.asarray(frame_matrices(*one)[0])
+
     def matrices(self) -> Floats:
         """All frames as (n, 4, 4), lengths in the file's units."""
         return frame_matrices(np.array(self._origins), np.array(self._ups), np.array(self._firsts))

@@ -76,14 +76,15 @@ class ProjectUnits:
         if known is None:
             return None
         kind, to_ours = known
-        return to_ours * self._si(kind)
+        return to_ours * self.si(kind)
 
-    def _si(self, kind: str) -> float:
+    def si(self, kind: str) -> float:
+        """SI units per unit of this kind (LENGTHUNIT, FORCEUNIT ...)."""
         if kind in self.factors:
             return self.factors[kind]
         product = 1.0
         for part, power in _FALLBACK.get(kind, ()):
-            product *= self._si(part) ** power
+            product *= self.si(part) ** power
         return product
 
 

@@ -99,6 +99,7 @@ class Sheet:
         cross_check: bool = False,
         recalled: bool = False,
         settled_by: str = "",
+        silence: dict[str, str] | None = None,
     ) -> CriterionResult:
         """Hand the sheet in."""
         values = inputs or {}
@@ -119,6 +120,7 @@ class Sheet:
             cross_check=cross_check,
             recalled=recalled,
             settled_by=settled_by,
+            silence=silence or {},
         )
 
     def _columns(self, outputs: Iterable[str]) -> list[int]:

@@ -76,9 +76,7 @@ def drained_limits(
     return np.maximum((K0 - Ka) * vertical, 0.0), np.maximum(left, 0.0), np.maximum(-left, 0.0)
 
 
-def undrained_limits(
-    K0: Floats, su: Floats, vertical: Floats, vertical_dug: Floats
-) -> tuple[Floats, Floats, Floats]:
+def undrained_limits(K0: Floats, su: Floats, vertical: Floats, vertical_dug: Floats) -> tuple[Floats, Floats, Floats]:
     """The same in total stress: active sigma_v - 2 s_u, passive sigma_v + 2 s_u, never below zero."""
     left = vertical_dug + 2 * su - K0 * vertical
     active = np.maximum(vertical - 2 * su, 0.0)

@@ -42,9 +42,7 @@ def factorise(wall: FoldedWall, members: Members, beams: Beams) -> Factored:
     touched = np.unique(element_unknowns(wall)[wall.on])
     scale = 1 / np.sqrt(total.diagonal()[touched])
     scaled = sparse.diags(scale) @ total[touched][:, touched] @ sparse.diags(scale)
-    factors = splu(
-        scaled.tocsc(), permc_spec="MMD_AT_PLUS_A", diag_pivot_thresh=0.0, options={"SymmetricMode": True}
-    )
+    factors = splu(scaled.tocsc(), permc_spec="MMD_AT_PLUS_A", diag_pivot_thresh=0.0, options={"SymmetricMode": True})
     return Factored(wall, members, vectors, touched, scale, factors, load - vectors.T @ members.preload)
 
 

@@ -75,9 +75,7 @@ def beam_stiffness(wall: FoldedWall, beams: Beams) -> sparse.csr_matrix:
     block = np.einsum("bai,bac,bcj->bij", across, line.bend * beams.EI[:, None, None], across)
     block += np.einsum("bai,bac,bcj->bij", slide, line.slope1 * beams.EA[:, None, None], slide)
     ends = wall.ends[beams.facet]
-    index = np.stack(
-        [unknown(wall, ends[:, end], part, beams.node) for end in (0, 1) for part in (0, 1, 2)], axis=1
-    )
+    index = np.stack([unknown(wall, ends[:, end], part, beams.node) for end in (0, 1) for part in (0, 1, 2)], axis=1)
     entries = (block.ravel(), (np.repeat(index, 6, -1).ravel(), np.tile(index, (1, 6)).ravel()))
     return sparse.csr_matrix(entries, shape=(wall.size, wall.size))
 

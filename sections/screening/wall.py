@@ -166,9 +166,7 @@ def corner_law(wall: FoldedWall, down: LineMatrices) -> sparse.coo_matrix:
     here = np.arange(nc) if wall.closed else np.arange(1, nc - 1)
     before, after = (here - 1) % nc, here % nc
     t = wall.tangents
-    turn = np.arctan2(
-        t[before, 0] * t[after, 1] - t[before, 1] * t[after, 0], np.sum(t[before] * t[after], axis=1)
-    )
+    turn = np.arctan2(t[before, 0] * t[after, 1] - t[before, 1] * t[after, 0], np.sum(t[before] * t[after], axis=1))
     share = np.maximum(turn / (np.pi / 2), 0.0)
     factor = share * (1 + share)
     rows, cols, values = [], [], []

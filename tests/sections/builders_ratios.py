@@ -165,7 +165,13 @@ def _corners(axis: m.Floats, at: m.Floats, closed: bool) -> tuple[m.Corner, ...]
 
 
 def _found(
-    site: Site, shape: m.PitShape, rows: Sequence[Row], ground: float, floor: float, step: float, channels: dict[str, object]
+    site: Site,
+    shape: m.PitShape,
+    rows: Sequence[Row],
+    ground: float,
+    floor: float,
+    step: float,
+    channels: dict[str, object],
 ) -> tuple[Site, m.FoundPit]:
     supports: list[Support] = list(site.supports)
     held = [_support_row(shape, row, supports, j) for j, row in enumerate(rows)]
@@ -187,7 +193,8 @@ def _found(
         circle=shape.circle,
         members=tuple(row.member for row in held),
     )
-    return replace(site, supports=tuple(supports)), m.FoundPit(pit=pit, shape=shape, stations=stations, rows=tuple(held))
+    found = m.FoundPit(pit=pit, shape=shape, stations=stations, rows=tuple(held))
+    return replace(site, supports=tuple(supports)), found
 
 
 def _zones(shape: m.PitShape) -> tuple[m.Zone, ...]:
@@ -258,7 +265,12 @@ def _tributary(shape: m.PitShape, at: m.Floats) -> m.Floats:
 
 
 def _stations(
-    shape: m.PitShape, chainage: m.Floats, ground: float, floor: float, rows: Sequence[m.SupportRow], channels: dict[str, object]
+    shape: m.PitShape,
+    chainage: m.Floats,
+    ground: float,
+    floor: float,
+    rows: Sequence[m.SupportRow],
+    channels: dict[str, object],
 ) -> m.Stations:
     n = len(chainage)
     sides = find_sides(shape)

@@ -120,7 +120,10 @@ def test_the_deep_neighbour_of_a_floor_step_drags_the_shallow_side_above_its_2d_
     fields = ("spring", "spread", "pressure")
     wall = dataclasses.replace(
         shallow,
-        **{f: np.where(step.reshape(-1, *[1] * (getattr(deep, f).ndim - 1)), getattr(deep, f), getattr(shallow, f)) for f in fields},
+        **{
+            f: np.where(step.reshape(-1, *[1] * (getattr(deep, f).ndim - 1)), getattr(deep, f), getattr(shallow, f))
+            for f in fields
+        },
     )
     members, props = smeared(wall, LEVELS, 8e3)
     ratio = deflection_ratio(wall, members, props)

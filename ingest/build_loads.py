@@ -1,0 +1,126 @@
+"""Loads and receptors of the site: drawn ones with what the brief says of them, and those given by points."""
+
+from __future__ import annotations
+
+from collections.abc import Sequence
+
+from ingest.brief_tables import LoadTable, ReceptorTable
+from ingest.figures import centroid, outline_of, plan
+from ingest.matching import find_entry
+from ingest.model import Evidence, Load, LoadKind, Part, Point, Receptor
+from ingest.notes import Notes, label
+from ingest.register import Moved
+from ingest.roles import RoleGiven
+from ingest.trail import Source
+
+UNITS = {"point": "kN", "line": "kN/m", "area": "kPa", "footing": "kPa"}
+
+
+def build_loads(given: Sequence[RoleGiven], moved: Moved, notes: Notes) -> tuple[Load, ...]:
+    """Make the loads.
+
+    Args:
+        given: Parts with role load.
+        moved: World to local, for points of the brief.
+        notes: Takes missing values and refused shapes.
+    """
+    brief = notes.brief
+    loads = []
+    for item in given:
+        found = find_entry(brief.loads, item.part)
+        entry = found[1] if found else LoadTable.model_construct()
+        kind = entry.kind or _kind(item.part)
+        points = _load_points(item.part, kind)
+        if points is None:
+            notes.refuse(item.part, f"{kind} load without a fitting shape on plan")
+            continue
+        if entry.value is None:
+            about = f"{label(item)}: how large is this load ({UNITS[kind]})?"
+            notes.ask(about, f'[[loads]]\nmatch = {{ layer = "{item.part.layer}" }}\nkind = "{kind}"\nvalue = 0.0')
+        loads.append(
+            Load(
+                id="",
+                kind=kind,
+                value=entry.value,
+                points=points,
+                level=entry.level if entry.level is not None else item.part.z_bottom,
+                stage=entry.stage,
+                layer=item.part.layer,
+                name=item.part.name,
+                evidence=item.evidence,
+                sources=(item.part.source,),
+            )
+        )
+    for number, entry in enumerate(brief.loads):
+        if entry.points is not None and entry.kind is not None:
+            source = Source(file=brief.file, item=f"loads[{number + 1}]")
+            loads.append(
+                Load(
+                    id="",
+                    kind=entry.kind,
+                    value=entry.value,
+                    points=tuple(moved.to_local(point) for point in entry.points),
+                    level=entry.level,
+                    stage=entry.stage,
+                    evidence=Evidence(role="load", why=f"brief, {brief.place('loads', number)}", confidence=1.0),
+                    sources=(source,),
+                )
+            )
+    return tuple(loads)
+
+
+def build_receptors(given: Sequence[RoleGiven], moved: Moved, notes: Notes) -> tuple[Receptor, ...]:
+    """Make the receptors: neighbouring buildings, tunnels, tracks, utilities.
+
+    Args:
+        given: Parts with role receptor.
+        moved: World to local, for points of the brief.
+        notes: Supplies the brief.
+    """
+    brief = notes.brief
+    receptors = []
+    for item in given:
+        found = find_entry(brief.receptors, item.part)
+        entry = found[1] if found else ReceptorTable.model_construct()
+        drawn = any(point[2] for point in item.part.points)
+        receptors.append(
+            Receptor(
+                id="",
+                kind=entry.kind or item.use or "building",
+                points=outline_of(item.part) or plan(item.part.points),
+                level=entry.level if entry.level is not None else item.part.points[0][2] if drawn else None,
+                sensitivity=entry.sensitivity,
+                layer=item.part.layer,
+                name=item.part.name,
+                evidence=item.evidence,
+                sources=(item.part.source,),
+            )
+        )
+    for number, entry in enumerate(brief.receptors):
+        if entry.points:
+            receptors.append(
+                Receptor(
+                    id="",
+                    kind=entry.kind or "building",
+                    points=tuple(moved.to_local(point) for point in entry.points),
+                    level=entry.level,
+                    sensitivity=entry.sensitivity,
+                    evidence=Evidence(role="receptor", why=f"brief, {brief.place('receptors', number)}", confidence=1.0),
+                    sources=(Source(file=brief.file, item=f"receptors[{number + 1}]"),),
+                )
+            )
+    return tuple(receptors)
+
+
+def _kind(part: Part) -> LoadKind:
+    if outline_of(part) is not None:
+        return "area"
+    return "line" if part.form in ("path", "bar") else "point"
+
+
+def _load_points(part: Part, kind: LoadKind) -> tuple[Point, ...] | None:
+    if kind == "point":
+        return (centroid(part),)
+    if kind == "line":
+        return plan(part.points) if len(part.points) > 1 else None
+    return outline_of(part)

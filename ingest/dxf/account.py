@@ -1,0 +1,183 @@
+"""The file's own count: which entities it holds, where, and under which name each is known."""
+
+from __future__ import annotations
+
+from collections import Counter
+from dataclasses import dataclass, field
+from typing import Any
+
+import numpy as np
+
+from ingest.dxf.tagscan import SUBENTITIES, Tags
+
+_LAYOUTS = ("*model_space", "*paper_space")
+
+
+@dataclass(slots=True)
+class RawFigures:
+    """Entities as the bytes list them: by layout section, by block, with a name for each of the modelspace."""
+
+    space: Counter[str] = field(default_factory=Counter)
+    blocks: dict[str, Counter[str]] = field(default_factory=dict)
+    kinds: list[str] = field(default_factory=list)
+    items: list[str] = field(default_factory=list)
+    repeated: tuple[str, ...] = ()
+    """Handles that stand at more than one entity."""
+
+    def total(self) -> Counter[str]:
+        """All entities by type."""
+        return sum(self.blocks.values(), self.space.copy())
+
+
+def list_raw(tags: Tags) -> RawFigures:
+    """List the entities of a file from its tags alone.
+
+    Args:
+        tags: Checked tags of the file.
+
+    Returns:
+        The list. An item is the entity's handle; where the file gives none, or gives one twice, the place in the file.
+    """
+    raw = RawFigures()
+    first, last = tags.sections.get("ENTITIES", (0, 0))
+    a, b = np.searchsorted(tags.zeros, (first, last)).tolist()
+    handles = _values(tags, a, b, 5)
+    paper = {k for k, value in _values(tags, a, b, 67).items() if value not in (b"0", b"\0\0")}
+    own = [k for k in range(a, b) if tags.names[k] not in SUBENTITIES]
+    raw.space.update(tags.names[k] for k in own)
+    counts = Counter(handles[k] for k in own if handles.get(k))
+    repeated = {handle for handle, count in counts.items() if count > 1}
+    raw.repeated = tuple(sorted(handle.decode("latin-1") for handle in repeated))
+    for k in own:
+        if k in paper:
+            continue
+        handle = handles.get(k, b"")
+        name = handle.decode("latin-1")
+        if not handle:
+            name = tags.place(int(tags.zeros[k]))
+        elif handle in repeated:
+            name = f"{name} at {tags.place(int(tags.zeros[k]))}"
+        raw.kinds.append(tags.names[k])
+        raw.items.append(name)
+    _list_blocks(tags, raw)
+    return raw
+
+
+def _values(tags: Tags, a: int, b: int, code: int) -> dict[int, bytes]:
+    """First value with a code in each entity from a to b (indices into `zeros`)."""
+    if a == b:
+        return {}
+    first = int(tags.zeros[a])
+    last = int(tags.zeros[b]) if b < len(tags.zeros) else len(tags.codes)
+    at = np.flatnonzero(tags.codes[first:last] == code) + first
+    owners = np.searchsorted(tags.zeros, at, side="right") - 1
+    found: dict[int, bytes] = {}
+    for owner, index in zip(owners.tolist(), at.tolist(), strict=True):
+        if owner not in found:
+            found[owner] = tags.value(index)
+    return found
+
+
+def _list_blocks(tags: Tags, raw: RawFigures) -> None:
+    first, last = tags.sections.get("BLOCKS", (0, 0))
+    a, b = np.searchsorted(tags.zeros, (first, last)).tolist()
+    titles = _values(tags, a, b, 2)
+    current = ""
+    for k in range(a, b):
+        name = tags.names[k]
+        if name == "BLOCK":
+            current = titles.get(k, b"").decode("latin-1")
+            raw.blocks.setdefault(current, Counter())
+        elif name != "ENDBLK" and name not in SUBENTITIES:
+            raw.blocks.setdefault(current, Counter())[name] += 1
+
+
+@dataclass(slots=True)
+class Account:
+    """Every entity to be accounted for: those of the modelspace by name, the others by number and reason."""
+
+    named: list[tuple[str, Any]]
+    aside: Counter[str]
+    lost: Counter[str]
+    """Entities the bytes hold and the loaded drawing does not, by type; those inside inserted blocks too."""
+    unused_blocks: tuple[str, ...] = ()
+
+    @property
+    def entities(self) -> int:
+        """The file's own count."""
+        return len(self.named) + sum(self.aside.values())
+
+
+def open_account(document: Any, raw: RawFigures) -> Account:
+    """Set what the library loaded against what the bytes hold.
+
+    Args:
+        document: The loaded drawing.
+        raw: The entities by the bytes.
+
+    Returns:
+        The account. Entities the library dropped from a layout or an unused block stand in `aside` as lost.
+    """
+    space = list(document.modelspace())
+    named = list(zip(_names(space, raw), space, strict=True))
+    layouts = [block for block in document.blocks if block.name.lower().startswith(_LAYOUTS)]
+    in_layouts = Counter(e.dxftype() for block in layouts for e in block)
+    expected = raw.space.copy()
+    for name, counts in raw.blocks.items():
+        if name.lower().startswith(_LAYOUTS):
+            expected += counts
+    aside: Counter[str] = Counter()
+    aside["paper space"] = sum(in_layouts.values()) - len(space)
+    for kind, count in (expected - in_layouts).items():
+        aside[f"lost in reading: {kind}"] += count
+    own = {name.lower() for name in raw.blocks}
+    reached = _reached(document)
+    unused = [b for b in document.blocks if b not in layouts and b.name.lower() in own - reached and len(b)]
+    aside["block never inserted"] = sum(len(block) for block in unused)
+    loaded = in_layouts + Counter(e.dxftype() for b in document.blocks if b not in layouts for e in b)
+    return Account(named, +aside, raw.total() - loaded, tuple(sorted(block.name for block in unused)))
+
+
+def _names(space: list[Any], raw: RawFigures) -> list[str]:
+    """Names of the loaded entities; the raw ones where both lists agree, else handles made unique."""
+    if [e.dxftype() for e in space] == raw.kinds:
+        return raw.items
+    seen: Counter[str] = Counter()
+    names = []
+    for entity in space:
+        handle = str(vars(entity.dxf).get("handle", "?"))
+        seen[handle] += 1
+        names.append(handle if seen[handle] == 1 else f"{handle} no. {seen[handle]}")
+    return names
+
+
+def _reached(document: Any) -> set[str]:
+    """Lower-case names of the blocks that some layout draws, directly or through other blocks."""
+    by_handle = {block.block_record_handle: block.name.lower() for block in document.blocks}
+    todo = [layout for layout in document.layouts]
+    reached: set[str] = set()
+    while todo:
+        layout = todo.pop()
+        for entity in layout:
+            for name in _drawn_by(entity, by_handle):
+                if name not in reached:
+                    reached.add(name)
+                    block = document.blocks.get(name)
+                    todo += [block] if block is not None else []
+    return reached
+
+
+def _drawn_by(entity: Any, by_handle: dict[str, str]) -> list[str]:
+    """Blocks one entity draws."""
+    kind = entity.dxftype()
+    if kind == "INSERT":
+        return [str(vars(entity.dxf).get("name", "")).lower()]
+    if kind in ("LINE", "LWPOLYLINE", "CIRCLE", "TEXT", "ARC"):
+        return []
+    known = vars(entity.dxf)
+    names = [str(known["geometry"]).lower()] if known.get("geometry") else []
+    handles = [known.get("block_record_handle")]
+    context = getattr(entity, "context", None)
+    if getattr(context, "block", None) is not None:
+        handles.append(context.block.block_record_handle)
+    return names + [by_handle[h] for h in handles if h in by_handle]

@@ -1,0 +1,83 @@
+"""Bytes on disk -> a loaded drawing, in recovery mode where need be, with what was lost on the way."""
+
+from __future__ import annotations
+
+import gc
+import logging
+from collections import Counter
+from collections.abc import Iterator
+from contextlib import contextmanager
+from dataclasses import dataclass
+from pathlib import Path
+from typing import Any
+
+from ingest.dxf.damage import SEND_AGAIN, find_bad_number
+from ingest.dxf.tagscan import SUBENTITIES, Tags
+from ingest.errors import InputError
+
+
+@dataclass(slots=True)
+class Loaded:
+    """A drawing and how it was got. `lost` counts, by type, entities of the file that the library did not keep."""
+
+    document: Any
+    recovered: str = ""
+    """Why recovery mode was needed, "" when it was not."""
+    repairs: tuple[str, ...] = ()
+
+
+@contextmanager
+def quiet() -> Iterator[None]:
+    """Keep the library's log off the user's screen and the collector from walking a growing drawing again and again."""
+    log = logging.getLogger("ezdxf")
+    was_off, was_collecting = log.disabled, gc.isenabled()
+    log.disabled = True
+    gc.disable()
+    try:
+        yield
+    finally:
+        log.disabled = was_off
+        if was_collecting:
+            gc.enable()
+
+
+def load_document(path: Path, tags: Tags) -> Loaded:
+    """Load a drawing.
+
+    Args:
+        path: The file.
+        tags: Its bare tags, already checked.
+
+    Raises:
+        InputError: When recovery mode fails as well.
+    """
+    import ezdxf
+    from ezdxf import recover
+
+    try:
+        return Loaded(ezdxf.readfile(path))
+    except Exception as fault:  # the library raises nearly anything on damaged files
+        first = describe_fault(fault)
+    try:
+        document, auditor = recover.readfile(path)
+    except Exception as fault:
+        bad = find_bad_number(tags)
+        place, problem = bad if bad else ("", "")
+        words = f"{problem!r} stands where a number must be" if bad else f"the drawing cannot be loaded: {describe_fault(fault)}"
+        raise InputError(path.name, place or "whole file", words, SEND_AGAIN) from None
+    repairs = tuple(str(entry.message) for entry in auditor.errors)
+    return Loaded(document, first, repairs)
+
+
+def describe_fault(fault: Exception) -> str:
+    """One line of what a library says, without its type unless it says nothing."""
+    words = " ".join(str(fault).split())
+    return (words[:160] or type(fault).__name__).rstrip(".")
+
+
+def count_lost(raw: Counter[str], document: Any) -> Counter[str]:
+    """Entities the bytes hold and the loaded drawing does not, by type."""
+    loaded = Counter(entity.dxftype() for block in document.blocks for entity in block)
+    for name in SUBENTITIES:
+        loaded.pop(name, None)
+    return raw - loaded

@@ -1,0 +1,156 @@
+"""What a drawing shows that a length is known of: extent, circles, door swings, letters, dimensions."""
+
+from __future__ import annotations
+
+import re
+from collections import Counter
+from dataclasses import dataclass, field
+from typing import Any
+
+import numpy as np
+
+from ingest.dxf.blocks import copies, insert_matrices
+from ingest.dxf.curves import Floats
+from ingest.units import FOOT, INCH
+
+MOST_LOOKED_AT = 50_000
+"""Entities looked at; more would not change a median."""
+_FEET = re.compile(r"""(?:(\d+(?:\.\d+)?)\s*'\s*-?\s*)?(?:(\d+)\s+)?(\d+(?:\.\d+)?)?(?:/(\d+))?\s*(?:"|'')?""")
+_UNIT = re.compile(r"^\s*([0-9]+(?:\.[0-9]+)?)\s*(mm|cm|m|ft|in)\b")
+
+
+@dataclass(slots=True)
+class Measures:
+    """Lengths of known things in drawing units, with how often each was met."""
+
+    points: list[tuple[float, float]] = field(default_factory=list)
+    circles: Counter[float] = field(default_factory=Counter)
+    """Diameters."""
+    doors: Counter[float] = field(default_factory=Counter)
+    """Radii of quarter circles."""
+    letters: Counter[float] = field(default_factory=Counter)
+    """Heights of texts."""
+    dimensions: list[tuple[float, str]] = field(default_factory=list)
+    """Measured length and the text written instead of it."""
+
+    def extent(self) -> float | None:
+        """Larger side of the drawing without its outermost twentieths; None below two points."""
+        if len(self.points) < 2:
+            return None
+        xy = np.array(self.points)
+        xy = xy[np.isfinite(xy).all(axis=1)]
+        low, high = (0.0, 1.0) if len(xy) < 40 else (0.05, 0.95)
+        span = np.quantile(xy, high, axis=0) - np.quantile(xy, low, axis=0) if len(xy) else np.zeros(2)
+        return float(span.max()) or None
+
+
+def take_measures(document: Any, entities: list[Any]) -> Measures:
+    """Measure a drawing.
+
+    Args:
+        document: As loaded.
+        entities: Those of its modelspace.
+
+    Returns:
+        Lengths in drawing units, those inside inserted blocks at the scale they are inserted with.
+    """
+    measures = Measures()
+    _look(document, entities, np.eye(3), np.zeros(3), measures, [MOST_LOOKED_AT], ())
+    return measures
+
+
+def _look(
+    document: Any, entities: Any, matrix: Floats, shift: Floats, found: Measures, budget: list[int], path: tuple[str, ...]
+) -> None:
+    scale = float(np.abs(np.linalg.det(matrix[:2, :2])) ** 0.5)
+    for entity in entities:
+        if budget[0] <= 0:
+            return
+        budget[0] -= 1
+        known = vars(entity.dxf)
+        kind = entity.dxftype()
+        at = known.get("start") or known.get("center") or known.get("insert") or known.get("location")
+        if kind == "INSERT":
+            _look_inside(document, entity, matrix, shift, found, budget, path)
+            continue
+        if kind == "LWPOLYLINE":
+            for x, y in np.asarray(entity.lwpoints.values).reshape(-1, 5)[:, :2].tolist():
+                _point(found, np.array([x, y, 0.0]), matrix, shift)
+        elif at is not None and kind != "POINT":
+            _point(found, np.array([at.x, at.y, at.z]), matrix, shift)
+        _sizes(kind, entity, known, scale, found)
+
+
+def _point(found: Measures, at: Floats, matrix: Floats, shift: Floats) -> None:
+    x, y, _ = (at @ matrix + shift).tolist()
+    if abs(x) < 1e15 and abs(y) < 1e15:
+        found.points.append((x, y))
+
+
+def _look_inside(
+    document: Any, entity: Any, matrix: Floats, shift: Floats, found: Measures, budget: list[int], path: tuple[str, ...]
+) -> None:
+    known = vars(entity.dxf)
+    name = str(known.get("name", ""))
+    block = document.blocks.get(name)
+    columns, rows = copies(known)
+    if block is None or name in path or columns * rows > 1000:
+        return
+    inner, shifts = insert_matrices(known, block.block.dxf.base_point)
+    for own in shifts:
+        _look(document, block, inner @ matrix, own @ matrix + shift, found, budget, (*path, name))
+
+
+def _sizes(kind: str, entity: Any, known: dict[str, Any], scale: float, found: Measures) -> None:
+    if kind == "CIRCLE" and known.get("radius"):
+        found.circles[_tidy(2 * abs(known["radius"]) * scale)] += 1
+    elif kind == "ARC" and known.get("radius"):
+        sweep = (known.get("end_angle", 0.0) - known.get("start_angle", 0.0)) % 360.0
+        if 85.0 < sweep < 95.0:
+            found.doors[_tidy(abs(known["radius"]) * scale)] += 1
+    elif kind in ("TEXT", "MTEXT"):
+        height = known.get("height" if kind == "TEXT" else "char_height", 0.0)
+        if height > 0.0:
+            found.letters[_tidy(height * scale)] += 1
+    elif kind == "DIMENSION" and known.get("dimtype", 0) & 7 in (0, 1):
+        _dimension(entity, known, found)
+
+
+def _dimension(entity: Any, known: dict[str, Any], found: Measures) -> None:
+    text = str(known.get("text", ""))
+    if not any(c.isdigit() for c in text) or "<>" in text:
+        return
+    try:
+        length = abs(float(entity.get_measurement()))
+    except (TypeError, ValueError, AttributeError, ArithmeticError):
+        return
+    if 0.0 < length < 1e15:
+        found.dimensions.append((length, text))
+
+
+def _tidy(length: float) -> float:
+    return float(f"{length:.6g}")
+
+
+def written_length(text: str) -> float | None:
+    """Length that a dimension text states with its unit, m.
+
+    Example:
+        >>> written_length("16'-0\\""), written_length("6.50 m"), written_length("6500")
+        (4.8768, 6.5, None)
+    """
+    plain = text.strip()
+    stated = _UNIT.match(plain)
+    if stated:
+        factor = {"mm": 1e-3, "cm": 1e-2, "m": 1.0, "ft": FOOT, "in": INCH}[stated[2]]
+        return float(stated[1]) * factor
+    if "'" not in plain and '"' not in plain:
+        return None
+    found = _FEET.fullmatch(plain)
+    if not found or not any(found.groups()):
+        return None
+    feet, whole, number, over = found.groups()
+    inches = float(whole or 0)
+    if number:
+        inches += float(number) / (float(over) if over and float(over) else 1.0)
+    return round(float(feet or 0) * FOOT + inches * INCH, 9)

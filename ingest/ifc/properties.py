@@ -1,0 +1,178 @@
+"""Properties and quantities as text: one pass over the relations, numbers turned into m, kN, kPa and degrees."""
+
+from __future__ import annotations
+
+from collections.abc import Iterable
+from typing import Any
+
+from ingest.ifc.attributes import NAME, RELATED_OBJECTS, RELATING
+from ingest.ifc.units import ProjectUnits, unit_factor
+
+Entity = Any
+Tags = dict[str, str]
+
+_SETS_OF_TYPE = 5
+_PROPERTIES = 4
+_QUANTITIES = 5
+_QUANTITY_MEASURES = {
+    "IfcQuantityLength": "IfcLengthMeasure",
+    "IfcQuantityArea": "IfcAreaMeasure",
+    "IfcQuantityVolume": "IfcVolumeMeasure",
+}
+_KIND_MEASURES = {
+    "LENGTHUNIT": "IfcLengthMeasure",
+    "AREAUNIT": "IfcAreaMeasure",
+    "VOLUMEUNIT": "IfcVolumeMeasure",
+    "PLANEANGLEUNIT": "IfcPlaneAngleMeasure",
+    "FORCEUNIT": "IfcForceMeasure",
+    "PRESSUREUNIT": "IfcPressureMeasure",
+    "LINEARFORCEUNIT": "IfcLinearForceMeasure",
+    "PLANARFORCEUNIT": "IfcPlanarForceMeasure",
+}
+UNREADABLE = (AttributeError, TypeError, ValueError, RuntimeError, IndexError, KeyError)
+
+
+class PropertyTable:
+    """Property sets of occurrences and types, read when asked for and each only once."""
+
+    def __init__(self, model: Any, units: ProjectUnits) -> None:
+        self._units = units
+        self._sets: dict[int, list[Entity]] = {}
+        self._types: dict[int, Entity] = {}
+        self._read: dict[int, tuple[str, Tags]] = {}
+        self._of_type: dict[int, Tags] = {}
+        self._factors: dict[str, float | None] = {}
+        self.unread = 0
+        """Number of property sets and properties that were damaged."""
+        for relation in model.by_type("IfcRelDefinesByProperties"):
+            self._note(relation, self._sets)
+        for relation in model.by_type("IfcRelDefinesByType"):
+            self._note(relation, None)
+
+    def _note(self, relation: Entity, into: dict[int, list[Entity]] | None) -> None:
+        try:
+            relating = relation.get_argument(RELATING)
+            for related in relation.get_argument(RELATED_OBJECTS):
+                if into is None:
+                    self._types[related.id()] = relating
+                else:
+                    into.setdefault(related.id(), []).append(relating)
+        except UNREADABLE:
+            self.unread += 1
+
+    def type_of(self, key: int) -> Entity | None:
+        """The type object of a product, by the product's id."""
+        return self._types.get(key)
+
+    def tags(self, key: int) -> Tags:
+        """Properties of a product and its type, name to text; what the product says stands above its type.
+
+        A name that comes in two sets with different values keeps the first; the other is kept as `set: name`.
+        """
+        found: Tags = {}
+        for entity in self._sets.get(key, ()):
+            for name, values in self._definitions(entity):
+                _merge(found, name, values)
+        own = self._types.get(key)
+        if own is not None:
+            for name, text in self._type_tags(own).items():
+                found.setdefault(name, text)
+        return found
+
+    def _type_tags(self, own: Entity) -> Tags:
+        key = own.id()
+        if key not in self._of_type:
+            found: Tags = {}
+            try:
+                for entity in own.get_argument(_SETS_OF_TYPE) or ():
+                    for name, values in self._definitions(entity):
+                        _merge(found, name, values)
+            except UNREADABLE:
+                self.unread += 1
+            self._of_type[key] = found
+        return self._of_type[key]
+
+    def _definitions(self, entity: Entity) -> Iterable[tuple[str, Tags]]:
+        if isinstance(entity, tuple):
+            return [self._set(one) for one in entity]
+        if entity.is_a() == "IfcPropertySetDefinitionSet":
+            return [self._set(one) for one in entity.wrappedValue]
+        return (self._set(entity),)
+
+    def _set(self, entity: Entity) -> tuple[str, Tags]:
+        key = entity.id()
+        known = self._read.get(key)
+        if known is None:
+            found: Tags = {}
+            kind = entity.is_a()
+            try:
+                if kind == "IfcPropertySet":
+                    self._properties(entity.get_argument(_PROPERTIES), found)
+                elif kind == "IfcElementQuantity":
+                    self._quantities(entity.get_argument(_QUANTITIES), found)
+            except UNREADABLE:
+                self.unread += 1
+            known = self._read[key] = (str(entity.get_argument(NAME) or ""), found)
+        return known
+
+    def _properties(self, properties: Iterable[Entity], found: Tags, prefix: str = "") -> None:
+        for one in properties:
+            kind = one.is_a()
+            name = prefix + str(one.get_argument(0) or "")
+            if kind == "IfcPropertySingleValue":
+                value = one.get_argument(2)
+                if value is not None:
+                    found[name] = self._text(value, one.get_argument(3))
+            elif kind == "IfcPropertyEnumeratedValue":
+                found[name] = ", ".join(self._text(v, None) for v in one.EnumerationValues or ())
+            elif kind == "IfcPropertyListValue":
+                found[name] = ", ".join(self._text(v, one.Unit) for v in one.ListValues or ())
+            elif kind == "IfcPropertyBoundedValue":
+                ends = (one.LowerBoundValue, one.UpperBoundValue)
+                found[name] = " to ".join("" if v is None else self._text(v, one.Unit) for v in ends)
+            elif kind == "IfcComplexProperty" and prefix.count(".") < 4:
+                self._properties(one.HasProperties, found, f"{name}.")
+
+    def _quantities(self, quantities: Iterable[Entity], found: Tags) -> None:
+        for one in quantities:
+            kind = one.is_a()
+            if kind == "IfcPhysicalComplexQuantity":
+                continue
+            factor = self._factor(_QUANTITY_MEASURES.get(kind, ""), one.get_argument(2))
+            value = one.get_argument(3)
+            if isinstance(value, (int, float)):
+                found[str(one.get_argument(0) or "")] = number_text(value if factor is None else value * factor)
+
+    def _text(self, value: Entity, unit: Entity | None) -> str:
+        bare = value.get_argument(0)
+        if isinstance(bare, bool):
+            return "true" if bare else "false"
+        if not isinstance(bare, float):
+            return str(bare)
+        factor = self._factor(value.is_a(), unit)
+        return number_text(bare if factor is None else bare * factor)
+
+    def _factor(self, measure: str, unit: Entity | None) -> float | None:
+        if unit is None:
+            if measure not in self._factors:
+                self._factors[measure] = self._units.factor(measure)
+            return self._factors[measure]
+        if not unit.is_a("IfcNamedUnit") and not unit.is_a("IfcDerivedUnit"):
+            return self._units.factor(measure)
+        kind = str(unit.UnitType)
+        own = _KIND_MEASURES.get(kind)
+        project = self._units.factor(own) if own else None
+        if own is None or project is None:
+            return None
+        return project / self._units.si(kind) * unit_factor(unit)
+
+
+def _merge(found: Tags, set_name: str, values: Tags) -> None:
+    for name, text in values.items():
+        if found.setdefault(name, text) != text:
+            found[f"{set_name}: {name}"] = text
+
+
+def number_text(value: float) -> str:
+    """A number to nine significant digits, as text."""
+    return format(float(value), ".9g")

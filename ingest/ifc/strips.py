@@ -1,0 +1,176 @@
+"""Walls from their plan outline: centre line, thickness, and how well a strip of that thickness fits."""
+
+from __future__ import annotations
+
+from dataclasses import dataclass
+from math import acos, atan2, ceil, hypot, pi
+
+import numpy as np
+import shapely
+from numpy.typing import NDArray
+
+Floats = NDArray[np.float64]
+Points = tuple[tuple[float, float], ...]
+
+FITS = 0.05
+"""Largest share of a strip's area by which the outline may differ (judgement)."""
+SAGITTA = 0.005
+
+
+@dataclass(frozen=True, slots=True)
+class Strip:
+    """A wall on plan: centre line, thickness, and the difference of areas as a share of the strip's."""
+
+    line: Points
+    thickness: float
+    misfit: float
+    how: str
+    closed: bool = False
+
+
+def find_strip(area: shapely.Geometry, hint: Floats | None) -> Strip | None:
+    """Find the centre line and thickness of a wall from its outline on plan.
+
+    Args:
+        area: Plan area, m.
+        hint: (n, 2) line the file draws along the wall (its reference line, not its centre line), or None.
+
+    Returns:
+        The best strip, or None when the outline is no strip.
+    """
+    if area.geom_type == "MultiPolygon":
+        area = _one_piece(area)
+    if area.geom_type != "Polygon":
+        return None
+    outer = shapely.get_coordinates(shapely.get_exterior_ring(area))[:-1]
+    ring = _ring_strip(area)
+    if ring is not None:
+        return ring
+    if hint is not None and len(hint) > 2:
+        return _arc_strip(outer, hint, area.area) or _bent_strip(area, hint)
+    way = _way(area, hint)
+    return _straight_strip(area, outer, way, "along its axis" if hint is not None else "along its longer side")
+
+
+def _one_piece(area: shapely.Geometry) -> shapely.Geometry:
+    """Bridge gaps up to 30 mm between the leaves of a wall; else the largest piece stands alone."""
+    joined = shapely.buffer(shapely.buffer(area, 0.015, join_style="mitre"), -0.015, join_style="mitre")
+    if joined.geom_type == "Polygon":
+        return joined
+    return shapely.minimum_rotated_rectangle(area)
+
+
+def _way(area: shapely.Geometry, hint: Floats | None) -> Floats:
+    if hint is not None and len(hint) == 2 and np.ptp(hint, axis=0).max() > 1e-6:
+        way = hint[1] - hint[0]
+        return np.asarray(way / np.hypot(*way))
+    box = shapely.get_coordinates(shapely.minimum_rotated_rectangle(area))
+    sides = np.diff(box[:3], axis=0)
+    longer = sides[int(np.argmax(np.hypot(*sides.T)))]
+    return np.asarray(longer / np.hypot(*longer))
+
+
+def _straight_strip(area: shapely.Geometry, outer: Floats, way: Floats, how: str) -> Strip | None:
+    normal = np.array([-way[1], way[0]])
+    along, across = outer @ way, outer @ normal
+    thickness = float(np.ptp(across))
+    middle = float(across.min() + across.max()) / 2
+    reach = float(np.ptp(along)) + 1.0
+    start = way * (float(along.min()) - reach) + normal * middle
+    ray = shapely.LineString([start, start + way * 3 * reach])
+    inside = shapely.get_coordinates(shapely.intersection(ray, area)) @ way
+    if not len(inside) or thickness <= 0:
+        return None
+    a, b = float(inside.min()), float(inside.max())
+    if b - a <= 0:
+        return None
+    misfit = abs(area.area / (thickness * (b - a)) - 1)
+    ends = (a * way + middle * normal, b * way + middle * normal)
+    return Strip(_tuple(np.array(ends)), thickness, misfit, how)
+
+
+def _ring_strip(area: shapely.Geometry) -> Strip | None:
+    """A wall that closes on itself: an outline with one hole that runs parallel to it."""
+    holes = shapely.get_num_interior_rings(area)
+    if holes != 1:
+        return None
+    outer = shapely.Polygon(shapely.get_exterior_ring(area))
+    inner = shapely.Polygon(shapely.get_interior_ring(area, 0))
+    thickness = 2 * area.area / (outer.length + inner.length)
+    shrunk = shapely.buffer(outer, -thickness, join_style="mitre")
+    misfit = shapely.symmetric_difference(shrunk, inner).area / area.area
+    if misfit > FITS or inner.area < 0.25 * outer.area:
+        return None
+    middle = shapely.buffer(outer, -thickness / 2, join_style="mitre")
+    line = shapely.get_coordinates(shapely.get_exterior_ring(middle))[:-1]
+    return Strip(_tuple(line), thickness, misfit, "between its outer and inner outline", closed=True)
+
+
+def _arc_strip(outer: Floats, hint: Floats, area: float) -> Strip | None:
+    """A wall along an arc: both faces are circles about the axis' centre."""
+    circle = fit_circle(hint)
+    if circle is None:
+        return None
+    centre, _ = circle
+    radii = np.hypot(*(outer - centre).T)
+    low, high = float(radii.min()), float(radii.max())
+    middle = hint[len(hint) // 2] - centre
+    turn = np.unwrap(np.concatenate([[atan2(middle[1], middle[0])], np.arctan2(*(outer - centre).T[::-1])]))
+    base = atan2(middle[1], middle[0])
+    angles = (np.arctan2(*(outer - centre).T[::-1]) - base + pi) % (2 * pi) - pi
+    first, last = float(angles.min()), float(angles.max())
+    radius = (low + high) / 2
+    strip = (high**2 - low**2) / 2 * (last - first)
+    if strip <= 0 or len(turn) < 4:
+        return None
+    ends = np.arctan2(*(hint[[0, -1]] - centre).T[::-1]) - base
+    forward = ((ends[1] - ends[0] + pi) % (2 * pi) - pi) >= 0 or abs(ends[1] - ends[0]) > pi
+    t = np.linspace(first, last, arc_steps(radius, last - first) + 1) + base
+    line = centre + radius * np.column_stack([np.cos(t), np.sin(t)])
+    return Strip(_tuple(line if forward else line[::-1]), high - low, abs(area / strip - 1), "along its curved axis")
+
+
+def _bent_strip(area: shapely.Geometry, hint: Floats) -> Strip | None:
+    """A wall along a bent line: the line is moved sideways into the middle of the outline."""
+    line = shapely.LineString(hint)
+    thickness = area.area / line.length
+    corners = shapely.get_coordinates(area)
+    left = shapely.buffer(line, thickness * 2, single_sided=True, cap_style="flat", join_style="mitre")
+    distances = shapely.distance(shapely.points(corners), line)
+    signed = np.where(shapely.intersects_xy(left, corners[:, 0], corners[:, 1]), distances, -distances)
+    offset = (signed.min() + signed.max()) / 2
+    thickness = float(np.ptp(signed))
+    moved = line if abs(offset) < 1e-6 else shapely.offset_curve(line, offset, join_style="mitre")
+    if moved.geom_type != "LineString" or thickness <= 0:
+        return None
+    misfit = abs(area.area / (thickness * moved.length) - 1)
+    return Strip(_tuple(shapely.get_coordinates(moved)), thickness, misfit, "along its bent axis")
+
+
+def fit_circle(points: Floats) -> tuple[Floats, float] | None:
+    """Centre and radius of the circle all points lie on within 1 mm or a thousandth of the radius; None otherwise."""
+    at = points - points.mean(axis=0)
+    system = np.column_stack([2 * at, np.ones(len(at))])
+    solved, _, rank, _ = np.linalg.lstsq(system, (at**2).sum(axis=1), rcond=None)
+    if rank < 3:
+        return None
+    radius = float(np.sqrt(max(solved[2] + solved[0] ** 2 + solved[1] ** 2, 0.0)))
+    off = np.abs(np.hypot(*(at - solved[:2]).T) - radius)
+    if off.max() > max(1e-3, 1e-3 * radius) or radius > 1e5:
+        return None
+    return solved[:2] + points.mean(axis=0), radius
+
+
+def arc_steps(radius: float, sweep: float) -> int:
+    """Number of chords that keep within the sagitta of 5 mm."""
+    widest = 2 * acos(max(1 - SAGITTA / max(radius, SAGITTA), 0.0))
+    return max(ceil(abs(sweep) / widest), 1)
+
+
+def _tuple(points: Floats) -> Points:
+    return tuple((float(x), float(y)) for x, y in points)
+
+
+def length_of_line(points: Points) -> float:
+    """Length of a line, m."""
+    return sum(hypot(b[0] - a[0], b[1] - a[1]) for a, b in zip(points, points[1:], strict=False))

@@ -1,0 +1,47 @@
+"""What the files and the brief leave open, asked or written down before anybody relies on it."""
+
+from __future__ import annotations
+
+from collections.abc import Sequence
+
+from ingest.model import Site
+from ingest.notes import Notes
+from ingest.roles import RoleGiven
+
+
+def note_missing(site: Site, given: Sequence[RoleGiven], notes: Notes) -> Site:
+    """Ask for what a section cannot do without.
+
+    Args:
+        site: The site as built.
+        given: Roles, for the count of what was found.
+        notes: Takes the questions.
+
+    Returns:
+        The site, unchanged.
+    """
+    _ask_levels(site, notes)
+    _ask_supports(site, notes)
+    return site
+
+
+def _ask_levels(site: Site, notes: Notes) -> None:
+    if site.ground_level is None:
+        notes.ask("ground level behind the wall is not given", "[site]\nground_level = 0.0")
+    if site.formation is None and not site.floors:
+        notes.ask("formation level is not given", "[levels]\nformation = 0.0")
+    held = [pile for pile in site.piles if not pile.bearing]
+    if (site.walls or held) and any(wall.toe is None for wall in (*site.walls, *held)):
+        notes.ask("toe level of the wall is not given", "[[walls]]\ntoe = 0.0")
+
+
+def _ask_supports(site: Site, notes: Notes) -> None:
+    for group in sorted({support.group for support in site.supports}):
+        same = [support for support in site.supports if support.group == group]
+        line = f'[[supports]]\nmatch = {{ layer = "{group}" }}\n'
+        if any(not support.level_given for support in same):
+            notes.ask(f"{group}: level of the supports is not given", f"{line}level = 0.0")
+        if any(not support.inclination_given for support in same):
+            notes.ask(f"{group}: inclination is not given", f"{line}inclination = 0.0")
+        if any(support.EA is None for support in same):
+            notes.ask(f"{group}: section of the supports is not given", f'{line}section = "CHS 508x16"')

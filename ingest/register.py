@@ -1,0 +1,124 @@
+"""Files laid on each other and moved into the local frame."""
+
+from __future__ import annotations
+
+import math
+from collections.abc import Iterable, Sequence
+from dataclasses import dataclass, replace
+
+import numpy as np
+
+from ingest.brief import Brief
+from ingest.model import Borehole, FileParts, Frame, Part, Point, Point3, Registered
+from ingest.notes import Notes
+from ingest.trail import Source
+
+NEAR_ORIGIN = 10_000.0
+"""Data within this distance of the origin keep their coordinates, m."""
+ROUND_DOWN = 1000.0
+
+
+@dataclass(frozen=True, kw_only=True)
+class Moved:
+    """The files in the local frame, the frame, and how each file was laid onto the site."""
+
+    files: tuple[FileParts, ...]
+    frame: Frame
+    registered: dict[str, Registered]
+
+    def to_local(self, point: Point) -> Point:
+        """A world point in the local frame."""
+        return point[0] - self.frame.offset[0], point[1] - self.frame.offset[1]
+
+
+def lay_files(files: Sequence[FileParts], brief: Brief, notes: Notes) -> Moved:
+    """Turn and shift each file as the brief says, check that the files meet, and move all into the local frame.
+
+    Args:
+        files: Files as read, metres, each in its own coordinates.
+        brief: Shift and rotation by file name.
+        notes: Takes the finding that two files do not meet.
+    """
+    registered = {}
+    laid = []
+    for file in files:
+        entry = brief.files.get(file.file)
+        shift = (entry.shift if entry else None) or (0.0, 0.0)
+        turn = (entry.rotation_deg if entry else None) or 0.0
+        registered[file.file] = Registered(shift=shift, rotation_deg=turn)
+        laid.append(_move(file, shift, turn))
+    _check_overlap(laid, notes)
+    offset = _offset(laid)
+    if offset != (0.0, 0.0):
+        laid = [_move(file, (-offset[0], -offset[1]), 0.0) for file in laid]
+    crs = brief.site.crs or next((file.crs for file in laid if file.crs), None)
+    frame = Frame(offset=(*offset, 0.0), crs=crs)
+    return Moved(files=tuple(laid), frame=frame, registered=registered)
+
+
+def box_of(file: FileParts) -> tuple[float, float, float, float] | None:
+    """Least and largest x and y of a file, m; None when it holds no place."""
+    points = [point for part in file.parts for point in part.points]
+    points += [hole.location for hole in file.boreholes]
+    if not points:
+        return None
+    xy = np.array(points)[:, :2]
+    low, high = xy.min(axis=0), xy.max(axis=0)
+    return float(low[0]), float(low[1]), float(high[0]), float(high[1])
+
+
+def _check_overlap(files: Sequence[FileParts], notes: Notes) -> None:
+    boxes = [(file.file, box) for file in files if (box := box_of(file)) is not None]
+    for n, (name, a) in enumerate(boxes):
+        for other, b in boxes[n + 1 :]:
+            gap = math.hypot(max(a[0] - b[2], b[0] - a[2], 0.0), max(a[1] - b[3], b[1] - a[3], 0.0))
+            reach = max(a[2] - a[0], a[3] - a[1], b[2] - b[0], b[3] - b[1], 50.0)
+            if gap > reach:
+                _ask_shift(name, other, a, b, gap, notes)
+
+
+def _ask_shift(
+    name: str, other: str, a: tuple[float, ...], b: tuple[float, ...], gap: float, notes: Notes
+) -> None:
+    sources = (Source(file=name, item=""), Source(file=other, item=""))
+    text = f"{name} and {other} do not meet: {gap:.0f} m lie between them; they have not been laid on each other"
+    notes.see("files-apart", "check", f"{name}, {other}", text, sources)
+    shift = (round((a[0] + a[2] - b[0] - b[2]) / 2, 1), round((a[1] + a[3] - b[1] - b[3]) / 2, 1))
+    middle = f"their middles would meet at this shift ({shift[0]:g}, {shift[1]:g}); only a guess"
+    notes.ask(
+        f"where does {other} lie on {name}?",
+        f'[files."{other}"]\nshift = [{shift[0]}, {shift[1]}]',
+        ((f"{other} has its own origin", middle, 0.4), ("the coordinates are true", "they are as the file has them", 0.4)),
+    )
+
+
+def _offset(files: Iterable[FileParts]) -> tuple[float, float]:
+    boxes = [box for file in files if (box := box_of(file)) is not None]
+    if not boxes:
+        return 0.0, 0.0
+    low = (min(box[0] for box in boxes), min(box[1] for box in boxes))
+    high = (max(box[2] for box in boxes), max(box[3] for box in boxes))
+    if max(abs(value) for value in (*low, *high)) <= NEAR_ORIGIN:
+        return 0.0, 0.0
+    middle = ((low[0] + high[0]) / 2, (low[1] + high[1]) / 2)
+    return math.floor(middle[0] / ROUND_DOWN) * ROUND_DOWN, math.floor(middle[1] / ROUND_DOWN) * ROUND_DOWN
+
+
+def _move(file: FileParts, shift: Point, turn: float) -> FileParts:
+    if shift == (0.0, 0.0) and turn == 0.0:
+        return file
+    c, s = math.cos(math.radians(turn)), math.sin(math.radians(turn))
+
+    def moved(point: Point3) -> Point3:
+        return c * point[0] - s * point[1] + shift[0], s * point[0] + c * point[1] + shift[1], point[2]
+
+    def of_part(part: Part) -> Part:
+        holes = tuple(tuple(moved(point) for point in hole) for hole in part.holes)
+        return replace(part, points=tuple(moved(point) for point in part.points), holes=holes)
+
+    def of_hole(hole: Borehole) -> Borehole:
+        return replace(hole, location=moved(hole.location))
+
+    return replace(
+        file, parts=tuple(of_part(part) for part in file.parts), boreholes=tuple(of_hole(hole) for hole in file.boreholes)
+    )

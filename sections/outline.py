@@ -1,0 +1,289 @@
+"""Sides of a way put together to a wall axis: sides meet where their lines meet, arcs run into straights."""
+
+from __future__ import annotations
+
+from collections.abc import Sequence
+from dataclasses import dataclass, replace
+
+import numpy as np
+
+from sections.model import Bools, Floats, Ints
+from sections.sides import Samples, Side, fit_side
+from sections.wall_graph import cross
+
+SAGITTA = 0.005
+"""Rise of the chords that list an arc, m."""
+SAME_LINE = 0.025
+"""Neighbouring sides that one line fits this well are one side, m."""
+SAME_TURN = 6.0
+"""And turn less than this, degrees."""
+TANGENT = 3.0
+"""An arc that runs into its neighbour within this is tangent to it, degrees."""
+
+
+@dataclass(frozen=True, kw_only=True, eq=False)
+class Outline:
+    """A wall axis as a polyline.
+
+    Attributes:
+        points: (m, 2) vertices; a closed one does not repeat its first.
+        closed: True for a ring.
+        joint: (m,) True where two sides meet (the ends of an open one included).
+        before, behind: (m, 2) unit directions of the wall coming into and leaving each vertex, exact on arcs.
+        arc: (m,) number of the arc that the stretch after the vertex belongs to, -1 on straights.
+        arcs: The arcs, as sides.
+    """
+
+    points: Floats
+    closed: bool
+    joint: Bools
+    before: Floats
+    behind: Floats
+    arc: Ints
+    arcs: tuple[Side, ...]
+
+    @property
+    def at(self) -> Floats:
+        """Chainage of each vertex from the first."""
+        return np.append(0.0, np.cumsum(self.spans))[: len(self.points)]
+
+    @property
+    def spans(self) -> Floats:
+        """Length of the stretch after each vertex; an open one has one less."""
+        ring = np.vstack((self.points, self.points[:1])) if self.closed else self.points
+        return np.asarray(np.hypot(*np.diff(ring, axis=0).T))
+
+    @property
+    def length(self) -> float:
+        """Length of the axis, m."""
+        return float(self.spans.sum())
+
+
+def merge_sides(samples: Samples, sides: Sequence[Side]) -> list[Side]:
+    """Neighbours that are one straight line, or one arc, become one side; lone points between them are passed over."""
+    merged: list[Side] = []
+    for side in sides:
+        merged.append(side)
+        while (joined := _joined_tail(samples, merged)) is not None:
+            merged = joined
+    if samples.closed and len(merged) > 2:
+        merged = _close_up(samples, merged)
+    return merged
+
+
+def _joined_tail(samples: Samples, sides: list[Side]) -> list[Side] | None:
+    for back in (2, 3):
+        if len(sides) < back or (back == 3 and sides[-2].form != "point"):
+            continue
+        one = _as_one(samples, sides[-back], sides[-1])
+        if one is not None:
+            return [*sides[:-back], one]
+    return None
+
+
+def _as_one(samples: Samples, a: Side, b: Side) -> Side | None:
+    """One side through both, if one line or arc fits them."""
+    if a.form != b.form or a.form == "point":
+        return None
+    keep = np.concatenate((np.arange(*a.block), np.arange(*b.block)))
+    both = replace_samples(samples, keep)
+    if a.form == "line":
+        if a.ahead @ b.ahead < np.cos(np.radians(SAME_TURN)):
+            return None
+    elif a.turn != b.turn or abs(a.radius - b.radius) > 0.1 * max(a.radius, b.radius):
+        return None
+    one = fit_side(both, 0, len(keep), a.form == "arc")
+    off = both.xy - one.centre if a.form == "arc" else both.xy - one.first
+    away = np.abs(np.hypot(*off.T) - one.radius) if a.form == "arc" else np.abs(cross(one.ahead, off))
+    if away.max() > SAME_LINE:
+        return None
+    return replace(one, block=(a.block[0], b.block[1]))
+
+
+def replace_samples(samples: Samples, keep: Ints) -> Samples:
+    """The samples picked by number."""
+    return replace(samples, xy=samples.xy[keep], opens=samples.opens[keep], weight=samples.weight[keep],
+                   pile=samples.pile[keep])  # fmt: skip
+
+
+def _close_up(samples: Samples, sides: list[Side]) -> list[Side]:
+    """The first and the last side of a ring may be one."""
+    count = len(samples.xy)
+    twice = replace_samples(samples, np.arange(2 * count) % count)
+    first = replace(sides[0], block=(sides[0].block[0] + count, sides[0].block[1] + count))
+    one = _as_one(twice, sides[-1], first)
+    if one is None:
+        return sides
+    return [one, *sides[1:-1]]
+
+
+def build_outline(samples: Samples, sides: Sequence[Side], short: float) -> Outline:
+    """Axis through the sides.
+
+    Args:
+        samples: The points the sides were fitted to.
+        sides: Sides in order.
+        short: Sides shorter than this between two that meet are only a cut across the corner, m.
+    """
+    kept = merge_sides(samples, sides)
+    if len(kept) == 1 and samples.closed:
+        return full_circle(kept[0])
+    return _assemble(_drop_cuts(kept, samples.closed, short), samples.closed)
+
+
+def full_circle(side: Side, east: float = 0.0) -> Outline:
+    """A whole circle listed from the point at angle `east` (radians)."""
+    steps = int(np.ceil(2 * np.pi / _step(side.radius)))
+    angle = east + 2 * np.pi * np.arange(steps) / steps
+    out = np.column_stack((np.cos(angle), np.sin(angle)))
+    tangent = np.column_stack((-np.sin(angle), np.cos(angle)))
+    return Outline(points=side.centre + side.radius * out, closed=True, joint=np.zeros(steps, dtype=bool),
+                   before=tangent, behind=tangent, arc=np.zeros(steps, dtype=np.int64), arcs=(side,))  # fmt: skip
+
+
+def _step(radius: float) -> float:
+    """Angle of the chords that list an arc."""
+    return float(2 * np.arccos(max(1 - SAGITTA / radius, 0.5)))
+
+
+def _drop_cuts(sides: list[Side], closed: bool, short: float) -> list[Side]:
+    """Leave out lone points and very short straights between two sides that meet close by."""
+    kept = list(sides)
+    k = 0 if closed else 1
+    while k < len(kept) - (0 if closed else 1) and len(kept) > (3 if closed else 2):
+        side, a, b = kept[k], kept[k - 1], kept[(k + 1) % len(kept)]
+        span = float(np.hypot(*(side.last - side.first)))
+        gap = float(np.hypot(*(b.first - a.last)))
+        if side.form != "arc" and span <= short and _meet(a, b, 1.5 * gap + 0.1) is not None:
+            del kept[k]
+        else:
+            k += 1
+    return kept
+
+
+def _meet(a: Side, b: Side, near: float) -> Floats | None:
+    """Point where two sides meet, None where they do not within `near` of their ends."""
+    points = [_candidate for _candidate in _meetings(a, b) if _candidate is not None]
+    middle = 0.5 * (a.last + b.first)
+    points.sort(key=lambda p: float(np.hypot(*(p - middle))))
+    if points and np.hypot(*(points[0] - a.last)) <= near and np.hypot(*(points[0] - b.first)) <= near:
+        return points[0]
+    return None
+
+
+def _meetings(a: Side, b: Side) -> list[Floats]:
+    if a.form == "line" and b.form == "line":
+        det = float(cross(a.ahead, b.ahead))
+        if abs(det) < np.sin(np.radians(0.5)):
+            return []
+        return [a.last + float(cross(b.first - a.last, b.ahead)) / det * a.ahead]
+    if a.form == "arc" and b.form == "arc":
+        return _arc_arc(a, b)
+    if "point" in (a.form, b.form):
+        return []
+    return _line_arc(a, b) if a.form == "line" else _line_arc(b, a)
+
+
+def _line_arc(line: Side, arc: Side) -> list[Floats]:
+    """Tangent point where the line all but touches the arc, else both crossings."""
+    foot = line.first + float((arc.centre - line.first) @ line.ahead) * line.ahead
+    away = float(np.hypot(*(arc.centre - foot)))
+    if away >= arc.radius * np.cos(np.radians(TANGENT)):
+        return [foot]
+    half = float(np.sqrt(arc.radius**2 - away**2))
+    return [foot + half * line.ahead, foot - half * line.ahead]
+
+
+def _arc_arc(a: Side, b: Side) -> list[Floats]:
+    between = b.centre - a.centre
+    span = float(np.hypot(*between))
+    if span < 1e-6:
+        return []
+    unit = between / span
+    x = (span**2 + a.radius**2 - b.radius**2) / (2 * span)
+    half = float(np.sqrt(max(a.radius**2 - x**2, 0.0)))
+    if half < a.radius * np.sin(np.radians(TANGENT)):
+        return [a.centre + np.sign(x) * a.radius * unit]
+    side = half * np.array([-unit[1], unit[0]])
+    return [a.centre + x * unit + side, a.centre + x * unit - side]
+
+
+def _assemble(sides: list[Side], closed: bool) -> Outline:
+    """Vertices at the joints, arcs listed by chords."""
+    count = len(sides)
+    starts, stops = [s.first for s in sides], [s.last for s in sides]
+    pieces = range(count) if closed else range(count - 1)
+    for k in pieces:
+        a, b = sides[k], sides[(k + 1) % count]
+        gap = float(np.hypot(*(b.first - a.last)))
+        turn = abs(float(cross(a.ahead, b.ahead))) if a.form == b.form == "line" else 1.0
+        point = _meet(a, b, 1.2 * gap / max(turn, 0.05) + 0.3)
+        if point is None and gap <= SAME_LINE * 2:
+            point = 0.5 * (a.last + b.first)
+        if point is not None:
+            stops[k], starts[(k + 1) % count] = point, point
+    return _listed(sides, starts, stops, closed)
+
+
+def _listed(sides: list[Side], starts: list[Floats], stops: list[Floats], closed: bool) -> Outline:
+    points: list[Floats] = []
+    joint: list[bool] = []
+    arc: list[int] = []
+    tangents: list[tuple[Floats | None, Floats | None]] = []
+    arcs: list[Side] = []
+    for side, start, stop in zip(sides, starts, stops, strict=True):
+        if side.form == "arc":
+            chain = arc_points(side, start, stop)
+            number = len(arcs)
+            arcs.append(replace(side, first=chain[0], last=chain[-1]))
+        else:
+            chain, number = np.array([start, stop]), -1
+        for k, point in enumerate(chain):
+            along = _tangent(side, point)
+            if k == 0 and points and np.hypot(*(points[-1] - point)) < 1e-6:
+                arc[-1], tangents[-1] = number, (tangents[-1][0], along)
+                continue
+            points.append(point)
+            joint.append(k in (0, len(chain) - 1))
+            arc.append(number if k < len(chain) - 1 else -1)
+            tangents.append((None if k == 0 else along, None if k == len(chain) - 1 else along))
+    if closed and np.hypot(*(points[-1] - points[0])) < 1e-6:
+        tangents[0] = (tangents[-1][0], tangents[0][1])
+        points, joint, arc, tangents = points[:-1], joint[:-1], arc[:-1], tangents[:-1]
+    return _with_tangents(np.array(points), joint, arc, tangents, closed, tuple(arcs))
+
+
+def _with_tangents(
+    points: Floats, joint: list[bool], arc: list[int], tangents: list[tuple[Floats | None, Floats | None]],
+    closed: bool, arcs: tuple[Side, ...],
+) -> Outline:  # fmt: skip
+    """Directions at vertices that no side gives are those of the straight bits that close the gap."""
+    into, out = points - np.roll(points, 1, axis=0), np.roll(points, -1, axis=0) - points
+    if not closed:
+        into[0], out[-1] = out[0], into[-1]
+    into, out = (v / np.maximum(np.hypot(*v.T), 1e-12)[:, None] for v in (into, out))
+    before = np.array([into[k] if pair[0] is None else pair[0] for k, pair in enumerate(tangents)])
+    behind = np.array([out[k] if pair[1] is None else pair[1] for k, pair in enumerate(tangents)])
+    return Outline(points=points, closed=closed, joint=np.array(joint), before=before, behind=behind,
+                   arc=np.array(arc, dtype=np.int64), arcs=arcs)  # fmt: skip
+
+
+def _tangent(side: Side, point: Floats) -> Floats | None:
+    if side.form == "line":
+        return side.ahead
+    if side.form == "point":
+        return None
+    out = (point - side.centre) / side.radius
+    return side.turn * np.array([-out[1], out[0]])
+
+
+def arc_points(side: Side, start: Floats, stop: Floats) -> Floats:
+    """An arc listed by chords of at most 5 mm rise from `start` to `stop`."""
+    a, b = start - side.centre, stop - side.centre
+    angle = np.arctan2(a[1], a[0])
+    sweep = float((side.turn * (np.arctan2(b[1], b[0]) - angle)) % (2 * np.pi))
+    steps = max(int(np.ceil(sweep / _step(side.radius))), 1)
+    angles = angle + side.turn * sweep * np.arange(steps + 1) / steps
+    points = side.centre + side.radius * np.column_stack((np.cos(angles), np.sin(angles)))
+    points[0], points[-1] = start, stop
+    return points
