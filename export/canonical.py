@@ -23,7 +23,7 @@ def canonical_text(tree: object, is_world: IsWorld = lambda keys: False) -> str:
 
     Args:
         tree: What to write. Keys keep their order; sort them with `sort_free_keys` where they are names.
-        is_world: Tells from the keys on the way to a number (list positions left out) that it is a world coordinate in m.
+        is_world: Tells from the keys on the way to a number (list positions left out) that it is a world coordinate.
 
     Returns:
         JSON text: numbers to 9 significant digits, world coordinates to 1e-4 m, no exponent sign other than Python's.

@@ -1,4 +1,4 @@
-"""The output folder: written aside, then swapped in whole; never a mix of two runs, never somebody else's files lost."""
+"""The output folder: written aside, then swapped in whole; never a mix of two runs, never a foreign file lost."""
 
 from __future__ import annotations
 
@@ -31,8 +31,8 @@ def fresh_folder(target: Path) -> Iterator[Path]:
         InputError: When `target` cannot be replaced: it is a file, the current folder, a mount point, or holds files
             that no earlier run wrote.
     """
+    check_folder(target)
     place = target.resolve()
-    check_folder(place)
     try:
         place.parent.mkdir(parents=True, exist_ok=True)
         aside = Path(tempfile.mkdtemp(prefix=f".{place.name}.", suffix=".part", dir=place.parent))
@@ -47,12 +47,13 @@ def fresh_folder(target: Path) -> Iterator[Path]:
         shutil.rmtree(aside, ignore_errors=True)
 
 
-def check_folder(place: Path) -> None:
+def check_folder(target: Path) -> None:
     """Refuse an output folder that cannot be replaced without loss.
 
     Raises:
         InputError: Naming the first files that the tool did not write.
     """
+    place = target.resolve()
     if not place.exists():
         return
     if not place.is_dir():
@@ -82,7 +83,7 @@ def _written(place: Path) -> set[str]:
 
 
 def _files(place: Path) -> set[str]:
-    found = set()
+    found: set[str] = set()
     for folder, folders, files in os.walk(place):
         links = [name for name in folders if (Path(folder) / name).is_symlink()]
         found.update((Path(folder) / name).relative_to(place).as_posix() for name in (*files, *links))

@@ -10,9 +10,8 @@ import hashlib
 import json
 from collections.abc import Sequence
 from dataclasses import dataclass, fields
-from functools import cache
 from pathlib import Path
-from typing import Any, Literal, TypeVar
+from typing import Any, Literal, TypeVar, cast
 
 from pydantic import TypeAdapter, ValidationError
 
@@ -32,6 +31,7 @@ SECTION_NOTICE = f"{NOTICE} {NOT_INCLUDED}."
 MOST_PROBLEMS = 12
 
 T = TypeVar("T")
+_ADAPTERS: dict[type[Any], TypeAdapter[Any]] = {}
 
 
 @record
@@ -71,7 +71,7 @@ class ProposalDocument(Proposal):
 
 @record
 class SectionDocument(SectionDefinition):
-    """`sections/S1.json`: the definition with what only the file has. `proposal_sha256` is null for a cut of one's own."""
+    """`sections/S1.json`: the definition with what only the file has; a cut of one's own has no `proposal_sha256`."""
 
     schema: Literal["cutworthy/section/1"] = "cutworthy/section/1"
     tool: Tool = Tool()
@@ -85,10 +85,11 @@ SECTION_FIRST = ("schema", "id", "kind", "tool", "notice", "proposal_sha256", "l
 WORLD_KEYS = frozenset({"perimeter", "centre", "point", "points", "outline", "line", "offset"})
 
 
-@cache
 def adapter(document: type[T]) -> TypeAdapter[T]:
     """The reader, writer and schema maker of one document."""
-    return TypeAdapter(document)
+    if document not in _ADAPTERS:
+        _ADAPTERS[document] = TypeAdapter(document)
+    return cast("TypeAdapter[T]", _ADAPTERS[document])
 
 
 def proposal_text(proposal: Proposal, inputs: Sequence[InputFile], written: Sequence[str]) -> str:
@@ -180,12 +181,12 @@ def _in_order(tree: Any, item: Any) -> Any:
 
 
 @dataclass(frozen=True)
-class _NotFinite(Exception):
+class _NotFiniteError(Exception):
     word: str
 
 
 def _refuse(word: str) -> float:
-    raise _NotFinite(word)
+    raise _NotFiniteError(word)
 
 
 def _read(path: Path, document: type[T], schema: str) -> T:
@@ -200,7 +201,7 @@ def _read(path: Path, document: type[T], schema: str) -> T:
         raise InputError(name, f"line {error.lineno}, column {error.colno}", f"no JSON: {error.msg}", remedy) from None
     except RecursionError:
         raise InputError(name, "", "no JSON of this tool: nested too deeply", remedy) from None
-    except _NotFinite as error:
+    except _NotFiniteError as error:
         raise InputError(name, "", f"{error.word} is not a number of JSON", remedy) from None
     found = tree.get("schema") if isinstance(tree, dict) else None
     if found != schema:

@@ -184,12 +184,12 @@ class _Reading:
         for reason in (NO_PLACE, NO_LEVEL):
             holes = sorted(hole for hole, why in self.why.items() if why == reason)
             if holes:
-                text = f"{len(holes)} holes left out, {reason}: {', '.join(holes[:8])}{' ...' if len(holes) > 8 else ''}"
+                text = (
+                    f"{len(holes)} holes left out, {reason}: {', '.join(holes[:8])}{' ...' if len(holes) > 8 else ''}"
+                )
                 sources = tuple(Source(file=self.file, item=hole) for hole in holes)
                 code = "borehole-place" if reason == NO_PLACE else "borehole-level"
-                found.append(
-                    Finding(id="", code=code, severity="check", where=self.file, text=text, sources=sources)
-                )
+                found.append(Finding(id="", code=code, severity="check", where=self.file, text=text, sources=sources))
         return tuple(found)
 
 

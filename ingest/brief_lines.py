@@ -34,6 +34,8 @@ def find_lines(text: str) -> dict[KeyPath, int]:
             keys, end = _read_keys(text, at + (2 if double else 1))
             table = _open_table(keys, arrays, double)
             lines.setdefault(table, line)
+            if double:
+                lines.setdefault(table[:-1], line)
             at = _line_end(text, end)
         else:
             keys, end = _read_keys(text, at)

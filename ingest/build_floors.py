@@ -90,7 +90,7 @@ def build_floors(given: Sequence[RoleGiven], notes: Notes) -> tuple[Floor, ...]:
         level = level if level is not None else brief.levels.formation
         if level is None:
             notes.refuse(item.part, "dig outline without a level")
-            notes.ask(f'{label(item)}: to which level is it dug?', _floor_line(item.part))
+            notes.ask(f"{label(item)}: to which level is it dug?", _floor_line(item.part))
             continue
         floors.append(_floor(level, entry, ring, item.part.name or item.part.layer, (item.part.source,), notes))
     for number, entry in enumerate(brief.floors):

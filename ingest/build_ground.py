@@ -31,9 +31,7 @@ def build_materials(notes: Notes) -> tuple[Material, ...]:
             path = ("materials", number, "concrete_class")
             raise notes.stop(str(error), "correct the class, or give E in kPa instead", *path) from error
         weight = concrete.unit_weight if entry.unit_weight is None else entry.unit_weight
-        made.append(
-            Material(id=entry.id, kind="concrete", E=concrete.E, unit_weight=weight, basis=concrete.basis)
-        )
+        made.append(Material(id=entry.id, kind="concrete", E=concrete.E, unit_weight=weight, basis=concrete.basis))
     return tuple(made)
 
 

@@ -105,7 +105,9 @@ def build_receptors(given: Sequence[RoleGiven], moved: Moved, notes: Notes) -> t
                     points=tuple(moved.to_local(point) for point in entry.points),
                     level=entry.level,
                     sensitivity=entry.sensitivity,
-                    evidence=Evidence(role="receptor", why=f"brief, {brief.place('receptors', number)}", confidence=1.0),
+                    evidence=Evidence(
+                        role="receptor", why=f"brief, {brief.place('receptors', number)}", confidence=1.0
+                    ),
                     sources=(Source(file=brief.file, item=f"receptors[{number + 1}]"),),
                 )
             )

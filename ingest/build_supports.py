@@ -11,8 +11,8 @@ from ingest.figures import ends_of, plan
 from ingest.matching import fits
 from ingest.model import BarSection, Material, Part, Pile, Point3, Support, Waler, WallPiece
 from ingest.notes import Notes, label
-from ingest.roles import RoleGiven
 from ingest.rigidity import find_rigidity
+from ingest.roles import RoleGiven
 
 SupportRole = Literal["strut", "corner_strut", "raker", "anchor"]
 FIELDS = tuple(name for name in SupportTable.model_fields if name not in ("match", "role", "level"))
@@ -96,7 +96,8 @@ def _entries(item: RoleGiven, notes: Notes) -> list[tuple[list[int], dict[str, A
         if named or general:
             found.append((not named, number, entry))
     found.sort(key=lambda row: row[:2])
-    levels = list(dict.fromkeys(entry.level for _, _, entry in found if entry.level is not None)) or [None]
+    given = dict.fromkeys(entry.level for _, _, entry in found if entry.level is not None)
+    levels: list[float | None] = list(given) or [None]
     merged = []
     for level in levels:
         rows = [row for row in found if row[2].level in (None, level)]
@@ -189,7 +190,7 @@ def _placed(
 
 def _compare_reach(item: RoleGiven, run: float, reach: float, notes: Notes) -> None:
     if run and abs(run - reach) > max(0.05 * reach, 0.1):
-        text = f"drawn {run:.2f} m long on plan, free and bond length at its inclination give {reach:.2f} m; the brief rules"
+        text = f"drawn {run:.2f} m long on plan; free and bond length at its inclination give {reach:.2f} m and rule"
         notes.see("anchor-length", "check", label(item), text, (item.part.source,))
 
 

@@ -75,9 +75,7 @@ def given_in_brief(part: Part, notes: Notes) -> WallGiven:
     )
 
 
-def _check_levels(
-    part: Part, entries: Sequence[WallTable], top: float | None, toe: float | None, notes: Notes
-) -> None:
+def _check_levels(part: Part, entries: Sequence[WallTable], top: float | None, toe: float | None, notes: Notes) -> None:
     if top is not None and toe is not None and toe >= top:
         number = notes.brief.walls.index(entries[0]) if entries else 0
         problem = f"wall {part.layer or part.name or part.source.item}: toe {toe:g} m is not below its top {top:g} m"
@@ -112,7 +110,7 @@ def _pile(item: RoleGiven, notes: Notes, capping: bool | None) -> Pile | None:
         centre=centre,
         diameter=diameter,
         kind=kind,
-        bearing=bearing,
+        bearing=None if bearing and item.use == "pile" else bearing,
         section=post or part.section,
         male=None if item.use not in ("male", "female") else item.use == "male",
         top=said.top if not bearing else _levels(part)[0],

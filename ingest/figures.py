@@ -57,7 +57,7 @@ def centre_line(ring: Sequence[Point]) -> tuple[tuple[Point, Point], float] | No
     if not shape.is_valid or shape.area <= 0:
         return None
     box = minimum_rotated_rectangle(shape)
-    if box.geom_type != "Polygon" or shape.area < 0.97 * box.area:
+    if not isinstance(box, Polygon) or shape.area < 0.97 * box.area:
         return None
     corners = [(float(x), float(y)) for x, y in box.exterior.coords[:4]]
     a, b = math.dist(corners[0], corners[1]), math.dist(corners[1], corners[2])

@@ -57,9 +57,8 @@ def read_guarded(
     size = check_readable(path)
     seconds = read_limit if read_limit is not None else SECONDS + SECONDS_PER_MB * size / 1e6
     memory = BYTES + BYTES_PER_BYTE * size
-    command = [sys.executable, "-P", "-m", "ingest.guard", kind, os.path.abspath(path), str(memory)]
     child = subprocess.Popen(
-        command,
+        _command(kind, os.path.abspath(path), memory),
         stdin=subprocess.PIPE,
         stdout=subprocess.PIPE,
         stderr=subprocess.DEVNULL,
@@ -71,7 +70,10 @@ def read_guarded(
     except subprocess.TimeoutExpired:
         name = shown(path.name)
         raise InputError(
-            name, "", f"was not read within {seconds:.0f} s", "give it longer with --read-limit, or send less of the model"
+            name,
+            "",
+            f"was not read within {seconds:.0f} s",
+            "give it longer with --read-limit, or send less of the model",
         ) from None
     finally:
         if child.poll() is None:
@@ -88,6 +90,10 @@ def read_here(path: Path, kind: Kind, options: Mapping[str, Any] | None = None) 
     chosen = {key: tuple(v) if isinstance(v, list) else v for key, v in (options or {}).items() if key in known}
     parts: FileParts = read(path, **chosen)
     return parts
+
+
+def _command(kind: Kind, path: str, memory: int) -> list[str]:
+    return [sys.executable, "-P", "-m", "ingest.guard", kind, path, str(memory)]
 
 
 def _environment() -> dict[str, str]:
@@ -112,8 +118,8 @@ def _parts(answer: bytes, code: int, path: Path, memory: int) -> FileParts:
         how = f"signal {-code}" if code < 0 else f"code {code}"
         raise InputError(name, "", f"made its reader stop ({how}); the file is damaged or hostile", again)
     if answer.startswith(b'{"error"'):
-        first, *others = json.loads(answer)["error"]
-        raise InputError(name, *first, [tuple(problem) for problem in others])
+        (place, problem, remedy), *others = json.loads(answer)["error"]
+        raise InputError(name, place, problem, remedy, [(at, what, fix) for at, what, fix in others])
     try:
         return TypeAdapter(FileParts).validate_json(answer)
     except ValidationError as error:

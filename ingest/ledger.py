@@ -72,4 +72,6 @@ def _fate(item: RoleGiven, notes: Notes) -> tuple[int, str, str]:
 
 def _short(item: RoleGiven) -> str:
     why = item.evidence.why
-    return "the brief says context" if why.startswith("brief") else why if why.startswith("superstructure") else "no role"
+    return (
+        "the brief says context" if why.startswith("brief") else why if why.startswith("superstructure") else "no role"
+    )

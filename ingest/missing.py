@@ -31,7 +31,8 @@ def _ask_levels(site: Site, notes: Notes) -> None:
     if site.formation is None and not site.floors:
         notes.ask("formation level is not given", "[levels]\nformation = 0.0")
     held = [pile for pile in site.piles if not pile.bearing]
-    if (site.walls or held) and any(wall.toe is None for wall in (*site.walls, *held)):
+    toes = [wall.toe for wall in site.walls] + [pile.toe for pile in held]
+    if None in toes:
         notes.ask("toe level of the wall is not given", "[[walls]]\ntoe = 0.0")
 
 

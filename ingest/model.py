@@ -108,6 +108,8 @@ class Part:
     text: str = ""
     tags: dict[str, str] = field(default_factory=dict)
     evidence: str = ""
+    faces: tuple[tuple[int, ...], ...] = ()
+    """Faces of a mesh as rings of point numbers."""
 
 
 @record
@@ -151,6 +153,8 @@ class FileParts:
     findings: tuple[Finding, ...] = ()
     assumptions: tuple[Assumption, ...] = ()
     questions: tuple[Question, ...] = ()
+    setting: tuple[Part, ...] = ()
+    """Storeys with their level and the site's own terrain: shown, but no entities of the ledger."""
 
 
 @record

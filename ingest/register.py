@@ -77,9 +77,7 @@ def _check_overlap(files: Sequence[FileParts], notes: Notes) -> None:
                 _ask_shift(name, other, a, b, gap, notes)
 
 
-def _ask_shift(
-    name: str, other: str, a: tuple[float, ...], b: tuple[float, ...], gap: float, notes: Notes
-) -> None:
+def _ask_shift(name: str, other: str, a: tuple[float, ...], b: tuple[float, ...], gap: float, notes: Notes) -> None:
     sources = (Source(file=name, item=""), Source(file=other, item=""))
     text = f"{name} and {other} do not meet: {gap:.0f} m lie between them; they have not been laid on each other"
     notes.see("files-apart", "check", f"{name}, {other}", text, sources)
@@ -88,7 +86,10 @@ def _ask_shift(
     notes.ask(
         f"where does {other} lie on {name}?",
         f'[files."{other}"]\nshift = [{shift[0]}, {shift[1]}]',
-        ((f"{other} has its own origin", middle, 0.4), ("the coordinates are true", "they are as the file has them", 0.4)),
+        (
+            (f"{other} has its own origin", middle, 0.4),
+            ("the coordinates are true", "they are as the file has them", 0.4),
+        ),
     )
 
 
@@ -120,5 +121,7 @@ def _move(file: FileParts, shift: Point, turn: float) -> FileParts:
         return replace(hole, location=moved(hole.location))
 
     return replace(
-        file, parts=tuple(of_part(part) for part in file.parts), boreholes=tuple(of_hole(hole) for hole in file.boreholes)
+        file,
+        parts=tuple(of_part(part) for part in file.parts),
+        boreholes=tuple(of_hole(hole) for hole in file.boreholes),
     )

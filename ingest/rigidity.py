@@ -66,7 +66,9 @@ def _section(entry: dict[str, Any], numbers: Sequence[int], notes: Notes) -> Bar
 
 def _steel_modulus(about: str, part: Part, entry: dict[str, Any], notes: Notes) -> float | None:
     """Steel's modulus where the section is a steel one; nothing where the material is anybody's guess."""
-    if entry["section"] is None and not _STEEL.search(f"{part.material} {part.section.designation if part.section else ''}"):
+    if entry["section"] is None and not _STEEL.search(
+        f"{part.material} {part.section.designation if part.section else ''}"
+    ):
         return None
     notes.assume(
         "steel-modulus",

@@ -40,7 +40,8 @@ class Clue:
 class RoleGiven:
     """The role of a part, with the evidence, the doubt, and what the wording says beyond the role.
 
-    `retaining` is True where something says that ground is held, not just that there is a wall.
+    `retaining` is True where something says that ground is held, not just that there is a wall. `use` "pile" is a pile
+    whose duty nothing but its place tells.
     """
 
     part: Part
@@ -87,7 +88,7 @@ def find_role(part: Part, brief: Brief, place: Place) -> RoleGiven:
     Returns:
         The role with evidence and confidence; a question where two readings are close.
     """
-    stated = _from_brief(part, brief)
+    stated = _from_brief(part, brief, place)
     if stated is not None:
         return _given(part, stated)
     if part.form == "text":
@@ -106,7 +107,7 @@ def find_role(part: Part, brief: Brief, place: Place) -> RoleGiven:
     return _given(part, ranked[0], question)
 
 
-def _from_brief(part: Part, brief: Brief) -> Clue | None:
+def _from_brief(part: Part, brief: Brief, place: Place) -> Clue | None:
     own = brief.files.get(part.source.file)
     if own is not None and part.layer in own.ignore_layers:
         return Clue(role="ignore", why="layer ignored by the brief", confidence=1.0)
@@ -118,7 +119,7 @@ def _from_brief(part: Part, brief: Brief) -> Clue | None:
     for table, role in (("loads", "load"), ("receptors", "receptor"), ("floors", "slab"), ("walls", "wall")):
         found_in = find_entry(getattr(brief, table), part)
         if found_in is not None:
-            return _as_the_brief_has_it(part, table, role, f"brief, {brief.place(table, found_in[0])}")
+            return _as_the_brief_has_it(part, place, role, f"brief, {brief.place(table, found_in[0])}")
     support = find_entry(brief.supports, part)
     if support is not None and support[1].role is not None and part.form not in ("text", "circle"):
         why = f"brief, {brief.place('supports', support[0])}"
@@ -126,11 +127,12 @@ def _from_brief(part: Part, brief: Brief) -> Clue | None:
     return None
 
 
-def _as_the_brief_has_it(part: Part, table: str, role: Any, why: str) -> Clue | None:
+def _as_the_brief_has_it(part: Part, place: Place, role: Any, why: str) -> Clue | None:
     if part.form == "text":
         return None
-    kind = next((m.wall_kind for m in find_meanings(part.layer) if m.wall_kind), None) if role == "wall" else None
-    use = "floor" if table == "floors" else ""
+    clues = (*_from_names(part, place), *_from_place(part, place)) if role == "wall" else ()
+    kind = next((clue.wall_kind for clue in clues if clue.wall_kind), None)
+    use = "floor" if role == "slab" else ""
     return Clue(role=role, why=why, confidence=1.0, wall_kind=kind, use=use, retaining=True)
 
 
@@ -205,8 +207,8 @@ def _pile(part: Part, place: Place, why: str, confidence: float) -> Clue:
     if place.row_count:
         return Clue(role="wall", why=why, confidence=confidence, retaining=True)
     if upright(part) is None and part.form in ("path", "outline"):
-        return Clue(role="bearing_pile", why=why, confidence=confidence * 0.6)
-    return Clue(role="bearing_pile", why=f"{why}, not in a close row", confidence=confidence)
+        return Clue(role="bearing_pile", why=why, confidence=confidence * 0.6, use="pile")
+    return Clue(role="bearing_pile", why=f"{why}, not in a close row", confidence=confidence, use="pile")
 
 
 def _rank(clues: Sequence[Clue]) -> list[Clue]:

@@ -17,13 +17,14 @@ from ingest.build_walls import build_walls
 from ingest.errors import InputError
 from ingest.guard import READERS, kind_of, read_guarded
 from ingest.ledger import make_ledger
-from ingest.model import FileParts, InputFile, Role, Site
 from ingest.missing import note_missing
+from ingest.model import FileParts, InputFile, Role, Site
 from ingest.notes import Notes
 from ingest.register import Moved, lay_files
 from ingest.roles import RoleGiven, find_roles
+from ingest.starting_brief import write_starting_brief
 
-__all__ = ["READERS", "read_site", "site_of"]
+__all__ = ["READERS", "read_site", "site_of", "write_starting_brief"]
 
 Tell = Callable[[str, int, int], None]
 Named = TypeVar("Named")

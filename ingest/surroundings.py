@@ -72,10 +72,15 @@ def find_places(parts: Sequence[Part], is_wall: Sequence[bool], is_slab: Sequenc
     rows = _pile_rows(parts)
     floors = [part.z_bottom for part, slab in zip(parts, is_slab, strict=True) if slab and part.z_bottom is not None]
     lowest = min(floors) if floors else None
-    axes = [part.points for part, wall in zip(parts, is_wall, strict=True) if wall and len(part.points) > 1]
+    axes = [_line(part) for part, wall in zip(parts, is_wall, strict=True) if wall and len(part.points) > 1]
     centres = [part.points[0] for n, part in enumerate(parts) if n in rows and rows[n][1] < WALL_ROW]
     meets = _Walls(axes, centres)
     return tuple(_place(n, part, rows.get(n), lowest, meets) for n, part in enumerate(parts))
+
+
+def _line(part: Part) -> tuple[tuple[float, float, float], ...]:
+    ring = part.closed or part.form in ("outline", "prism")
+    return (*part.points, part.points[0]) if ring else part.points
 
 
 def _place(n: int, part: Part, row: tuple[int, float] | None, lowest: float | None, walls: _Walls) -> Place:

@@ -30,7 +30,7 @@ METRES: dict[str, float] = {
 """One unit of length in metres.
 
 The international yard is 0.9144 m exactly, so the foot 0.3048 m and the inch 25.4 mm (international yard and pound
-agreement of 1959). The US survey foot is 1200/3937 m exactly (Mendenhall order of 1893). SI prefixes by the SI brochure.
+agreement of 1959). The US survey foot is 1200/3937 m exactly (Mendenhall order of 1893). SI prefixes: SI brochure.
 """
 
 _OTHER_NAMES: dict[str, str] = {

@@ -6,6 +6,7 @@ from dataclasses import dataclass
 from itertools import chain
 
 import numpy as np
+from numpy.typing import NDArray
 
 from sections.model import Bools, Corner, Floats, FoundPit, Ints, Run, Stations
 
@@ -50,6 +51,20 @@ class WallEnds:
         back = np.where(self.back_kind == INSIDE, self.back, np.inf)
         ahead = np.where(self.ahead_kind == INSIDE, self.ahead, np.inf)
         return np.minimum(back, ahead)
+
+    @property
+    def inside_angle(self) -> Floats:
+        """Interior angle of the nearer inside corner, degrees; nan where there is none."""
+        back = np.where(self.back_kind == INSIDE, self.back, np.inf)
+        ahead = np.where(self.ahead_kind == INSIDE, self.ahead, np.inf)
+        angle = np.where(back <= ahead, self.back_angle, self.ahead_angle)
+        return np.where(np.isfinite(self.to_inside), angle, np.nan)
+
+    @property
+    def has_acute(self) -> Bools:
+        """True where an inside corner sharper than the range taken as square ends the wall."""
+        back = (self.back_kind == INSIDE) & (self.back_angle < ACUTE - 1e-9)
+        return np.asarray(back | ((self.ahead_kind == INSIDE) & (self.ahead_angle < ACUTE - 1e-9)))
 
     def has(self, kind: int) -> Bools:
         """True where either end is of this kind."""
@@ -169,12 +184,46 @@ def _row_spacing(spacing: float | None, at: Floats) -> float:
 
 
 def changes_of(found: FoundPit) -> Floats:
-    """Chainages at which the construction of the wall changes; a corner at the same place does not hide them."""
+    """Chainages at which the construction of the wall changes; runs that only end there, at a corner, do not count."""
     shape = found.shape
-    if len(shape.runs) < 2:
+    runs = sorted(shape.runs, key=lambda run: run.start)
+    if len(runs) < 2:
         return np.zeros(0)
-    starts = {round(run.start, 6) for run in shape.runs}
-    return np.array(sorted(starts if shape.closed else starts - {0.0}))
+    pairs = zip([runs[-1], *runs[:-1]] if shape.closed else runs[:-1], runs if shape.closed else runs[1:], strict=True)
+    return np.array(sorted(run.start for before, run in pairs if construction_of(before) != construction_of(run)))
+
+
+def construction_of(run: Run) -> tuple[object, ...]:
+    """What makes one run of wall like another: kind, size, levels, continuity, and the piles that bend."""
+    wall = run.wall
+    bending = None if wall.structural is None else (wall.structural.which, wall.structural.spacing)
+    size = (wall.thickness, wall.diameter, wall.centres, wall.post, wall.EI_factor)
+    return (wall.kind, *size, wall.top, wall.toe, wall.continuity, wall.material, bending)
+
+
+def kinds_at(found: FoundPit) -> NDArray[np.str_]:
+    """Kind of wall at each station; "unknown" where no run was found."""
+    return np.array([*(run.wall.kind for run in found.shape.runs), "unknown"])[found.stations.run]
+
+
+def toe_steps_of(found: FoundPit) -> Floats:
+    """Chainages at which the toe of the wall changes, or is not known on one side."""
+    runs = sorted(found.shape.runs, key=lambda run: run.start)
+    return np.array(
+        sorted(
+            run.start
+            for before, run in zip([runs[-1], *runs[:-1]], runs, strict=True)
+            if before.wall.toe != run.wall.toe and (found.shape.closed or run.start > 0.0)
+        )
+    )
+
+
+def is_rectangle(found: FoundPit) -> bool:
+    """Tell whether the pit is closed by four straight walls at right angles, within 5 degrees (judgement)."""
+    shape = found.shape
+    felt = [corner for corner in shape.corners if not STRAIGHT_FROM <= corner.interior_angle <= STRAIGHT_TO]
+    square = all(abs(corner.interior_angle - 90.0) <= 5.0 for corner in felt)
+    return shape.closed and shape.circle is None and not shape.arcs and len(felt) == 4 and square
 
 
 def steps_of(found: FoundPit) -> Floats:

@@ -1,6 +1,6 @@
 """Ground anchors: free length as a bar, bond length as a sheet with two faces, and the way back.
 
-Terms after EN 1537: free anchor length, fixed (bond) length, lock-off load. Source of the formulas: statics and geometry.
+Terms after EN 1537: free anchor length, fixed (bond) length, lock-off load. Formulas: statics and geometry.
 """
 
 from __future__ import annotations
@@ -15,7 +15,7 @@ from ingest.trail import Finding
 from sections.definition import PerMetre, RealMember, SmearParts
 from sections.model import Floats
 from sections.smear import member_parts
-from sections.smear_rows import Smeared, apply_rows, direction_of, smear_support
+from sections.smear_rows import Smeared, apply_rows, axial_back, direction_of, smear_support
 
 LOCK_OFF_SHARE = 0.60
 """Lock-off load over characteristic tendon capacity, EN 1537:1999, 9.8."""
@@ -99,7 +99,7 @@ def smear_bond_length(real: RealMember) -> Smeared:
         ("contact", "contact_kPa", "contact_kPa", contact),
     )
     rows, values = apply_rows(real, specs)
-    back = tuple(row for row in smear_support(real, "anchor").back if row.quantity == "N")
+    back = tuple(row for row in axial_back("anchor", spacing, direction) if row.quantity == "N")
     section = PerMetre(**values, resists="tension")  # type: ignore[arg-type]
     return Smeared(real=real, section=section, smear=rows, back=back)
 
@@ -151,7 +151,7 @@ def _segment_distance(a0: Floats, a1: Floats, b0: Floats, b1: Floats) -> Floats:
     inside = ~parallel & (s >= 0) & (s <= 1) & (t >= 0) & (t <= 1)
     between = np.linalg.norm(w + s[:, None] * u - t[:, None] * v, axis=1)
     ends = np.min([_to(a0, b0, b1), _to(a1, b0, b1), _to(b0, a0, a1), _to(b1, a0, a1)], axis=0)
-    return np.where(inside, np.minimum(between, ends), ends)
+    return np.asarray(np.where(inside, np.minimum(between, ends), ends))
 
 
 def _to(point: Floats, start: Floats, end: Floats) -> Floats:

@@ -14,6 +14,9 @@ from sections.spacing import Stand, bay_spacings, neighbours, regular_spacing
 from sections.support_rows import Rows
 from sections.walk import Walk
 
+REMNANT = 1.5
+"""A row reaches a wall's end, or half way to the next row, that is no further off than this many spacings (judgement)."""
+
 
 @dataclass(frozen=True, kw_only=True)
 class Cover:
@@ -56,11 +59,11 @@ def _cover(stand: Stand, level: Sequence[Stand], sides: Sides, limits: Limits, s
     edges = stand.bays
     gaps = np.diff(edges)
     regular = regular_spacing(gaps, limits.spacing_ratio)
-    reach = single if regular is None else regular * (1.0 + limits.spacing_ratio)
+    reach = single if regular is None else regular
     before, after = neighbours(stand, level, length, sides.loop)
     first, last = float(stand.places[0]), float(stand.places[-1])
-    start = first - min(reach, _room(first, before, 0.0, sides.loop))
-    to = last + min(reach, _room(-last, -after, -length, sides.loop))
+    start = first - _reach(reach, _room(first, before, 0.0, sides.loop))
+    to = last + _reach(reach, _room(-last, -after, -length, sides.loop))
     start, to = _meet_siblings(stand, level, start, to)
     if sides.loop and to - start >= length - ON:
         start, to = 0.0, length
@@ -68,6 +71,11 @@ def _cover(stand: Stand, level: Sequence[Stand], sides: Sides, limits: Limits, s
         row=stand.row, side=stand.side, start=start, to=to, edges=edges,
         spacings=bay_spacings(gaps, limits.spacing_ratio),
     )  # fmt: skip
+
+
+def _reach(reach: float, room: float) -> float:
+    """One spacing, or all the room there is where it is little more: no sliver is left over at a corner."""
+    return room if room <= REMNANT * reach else reach
 
 
 def _room(place: float, neighbour: float, wall_end: float, loop: bool) -> float:
@@ -89,7 +97,9 @@ def _meet_siblings(stand: Stand, level: Sequence[Stand], start: float, to: float
     return start, to
 
 
-def rows_at(covers: Sequence[Cover], sides: Sides, steps: Walk, count: int) -> tuple[Floats, tuple[tuple[int, ...], ...]]:
+def rows_at(
+    covers: Sequence[Cover], sides: Sides, steps: Walk, count: int
+) -> tuple[Floats, tuple[tuple[int, ...], ...]]:
     """Spacing of each row at each station (rows, n), nan where it does not hold the wall, and the rows that do."""
     spacing = np.full((count, len(steps.chainage)), np.nan)
     for cover in covers:
@@ -107,7 +117,7 @@ def rows_at(covers: Sequence[Cover], sides: Sides, steps: Walk, count: int) -> t
 
 
 def _bay_at(cover: Cover, place: Floats) -> Floats:
-    """Spacing at places within the stretch; beyond the outermost members that of the outermost bay, 0 for one member."""
+    """Spacing at places within the stretch; beyond the outermost members that of the outermost bay; 0 for one alone."""
     if len(cover.spacings) == 0:
         return np.zeros(len(place))
     bay = np.clip(np.searchsorted(cover.edges, place, side="right") - 1, 0, len(cover.spacings) - 1)

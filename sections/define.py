@@ -25,6 +25,7 @@ from sections.ground import nearest_borehole
 from sections.implied import imply
 from sections.model import Band, Represents, SectionWall, Verdict
 from sections.section_balance import balance_section, list_actions
+from sections.section_bearing import bearing_members
 from sections.section_ground import layers_of_cut, soil_material, surface_line, water_lines
 from sections.section_loads import load_rows, load_stages
 from sections.section_plates import slab_members
@@ -88,7 +89,8 @@ def define_section(site: Site, cut: Cut, judged: Judged) -> SectionDefinition:
         findings += seen
     supports, props, refused = support_members(site, cut, names)
     slabs, slab_props = slab_members(site, cut, names)
-    members = (*walls, *supports, *slabs)
+    piles, pile_notes = bearing_members(site, cut)
+    members = (*walls, *supports, *slabs, *piles)
     loads, load_notes = load_rows(site, cut, judged.stands_for)
     extent, extent_notes = model_extent(cut)
     layers, columns, ground_notes = layers_of_cut(site, cut, extent.z[0])
@@ -96,7 +98,7 @@ def define_section(site: Site, cut: Cut, judged: Judged) -> SectionDefinition:
     materials = _materials(site, members, extent.z[0])
     dig = _dig(site, cut)
     stages, staged, gaps = _stages(site, dig, names, (*props, *slab_props), load_stages(site, cut), water)
-    findings += [*refused, *load_notes, *extent_notes, *ground_notes, *gaps]
+    findings += [*refused, *pile_notes, *load_notes, *extent_notes, *ground_notes, *gaps]
     return SectionDefinition(
         id=judged.id,
         kind="plane_strain",

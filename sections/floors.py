@@ -7,6 +7,7 @@ from dataclasses import dataclass
 
 import numpy as np
 import shapely
+from shapely.geometry.base import BaseGeometry
 from shapely.ops import substring
 
 from ingest.model import Floor, Limits, Plate, Site
@@ -29,7 +30,7 @@ class FloorPlan:
     """
 
     floors: tuple[Floor, ...]
-    areas: tuple[shapely.Geometry, ...]
+    areas: tuple[BaseGeometry, ...]
     assumed: bool
 
     @property
@@ -81,8 +82,9 @@ def _candidates(site: Site) -> list[Floor]:
 def _dug_plates(site: Site) -> list[Plate]:
     """Plates that something was dug for: slabs and footings with an underside below the ground."""
     plates = [plate for plate in site.plates if plate.underside is not None]
-    if site.ground_level is not None:
-        plates = [p for p in plates if p.underside is not None and p.underside < site.ground_level]
+    surface = site.ground_level if site.ground_level is not None else site.wall_top
+    if surface is not None:
+        plates = [p for p in plates if p.underside is not None and p.underside < surface]
     formation = site.formation
     if formation is None and not any(floor.outline is None for floor in site.floors):
         return plates
@@ -102,7 +104,7 @@ def _floor(site: Site, level: float, plate: Plate | None, name: str) -> Floor:
     )
 
 
-def _area(floor: Floor, pit: shapely.Polygon) -> shapely.Geometry:
+def _area(floor: Floor, pit: shapely.Polygon) -> BaseGeometry:
     if floor.outline is None:
         return pit
     if len(floor.outline) < 3:
@@ -111,12 +113,10 @@ def _area(floor: Floor, pit: shapely.Polygon) -> shapely.Geometry:
     return shapely.intersection(outline, pit)
 
 
-def _joined(
-    floors: list[Floor], areas: list[shapely.Geometry]
-) -> tuple[list[Floor], list[shapely.Geometry]]:
+def _joined(floors: list[Floor], areas: list[BaseGeometry]) -> tuple[list[Floor], list[BaseGeometry]]:
     """Floors of one level that touch are one floor (a slab drawn in strips)."""
     kept: list[Floor] = []
-    joined: list[shapely.Geometry] = []
+    joined: list[BaseGeometry] = []
     for floor, area in zip(floors, areas, strict=True):
         for i, other in enumerate(kept):
             alike = abs(_dug(other) - _dug(floor)) < 1e-6 and other.level == floor.level
@@ -153,7 +153,7 @@ def floor_at_wall(plan: FloorPlan, shape: PitShape, chainage: Floats, half_thick
         drop = level - plan.levels[i]
         near = (drop > 0.0) & (distance[i] + FACE <= RULES_WITHIN * drop)
         ruled = np.where(near, np.minimum(ruled, plan.levels[i]), ruled)
-    return ruled
+    return np.asarray(ruled)
 
 
 def _main_floors(plan: FloorPlan, shape: PitShape, half_thickness: float) -> list[int]:
@@ -183,20 +183,21 @@ def find_steps(plan: FloorPlan, shape: PitShape, limits: Limits) -> tuple[Step, 
     return tuple(sorted(steps, key=lambda step: (step.at or (np.inf,), -step.drop, step.line)))
 
 
-def _shared_lines(upper: shapely.Geometry, lower: shapely.Geometry, gap: float) -> Sequence[shapely.LineString]:
+def _shared_lines(upper: BaseGeometry, lower: BaseGeometry, gap: float) -> Sequence[shapely.LineString]:
     """Common edge of two floors; where they were drawn with a gap, the lower one's edge along the other."""
     lines = _lines(shapely.intersection(lower.boundary, upper.boundary))
     if sum(line.length for line in lines) > 4.0 * gap:
         return lines
     loose = _lines(shapely.intersection(lower.boundary, upper.buffer(gap, quad_segs=2)))
     # the buffer reaches round the ends of the common edge by its own width
-    return [line if line.is_closed else substring(line, gap, line.length - gap) for line in loose]
+    trimmed = [line if line.is_closed else substring(line, gap, line.length - gap) for line in loose]
+    return [line for line in trimmed if isinstance(line, shapely.LineString)]
 
 
-def _lines(edge: shapely.Geometry) -> list[shapely.LineString]:
+def _lines(edge: BaseGeometry) -> list[shapely.LineString]:
     parts = [part for part in getattr(edge, "geoms", [edge]) if part.geom_type == "LineString" and part.length > 0.0]
     merged = shapely.line_merge(shapely.multilinestrings(parts)) if parts else edge
-    lines = [part for part in getattr(merged, "geoms", [merged]) if part.geom_type == "LineString"]
+    lines = [part for part in getattr(merged, "geoms", [merged]) if isinstance(part, shapely.LineString)]
     return [line for line in lines if line.length > 0.2]
 
 
@@ -206,7 +207,7 @@ def _meets(line: shapely.LineString, shape: PitShape) -> tuple[float, ...]:
     points = shapely.get_coordinates(line)
     if np.allclose(points[0], points[-1]):
         return ()
-    ends = shapely.points(points[[0, -1]])
+    ends = np.asarray(shapely.points(points[[0, -1]]))
     thickest = max((run.wall.thickness or run.wall.diameter or 0.0 for run in shape.runs), default=0.0)
     near = shapely.distance(ends, wall) <= 0.5 * thickest + 0.5
     return tuple(sorted(float(at) for at in shapely.line_locate_point(wall, ends[near])))

@@ -122,7 +122,7 @@ def nearest_hole(site: Site, points: ArrayLike) -> Ints:
     if len(holes) == 0:
         return np.full(len(spots), -1, dtype=np.int64)
     gap = spots[:, None, :] - holes[None, :, :]
-    return np.argmin(np.hypot(gap[..., 0], gap[..., 1]), axis=1).astype(np.int64)
+    return np.asarray(np.argmin(np.hypot(gap[..., 0], gap[..., 1]), axis=1), dtype=np.int64)
 
 
 def water_along(site: Site, points: ArrayLike) -> Floats:
@@ -155,7 +155,9 @@ def find_bedding(site: Site) -> tuple[Bedding, ...]:
                 dip_direction=surface.dip_direction,
                 strike=surface.strike,
                 boreholes=int(np.sum(~np.isnan(tops[i]))),
-                thickness=None if np.all(np.isnan(thickness)) else (float(np.nanmin(thickness)), float(np.nanmax(thickness))),
+                thickness=None
+                if np.all(np.isnan(thickness))
+                else (float(np.nanmin(thickness)), float(np.nanmax(thickness))),
                 pinched=tuple(sorted(missing)),
             )
         )

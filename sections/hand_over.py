@@ -7,11 +7,13 @@ the larger), unless the load repeats closely enough for its mean. Elastic basis 
 from __future__ import annotations
 
 from collections.abc import Sequence
+from dataclasses import replace
+from math import hypot
 
 from ingest.errors import require, require_positive
 from ingest.record import record
 from sections.definition import Alternative, LoadValue
-from sections.load_repeats import peak_by_moment, peak_by_resultant
+from sections.load_repeats import peak_by_moment, peak_by_resultant, perpendicular_peak
 from sections.loads import (
     area_ratios,
     finite_length_factor,
@@ -64,22 +66,8 @@ def hand_over_point_row(Q: float, *, x: float, spacing: float, depths: Sequence[
         spacing: Along the wall, m.
         depths: Of formation and of the toe below the loads, m.
     """
-    require_positive(spacing, "load spacing", "m")
-    heights = _heights(depths)
-    peak = max(max(peak_by_resultant(x, H, spacing), peak_by_moment(x, H, spacing)) for H in heights)
-    mean, effect = Q / spacing, Q / spacing * peak
-    close = spacing <= x * (1 + 1e-9)
-    rows = (
-        _alternative("pressure_kept", Q, "kN/m", "nothing: the load as drawn on every metre", "over-states the load"),
-        _alternative(
-            "total_kept", mean, "kN/m", "the total of the row", f"the peak behind a load, {peak:.3f} of the mean"
-        ),
-        _alternative("equal_effect", effect, "kN/m", WALL, "over-states the load between the loads"),
-        _absent("kN/m"),
-    )
-    value = mean if close else effect
-    basis = f"q = Q/s{'' if close else f' x {peak:.3f}, peak behind a load'}, s = {spacing:g} m"
-    return HandedOver(section=LoadValue(value=value, unit="kN/m"), alternatives=rows, share=value / Q, basis=basis)
+    peaks = [f(x, H, spacing) for H in _heights(depths) for f in (peak_by_resultant, peak_by_moment)]
+    return _repeated(Q, "kN/m", spacing, x, max(peaks))
 
 
 def hand_over_line(
@@ -94,15 +82,20 @@ def hand_over_line(
         b2: To the other end, m.
         depths: Of formation and of the toe below the load, m.
         stands_for: Length of wall the section stands for, m.
+
+    Returns:
+        The line whole where it is long enough for F > 0.95 over the height, else its equal-effect value.
     """
     heights = _heights(depths)
     ratios = [finite_line_resultant(x, H, b1, b2) / line_resultant(x, H) for H in heights]
     ratios += [finite_line_moment(x, H, b1, b2) / line_moment(x, H) for H in heights]
-    deepest = (x**2 + max(heights) ** 2) ** 0.5
-    share = 1.0 if float(finite_length_factor(deepest, b1, b2)) > LONG_ENOUGH else max(ratios)
-    return _single(
-        q, q * share, "kN/m", stands_for, b1 + b2, f"{share:.4f} of the line load, ends {b1:g} and {b2:g} m away"
-    )
+    share = max(ratios)
+    basis = f"{share:.4f} of the line load, ends {b1:g} and {b2:g} m away"
+    made = _single(q, q * share, "kN/m", stands_for, b1 + b2, basis)
+    if float(finite_length_factor(hypot(x, max(heights)), b1, b2)) <= LONG_ENOUGH:
+        return made
+    whole = LoadValue(value=q, unit="kN/m")
+    return replace(made, section=whole, share=1.0, basis=f"whole: F > {LONG_ENOUGH:g} over the height")
 
 
 def hand_over_perpendicular_line(
@@ -124,11 +117,11 @@ def hand_over_perpendicular_line(
         spacing: Of a row of such lines along the wall, m; None for a single one.
         stands_for: Length of wall the section stands for, m.
     """
+    heights = _heights(depths)
     if spacing is not None:
-        return _single(
-            q, q / require_positive(spacing, "load spacing", "m"), "kPa", spacing, 1.0, f"p = q/s, s = {spacing:g} m"
-        )
-    W = min(min(perpendicular_widths(x1, x2, H)) for H in _heights(depths))
+        peak = max(perpendicular_peak(x1, x2, H, spacing) for H in heights)
+        return _repeated(q, "kPa", spacing, x1, peak)
+    W = min(min(perpendicular_widths(x1, x2, H)) for H in heights)
     return _single(q, q / W, "kPa", stands_for, 1.0, f"p = q/W, W = {W:.3f} m, smaller of resultant and moment")
 
 
@@ -152,6 +145,23 @@ def hand_over_area(
     )
 
 
+def _repeated(load: float, unit: str, spacing: float, x: float, peak: float) -> HandedOver:
+    """A row of like loads at one spacing, `peak` times its mean behind each load; x is the nearest distance."""
+    require(load, "load", unit)
+    mean, effect = load / require_positive(spacing, "load spacing", "m"), load / spacing * peak
+    close = spacing <= x * (1 + 1e-9)
+    rows = (
+        _alternative("pressure_kept", load, unit, "the load as drawn, on every metre", "over-states the total"),
+        _alternative("total_kept", mean, unit, "the total of the row", f"the peak, {peak:.3f} of the mean"),
+        _alternative("equal_effect", effect, unit, WALL, "over-states the load between the loads"),
+        _absent(unit),
+    )
+    value = mean if close else effect
+    basis = f"load/s, s = {spacing:g} m" + ("" if close else f", times {peak:.3f}: the peak behind a load")
+    share = value / load if load else 1.0 / spacing
+    return HandedOver(section=LoadValue(value=value, unit=unit), alternatives=rows, share=share, basis=basis)
+
+
 def _single(load: float, effect: float, unit: str, stands_for: float | None, length: float, basis: str) -> HandedOver:
     """One load of a length along the wall (1 m for a point), its equal-effect value, and the alternatives."""
     require(load, "load", unit)
@@ -162,11 +172,9 @@ def _single(load: float, effect: float, unit: str, stands_for: float | None, len
         lost = "the peak behind the load; under-states the section through it"
     rows = (
         _alternative(
-            "pressure_kept", load, unit, "the load as drawn, under and near it", "over-states the load on the wall"
+            "pressure_kept", load, unit, "the load as drawn, right under it", "over-states the load on the wall"
         ),
-        _alternative(
-            "total_kept", total, unit, "the total load over the length of wall that the section stands for", lost
-        ),
+        _alternative("total_kept", total, unit, "the total over the length of wall that the section stands for", lost),
         _alternative("equal_effect", effect, unit, WALL, ONE_SECTION),
         _absent(unit),
     )

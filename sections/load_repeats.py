@@ -12,7 +12,7 @@ import numpy as np
 
 from ingest.errors import require_positive
 from ingest.trail import Finding
-from sections.loads import line_moment, line_resultant
+from sections.loads import line_moment, line_resultant, strips_across
 from sections.model import Floats
 
 SUMMED = 400
@@ -44,6 +44,19 @@ def peak_by_moment(x: float, H: float, spacing: float) -> float:
     beyond = _tail(x, edge) - whole
     terms = a2**-1.5 - 1 / (a2 * np.sqrt(a2 + H**2))
     return float(x**2 * H / (2 * pi) * (np.sum(terms) + 2 * beyond / spacing)) / mean
+
+
+def perpendicular_peak(x1: float, x2: float, H: float, spacing: float) -> float:
+    """Largest effect of lines square to the wall, x1 to x2 and `spacing` apart, over that of their mean q/s.
+
+    The larger of resultant and moment about depth H.
+    """
+    xs, widths = strips_across(require_positive(x1, "near end", "m"), x2)
+    ratios = []
+    for peak, mean in ((peak_by_resultant, line_resultant), (peak_by_moment, line_moment)):
+        weight = widths * np.array([mean(float(x), H) for x in xs])
+        ratios.append(float(weight @ np.array([peak(float(x), H, spacing) for x in xs]) / np.sum(weight)))
+    return max(ratios)
 
 
 def peak_near_surface(x: float, spacing: float) -> float:

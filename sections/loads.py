@@ -1,8 +1,8 @@
 """What the extrusion of a cut does to a load: elastic stress on the wall, and the widths that set it right.
 
-Half-space, nu = 0.5; x is the distance of the load from the wall, z the depth below the load, y along the wall. Stress is
-single, as in open ground: a wall that does not yield doubles it in 2D and 3D alike, so ratios and widths stay. Source:
-Boussinesq 1885 (point), Flamant 1892 (line), both recalled; widths derived from them and checked by quadrature.
+Half-space, nu = 0.5; x is the distance of the load from the wall, z the depth below the load, y along the wall. Stress
+is single, as in open ground: a wall that does not yield doubles it in 2D and 3D alike, so ratios and widths stay.
+Source: Boussinesq 1885 (point), Flamant 1892 (line), both recalled; widths derived and checked by quadrature.
 
 Assumes:
     Homogeneous elastic ground and no effect of wall movement: for ranking and for choosing a width, not for design
@@ -32,7 +32,7 @@ def point_stress(Q: float, x: float, y: Number, z: Number) -> Floats:
 
 
 def line_stress(q: float, x: float, z: Number) -> Floats:
-    """Horizontal stress of an endless line load q (kN/m) along the wall, 2 q x^2 z/(pi r^4), kPa. Source: Flamant 1892."""
+    """Horizontal stress of an endless line q (kN/m) along the wall, 2 q x^2 z/(pi r^4), kPa. Source: Flamant 1892."""
     r2 = _distance(x) ** 2 + np.asarray(z, dtype=float) ** 2
     return np.asarray(2 * q * x**2 * np.asarray(z) / (pi * r2**2))
 
@@ -67,7 +67,7 @@ def finite_length_factor(r: Number, b1: float, b2: float) -> Floats:
 
 def finite_strip_stress(p: float, x1: float, x2: float, b1: float, b2: float, z: Number) -> Floats:
     """Horizontal stress at the section of a rectangle p (kPa), strip by strip in x, kPa."""
-    x, w = _strips(x1, x2)
+    x, w = strips_across(x1, x2)
     z = np.asarray(z, dtype=float)[..., None]
     r2 = x**2 + z**2
     return np.asarray(np.sum(w * 2 * p * x**2 * z / (pi * r2**2) * finite_length_factor(np.sqrt(r2), b1, b2), axis=-1))
@@ -92,7 +92,7 @@ def width_by_moment(x: float, H: float) -> float:
 def point_width(x: float, H: float, y: float = 0.0) -> float:
     """Width to hand a single point load over with, the smaller of W_H and W_M, m: a wide one means a small load.
 
-    A load that stands y out of the plane of the section is felt less there: its width grows by the decay along the wall.
+    A load that stands y out of the plane of the section is felt less there: its width grows as its effect decays.
     """
     by_force = width_by_resultant(x, H) * point_resultant(x, H) / point_resultant(x, H, y)
     return min(by_force, width_by_moment(x, H) * point_moment(x, H) / point_moment(x, H, y))
@@ -125,13 +125,13 @@ def line_moment(x: float, H: float) -> float:
 def point_resultant(x: float, H: float, y: float = 0.0) -> float:
     """Resultant down to H of a point load of 1 kN at offset y along the wall, kN/m; (1 - k^3)/(2 pi x) at y = 0."""
     a2 = _distance(x) ** 2 + y**2
-    return x**2 / (2 * pi) * (a2**-1.5 - (a2 + _height(H) ** 2) ** -1.5)
+    return float(x**2 / (2 * pi) * (a2**-1.5 - (a2 + _height(H) ** 2) ** -1.5))
 
 
 def point_moment(x: float, H: float, y: float = 0.0) -> float:
     """Moment about depth H of a point load of 1 kN at offset y along the wall, kNm/m."""
     a2 = _distance(x) ** 2 + y**2
-    return x**2 * H / (2 * pi) * (a2**-1.5 - 1 / (a2 * sqrt(a2 + _height(H) ** 2)))
+    return float(x**2 * H / (2 * pi) * (a2**-1.5 - 1 / (a2 * sqrt(a2 + _height(H) ** 2))))
 
 
 def finite_line_resultant(x: float, H: float, b1: float, b2: float) -> float:
@@ -157,7 +157,7 @@ def area_ratios(x1: float, x2: float, H: float, b1: float, b2: float) -> tuple[f
         b2: To the other end, m.
     """
     _ends(b1, b2)
-    x, w = _strips(x1, x2)
+    x, w = strips_across(x1, x2)
     _height(H)
     force = float(np.sum(w * (_finite_resultant(x, H, b1) + _finite_resultant(x, H, b2)))) / 2
     moment = float(np.sum(w * (_finite_moment(x, H, b1) + _finite_moment(x, H, b2)))) / 2
@@ -200,7 +200,8 @@ def _g(b: float, r: Floats) -> Floats:
     return np.asarray((3 * t - t**3) / 2)
 
 
-def _strips(x1: float, x2: float) -> tuple[Floats, Floats]:
+def strips_across(x1: float, x2: float) -> tuple[Floats, Floats]:
+    """Middles and widths of the strips a loaded stretch is cut into across the wall (Gauss points), m."""
     require(x1, "near edge", "m", least=0.0)
     require(x2, "far edge", "m", above=x1)
     half = (x2 - x1) / 2

@@ -462,6 +462,7 @@ class CriterionResult:
         recalled: A constant in it is quoted from memory, so a verdict on it is provisional.
         carries: Further mechanisms that the same computation contains.
         settled_by: What would narrow the band or close the gap, in words that fit behind "settled by".
+        speaks_of: Outputs it can speak of at all.
         silence: Why it does not speak of an output where it speaks of others, by output.
     """
 
@@ -482,6 +483,7 @@ class CriterionResult:
     recalled: bool = False
     carries: tuple[Mechanism, ...] = ()
     settled_by: str = ""
+    speaks_of: tuple[str, ...] = ()
     silence: dict[str, str] = field(default_factory=dict)
 
 

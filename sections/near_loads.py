@@ -7,6 +7,7 @@ from dataclasses import dataclass
 
 import numpy as np
 import shapely
+from shapely.geometry.base import BaseGeometry
 
 from ingest.model import Load, Site
 from sections.chainage import area_of, line_of, locate, normal_at, point_at
@@ -52,7 +53,7 @@ def find_loads(site: Site, shape: PitShape, depth: float) -> tuple[NearLoad, ...
     )
 
 
-def _within(shape: PitShape, area: shapely.Polygon, outline: shapely.Geometry) -> bool:
+def _within(shape: PitShape, area: shapely.Polygon, outline: BaseGeometry) -> bool:
     spot = shapely.point_on_surface(outline)
     if shape.closed:
         return bool(area.contains(spot))
@@ -65,12 +66,12 @@ def _record(load: Load, name: str, inside: bool) -> PitLoad:
     )
 
 
-def shape_of(load: Load | PitLoad) -> shapely.Geometry:
+def shape_of(load: Load | PitLoad) -> BaseGeometry:
     """Point, line or outline of a load on plan."""
     return _geometry(load.points, load.kind in ("area", "footing"))
 
 
-def _geometry(points: Sequence[tuple[float, float]], filled: bool) -> shapely.Geometry:
+def _geometry(points: Sequence[tuple[float, float]], filled: bool) -> BaseGeometry:
     if len(points) == 1:
         return shapely.Point(points[0])
     if len(points) == 2 or not filled:
@@ -98,7 +99,7 @@ def bearing(shape: PitShape, load: PitLoad, chainage: Floats, depth: Floats) -> 
     off = np.maximum(0.0, np.maximum(low, -high))
     bears = np.isfinite(least) & (off <= SPREAD * least + 1e-9)
     bears &= np.isnan(depth) | (least <= BEHIND * depth + 1e-9)
-    return bears & _in_sight(shape, load, chainage, normal, bears)
+    return np.asarray(bears & _in_sight(shape, load, chainage, normal, bears))
 
 
 def _outline_points(load: PitLoad) -> Floats:
@@ -131,18 +132,18 @@ def _in_sight(shape: PitShape, load: PitLoad, chainage: Floats, normal: Floats, 
 
 
 def load_ends(shape: PitShape, load: PitLoad, depth: float) -> Floats:
-    """Chainages at which a load begins and ceases to bear on the wall, found to 1 mm by halving."""
+    """Chainages at which a load begins and ceases to bear on the wall, found by halving."""
     count = max(8, int(np.ceil(shape.length / 0.5)))
     grid = np.linspace(0.0, shape.length, count + 1)
     deep = np.full(len(grid), depth)
     on = bearing(shape, load, grid, deep)
     change = np.flatnonzero(on[1:] != on[:-1])
     low, high, state = grid[change], grid[change + 1], on[change]
-    for _ in range(12):
+    for _ in range(30):
         middle = 0.5 * (low + high)
         same = bearing(shape, load, middle, np.full(len(middle), depth)) == state
         low, high = np.where(same, middle, low), np.where(same, high, middle)
-    return np.asarray(0.5 * (low + high))
+    return np.asarray(np.round(0.5 * (low + high), 6))
 
 
 def find_receptors(site: Site, shape: PitShape) -> tuple[PitReceptor, ...]:

@@ -86,7 +86,7 @@ def _as_one(samples: Samples, a: Side, b: Side) -> Side | None:
     if a.form != b.form or a.form == "point":
         return None
     keep = np.concatenate((np.arange(*a.block), np.arange(*b.block)))
-    both = replace_samples(samples, keep)
+    both = samples.pick(keep)
     if a.form == "line":
         if a.ahead @ b.ahead < np.cos(np.radians(SAME_TURN)):
             return None
@@ -100,16 +100,10 @@ def _as_one(samples: Samples, a: Side, b: Side) -> Side | None:
     return replace(one, block=(a.block[0], b.block[1]))
 
 
-def replace_samples(samples: Samples, keep: Ints) -> Samples:
-    """The samples picked by number."""
-    return replace(samples, xy=samples.xy[keep], opens=samples.opens[keep], weight=samples.weight[keep],
-                   pile=samples.pile[keep])  # fmt: skip
-
-
 def _close_up(samples: Samples, sides: list[Side]) -> list[Side]:
     """The first and the last side of a ring may be one."""
     count = len(samples.xy)
-    twice = replace_samples(samples, np.arange(2 * count) % count)
+    twice = samples.pick(np.arange(2 * count) % count)
     first = replace(sides[0], block=(sides[0].block[0] + count, sides[0].block[1] + count))
     one = _as_one(twice, sides[-1], first)
     if one is None:

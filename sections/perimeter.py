@@ -54,11 +54,12 @@ def _shape(site: Site, trace: Trace, lines: Sequence[WallLine], origin: Point) -
     outline = build_outline(samples, find_sides(samples), 0.3)
     start = None if site.start is None else (site.start[0] - origin[0], site.start[1] - origin[1])
     outline = start_outline(outline, site.limits.direction, -site.frame.rotation_deg, start)
-    runs, piles = find_runs(site, outline, stretches_along(outline, trace, lines))
+    corners = find_corners(outline, site.limits.direction)
+    runs, piles = find_runs(site, outline, stretches_along(site, outline, trace, lines), [c.at for c in corners])
     return PitShape(
         id="", closed=outline.closed, axis=outline.points + origin, at=outline.at, length=outline.length,
         arcs=tuple(_moved_arc(arc, origin) for arc in find_arcs(outline)),
-        corners=tuple(_moved_corner(c, origin) for c in find_corners(outline, site.limits.direction)),
+        corners=tuple(_moved_corner(c, origin) for c in corners),
         runs=runs, circle=None, circles=(), piles=piles,
     )  # fmt: skip
 

@@ -96,7 +96,7 @@ def find_pile_rows(piles: Sequence[Pile]) -> tuple[PileRow, ...]:
     edges = edges[_alike(edges, piles, chosen, named)]
     grid = _in_grid(edges, xy, named, size)
     edges = edges[~(grid[edges[:, 0]] | grid[edges[:, 1]])]
-    links = _link(edges, xy, *_supported(tree, xy, edges))
+    links = _link(edges, xy, *_ranked(tree, xy, edges))
     rows = (_row(chain, closed, xy, index, named) for chain, closed in _chains(links))
     return tuple(row for row in rows if len(row.piles) >= (2 if row.sure else 3))
 
@@ -144,18 +144,23 @@ def _in_grid(edges: Ints, xy: Floats, named: Bools, size: Floats) -> Bools:
     return grid
 
 
-def _supported(tree: cKDTree, xy: Floats, edges: Ints) -> tuple[Ints, Floats]:
-    """How many ends of each possible bay have a pile behind them in the same direction, and the bay lengths."""
+def _ranked(tree: cKDTree, xy: Floats, edges: Ints) -> tuple[Ints, Floats]:
+    """Rank of each possible bay, lowest best, and bay lengths.
+
+    Bays over a gap (longer than either pile's distance to its nearest neighbour allows) come last; before them the
+    rank is by how many ends of the bay have no pile behind them in the same direction.
+    """
     p, q = xy[edges[:, 0]], xy[edges[:, 1]]
     span = np.hypot(*(q - p).T)
-    behind = tree.query(2 * p - q)[0] <= 0.35 * span
-    ahead = tree.query(2 * q - p)[0] <= 0.35 * span
-    return behind.astype(np.int64) + ahead.astype(np.int64), span
+    alone = (tree.query(2 * p - q)[0] > 0.35 * span).astype(np.int64) + (tree.query(2 * q - p)[0] > 0.35 * span)
+    nearest = tree.query(xy, k=2)[0][:, 1]
+    over_gap = span > 1.6 * np.maximum(nearest[edges[:, 0]], nearest[edges[:, 1]])
+    return np.asarray(alone + 3 * over_gap, dtype=np.int64), span
 
 
-def _link(edges: Ints, xy: Floats, support: Ints, span: Floats) -> list[list[int]]:
-    """Take bays that continue a line before bays that do not, short before long, two to a pile, without sharp turns."""
-    order = np.lexsort((np.round(span, 4), -support))
+def _link(edges: Ints, xy: Floats, rank: Ints, span: Floats) -> list[list[int]]:
+    """Take bays by rank, short before long, two to a pile, without sharp turns."""
+    order = np.lexsort((np.round(span, 4), rank))
     straight, turned = np.cos(np.radians((STRAIGHT_TURN, MAX_TURN)))
     links: list[list[int]] = [[] for _ in range(len(xy))]
     x, y = xy[:, 0].tolist(), xy[:, 1].tolist()
@@ -169,8 +174,8 @@ def _link(edges: Ints, xy: Floats, support: Ints, span: Floats) -> list[list[int
         ax, ay, bx, by = x[at] - x[back], y[at] - y[back], x[to] - x[at], y[to] - y[at]
         return bool(ax * bx + ay * by >= limit * np.sqrt((ax * ax + ay * ay) * (bx * bx + by * by)))
 
-    for (p, q), tier in zip(edges[order].tolist(), support[order].tolist(), strict=True):
-        limit = straight if tier == 2 else turned
+    for (p, q), tier in zip(edges[order].tolist(), rank[order].tolist(), strict=True):
+        limit = straight if tier in (0, 3) else turned
         if fits(p, q, limit) and fits(q, p, limit):
             links[p].append(q)
             links[q].append(p)

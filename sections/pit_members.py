@@ -8,14 +8,15 @@ from dataclasses import replace
 import numpy as np
 import shapely
 from scipy.spatial import cKDTree
+from shapely.geometry.base import BaseGeometry
 
 from ingest.model import Plate, Role, Site, Waler
 from ingest.trail import Source
-from sections.chainage import area_of, locate
+from sections.chainage import ON, area_of, locate
 from sections.model import Along, Bools, Floats, Member, PitShape, SupportRow
+from sections.numbering import in_order
 from sections.segmentation import group_alike
 from sections.support_ends import REACH
-from sections.support_rows import in_order
 
 WALER_LEVEL = 1.0
 """A waler within this height of a row carries it, m (judgement)."""
@@ -59,22 +60,39 @@ def waler_stretches(shape: PitShape, waler: Waler) -> tuple[tuple[float, float],
     line = shapely.LineString(waler.points) if len(waler.points) > 1 else shapely.Point(waler.points[0])
     dense = shapely.get_coordinates(shapely.segmentize(line, 0.25) if line.length > 0.0 else line)
     found = locate(shape, dense)
-    return _stretches(found.at[found.distance <= REACH], shape, 2.0 * REACH)
+    return _stretches(found.at[found.distance <= REACH], shape)
 
 
-def _stretches(at: Floats, shape: PitShape, gap: float) -> tuple[tuple[float, float], ...]:
-    """Join chainages into stretches wherever neighbours are at most `gap` apart, across the start of a closed wall."""
+def _stretches(at: Floats, shape: PitShape) -> tuple[tuple[float, float], ...]:
+    """Join chainages less than a metre apart into stretches, across the start of a closed wall too.
+
+    A stretch that stops short of a corner by no more than its reach from the wall goes up to the corner.
+    """
     if len(at) == 0:
         return ()
     at = np.sort(at)
-    breaks = np.flatnonzero(np.diff(at) > gap) + 1
-    parts = [(float(part[0]), float(part[-1])) for part in np.split(at, breaks)]
-    if shape.closed and parts[0][0] + shape.length - parts[-1][1] <= gap:
-        if len(parts) == 1:
-            return ((0.0, shape.length),)
-        first, last = parts[0], parts.pop()
-        parts = parts[1:] + [(last[0], first[1])]
-    return tuple(parts)
+    parts = np.split(at, np.flatnonzero(np.diff(at) > 1.0) + 1)
+    joined: list[tuple[float, float]] = []
+    for part in parts:
+        start, to = _to_corner(shape, float(part[0]), -1.0), _to_corner(shape, float(part[-1]), 1.0)
+        if joined and start <= joined[-1][1] + ON:
+            start = joined.pop()[0]
+        joined.append((start, to))
+    closing = joined[0][0] + shape.length - joined[-1][1]
+    if not shape.closed or closing > (ON if len(joined) > 1 else 1.0):
+        return tuple(joined)
+    if len(joined) == 1:
+        return ((0.0, shape.length),)
+    return (*joined[1:-1], (joined[-1][0], joined[0][1]))
+
+
+def _to_corner(shape: PitShape, place: float, way: float) -> float:
+    corners = np.array([corner.at for corner in shape.corners])
+    if shape.closed:
+        corners = np.concatenate([corners, corners + shape.length])
+    ahead = way * (corners - place)
+    near = corners[(ahead >= 0.0) & (ahead <= REACH)]
+    return float(near[0]) if len(near) else place
 
 
 def _walers(site: Site, shape: PitShape) -> list[Member]:
@@ -119,7 +137,8 @@ def _bearing_piles(site: Site, shape: PitShape, wall_piles: frozenset[int]) -> l
     index = [
         i
         for i, pile in enumerate(site.piles)
-        if i not in wall_piles and (pile.bearing or (pile.evidence is not None and pile.evidence.role == "bearing_pile"))
+        if i not in wall_piles
+        and (pile.bearing or (pile.evidence is not None and pile.evidence.role == "bearing_pile"))
     ]
     index = _inside(shape, index, [site.piles[i].centre for i in index])
     piles = [site.piles[i] for i in index]
@@ -136,7 +155,7 @@ def _bearing_piles(site: Site, shape: PitShape, wall_piles: frozenset[int]) -> l
 def _spaced(member: Member, centres: Floats, ratio: float) -> Member:
     if len(centres) < 2:
         return member
-    nearest = cKDTree(centres).query(centres, k=2)[0][:, 1]
+    nearest = np.asarray(cKDTree(centres).query(centres, k=2)[0])[:, 1]
     low, high = float(np.min(nearest)), float(np.max(nearest))
     uneven = high > (1.0 + ratio) * low
     return replace(member, spacing=float(np.median(nearest)), spacing_range=(low, high) if uneven else None)
@@ -190,13 +209,13 @@ def _plates(site: Site, shape: PitShape, role: Role) -> list[Member]:
     return members
 
 
-def _edge_along(shape: PitShape, plate: Plate, outline: shapely.Geometry) -> tuple[Along, ...]:
+def _edge_along(shape: PitShape, plate: Plate, outline: BaseGeometry) -> tuple[Along, ...]:
     """Stretches of wall that a slab reaches."""
     if plate.role != "slab":
         return ()
     edge = shapely.get_coordinates(shapely.segmentize(outline.boundary, 0.25))
     found = locate(shape, edge)
-    stretches = _stretches(found.at[found.distance <= REACH], shape, 1.0)
+    stretches = _stretches(found.at[found.distance <= REACH], shape)
     return tuple(
         Along(pit=shape.id, start=start, to=to, end="head") for start, to in stretches if abs(to - start) > 1.0
     )

@@ -84,7 +84,7 @@ def disc_stiffness(E: float, t: float, R: float, nu: float, hole: float = 0.0) -
 
 
 def strut_ring_stiffness(EA: float, R: float, diameters: int) -> tuple[float, float]:
-    """Radial stiffness of n struts along diameters, evenly spaced in angle: n EA/(pi R^2) per m, n EA/(pi R) per rad."""
+    """Radial stiffness of n struts along diameters, even in angle: n EA/(pi R^2) per m, n EA/(pi R) per radian."""
     require_positive(float(diameters), "number of struts")
     per_radian = diameters * require_positive(EA, "EA", "kN") / (pi * _radius(R))
     return per_radian / R, per_radian

@@ -4,25 +4,29 @@ from __future__ import annotations
 
 from collections.abc import Sequence
 from dataclasses import dataclass
+from itertools import pairwise
 
 import numpy as np
 import shapely
 
-from ingest.model import Limits, Pile, Site, WallKind
+from ingest.model import Limits, Pile, Site, WallKind, WallPiece
 from ingest.trail import Source
-from sections.model import Floats, Ints, Run, Structural, Wall
+from sections.model import Floats, Run, Wall
 from sections.outline import Outline
-from sections.pile_rows import pile_size
+from sections.pile_rows import EMBEDDED
+from sections.pile_walls import SAME_SIZE, near, pile_wall, split_row
 from sections.rings import Trace
 from sections.wall_lines import WallLine
 
-SAME_SIZE = 0.02
-"""Diameters and thicknesses closer than this are alike, m."""
+SPECK = 0.05
+"""Drawn stretches shorter than this are left over from joining ends, m."""
+AT_CORNER = 0.02
+"""A pile this close to a corner stands in it, m."""
 
 
 @dataclass(frozen=True, kw_only=True)
 class Stretch:
-    """A bit of wall along the axis: a pile (start = stop) or a drawn stretch."""
+    """A bit of wall along the axis: a pile (start = stop) or a drawn stretch. `stop` may pass the length of a ring."""
 
     start: float
     stop: float
@@ -41,47 +45,64 @@ def locate(outline: Outline, points: Floats) -> Floats:
     return np.asarray(at)
 
 
-def stretches_along(outline: Outline, trace: Trace, lines: Sequence[WallLine]) -> list[Stretch]:
+def stretches_along(site: Site, outline: Outline, trace: Trace, lines: Sequence[WallLine]) -> list[Stretch]:
     """Piles and drawn stretches of a way, in order of chainage."""
     graph = trace.graph
     nodes = trace.nodes
     piles = graph.pile[nodes]
+    kind_of = {int(p): _kind(site.piles[p], line) for line in lines for p in line.piles.tolist()}
     found = {int(p): float(c) for p, c in zip(piles, locate(outline, graph.xy[nodes]), strict=True) if p >= 0}
-    kind_of = {int(p): line.kind for line in lines for p in line.piles}
     bits = [Stretch(start=c, stop=c, kind=kind_of[p], pile=p) for p, c in found.items()]
     line, part = graph.line[trace.edges], graph.part[trace.edges]
-    plain = np.array([(part[k] >= 0) and not len(lines[line[k]].piles) for k in range(len(line))])
+    plain = (part >= 0) & np.array([not len(one.piles) for one in lines])[line]
     ends = graph.xy[graph.ends[trace.edges]]
     ends = np.where(trace.forward[:, None, None], ends, ends[:, ::-1])
     start, stop = locate(outline, ends[:, 0]), locate(outline, ends[:, 1])
-    for k in np.flatnonzero(plain):
+    stop = np.where(stop < start - SPECK, stop + outline.length, stop)
+    for k in np.flatnonzero(plain & (stop - start > SPECK)).tolist():
         one = lines[line[k]]
-        last = float(stop[k]) if stop[k] > start[k] else float(stop[k]) + outline.length
-        bits.append(Stretch(start=float(start[k]), stop=last, kind=one.kind, piece=one.piece, thickness=one.thickness))
-    return sorted(bits, key=lambda bit: (bit.start, bit.stop))
+        bits.append(Stretch(start=float(start[k]), stop=float(stop[k]), kind=one.kind, piece=one.piece,
+                            thickness=one.thickness))  # fmt: skip
+    return sorted(bits, key=lambda bit: (bit.start, bit.stop, bit.pile))
+
+
+def _kind(pile: Pile, line: WallLine) -> WallKind:
+    """What a pile is said to be, else what its row is."""
+    return pile.kind if pile.kind in EMBEDDED else line.kind
 
 
 def find_runs(
-    site: Site, outline: Outline, bits: Sequence[Stretch]
+    site: Site, outline: Outline, bits: Sequence[Stretch], corners: Sequence[float]
 ) -> tuple[tuple[Run, ...], tuple[tuple[int, ...], ...]]:
-    """Runs of one construction and the piles of each, in order of chainage."""
-    groups = _grouped(site, bits, outline.closed)
-    if len(groups) == 1:
-        run = Run(start=0.0, to=outline.length, wall=_wall(site, groups[0]))
-        return (run,), (tuple(b.pile for b in groups[0] if b.pile >= 0),)
-    runs = []
-    bounds = [_boundary(groups[k - 1], groups[k], outline) for k in range(len(groups))]
+    """Runs of one construction and the piles of each, in order of chainage.
+
+    Args:
+        site: The site with its piles and wall pieces.
+        outline: The wall axis.
+        bits: Piles and drawn stretches along it.
+        corners: Chainages of its corners; a change between two bits with a corner between them is at the corner.
+    """
+    groups = _groups(site, bits, outline.closed)
+    if len(groups) < 2:
+        walls = [(Run(start=0.0, to=outline.length, wall=_wall(site, g)), _piles(g)) for g in groups]
+        return tuple(run for run, _ in walls), tuple(piles for _, piles in walls)
+    count = len(groups)
+    bounds = [_boundary(groups[k - 1], groups[k], outline, corners) for k in range(count)]
     if not outline.closed:
         bounds[0] = 0.0
-    for k, group in enumerate(groups):
-        to = bounds[(k + 1) % len(groups)] if outline.closed or k + 1 < len(groups) else outline.length
-        runs.append((Run(start=bounds[k], to=to, wall=_wall(site, group)),
-                     tuple(b.pile for b in group if b.pile >= 0)))  # fmt: skip
-    runs.sort(key=lambda pair: pair[0].start)
-    return tuple(run for run, _ in runs), tuple(piles for _, piles in runs)
+    stops = bounds[1:] + [bounds[0] if outline.closed else outline.length]
+    stops = [outline.length if stop == 0.0 else stop for stop in stops]
+    order = np.argsort(bounds, kind="stable").tolist()
+    runs = [Run(start=bounds[k], to=stops[k], wall=_wall(site, groups[k])) for k in order]
+    return tuple(runs), tuple(_piles(groups[k]) for k in order)
 
 
-def _grouped(site: Site, bits: Sequence[Stretch], closed: bool) -> list[list[Stretch]]:
+def _piles(group: Sequence[Stretch]) -> tuple[int, ...]:
+    return tuple(bit.pile for bit in group if bit.pile >= 0)
+
+
+def _groups(site: Site, bits: Sequence[Stretch], closed: bool) -> list[list[Stretch]]:
+    """Neighbouring bits of one construction; on a ring the first group may reach back over the start."""
     groups: list[list[Stretch]] = []
     for bit in bits:
         if groups and _alike(site, groups[-1][0], bit):
@@ -90,49 +111,89 @@ def _grouped(site: Site, bits: Sequence[Stretch], closed: bool) -> list[list[Str
             groups.append([bit])
     if closed and len(groups) > 1 and _alike(site, groups[-1][0], groups[0][0]):
         groups = [groups[-1] + groups[0], *groups[1:-1]]
-    return groups
+    split: list[list[Stretch]] = []
+    for group in groups:
+        ring = closed and len(groups) == 1
+        split += _split_piles(site, group, ring) if group[0].pile >= 0 else [group]
+    return split
+
+
+def _split_piles(site: Site, group: list[Stretch], ring: bool) -> list[list[Stretch]]:
+    cuts = split_row([site.piles[bit.pile] for bit in group], group[0].kind, site.limits, ring)
+    parts = [group[a:b] for a, b in pairwise([0, *cuts, len(group)]) if b > a]
+    if ring and len(parts) > 1 and 0 not in cuts:
+        parts = [parts[-1] + parts[0], *parts[1:-1]]
+    return parts
 
 
 def _alike(site: Site, a: Stretch, b: Stretch) -> bool:
     if a.kind != b.kind or (a.pile >= 0) != (b.pile >= 0):
         return False
-    one = site.piles[a.pile] if a.pile >= 0 else site.walls[a.piece]
-    other = site.piles[b.pile] if b.pile >= 0 else site.walls[b.piece]
-    level = site.limits.level
-    return _near(one.top, other.top, level) and _near(one.toe, other.toe, level)
+    if a.pile >= 0:
+        return True
+    one, other = site.walls[a.piece], site.walls[b.piece]
+    return near(a.thickness, b.thickness, SAME_SIZE) and _like_pieces(one, other, site.limits)
 
 
-def _near(a: float | None, b: float | None, limit: float) -> bool:
-    return a == b or (a is not None and b is not None and abs(a - b) <= limit)
+def _like_pieces(a: WallPiece, b: WallPiece, limits: Limits) -> bool:
+    levels = near(a.top, b.top, limits.level) and near(a.toe, b.toe, limits.level)
+    return levels and _facts(a) == _facts(b)
 
 
-def _boundary(before: Sequence[Stretch], after: Sequence[Stretch], outline: Outline) -> float:
+def _facts(piece: WallPiece) -> tuple[object, ...]:
+    return (piece.material, piece.EI_factor, piece.continuity, piece.capping_beam)
+
+
+def _boundary(before: Sequence[Stretch], after: Sequence[Stretch], outline: Outline, corners: Sequence[float]) -> float:
+    """Where one run ends and the next begins.
+
+    At a corner, if there is one between them; else where a drawn stretch ends; else between two piles, a quarter of the
+    spacing before the first pile of the new run: any place between the two would be as true.
+    """
     a, b = before[-1].stop, after[0].start
-    if b < a:
-        b += outline.length
-    return float((0.5 * (a + b)) % outline.length)
+    length = outline.length
+    if b < a - 0.5 * length:
+        b += length
+    for corner in corners:
+        for at in (corner, corner + length):
+            if a + (AT_CORNER if before[-1].pile >= 0 else -AT_CORNER) < at <= b + AT_CORNER:
+                return _on_ring(min(at, b) if after[0].pile >= 0 else at, outline)
+    if before[-1].pile < 0 and after[0].pile < 0:
+        return _on_ring(0.5 * (a + b), outline)
+    if before[-1].pile < 0:
+        return _on_ring(min(a, b), outline)
+    if after[0].pile < 0:
+        return _on_ring(max(b, a + AT_CORNER), outline)
+    return _on_ring(b - 0.25 * (b - a), outline)
+
+
+def _on_ring(at: float, outline: Outline) -> float:
+    if not outline.closed:
+        return min(max(at, 0.0), outline.length)
+    at %= outline.length
+    return 0.0 if outline.length - at < 1e-6 else at
 
 
 def _wall(site: Site, group: Sequence[Stretch]) -> Wall:
     first = group[0]
-    if first.pile < 0:
-        piece = site.walls[first.piece]
-        return Wall(
-            kind=first.kind, thickness=first.thickness, top=piece.top, toe=piece.toe, continuity=piece.continuity,
-            capping_beam=piece.capping_beam, material=piece.material, EI_factor=piece.EI_factor,
-            sources=_sources([s for b in group for s in site.walls[b.piece].sources]),
-        )  # fmt: skip
-    piles = [site.piles[b.pile] for b in group]
-    spans = np.hypot(*np.diff(np.array([p.centre for p in piles]), axis=0).T)
-    centres = float(np.median(spans)) if len(spans) else None
-    one = piles[0]
+    if first.pile >= 0:
+        return pile_wall([site.piles[bit.pile] for bit in group], first.kind, site.limits)
+    pieces = [site.walls[i] for i in dict.fromkeys(bit.piece for bit in group)]
+    one = pieces[0]
     return Wall(
-        kind=first.kind, count=len(piles), centres=centres, diameter=pile_size(one), top=one.top, toe=one.toe,
-        continuity=one.continuity, structural=Structural(which="all", count=len(piles), spacing=centres),
-        capping_beam=one.capping_beam, material=one.material, EI_factor=one.EI_factor,
-        sources=_sources([s for p in piles for s in p.sources]),
-    )  # fmt: skip
+        kind=first.kind,
+        thickness=first.thickness,
+        top=one.top,
+        toe=one.toe,
+        continuity=one.continuity,
+        capping_beam=one.capping_beam,
+        material=one.material,
+        EI_factor=one.EI_factor,
+        sources=unique_sources(pieces),
+    )
 
 
-def _sources(sources: Sequence[Source]) -> tuple[Source, ...]:
-    return tuple(dict.fromkeys(sources))
+def unique_sources(items: Sequence[WallPiece]) -> tuple[Source, ...]:
+    """Sources of all pieces, each once, in a fixed order."""
+    found = {source for item in items for source in item.sources}
+    return tuple(sorted(found, key=lambda s: (s.file, s.item, s.how)))

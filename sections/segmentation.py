@@ -32,10 +32,10 @@ def segment(values: Floats, weights: Floats, penalty: float, limit: float | None
     Returns:
         The cheapest split; among equals the one whose last stretch is longest.
     """
-    table = np.asarray(values, dtype=np.float64).reshape(len(values), -1)
-    count = len(table)
+    count = len(values)
     if count == 0:
         return Segmentation(ends=np.zeros(0, dtype=np.int64), cost=-penalty)
+    table = np.asarray(values, dtype=np.float64).reshape(count, -1)
     # about its mean a series of levels near 100 keeps its digits in the squares
     table = table - np.average(table, axis=0, weights=weights)
     weight = np.concatenate([[0.0], np.cumsum(weights)])
@@ -79,9 +79,9 @@ def alike_stretches(values: Floats, weights: Floats) -> Ints:
     Among splits into equally few stretches the one with the least sum of squares. Equal neighbours are taken
     together first: the cost is concave in where a run of equal values is cut, so no best split cuts one.
     """
-    table = np.asarray(values, dtype=np.float64).reshape(len(values), -1)
-    if len(table) == 0:
+    if len(values) == 0:
         return np.zeros(0, dtype=np.int64)
+    table = np.asarray(values, dtype=np.float64).reshape(len(values), -1)
     change = np.flatnonzero(np.any(np.abs(np.diff(table, axis=0)) > 1e-9, axis=1)) + 1
     starts = np.concatenate([[0], change])
     block_weights = np.add.reduceat(np.maximum(weights, 1e-9), starts)

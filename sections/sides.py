@@ -14,7 +14,7 @@ from typing import Literal
 import numpy as np
 
 from ingest.model import Point
-from sections.circles import fit_circle
+from sections.circle_fit import fit_circle
 from sections.model import Bools, Floats, Ints
 from sections.rings import Trace
 from sections.wall_graph import cross
@@ -22,7 +22,8 @@ from sections.wall_lines import WallLine
 
 TOLERANCE = 0.005
 """How far points of one side are expected to lie from it, m; rows of piles set out less well raise it."""
-MOST_TOLERANCE = 0.015
+MOST_NOISE = 0.008
+"""Scatter above this is no scatter but the shape of the row, m."""
 LINE_PRICE, ARC_PRICE, POINT_PRICE = 14.0, 20.0, 8.0
 MOST_RADIUS, LEAST_RADIUS = 2000.0, 0.6
 LEAST_RISE = 0.03
@@ -39,6 +40,7 @@ class Samples:
         opens: (n,) True where a new side may begin with this point.
         weight: (n,) length of wall the point stands for, m.
         pile: (n,) True for pile centres.
+        middle: (n,) True for middles of drawn segments, which lie off the arc that chords stand for.
         closed: True for a ring.
     """
 
@@ -46,7 +48,13 @@ class Samples:
     opens: Bools
     weight: Floats
     pile: Bools
+    middle: Bools
     closed: bool
+
+    def pick(self, keep: Ints | Bools) -> Samples:
+        """Some of the samples, or all in another order."""
+        return Samples(xy=self.xy[keep], opens=self.opens[keep], weight=self.weight[keep], pile=self.pile[keep],
+                       middle=self.middle[keep], closed=self.closed)  # fmt: skip
 
 
 @dataclass(frozen=True, kw_only=True, eq=False)
@@ -87,14 +95,14 @@ def sample_way(trace: Trace, lines: Sequence[WallLine]) -> Samples:
     weight = np.where(plain[:, None], span[:, None] * [1 / 6, 2 / 3, 1 / 6], span[:, None])
     opens = np.where(plain[:, None], [True, False, False], True)
     node = np.where(bay[:, None], np.stack((tail, tail, head), axis=1), -1)
-    xy, opens, weight, node = points[use], opens[use], weight[use], node[use]
+    middle = plain[:, None] & [False, True, False]
+    samples = Samples(xy=points[use], opens=opens[use], weight=np.maximum(weight[use], 1e-6), pile=node[use] >= 0,
+                      middle=middle[use], closed=trace.closed)  # fmt: skip
+    node = node[use]
     same = (node >= 0) & (node == np.roll(node, 1))
     if not trace.closed:
         same[0] = False
-    return _from_sharpest(
-        Samples(xy=xy[~same], opens=opens[~same], weight=np.maximum(weight[~same], 1e-6), pile=node[~same] >= 0,
-                closed=trace.closed)
-    )  # fmt: skip
+    return _from_sharpest(samples.pick(~same))
 
 
 def _as_drawn(
@@ -122,14 +130,7 @@ def _from_sharpest(samples: Samples) -> Samples:
     back, ahead = np.roll(xy, 1, axis=0) - np.roll(xy, 2, axis=0), np.roll(xy, -1, axis=0) - xy
     turn = np.abs(np.arctan2(cross(back, ahead), (back * ahead).sum(axis=1)))
     turn[~samples.opens] = -1.0
-    shift = -int(np.argmax(np.round(turn, 6)))
-    return Samples(
-        xy=np.roll(xy, shift, axis=0),
-        opens=np.roll(samples.opens, shift),
-        weight=np.roll(samples.weight, shift),
-        pile=np.roll(samples.pile, shift),
-        closed=True,
-    )
+    return samples.pick(np.roll(np.arange(len(xy)), -int(np.argmax(np.round(turn, 6)))))
 
 
 def tolerance_of(samples: Samples) -> Floats:
@@ -145,7 +146,8 @@ def tolerance_of(samples: Samples) -> Floats:
         row = np.array([samples.pile[k : len(samples.pile) - 3 + k] for k in range(4)]).all(axis=0)
         if row.any():
             noise = float(np.median(across[row])) / 0.6745 / np.sqrt(20.0)
-    return np.where(samples.pile, np.clip(1.5 * noise, TOLERANCE, MOST_TOLERANCE), TOLERANCE)
+    noise = noise if noise < MOST_NOISE else 0.0
+    return np.where(samples.pile, max(1.5 * noise, TOLERANCE), TOLERANCE)
 
 
 def find_sides(samples: Samples) -> tuple[Side, ...]:
@@ -228,7 +230,8 @@ def fit_side(samples: Samples, start: int, stop: int, arc: bool) -> Side:
     """The line or arc of least squares through a range of samples."""
     xy, w = samples.xy[start:stop], samples.weight[start:stop]
     if arc:
-        return _fit_arc(xy, w, (start, stop))
+        on_arc = ~samples.middle[start:stop]
+        return _fit_arc(xy[on_arc], w[on_arc], (start, stop))
     if stop - start == 1:
         return Side(form="point", first=xy[0], last=xy[0], ahead=np.zeros(2), centre=np.zeros(2), radius=np.inf,
                     turn=0, block=(start, stop))  # fmt: skip

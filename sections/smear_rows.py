@@ -81,7 +81,7 @@ def smear_support(
     specs.append(("EI", "EI_kNm2", "EI_kNm2_per_m", member_parts("EI", spacing, direction, EI_factor=EI_factor)))
     specs.append(("weight", "weight_kN_per_m", "weight_kN_per_m2", member_parts("weight", spacing, direction)))
     rows, values = apply_rows(real, specs)
-    back = (*_axial_back(role, spacing, direction), *_bending_back(role, spacing, direction, real.EI_kNm2))
+    back = (*axial_back(role, spacing, direction), *_bending_back(role, spacing, direction, real.EI_kNm2))
     return Smeared(real=real, section=PerMetre(**values, resists=RESISTS[role]), smear=rows, back=back)  # type: ignore[arg-type]
 
 
@@ -105,7 +105,7 @@ def smear_corner_strut(real: RealMember) -> Smeared:
     real = replace(real, L_eff=corner_length(require_positive(real.length, "strut length", "m"), skew))
     rows, values = apply_rows(real, _axial_specs(real, spacing, direction, 1.0))
     section = PerMetre(**values, resists="compression")  # type: ignore[arg-type]
-    return Smeared(real=real, section=section, smear=rows, back=_axial_back("corner_strut", spacing, direction))
+    return Smeared(real=real, section=section, smear=rows, back=axial_back("corner_strut", spacing, direction))
 
 
 def apply_rows(real: RealMember, specs: Iterable[RowSpec]) -> tuple[tuple[Smear, ...], dict[str, float]]:
@@ -122,9 +122,7 @@ def apply_rows(real: RealMember, specs: Iterable[RowSpec]) -> tuple[tuple[Smear,
             continue
         require(value, f"{quantity} ({real_key})")
         factor = parts.product
-        rows.append(
-            Smear(quantity=quantity, real_key=real_key, section_key=section_key, factor=factor, parts=parts)
-        )
+        rows.append(Smear(quantity=quantity, real_key=real_key, section_key=section_key, factor=factor, parts=parts))
         values[section_key] = float(value * factor)
     return tuple(rows), values
 
@@ -132,7 +130,9 @@ def apply_rows(real: RealMember, specs: Iterable[RowSpec]) -> tuple[tuple[Smear,
 def bending_back(name: str, spacing: float, cos_beta: float = 1.0, valid_if: str = "") -> tuple[Back, ...]:
     """Rows that take V (kN/m) and M (kNm/m) back to one member."""
     return (
-        Back(quantity="V", from_unit="kN/m", factor=spacing, gives=f"shear of one {name}", unit="kN", valid_if=valid_if),
+        Back(
+            quantity="V", from_unit="kN/m", factor=spacing, gives=f"shear of one {name}", unit="kN", valid_if=valid_if
+        ),
         Back(
             quantity="M",
             from_unit="kNm/m",
@@ -171,7 +171,8 @@ def _share_drawn(real: RealMember, both_walls_drawn: bool) -> float:
     return require(real.L_eff, "L_eff", "m", above=0.0, most=length) / length
 
 
-def _axial_back(role: SupportRole, spacing: float, direction: Direction) -> tuple[Back, ...]:
+def axial_back(role: SupportRole, spacing: float, direction: Direction) -> tuple[Back, ...]:
+    """Rows that take N (kN/m along the drawn member) and the reaction (kN/m on the wall) back to one member."""
     name, factor = role.replace("_", " "), axial_force_factor(spacing, direction)
     alpha = radians(direction.apparent_inclination)
     also = []
@@ -183,8 +184,12 @@ def _axial_back(role: SupportRole, spacing: float, direction: Direction) -> tupl
         )
         also.append(thrust)
     if abs(direction.vertical_part) > SMALL:
-        also.append(AlsoGives(gives=f"vertical part of one {name}, down on the wall when it pulls",
-                              factor=spacing * direction.vertical_part / direction.cos_beta))
+        also.append(
+            AlsoGives(
+                gives=f"vertical part of one {name}, down on the wall when it pulls",
+                factor=spacing * direction.vertical_part / direction.cos_beta,
+            )
+        )
         also.append(AlsoGives(gives=f"horizontal part of one {name} square to the wall", factor=spacing * cos(alpha)))
     gives = f"axial force of one {name}"
     rows = [Back(quantity="N", from_unit="kN/m", factor=factor, gives=gives, unit="kN", also=tuple(also))]

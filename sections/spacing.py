@@ -83,7 +83,7 @@ def spacing_changes(gaps: Floats, ratio: float) -> tuple[int, ...]:
 
 def _stretches(bays: Floats, ratio: float) -> tuple[list[int], list[int]]:
     ends = alike_stretches(np.log(np.maximum(bays, 1e-6)) / np.log1p(ratio), np.ones(len(bays)))
-    return [0, *ends[:-1].tolist()], ends.tolist()
+    return [0, *ends[:-1].tolist()][: len(ends)], ends.tolist()
 
 
 def tributary_widths(stand: Stand, others: Sequence[Stand], length: float, loop: bool) -> Floats:

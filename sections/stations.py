@@ -12,18 +12,20 @@ from sections.chainage import Sides
 from sections.cover import find_covers, rows_at
 from sections.floors import FloorPlan
 from sections.ground import layers_along
-from sections.model import Bools, Floats, PitShape, Stations, SupportRow, Zone
+from sections.model import Bools, Floats, Ints, PitShape, Stations, SupportRow, Zone
 from sections.near_loads import NearLoad, bearing, load_ends
+from sections.signature import sign
 from sections.support_rows import Rows
 from sections.walk import Walk, face, flags_of, radius_at, walk
-from sections.zones import find_zones, sign
+from sections.zones import find_zones
 
 
 @dataclass(frozen=True, kw_only=True)
 class Surroundings:
-    """What bears on each station: largest area pressure, largest line load, and the loads by id."""
+    """What bears on each station: the largest area, footing (kPa) and line load (kN/m), and the loads by id."""
 
     surcharge: Floats
+    footing: Floats
     line_load: Floats
     load_ids: tuple[tuple[str, ...], ...]
 
@@ -50,7 +52,7 @@ def stand(
     steps = walk(site, shape, sides, plan, events)
     around = _surround(shape, steps, loads)
     spacing, held = rows_at(covers, sides, steps, len(rows.rows))
-    pressures = {"surcharge": around.surcharge, "line load": around.line_load}
+    pressures = {"surcharge": around.surcharge, "footing": around.footing, "line load": around.line_load}
     signature = sign(site, shape, steps, rows.rows, spacing, held, pressures, layers_along(site, steps.xy))
     sections = {row.member.id: _section_of(site, row) for row in rows.rows}
     zones, zone = find_zones(shape, sides, steps, signature, rows.rows, sections)
@@ -64,8 +66,9 @@ def _largest_depth(site: Site, plan: FloorPlan) -> float:
 
 
 def _ends_of_runs(shape: PitShape) -> Floats:
-    arcs = [(arc.start, arc.to) for arc in (*shape.arcs, *shape.circles)]
-    return np.array([(run.start, run.to) for run in shape.runs] + arcs, dtype=np.float64).reshape(-1)
+    ends = [(run.start, run.to) for run in shape.runs]
+    ends += [(arc.start, arc.to) for arc in shape.arcs] + [(part.start, part.to) for part in shape.circles]
+    return np.array(ends, dtype=np.float64).reshape(-1)
 
 
 def _support_places(rows: Sequence[SupportRow]) -> list[Floats]:
@@ -80,18 +83,20 @@ def _section_of(site: Site, row: SupportRow) -> str:
 
 def _surround(shape: PitShape, steps: Walk, loads: Sequence[NearLoad]) -> Surroundings:
     count = len(steps.chainage)
-    surcharge, line_load = np.zeros(count), np.zeros(count)
+    largest = {kind: np.zeros(count) for kind in ("area", "footing", "line", "point")}
     ids: list[list[str]] = [[] for _ in range(count)]
     for near in loads:
         on = bearing(shape, near.load, steps.probe, steps.ground - steps.floor)
-        value = near.load.value
-        if value is not None and near.load.kind in ("area", "footing"):
-            surcharge[on] = np.maximum(surcharge[on], value)
-        elif value is not None and near.load.kind == "line":
-            line_load[on] = np.maximum(line_load[on], value)
+        kind = largest[near.load.kind]
+        kind[on] = np.maximum(kind[on], near.load.value or 0.0)
         for i in np.flatnonzero(on):
             ids[i].append(near.load.id)
-    return Surroundings(surcharge=surcharge, line_load=line_load, load_ids=tuple(tuple(listed) for listed in ids))
+    return Surroundings(
+        surcharge=largest["area"],
+        footing=largest["footing"],
+        line_load=largest["line"],
+        load_ids=tuple(tuple(listed) for listed in ids),
+    )
 
 
 def _assemble(
@@ -100,7 +105,7 @@ def _assemble(
     sides: Sides,
     steps: Walk,
     around: Surroundings,
-    marks: tuple[tuple[tuple[int, ...], ...], np.ndarray],
+    marks: tuple[tuple[tuple[int, ...], ...], Ints],
     rows: Sequence[SupportRow],
 ) -> Stations:
     held, zone = marks

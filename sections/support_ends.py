@@ -7,6 +7,8 @@ from dataclasses import dataclass
 
 import numpy as np
 import shapely
+from scipy.sparse import coo_array
+from scipy.sparse.csgraph import connected_components
 from scipy.spatial import cKDTree
 
 from ingest.model import Limits, Site, Support
@@ -78,20 +80,16 @@ def drop_copies(supports: Sequence[Support], limits: Limits) -> tuple[Ints, dict
     crossed = np.maximum(_apart(head[one], far[two]), _apart(far[one], head[two]))
     role = np.array([support.role for support in supports])
     same = (np.minimum(straight, crossed) <= limits.plan) & (role[one] == role[two])
-    first = np.arange(len(supports))
-    rank = np.empty(len(supports), dtype=np.int64)
     # which of two copies is kept must not hang on the order of the input
-    rank[sorted(range(len(supports)), key=lambda i: _identity(supports[i]))] = np.arange(len(supports))
-    for a, b in pairs[same]:
-        keep, lose = (a, b) if rank[a] < rank[b] else (b, a)
-        first[lose] = min(first[lose], keep, key=lambda i: rank[i])
-    kept = np.flatnonzero(first == np.arange(len(supports)))
+    order = np.array(sorted(range(len(supports)), key=lambda i: _identity(supports[i])))
+    links = coo_array((np.ones(int(np.sum(same))), (one[same], two[same])), shape=(len(supports), len(supports)))
+    group = connected_components(links, directed=False)[1]
+    _, first = np.unique(group[order], return_index=True)
+    kept = np.sort(order[first])
+    keeper = dict(zip(group[kept].tolist(), kept.tolist(), strict=True))
     copies: dict[int, tuple[Source, ...]] = {}
-    for lost in np.flatnonzero(first != np.arange(len(supports))):
-        keeper = int(first[lost])
-        while first[keeper] != keeper:
-            keeper = int(first[keeper])
-        copies[keeper] = (*copies.get(keeper, ()), *supports[lost].sources)
+    for lost in sorted(set(range(len(supports))) - set(kept.tolist())):
+        copies[keeper[int(group[lost])]] = (*copies.get(keeper[int(group[lost])], ()), *supports[lost].sources)
     return kept.astype(np.int64), copies
 
 

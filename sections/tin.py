@@ -6,8 +6,9 @@ from dataclasses import dataclass
 
 import numpy as np
 import shapely
+from shapely.geometry.base import BaseGeometry
 
-from sections.model import Bools, Floats
+from sections.model import Bools, Floats, Ints
 
 
 @dataclass(frozen=True, kw_only=True)
@@ -26,8 +27,8 @@ class Surface:
     points: Floats
     levels: Floats
     plane: Floats
-    triangles: Floats
-    hull: shapely.Geometry
+    triangles: Ints
+    hull: BaseGeometry
 
     @property
     def dip(self) -> float:
@@ -71,10 +72,10 @@ def _plane(points: Floats, levels: Floats) -> Floats:
     centre = np.mean(points, axis=0)
     # the smallest slope that fits: with two points nothing is said across their line
     slope, *_ = np.linalg.lstsq(points - centre, levels - np.mean(levels), rcond=1e-9)
-    return np.array([np.mean(levels) - centre @ slope, slope[0], slope[1]])
+    return np.array([np.mean(levels) - centre @ slope, slope[0], slope[1]], dtype=np.float64)
 
 
-def _triangles(points: Floats) -> Floats:
+def _triangles(points: Floats) -> Ints:
     none = np.zeros((0, 3), dtype=np.int64)
     if len(points) < 3:
         return none
@@ -85,7 +86,7 @@ def _triangles(points: Floats) -> Floats:
     corners = shapely.get_coordinates(shapely.get_parts(faces)).reshape(-1, 4, 2)[:, :3]
     flat = corners.reshape(-1, 2)
     nearest = np.argmin(np.hypot(*(flat[:, None, :] - points[None, :, :]).transpose(2, 0, 1)), axis=1)
-    return nearest.reshape(-1, 3)
+    return np.asarray(nearest, dtype=np.int64).reshape(-1, 3)
 
 
 def level_at(surface: Surface, points: Floats) -> Floats:
@@ -94,11 +95,10 @@ def level_at(surface: Surface, points: Floats) -> Floats:
     Inside the hull the triangle's; beyond it the plane's slope carried on from the nearest point of the hull, so that
     the surface has no step there.
     """
-    spots = shapely.points(points)
     inside = _in_hull(surface, points)
     foot = points.copy()
     if np.any(~inside):
-        nearest = shapely.shortest_line(spots[~inside], surface.hull)
+        nearest = shapely.shortest_line(shapely.points(points[~inside]), surface.hull)
         foot[~inside] = shapely.get_coordinates(nearest).reshape(-1, 2, 2)[:, 1]
     base = _on_hull(surface, foot)
     return np.asarray(base + (points - foot) @ surface.plane[1:])
@@ -113,7 +113,7 @@ def _on_hull(surface: Surface, points: Floats) -> Floats:
     """Level at points of the hull: barycentric in the triangle that holds them, or along the line of the points."""
     if len(surface.triangles) == 0:
         return np.asarray(_along_line(surface, points))
-    corner = surface.points[surface.triangles.astype(np.int64)]
+    corner = surface.points[surface.triangles]
     origin = corner[:, 0]
     one, two = corner[:, 1] - origin, corner[:, 2] - origin
     area = one[:, 0] * two[:, 1] - one[:, 1] * two[:, 0]
@@ -124,8 +124,8 @@ def _on_hull(surface: Surface, points: Floats) -> Floats:
     # rounding may leave a point on an edge a hair outside every triangle: take the one it is least outside of
     best = np.argmax(np.min(share, axis=-1), axis=1)
     weight = share[np.arange(len(points)), best]
-    corners = surface.levels[surface.triangles.astype(np.int64)][best]
-    return np.einsum("ij,ij->i", weight, corners)
+    corners = surface.levels[surface.triangles][best]
+    return np.asarray(np.einsum("ij,ij->i", weight, corners))
 
 
 def _along_line(surface: Surface, points: Floats) -> Floats:
@@ -135,4 +135,4 @@ def _along_line(surface: Surface, points: Floats) -> Floats:
     axis = axis / np.hypot(*axis)
     place = (surface.points - surface.points[0]) @ axis
     order = np.argsort(place)
-    return np.interp((points - surface.points[0]) @ axis, place[order], surface.levels[order])
+    return np.asarray(np.interp((points - surface.points[0]) @ axis, place[order], surface.levels[order]))

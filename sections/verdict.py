@@ -100,7 +100,8 @@ def combine_arrays(low: Floats, high: Floats, e_low: Floats, e_high: Floats, lim
     survives = (1.0 - e_low) * np.maximum(1.0, most_low) * relief
     lower = np.where(survives > limits.ratio_high + TOLERANCE, survives, relief * (1.0 - e_low))
     # a band that stands alone may reach below zero: the margin still widens it
-    lower = np.where(alone, most_low - e_low * np.abs(most_low), lower)
+    single = np.where(alone, most_low, 0.0)
+    lower = np.where(alone, single - e_low * np.abs(single), lower)
     upper = np.where(alone, most_high, excess) * (1.0 + e_high)
     upper = np.where(all_relieve, np.maximum(1.0, most_high * (1.0 + e_high)), upper)
     none = count == 0

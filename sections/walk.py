@@ -123,7 +123,9 @@ def flags_of(shape: PitShape, run: Ints) -> tuple[Bools, Bools, Bools]:
     runs = shape.runs
     rows = np.array([stretch.wall.kind in ROWS_OF for stretch in runs] + [False])
     loose = np.array([_is_unbound(stretch) for stretch in runs] + [False])
-    whole = np.array([stretch.wall.continuity == "monolithic" and not _is_unbound(stretch) for stretch in runs] + [False])
+    whole = np.array(
+        [stretch.wall.continuity == "monolithic" and not _is_unbound(stretch) for stretch in runs] + [False]
+    )
     return loose[run], whole[run], rows[run]
 
 
@@ -162,11 +164,11 @@ def face(shape: PitShape, steps: Walk, sides: Sides, surcharge: Floats, limits: 
     distance, at = cast(shape, steps.xy, steps.normal, least=0.05)
     met = np.isfinite(distance)
     there = wrapped(shape, np.where(met, at, 0.0))
-    cosine = np.clip(-np.einsum("ij,ij->i", steps.normal, normal_at(shape, there)), -1.0, 1.0)
-    skew = np.where(met, np.degrees(np.arccos(cosine)), np.nan)
+    skew, there = _skew(shape, steps.normal, there)
+    skew = np.where(met, skew, np.nan)
     here = np.searchsorted(steps.chainage, there + ON, side="right") - 1
     thick = thickness_of(shape, steps.run)
-    kinds = np.unique([run.wall.kind for run in shape.runs] or [""], return_inverse=True)[1]
+    kinds = np.unique([str(run.wall.kind) for run in shape.runs] or [""], return_inverse=True)[1]
     kind = np.append(kinds, -1)[steps.run]
     depth = steps.ground - steps.floor
     length = sides.length[steps.side]
@@ -175,6 +177,16 @@ def face(shape: PitShape, steps: Walk, sides: Sides, surcharge: Floats, limits: 
     like &= np.abs(surcharge - surcharge[here]) <= limits.surcharge
     like &= np.abs(length - length[here]) <= 0.1 * length
     return Facing(distance=distance, chainage=np.where(met, there, np.nan), skew=skew, like=like)
+
+
+def _skew(shape: PitShape, normal: Floats, there: Floats) -> tuple[Floats, Floats]:
+    """Skew to the wall met; where a corner is met, to the wall of the two that faces more squarely."""
+    before = wrapped(shape, there - JUST_BEYOND)
+    first = -np.einsum("ij,ij->i", normal, normal_at(shape, before))
+    second = -np.einsum("ij,ij->i", normal, normal_at(shape, wrapped(shape, there + 1e-6)))
+    squarer = first > second + 1e-3
+    angle = np.degrees(np.arccos(np.clip(np.where(squarer, first, second), -1.0, 1.0)))
+    return angle, np.where(squarer, before, there)
 
 
 def _close(one: Floats, other: Floats, tolerance: float) -> Bools:

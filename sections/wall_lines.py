@@ -53,8 +53,8 @@ def gather_lines(site: Site, origin: Point) -> tuple[tuple[WallLine, ...], tuple
     rows = tuple(_row_line(site, row, origin) for row in find_pile_rows(site.piles))
     drawn = sorted(range(len(site.walls)), key=lambda i: _place(site.walls[i]))
     centred, questions = centre_lines([(i, site.walls[i]) for i in drawn], origin)
-    lines = [_drawn_line(site.walls[i], i, points, origin, None) for i, points in centred.axes]
-    lines += [_drawn_line(site.walls[i], i, points, (0.0, 0.0), t) for i, points, t in centred.middles]
+    lines = [_drawn_line(site.walls[i], i, points, None) for i, points in centred.axes]
+    lines += [_drawn_line(site.walls[i], i, points, t) for i, points, t in centred.middles]
     return (*rows, *(line for line in lines if len(line.points) > 1)), questions
 
 
@@ -85,14 +85,11 @@ def lowest(levels: Iterable[float | None]) -> float | None:
     return min((level for level in levels if level is not None), default=None)
 
 
-def _drawn_line(piece: WallPiece, index: int, points: Floats, origin: Point, thickness: float | None) -> WallLine:
-    local = points - origin
-    if piece.closed and thickness is None and np.hypot(*(local[0] - local[-1])) > 1e-9:
-        local = np.vstack((local, local[:1]))
-    step = np.hypot(*np.diff(local, axis=0).T) > 1e-6
+def _drawn_line(piece: WallPiece, index: int, points: Floats, thickness: float | None) -> WallLine:
+    step = np.hypot(*np.diff(points, axis=0).T) > 1e-6
     thick = thickness if thickness is not None else piece.thickness
     return WallLine(
-        points=local[np.append(True, step)],
+        points=points[np.append(True, step)],
         kind=piece.kind,
         thickness=thick,
         reach=PLAIN_REACH if thick is None else max(1.3 * thick, 0.3),

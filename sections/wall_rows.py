@@ -41,9 +41,15 @@ def round_pile(
 
 
 def post(
-    *, E: float, A: float, I: float, unit_weight: float | None, spacing: float  # noqa: E741
+    *,
+    E: float,
+    A: float,
+    I: float,  # noqa: E741
+    unit_weight: float | None,
+    spacing: float,
+    width: float | None = None,
 ) -> RealMember:
-    """One real king post from its modulus (kPa), area (m2), second moment across the wall (m4) and spacing (m)."""
+    """One real king post: modulus (kPa), area (m2), second moment across the wall (m4), spacing and flange width (m)."""
     require_positive(E, "modulus E", "kPa")
     area = require_positive(A, "area A", "m2")
     return RealMember(
@@ -52,6 +58,7 @@ def post(
         weight_kN_per_m=None if unit_weight is None else require_positive(unit_weight, "unit weight", "kN/m3") * area,
         spacing=require_positive(spacing, "post spacing", "m"),
         centres=spacing,
+        thickness=width,
         E_kPa=E,
     )
 
@@ -72,7 +79,7 @@ def smear_pile_wall(
         with EA and EI of the row; a solid model of it must not add 1/(1 - nu^2).
     """
     spacing = require_positive(real.spacing, "spacing", "m")
-    rows, values = apply_rows(real, _beam_specs(spacing, EI_factor, 1.0, net_part(real, soil)))
+    rows, values = apply_rows(real, beam_specs(spacing, EI_factor, 1.0, net_part(real, soil)))
     if "EA_kN_per_m" in values and "EI_kNm2_per_m" in values:
         thickness, E = equivalent_wall(values["EA_kN_per_m"], values["EI_kNm2_per_m"])
         values |= {"thickness": thickness, "E_kPa": E}
@@ -153,7 +160,12 @@ def smear_continuous_wall(
 
 
 def smear_sheet_wall(
-    *, E: float, A: float, I: float, weight: float | None = None, beta_D: float = 1.0  # noqa: E741
+    *,
+    E: float,
+    A: float,
+    I: float,  # noqa: E741
+    weight: float | None = None,
+    beta_D: float = 1.0,
 ) -> Smeared:
     """Smear a sheet wall from its catalogue values; the real member is a strip 1 m wide.
 
@@ -179,7 +191,7 @@ def smear_bearing_row(real: RealMember, *, sheet_thickness: float) -> Smeared:
     spacing = require_positive(real.spacing, "spacing", "m")
     contact = SmearParts(per_spacing=shaft_factor(require_positive(real.diameter, "pile diameter", "m"), spacing))
     specs = [
-        *_beam_specs(spacing, 1.0, 1.0, 1.0),
+        *beam_specs(spacing, 1.0, 1.0, 1.0),
         ("limit", "limit_kN", "limit_kN_per_m", SmearParts(per_spacing=1 / spacing)),
         ("contact", "contact_kPa", "contact_kPa", contact),
     ]
@@ -224,7 +236,7 @@ def smear_slab_strip(
         E_kPa=E,
     )
     factor = 1.0 if nu is None else plane_strain_factor(nu)
-    rows, values = apply_rows(real, _beam_specs(bay, EI_factor, factor, 1.0))
+    rows, values = apply_rows(real, beam_specs(bay, EI_factor, factor, 1.0))
     section = PerMetre(**values, thickness=thickness, plane_strain_factor_included=nu is not None)  # type: ignore[arg-type]
     name = f"slab strip {width:g} m wide"
     axial = Back(quantity="N", from_unit="kN/m", factor=bay, gives=f"axial force of one {name}", unit="kN")
@@ -240,7 +252,8 @@ def net_part(real: RealMember, soil: float | None) -> float:
     return 1.0 - soil * (EA / E) / require_positive(real.weight_kN_per_m, "weight", "kN/m")
 
 
-def _beam_specs(spacing: float, EI_factor: float, plane_strain: float, net: float) -> list[RowSpec]:
+def beam_specs(spacing: float, EI_factor: float, plane_strain: float, net: float) -> list[RowSpec]:
+    """Specs of EA, EI and weight of a beam-like row: 1/spacing, and the named factors on EI and weight."""
     each = 1.0 / spacing
     require(EI_factor, "EI factor", above=0.0, most=1.0)
     return [
@@ -256,7 +269,7 @@ def _beam_specs(spacing: float, EI_factor: float, plane_strain: float, net: floa
 
 
 def _smear_strip(real: RealMember, EI_factor: float, plane_strain: float, soil: float | None) -> Smeared:
-    rows, values = apply_rows(real, _beam_specs(STRIP, EI_factor, plane_strain, net_part(real, soil)))
+    rows, values = apply_rows(real, beam_specs(STRIP, EI_factor, plane_strain, net_part(real, soil)))
     thickness, E = equivalent_wall(values["EA_kN_per_m"], values["EI_kNm2_per_m"] / plane_strain)
     section = PerMetre(
         **values,  # type: ignore[arg-type]

@@ -78,7 +78,9 @@ class Perimeter:
             return self.part(start, self.length, offset) + self.part(0.0, to, offset)[1:]
         line = self.beside(offset) if offset else self.vertices
         inner = (self.at > start + 1e-9) & (self.at < to - 1e-9)
-        ends = [(float(np.interp(c, self.at, line[:, 0])), float(np.interp(c, self.at, line[:, 1]))) for c in (start, to)]
+        ends = [
+            (float(np.interp(c, self.at, line[:, 0])), float(np.interp(c, self.at, line[:, 1]))) for c in (start, to)
+        ]
         return [ends[0], *((float(x), float(y)) for x, y in line[inner]), ends[1]]
 
     @cached_property
@@ -120,7 +122,9 @@ def stretches(chainage: Sequence[float], values: Sequence[str | None], length: f
 def worst_words(table: StationTable, outputs: Sequence[str]) -> tuple[VerdictWord, ...]:
     """Per station the worst verdict of some outputs; `not_assessed` where an output is not listed."""
     rank = {word: n for n, word in enumerate(WORST_FIRST)}
-    listed = [table.outputs[o].verdict for o in outputs if o in table.outputs]
-    if not listed:
-        return ("not_assessed",) * len(table.chainage)
-    return tuple(min(words, key=rank.__getitem__) for words in zip(*listed, strict=True))
+    blank: tuple[VerdictWord, ...] = ("not_assessed",) * len(table.chainage)
+    listed = [table.outputs[o].verdict if o in table.outputs else blank for o in outputs] or [blank]
+    worst: list[VerdictWord] = []
+    for words in zip(*listed, strict=True):
+        worst.append(min(words, key=rank.__getitem__))
+    return tuple(worst)

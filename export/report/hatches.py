@@ -16,7 +16,7 @@ WORDS: tuple[tuple[str, tuple[str, ...]], ...] = (
     ("sand", ("sand", "sable", "zand", "arena", "sabbia")),
     ("silt", ("silt", "schluff", "limon", "limo", "leem", "loess", "löss")),
     ("clay", ("clay", "ton", "argile", "klei", "arcilla", "argilla", "till", "lehm", "marl", "mergel")),
-)  # fmt: skip
+)
 
 
 def hatch_of(name: str) -> str | None:
@@ -51,7 +51,7 @@ def ground_patterns() -> Html:
             _pattern("clay", 26, 16, tag("path", d="M2 4H14M15 12H27M-11 12H1")),
             _pattern("silt", 18, 18, tag("path", d="M4 2V8M13 10V16M8 14h1M16 5h1")),
             _pattern("sand", 16, 14, tag("path", d="M3 3h1.4M11 6h1.4M6 11h1.4M14 12h1.4", stroke_width=1.5)),
-            _pattern("gravel", 24, 22, Html(ring)),
+            _pattern("gravel", 24, 22, ring),
             _pattern("made", 24, 20, tag("path", d="M3 3l6 6M9 3l-6 6M15 12l5 5M20 12l-5 5")),
             _pattern("peat", 24, 14, tag("path", d="M2 8q3 -6 5 0q2 -6 5 0M15 13q2 -5 4 0")),
             _pattern("rock", 32, 20, tag("path", d="M0 .5H32M0 10.5H32M8 .5V10M24 10.5V20")),
@@ -61,6 +61,4 @@ def ground_patterns() -> Html:
 
 
 def _pattern(kind: str, width: float, height: float, drawn: Html) -> Html:
-    return tag(
-        "pattern", drawn, id=f"ground-{kind}", width=width, height=height, patternUnits="userSpaceOnUse"
-    )  # fmt: skip
+    return tag("pattern", drawn, id=f"ground-{kind}", width=width, height=height, patternUnits="userSpaceOnUse")

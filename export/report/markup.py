@@ -7,7 +7,9 @@ from collections.abc import Iterable
 from html import escape
 from math import isfinite
 
-CONTROL = re.compile("[\x00-\x08\x0b\x0c\x0e-\x1f\x7f-\x9f\u061c\u200e\u200f\u2028\u2029\u202a-\u202e\u2066-\u2069\ufeff\ufffe\uffff]")
+CONTROL = re.compile(
+    "[\x00-\x08\x0b\x0c\x0e-\x1f\x7f-\x9f\u061c\u200e\u200f\u2028\u2029\u202a-\u202e\u2066-\u2069\ufeff\ufffe\uffff]"
+)
 SURROGATE = re.compile("[\ud800-\udfff]")
 
 
@@ -16,16 +18,20 @@ class Html(str):
 
     __slots__ = ()
 
+    def __add__(self, other: str) -> Html:
+        """Markup with more after it; plain text is escaped."""
+        return Html(str.__add__(self, text(other)))
+
 
 Child = str | Html | None
 
 
 def clean(text: str) -> str:
-    """Replace control and direction-changing characters by a visible mark; they could hide or reorder what is read.
+    r"""Replace control and direction-changing characters by a visible mark; they could hide or reorder what is read.
 
     Example:
-        >>> clean("pile\\u202egnp.exe")
-        'pile\\ufffdgnp.exe'
+        >>> clean("pile\u202egnp.exe")
+        'pile\ufffdgnp.exe'
     """
     return SURROGATE.sub("\ufffd", CONTROL.sub("\ufffd", text))
 
@@ -40,8 +46,8 @@ def join(parts: Iterable[Child]) -> Html:
     return Html("".join(text(part) for part in parts if part is not None))
 
 
-def tag(name: str, *children: Child, **attributes: str | float | bool | None) -> Html:
-    """One element. `class_` and `for_` lose the underscore, other underscores become hyphens; None and False are left out.
+def tag(name: str, /, *children: Child, **attributes: str | float | bool | None) -> Html:
+    """One element: `class_` loses its underscore, other underscores become hyphens; None and False are left out.
 
     Example:
         >>> tag("b", "a < b", class_="x")

@@ -8,10 +8,10 @@ from math import cos, hypot, radians, sin
 
 from export.report import plan_site as on_site
 from export.report.along import Perimeter, stretches, worst_words
-from export.report.markup import Html, tag, text
+from export.report.markup import Html, tag
 from export.report.plan_site import ToWorld, named
 from export.report.scale import LETTERS, WIDTH, View, clip, fit, multiples, round_step
-from export.report.sheet_marks import SMALL, grid, join_lines, letters, north, scale_bar
+from export.report.sheet_marks import SMALL, drawing, grid, letters, north, scale_bar
 from export.report.verdict_marks import area_patterns, legend, verdict_line
 from export.report.words import KIND_NAMES, VERDICT_NAMES, band, fixed, output_name, stretch
 from ingest.model import NOTICE, Point, Site
@@ -34,8 +34,6 @@ def plan_drawing(proposal: Proposal, site: Site | None) -> Html:
     view = fit(_points(proposal, site), WIDTH - 34, HEIGHT, left=26.0, top=6.0, margin=66.0)
     world = on_site.to_world(proposal.frame)
     body = [
-        tag("title", "Plan of the excavation with verdicts and chosen cuts", id="plan-title"),
-        tag("desc", _description(proposal), id="plan-desc"),
         grid(view),
         tag("g", *(mark for pit in proposal.pits for mark in _symmetry(pit, view)), class_="layer-symmetry"),
         _cuts(proposal.sections, view),
@@ -51,19 +49,16 @@ def plan_drawing(proposal: Proposal, site: Site | None) -> Html:
         legend((28, view.height + 80), 158.0),
         _legend_of_cuts((430, view.height + 50)),
     ]
-    return tag(
-        "svg", join_lines(body), class_="drawing plan", viewBox=f"0 0 {WIDTH:g} {view.height + FOOT:.0f}",
-        role="group", aria_labelledby="plan-title plan-desc", xmlns="http://www.w3.org/2000/svg",
-        data_x0=f"{view.x0:.4f}", data_y1=f"{view.y1:.4f}", data_k=f"{view.k:.6f}",
-    )  # fmt: skip
+    place = {"x0": f"{view.x0:.4f}", "y1": f"{view.y1:.4f}", "k": view.k, "left": view.left, "top": view.top}
+    title = "Plan of the excavation with verdicts and chosen cuts"
+    return drawing("plan", "plan", title, _description(proposal), view.height + FOOT, body, **place)
 
 
 def plan_file(proposal: Proposal, site: Site | None) -> str:
     """The plan alone as an SVG file, with its styles, patterns and the notice inside."""
     css = resources.files("export.report").joinpath("drawing.css").read_text(encoding="utf-8")
     style = Html(f"<style>\n{css}.output-band:not(.for-{GOVERNING_KEY}) {{ display: none; }}\n</style>\n")
-    drawing = plan_drawing(proposal, site)
-    head, _, rest = drawing.partition(">")
+    head, _, rest = plan_drawing(proposal, site).partition(">")
     inner = rest[: rest.rindex("</svg>")]
     defs = tag("defs", area_patterns(), load_hatch())
     return f'<?xml version="1.0" encoding="UTF-8"?>\n{head}>\n{style}{defs}\n{inner}\n</svg>\n'
@@ -72,9 +67,13 @@ def plan_file(proposal: Proposal, site: Site | None) -> str:
 def load_hatch() -> Html:
     """Fill of loaded areas."""
     return tag(
-        "pattern", tag("path", d="M0 6L6 0", class_="load-stroke"),
-        id="load-hatch", width=6, height=6, patternUnits="userSpaceOnUse",
-    )  # fmt: skip
+        "pattern",
+        tag("path", d="M0 6L6 0", class_="load-stroke"),
+        id="load-hatch",
+        width=6,
+        height=6,
+        patternUnits="userSpaceOnUse",
+    )
 
 
 def _points(proposal: Proposal, site: Site | None) -> list[Point]:
@@ -83,14 +82,17 @@ def _points(proposal: Proposal, site: Site | None) -> list[Point]:
     south, north_ = min(p[1] for p in points), max(p[1] for p in points)
     reach = max(east - west, north_ - south, 1.0) * 0.75
     world = on_site.to_world(proposal.frame)
-    others = [point for pit in proposal.pits for one in (*pit.loads, *pit.receptors) for point in one.points]
+    others = [point for pit in proposal.pits for load in pit.loads for point in load.points]
+    others += [point for pit in proposal.pits for one in pit.receptors for point in one.points]
     others += [world(end) for one in (site.supports if site else ()) for end in (one.head, one.far)]
     others += [world(hole.location) for hole in (site.boreholes if site else ())]
     return points + [p for p in others if west - reach < p[0] < east + reach and south - reach < p[1] < north_ + reach]
 
 
 def _description(proposal: Proposal) -> str:
-    parts = [f"Pit {pit.id}: {fixed(pit.length, 1)} m of perimeter, {len(pit.corners)} corners." for pit in proposal.pits]
+    parts = [
+        f"Pit {pit.id}: {fixed(pit.length, 1)} m of perimeter, {len(pit.corners)} corners." for pit in proposal.pits
+    ]
     for one in proposal.sections:
         (x1, y1), (x2, y2) = one.line
         parts.append(f"Section {one.id} from {x1:.1f}, {y1:.1f} to {x2:.1f}, {y2:.1f}.")
@@ -100,7 +102,9 @@ def _description(proposal: Proposal) -> str:
 def _pit(pit: Pit, site: Site | None, view: View, world: ToWorld) -> Html:
     floors = [tag("path", d=view.path(floor.outline, True), class_="dig thin") for floor in pit.floors]
     steps = [
-        named(f"Step of {fixed(step.drop, 2, 'm')} in the dig level", tag("path", d=view.path(step.line), class_="line"))
+        named(
+            f"Step of {fixed(step.drop, 2, 'm')} in the dig level", tag("path", d=view.path(step.line), class_="line")
+        )
         for step in pit.steps
         if len(step.line) > 1
     ]
@@ -231,8 +235,12 @@ def _cuts(sections: Sequence[ChosenSection], view: View) -> Html:
 
 def _legend_of_cuts(at: Point) -> Html:
     x, y = at
-    rows = (("cut", "section cut", 0), ("stands-shown", "stands for: shown", 125), ("stands-provisional", "provisional", 285),
-            ("stands-none", "own analysis", 405))  # fmt: skip
+    rows = (
+        ("cut", "section cut", 0),
+        ("stands-shown", "stands for: shown", 125),
+        ("stands-provisional", "provisional", 285),
+        ("stands-none", "own analysis", 405),
+    )
     return tag(
         "g",
         *(tag("path", d=f"M{x + off} {y + 3}h36", class_=class_) for class_, _, off in rows),
@@ -246,7 +254,8 @@ def _cut_end(at: Point, inward: Point, name: str, turn: int = 1) -> Html:
     sx, sy = uy * turn, -ux * turn
     tip = (x + 17 * sx, y + 17 * sy)
     base = (x + 7 * sx, y + 7 * sy)
-    head = f"{tip[0]:.2f},{tip[1]:.2f} {base[0] + 5 * ux:.2f},{base[1] + 5 * uy:.2f} {base[0] - 5 * ux:.2f},{base[1] - 5 * uy:.2f}"
+    corners = (tip, (base[0] + 5 * ux, base[1] + 5 * uy), (base[0] - 5 * ux, base[1] - 5 * uy))
+    head = " ".join(f"{px:.2f},{py:.2f}" for px, py in corners)
     label = (x + 30 * sx + 12 * ux, y + 30 * sy + 12 * uy + 5)
     return tag(
         "g",
@@ -255,6 +264,3 @@ def _cut_end(at: Point, inward: Point, name: str, turn: int = 1) -> Html:
         tag("polygon", points=head, class_="accent-fill"),
         letters(label, name, LETTERS + 2, "middle", "accent halo"),
     )
-
-
-__all__ = ["load_hatch", "plan_drawing", "plan_file", "text"]

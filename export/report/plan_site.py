@@ -76,9 +76,7 @@ def _run_body(run: Run, line: Perimeter, view: View) -> Html:
 
 def supports(pit: Pit, site: Site | None, view: View, world: ToWorld) -> Html:
     """Every support as it really lies, and one label a row."""
-    lines = [
-        _support_line(one, view, world) for one in (site.supports if site else ()) if one.role != "waler"
-    ]  # fmt: skip
+    lines = [_support_line(one, view, world) for one in (site.supports if site else ())]
     walers = [
         tag("path", d=view.path(map(world, waler.points)), class_="line") for waler in (site.walers if site else ())
     ]
@@ -126,8 +124,10 @@ def _row_label(row: Member, line: Perimeter, view: View) -> Html:
     at = view.at(line.square_off(middle, -inward))
     nx, ny = line.normal(middle)
     turn = readable_turn((0, 0), (-ny, -nx)) if abs(nx) < 0.999 else -90.0
-    words = row.id if row.role == "waler" else f"{row.id}: {row.count}" + (
-        f" at {fixed(row.spacing)}" if row.spacing else ""
+    words = (
+        row.id
+        if row.role == "waler"
+        else f"{row.id}: {row.count}" + (f" at {fixed(row.spacing)}" if row.spacing else "")
     )
     return named(member_words(row), letters(at, words, SMALL, "middle", "halo", turn), focus=True)
 
@@ -180,7 +180,9 @@ def boreholes(site: Site | None, view: View, world: ToWorld) -> Html:
         for hole, (x, y) in inside
     ]
     beyond = len(holes) - len(inside)
-    note = letters((view.left + view.width - 8, view.top + 18), f"{count(beyond, 'borehole')} beyond the sheet", SMALL, "end")
+    note = letters(
+        (view.left + view.width - 8, view.top + 18), f"{count(beyond, 'borehole')} beyond the sheet", SMALL, "end"
+    )
     return tag("g", *marks, note if beyond else None, class_="layer-boreholes")
 
 
@@ -193,7 +195,9 @@ def corners(pits: Iterable[Pit], view: View) -> Html:
             ax, ay = _inward(line, corner.at)
             x, y = view.at(corner.point)
             words = f"{fixed(corner.interior_angle, 0)}°"
-            about = f"Corner at ch {fixed(corner.at, 2)}: {corner.kind}, {fixed(corner.interior_angle, 1)}° inside the pit"
+            about = (
+                f"Corner at ch {fixed(corner.at, 2)}: {corner.kind}, {fixed(corner.interior_angle, 1)}° inside the pit"
+            )
             marks.append(
                 named(
                     about,

@@ -8,11 +8,11 @@ from export.report.along import Stretch, stretches
 from export.report.markup import Html, tag
 from export.report.plan_site import member_words, named
 from export.report.scale import LETTERS, WIDTH, multiples, path_data, round_step
-from export.report.sheet_marks import SMALL, join_lines, letters
+from export.report.sheet_marks import SMALL, drawing, letters
 from export.report.verdict_marks import legend
 from export.report.words import VERDICT_NAMES, band, fixed, level, output_name, stretch
-from ingest.model import Point
-from sections.model import Limits, Member, Pit, Proposal, Represents, StationOutput, StationTable, Unrepresented
+from ingest.model import Limits, Point
+from sections.model import Member, Pit, Proposal, Represents, StationOutput, StationTable, Unrepresented
 
 GUTTER, RIGHT = 176.0, WIDTH - 22.0
 MOST = 2.0
@@ -26,7 +26,7 @@ class Unrolled:
     def __init__(self, length: float) -> None:
         self.length = length
         self.k = (RIGHT - GUTTER) / length
-        self.y = 0.0
+        self.y = 14.0
         self.parts: list[Html] = []
 
     def x(self, chainage: float) -> float:
@@ -52,38 +52,30 @@ def ribbon_drawing(pit: Pit, proposal: Proposal) -> Html:
         proposal: The proposal it belongs to; a pit without stations gives lanes without bands.
     """
     pen = Unrolled(pit.length)
-    pen.y = 14.0
+    table = proposal.stations.get(pit.id)
+    stations = table if table is not None and table.chainage else None
     _chainages(pen, pit)
     _zones(pen, pit)
     _stands(pen, pit, proposal)
-    table = proposal.stations.get(pit.id)
-    if table is not None and table.chainage:
-        _levels(pen, table)
+    if stations is not None:
+        _levels(pen, stations)
     for row in pit.members:
         if row.along:
             _members(pen, pit, row)
-    top = pen.y
-    if table is not None and table.chainage:
-        for name, output in table.outputs.items():
-            _output(pen, pit, table, name, output, proposal.limits)
+    for name, output in stations.outputs.items() if stations is not None else ():
+        _output(pen, pit, stations, name, output, proposal.limits)
     foot = pen.y + 8
     lines = "".join(f"M{pen.x(corner.at):.2f} {44}V{foot:.2f}" for corner in pit.corners)
-    ids = f"ribbon-{pit.id}"
+    pin = tag("path", d=f"M0 30V{foot:.2f}", class_="marker")
     body = [
-        tag("title", f"Perimeter of {pit.id} unrolled: ratio of real to 2D demand along the wall", id=f"{ids}-title"),
-        tag("desc", _description(pit, table), id=f"{ids}-desc"),
         tag("path", d=lines, class_="hair") if lines else Html(""),
         *pen.parts,
-        tag(
-            "g", tag("path", d=f"M0 30V{foot:.2f}", class_="marker"), class_="ribbon-marker", data_pit=pit.id, hidden=True
-        ),
+        tag("g", pin, class_="ribbon-marker", data_pit=pit.id, hidden=True),
         legend((28, foot + 22), 160.0),
     ]
-    return tag(
-        "svg", join_lines(body), class_="drawing ribbon", viewBox=f"0 0 {WIDTH:g} {foot + 40:.0f}",
-        role="group", aria_labelledby=f"{ids}-title {ids}-desc", xmlns="http://www.w3.org/2000/svg",
-        data_left=GUTTER, data_k=f"{pen.k:.6f}", data_top=f"{top:.1f}",
-    )  # fmt: skip
+    title = f"Perimeter of {pit.id} unrolled: ratio of real to 2D demand along the wall"
+    about = _description(pit, stations)
+    return drawing("ribbon", f"ribbon-{pit.id}", title, about, foot + 40, body, left=GUTTER, k=pen.k)
 
 
 def _description(pit: Pit, table: StationTable | None) -> str:
@@ -92,7 +84,9 @@ def _description(pit: Pit, table: StationTable | None) -> str:
     said = []
     for name, output in table.outputs.items():
         parts = stretches(table.chainage, output.verdict, pit.length)
-        listed = "; ".join(f"{fixed(p.start, 1)} to {fixed(p.to, 1)} m {VERDICT_NAMES[p.value or '']}" for p in parts[:8])
+        listed = "; ".join(
+            f"{fixed(p.start, 1)} to {fixed(p.to, 1)} m {VERDICT_NAMES[p.value or '']}" for p in parts[:8]
+        )
         said.append(f"{output_name(name)}: {listed}{' and further stretches' if len(parts) > 8 else ''}.")
     return " ".join(said)
 
@@ -105,7 +99,11 @@ def _chainages(pen: Unrolled, pit: Pit) -> None:
     signs = [
         named(
             f"Corner at ch {fixed(corner.at, 2)}: {corner.kind}, {fixed(corner.interior_angle, 1)}°",
-            tag("path", d=f"M{pen.x(corner.at) - 6:.2f} {y + 7}h12l-6 -9Z", class_="ink-fill" if corner.kind == "inside" else "line"),
+            tag(
+                "path",
+                d=f"M{pen.x(corner.at) - 6:.2f} {y + 7}h12l-6 -9Z",
+                class_="ink-fill" if corner.kind == "inside" else "line",
+            ),
             letters((pen.x(corner.at) + 9, y + 6), f"{fixed(corner.interior_angle, 0)}°", SMALL),
         )
         for corner in pit.corners
@@ -133,9 +131,7 @@ def _stands(pen: Unrolled, pit: Pit, proposal: Proposal) -> None:
     y = pen.y + 14
     rows: list[tuple[str, str, Represents | Unrepresented]] = []
     for section in proposal.sections:
-        for one in section.represents:
-            kind = "provisional" if one.provisional else "shown"
-            rows.append((section.id, kind, one))
+        rows += [(section.id, "provisional" if one.provisional else "shown", one) for one in section.represents]
     rows += [("own", "none", one) for one in proposal.unrepresented]
     marks = []
     for name, kind, one in rows:
@@ -168,7 +164,9 @@ def _levels(pen: Unrolled, table: StationTable) -> None:
             points.append((RIGHT, points[-1][1]))
             lines.append(tag("path", d=path_data(points), class_=class_))
     lines.append(letters((RIGHT, top - 4), f"ground {level(high)}", SMALL - 1, "end", "soft halo"))
-    lines.append(letters((RIGHT, top + (high - low) * scale - 4), f"dig level {level(low)}", SMALL - 1, "end", "soft halo"))
+    lines.append(
+        letters((RIGHT, top + (high - low) * scale - 4), f"dig level {level(low)}", SMALL - 1, "end", "soft halo")
+    )
     pen.lane("levels", 62.0, *lines)
 
 
@@ -187,9 +185,7 @@ def _members(pen: Unrolled, pit: Pit, row: Member) -> None:
         pen.lane(row.id, ROW, named(member_words(row), tag("path", d=data, class_="line")))
 
 
-def _output(
-    pen: Unrolled, pit: Pit, table: StationTable, name: str, output: StationOutput, limits: Limits
-) -> None:
+def _output(pen: Unrolled, pit: Pit, table: StationTable, name: str, output: StationOutput, limits: Limits) -> None:
     parts = stretches(table.chainage, output.verdict, pit.length)
     blank = all(value is None for value in (*output.low, *output.high))
     height = BLANK_HEIGHT if blank else BAND_HEIGHT
@@ -224,14 +220,26 @@ def _ratio_axis(top: float, foot: float, limits: Limits) -> list[Html]:
 
 
 def _area(
-    pen: Unrolled, pit: Pit, table: StationTable, name: str, output: StationOutput, part: Stretch, top: float, foot: float
+    pen: Unrolled,
+    pit: Pit,
+    table: StationTable,
+    name: str,
+    output: StationOutput,
+    part: Stretch,
+    top: float,
+    foot: float,
 ) -> Html:
     """One stretch of equal verdict: its band filled by the verdict's pattern."""
     word = part.value or "not_assessed"
     rows = range(part.first, part.last + 1)
     lows, highs = [output.low[n] for n in rows], [output.high[n] for n in rows]
-    ends = (min((v for v in lows if v is not None), default=None), max((v for v in highs if v is not None), default=None))
-    about = f"{output_name(name)}, {stretch(pit.id, part.start, part.to)}: {VERDICT_NAMES[word]}, {band(*ends)} times 2D"
+    ends = (
+        min((v for v in lows if v is not None), default=None),
+        max((v for v in highs if v is not None), default=None),
+    )
+    about = (
+        f"{output_name(name)}, {stretch(pit.id, part.start, part.to)}: {VERDICT_NAMES[word]}, {band(*ends)} times 2D"
+    )
     if any(v is None for v in (*lows, *highs)):
         upper = [(pen.x(part.start), top), (pen.x(part.to), top)]
         lower = [(pen.x(part.start), foot), (pen.x(part.to), foot)]

@@ -14,9 +14,7 @@ UNITS_PER_MM = 1000 / 180
 WIDTH = 1000.0
 LETTERS = 14.0
 """Height of lettering, units: 2.5 mm on A4."""
-RATIOS = tuple(
-    base * 10**power for power in range(1, 7) for base in (1, 1.25, 1.5, 2, 2.5, 3, 4, 5, 7.5)
-)  # fmt: skip
+RATIOS = tuple(base * 10**power for power in range(1, 7) for base in (1, 1.25, 1.5, 2, 2.5, 3, 4, 5, 7.5))
 
 
 @dataclass(frozen=True, kw_only=True)

@@ -9,34 +9,33 @@ from export.report.plan_site import named
 from export.report.scale import View
 from export.report.sheet_marks import SMALL, dimension, letters
 from export.report.words import figure, fixed, level
-from sections.definition import SectionDefinition, SectionLoad
+from sections.definition import SectionDefinition, SectionLoad, SectionMember
 
 LEAST_GAP = 17.0
 
 
 def levels_of(definition: SectionDefinition) -> list[tuple[float, str]]:
     """Levels worth a mark, highest first, with what lies there; equal levels share one mark."""
-    found: dict[float, list[str]] = {}
-
-    def note(value: float | None, what: str) -> None:
-        if value is not None and what not in found.setdefault(round(value, 3), []):
-            found[round(value, 3)].append(what)
-
-    for _, z in definition.ground.surface[:1] + definition.ground.surface[-1:]:
-        note(z, "ground")
+    noted = [(z, "ground") for _, z in (*definition.ground.surface[:1], *definition.ground.surface[-1:])]
     for one in definition.members:
-        if one.points and one.role == "wall":
-            note(max(z for _, z in one.points), "top of wall")
-            note(min(z for _, z in one.points), "toe")
-        elif one.points:
-            note(one.points[0][1], one.role.replace("_", " "))
-    for stage in definition.stages:
-        for ring in stage.dig:
-            note(min((z for _, z in ring), default=None), "dig level")
-    for water in definition.ground.water:
-        note(water.line[0][1] if water.line else None, "water")
-    note(definition.extent.z[0], "base of model")
+        noted += _member_levels(one)
+    noted += [(min(z for _, z in ring), "dig level") for stage in definition.stages for ring in stage.dig if ring]
+    noted += [(water.line[0][1], "water") for water in definition.ground.water if water.line]
+    noted.append((definition.extent.z[0], "base of model"))
+    found: dict[float, list[str]] = {}
+    for z, what in noted:
+        said = found.setdefault(round(z, 3), [])
+        if what not in said:
+            said.append(what)
     return sorted(((z, ", ".join(what)) for z, what in found.items()), reverse=True)
+
+
+def _member_levels(one: SectionMember) -> list[tuple[float, str]]:
+    if not one.points:
+        return []
+    if one.role == "wall":
+        return [(max(z for _, z in one.points), "top of wall"), (min(z for _, z in one.points), "toe")]
+    return [(one.points[0][1], one.role.replace("_", " "))]
 
 
 def level_marks(definition: SectionDefinition, view: View, right: float) -> Html:
@@ -99,9 +98,9 @@ def _load(load: SectionLoad, view: View) -> Html:
     data = "".join(_arrow(x, top, ay) for x in places)
     if pieces:
         data += f"M{low:.2f} {top:.2f}H{high:.2f}"
-    about = f"{load.id}: {load.kind}, real {_value(load.real.value, load.real.unit)}, in the section {_value(load.section.value, load.section.unit)}"
     words = _value(load.section.value, load.section.unit)
     real = f"real {_value(load.real.value, load.real.unit)}"
+    about = f"{load.id}: {load.kind}, {real}, in the section {words}"
     middle = (low + high) / 2
     return named(
         about,

@@ -1,4 +1,4 @@
-"""Members of a section as drawn: walls with their thickness, struts, anchors with free and bond length, slabs, footings."""
+"""Members of a section as drawn: walls with their thickness, struts, anchors by free and bond length, slabs."""
 
 from __future__ import annotations
 

@@ -8,7 +8,7 @@ from export.report.plan_site import named
 from export.report.scale import LETTERS, WIDTH, View, fit
 from export.report.section_marks import dimensions, level_marks, load_marks, water_marks
 from export.report.section_members import member_mark
-from export.report.sheet_marks import SMALL, join_lines, letters, scale_bar
+from export.report.sheet_marks import SMALL, drawing, letters, scale_bar
 from export.report.words import KIND_NAMES, count, fixed, level
 from sections.definition import Curve, GroundLayer, SectionDefinition
 
@@ -28,8 +28,6 @@ def section_drawing(definition: SectionDefinition) -> Html:
     ids = f"drawing-{definition.id}"
     bottom = view.top + view.height
     body = [
-        tag("title", f"Section {definition.id}, {KIND_NAMES[definition.kind]}, to scale", id=f"{ids}-title"),
-        tag("desc", _description(definition), id=f"{ids}-desc"),
         tag("clipPath", tag("rect", **_box(view)), id=f"{ids}-clip"),
         tag("g", *(_layer(layer, view) for layer in definition.ground.layers), class_="section-ground"),
         tag("g", *_dug(definition, view), class_="section-dug"),
@@ -44,10 +42,8 @@ def section_drawing(definition: SectionDefinition) -> Html:
         scale_bar((LEFT, bottom + 34), view),
         letters((WIDTH - 24, bottom + 40), _where(definition), SMALL, "end", "soft"),
     ]
-    return tag(
-        "svg", join_lines(body), class_="drawing section", viewBox=f"0 0 {WIDTH:g} {bottom + 56:.0f}",
-        role="group", aria_labelledby=f"{ids}-title {ids}-desc", xmlns="http://www.w3.org/2000/svg",
-    )  # fmt: skip
+    title = f"Section {definition.id}, {KIND_NAMES[definition.kind]}, to scale"
+    return drawing("section", ids, title, _description(definition), bottom + 56, body)
 
 
 def _box(view: View) -> dict[str, float]:
@@ -62,7 +58,8 @@ def _where(definition: SectionDefinition) -> str:
 def _description(definition: SectionDefinition) -> str:
     roles = ", ".join(f"{one.id} ({one.role.replace('_', ' ')})" for one in definition.members)
     layers = ", ".join(layer.id for layer in definition.ground.layers)
-    return f"Members: {roles or 'none'}. Ground from the top: {layers or 'not given'}. {count(len(definition.loads), 'load')}."
+    loads = count(len(definition.loads), "load")
+    return f"Members: {roles or 'none'}. Ground from the top: {layers or 'not given'}. {loads}."
 
 
 def _rings(rings: tuple[Curve, ...], view: View) -> str:
@@ -97,7 +94,13 @@ def _dug(definition: SectionDefinition, view: View) -> list[Html]:
         a, b = view.x(min(xs)), view.x(max(xs))
         about = f"Stage {stage.id}: {stage.text}, dig level {level(base)}"
         line = tag("path", d=f"M{a:.2f} {view.y(base):.2f}H{b:.2f}", class_="formation" if last else "dig")
-        parts.append(named(about, line, letters((a + 0.8 * (b - a), view.y(base) - 5), f"stage {stage.id}", SMALL, "middle", "soft halo")))
+        parts.append(
+            named(
+                about,
+                line,
+                letters((a + 0.8 * (b - a), view.y(base) + 14), f"stage {stage.id}", SMALL, "middle", "soft halo"),
+            )
+        )
     return parts
 
 
@@ -113,7 +116,5 @@ def _edges(definition: SectionDefinition, view: View) -> Html:
         letters((view.x((x0 + x1) / 2), view.y(z0) - 6), extent.base, SMALL, "middle", "soft halo"),
     ]
     axes = [at for at in (0.0 if definition.axis else None, definition.half.at_x) if at is not None]
-    lines = [
-        tag("path", d=f"M{view.x(x):.2f} {view.top - 40:.2f}V{view.y(z0):.2f}", class_="axis line") for x in axes
-    ]
+    lines = [tag("path", d=f"M{view.x(x):.2f} {view.top - 40:.2f}V{view.y(z0):.2f}", class_="axis line") for x in axes]
     return tag("g", tag("path", d=data, class_="hair"), *words, *lines, class_="section-edges")

@@ -5,7 +5,7 @@ from __future__ import annotations
 from math import atan2, degrees, hypot
 
 from export.report.markup import Html, join, tag
-from export.report.scale import LETTERS, View, multiples, round_step
+from export.report.scale import LETTERS, WIDTH, View, multiples, round_step
 from export.report.words import fixed
 from ingest.model import Point
 
@@ -18,9 +18,15 @@ def letters(
     """Lettering at a point in units; `turn` is in degrees, clockwise on the sheet."""
     x, y = at
     return tag(
-        "text", words, x=x, y=y, font_size=size, text_anchor=anchor, class_=class_,
+        "text",
+        words,
+        x=x,
+        y=y,
+        font_size=size,
+        text_anchor=anchor,
+        class_=class_,
         transform=f"rotate({turn:.1f} {x:.2f} {y:.2f})" if turn else None,
-    )  # fmt: skip
+    )
 
 
 def readable_turn(a: Point, b: Point) -> float:
@@ -34,19 +40,14 @@ def grid(view: View) -> Html:
     step = round_step(110 / view.k)
     places = 0 if step >= 1 else 1
     easts, norths = multiples(step, *view.x_range), multiples(step, *view.y_range)
-    arms = "".join(
-        f"M{view.x(e) - 4:.2f} {view.y(n):.2f}h8m-4 -4v8" for e in easts for n in norths
-    )  # fmt: skip
+    arms = "".join(f"M{view.x(e) - 4:.2f} {view.y(n):.2f}h8m-4 -4v8" for e in easts for n in norths)
     bottom, left = view.top + view.height, view.left
     return tag(
         "g",
         tag("rect", x=left, y=view.top, width=view.width, height=view.height, class_="frame"),
         tag("path", d=arms, class_="hair") if arms else None,
         *(letters((view.x(e), bottom + 15), f"E {fixed(e, places)}", SMALL, "middle", "soft") for e in easts),
-        *(
-            letters((left - 6, view.y(n)), f"N {fixed(n, places)}", SMALL, "middle", "soft", -90.0)
-            for n in norths
-        ),
+        *(letters((left - 6, view.y(n)), f"N {fixed(n, places)}", SMALL, "middle", "soft", -90.0) for n in norths),
         class_="layer-grid",
     )
 
@@ -80,7 +81,7 @@ def scale_bar(at: Point, view: View) -> Html:
 
 
 def dimension(a: Point, b: Point, words: str, off: float = 0.0) -> Html:
-    """A dimension line between two points in units, moved `off` units to the right of its direction, with oblique ticks."""
+    """A dimension line between two points in units, moved `off` units to its right, with oblique ticks."""
     length = hypot(b[0] - a[0], b[1] - a[1]) or 1.0
     ux, uy = (b[0] - a[0]) / length, (b[1] - a[1]) / length
     nx, ny = -uy * off, ux * off
@@ -97,6 +98,22 @@ def dimension(a: Point, b: Point, words: str, off: float = 0.0) -> Html:
         tag("path", d=f"M{p[0]:.2f} {p[1]:.2f}L{q[0]:.2f} {q[1]:.2f}" + marks, class_="dim"),
         letters(lifted, words, LETTERS, "middle", "dim-text", turn),
         class_="dimension",
+    )
+
+
+def drawing(kind: str, ids: str, title: str, about: str, height: float, body: list[Html], **data: str | float) -> Html:
+    """A drawing as an SVG with its name and description for a screen reader; `data` becomes data attributes."""
+    marks = {f"data_{key}": value if isinstance(value, str) else f"{value:.6g}" for key, value in data.items()}
+    heads = [tag("title", title, id=f"{ids}-title"), tag("desc", about, id=f"{ids}-desc")]
+    return tag(
+        "svg",
+        join_lines([*heads, *body]),
+        class_=f"drawing {kind}",
+        viewBox=f"0 0 {WIDTH:g} {height:.0f}",
+        role="group",
+        aria_labelledby=f"{ids}-title {ids}-desc",
+        xmlns="http://www.w3.org/2000/svg",
+        **marks,
     )
 
 

@@ -25,8 +25,13 @@ def swatch(word: str) -> Html:
     return tag(
         "svg",
         verdict_line([(2.0, 7.0), (46.0, 7.0)], word),
-        class_="swatch", viewBox="0 0 48 14", width=48, height=14, aria_hidden="true", focusable="false",
-    )  # fmt: skip
+        class_="swatch",
+        viewBox="0 0 48 14",
+        width=48,
+        height=14,
+        aria_hidden="true",
+        focusable="false",
+    )
 
 
 def named_swatch(word: str, after: str = "") -> Html:
@@ -63,6 +68,10 @@ def area_patterns() -> Html:
 
 def _pattern(word: str, size: float, data: str) -> Html:
     return tag(
-        "pattern", tag("path", d=data, class_=f"a-{word}"),
-        id=f"area-{word}", width=size, height=size, patternUnits="userSpaceOnUse",
-    )  # fmt: skip
+        "pattern",
+        tag("path", d=data, class_=f"a-{word}"),
+        id=f"area-{word}",
+        width=size,
+        height=size,
+        patternUnits="userSpaceOnUse",
+    )

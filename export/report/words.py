@@ -38,14 +38,27 @@ VERDICT_MEANS: dict[str, str] = {
     "not_two_dimensional": "no direction repeats: needs 3D or another idealisation",
 }
 ROLE_NAMES = {
-    "strut": "struts", "corner_strut": "corner struts", "raker": "rakers", "anchor": "anchors", "waler": "walers",
-    "bearing_pile": "bearing piles", "slab": "slabs", "footing": "footings", "column": "columns",
-}  # fmt: skip
+    "strut": "struts",
+    "corner_strut": "corner struts",
+    "raker": "rakers",
+    "anchor": "anchors",
+    "waler": "walers",
+    "bearing_pile": "bearing piles",
+    "slab": "slabs",
+    "footing": "footings",
+    "column": "columns",
+}
 KIND_OF_WALL = {
-    "diaphragm": "diaphragm wall", "secant": "secant piles", "contiguous": "contiguous piles", "sheet": "sheet piles",
-    "king_post": "king posts", "concrete": "concrete wall", "masonry": "masonry wall", "none": "no wall",
+    "diaphragm": "diaphragm wall",
+    "secant": "secant piles",
+    "contiguous": "contiguous piles",
+    "sheet": "sheet piles",
+    "king_post": "king posts",
+    "concrete": "concrete wall",
+    "masonry": "masonry wall",
+    "none": "no wall",
     "unknown": "kind of wall unknown",
-}  # fmt: skip
+}
 KIND_NAMES = {"plane_strain": "plane strain", "axisymmetric": "axisymmetric"}
 
 
@@ -55,11 +68,11 @@ def output_name(output: str) -> str:
 
 
 def fixed(value: float | None, places: int = 2, unit: str = "") -> str:
-    """A number with fixed places, a true minus and its unit.
+    r"""A number with fixed places, a true minus and its unit.
 
     Example:
         >>> fixed(-6.0, 2, "m"), fixed(None)
-        ('−6.00\\u202fm', 'not given')
+        ('−6.00\u202fm', 'not given')
     """
     if value is None:
         return NOT_GIVEN
@@ -83,11 +96,11 @@ def level(value: float | None) -> str:
 
 
 def figure(value: float | None, unit: str = "", digits: int = 5) -> str:
-    """A figure to some significant digits with thousands set apart.
+    r"""A figure to some significant digits with thousands set apart.
 
     Example:
         >>> figure(1038685.93), figure(0.2), figure(-61.2, "kN/m")
-        ('1\\u202f038\\u202f700', '0.2', '−61.2\\u202fkN/m')
+        ('1\u202f038\u202f700', '0.2', '−61.2\u202fkN/m')
     """
     if value is None:
         return NOT_GIVEN

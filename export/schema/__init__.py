@@ -1,7 +1,7 @@
-"""The published JSON Schemas (2020-12) of `proposal.json` and of a section, made from the records and kept as files.
+"""The published JSON Schemas (2020-12) of `proposal.json` and of a section, made from the records, kept as files.
 
-`python -m export.schema.make` writes them. `published.json` holds the SHA-256 of every schema that ever went out, by its
-version: a schema that changes needs a new version in `export.section_json`.
+`python -m export.schema.make` writes them. `published.json` holds the SHA-256 of every schema that ever went out, by
+its version: a schema that changes needs a new version in `export.section_json`.
 """
 
 from __future__ import annotations
@@ -10,20 +10,20 @@ import json
 from importlib import resources
 from typing import Any
 
-NAMES = ("proposal", "section")
+SCHEMAS = ("proposal", "section")
 
 
-def schema_text(name: str) -> str:
+def read_schema(name: str) -> str:
     """The published schema as text.
 
     Args:
-        name: One of `NAMES`.
+        name: One of `SCHEMAS`.
 
     Raises:
         KeyError: When there is no schema of that name.
     """
-    if name not in NAMES:
-        raise KeyError(f"no schema {name!r}; there are {', '.join(NAMES)}")
+    if name not in SCHEMAS:
+        raise KeyError(f"no schema {name!r}; there are {', '.join(SCHEMAS)}")
     return resources.files(__name__).joinpath(f"{name}.json").read_text(encoding="utf-8")
 
 
@@ -39,7 +39,9 @@ def make_schema(name: str) -> str:
     tree = adapter(documents[name]).json_schema(by_alias=True, mode="serialization")
     version = tree["properties"]["schema"]["const"]
     head = {"$schema": "https://json-schema.org/draft/2020-12/schema", "$id": f"urn:{version.replace('/', ':')}"}
-    return canonical_text({**head, "title": f"cutworthy {name}", **_tidy({k: v for k, v in tree.items() if k != "title"})})
+    return canonical_text(
+        {**head, "title": f"cutworthy {name}", **_tidy({k: v for k, v in tree.items() if k != "title"})}
+    )
 
 
 def published() -> dict[str, str]:

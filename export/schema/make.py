@@ -8,7 +8,7 @@ import sys
 from pathlib import Path
 
 from export.canonical import canonical_text
-from export.schema import NAMES, make_schema, published
+from export.schema import SCHEMAS, make_schema, published
 
 FOLDER = Path(__file__).parent
 
@@ -17,13 +17,13 @@ def write_schemas(replace: bool = False) -> None:
     """Write both schemas and note their hashes.
 
     Args:
-        replace: Put a new hash in the place of the old one of the same version; right only before that version went out.
+        replace: Put a new hash in the place of the old one of that version; right only before it went out.
 
     Raises:
         SystemExit: When a schema changed and its version did not.
     """
     noted = published()
-    for name in NAMES:
+    for name in SCHEMAS:
         text = make_schema(name)
         version = json.loads(text)["properties"]["schema"]["const"]
         digest = hashlib.sha256(text.encode()).hexdigest()

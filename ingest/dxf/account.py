@@ -154,7 +154,7 @@ def _names(space: list[Any], raw: RawFigures) -> list[str]:
 def _reached(document: Any) -> set[str]:
     """Lower-case names of the blocks that some layout draws, directly or through other blocks."""
     by_handle = {block.block_record_handle: block.name.lower() for block in document.blocks}
-    todo = [layout for layout in document.layouts]
+    todo = list(document.layouts)
     reached: set[str] = set()
     while todo:
         layout = todo.pop()
@@ -177,7 +177,7 @@ def _drawn_by(entity: Any, by_handle: dict[str, str]) -> list[str]:
     known = vars(entity.dxf)
     names = [str(known["geometry"]).lower()] if known.get("geometry") else []
     handles = [known.get("block_record_handle")]
-    context = getattr(entity, "context", None)
-    if getattr(context, "block", None) is not None:
-        handles.append(context.block.block_record_handle)
+    note_block = getattr(getattr(entity, "context", None), "block", None)
+    if note_block is not None:
+        handles.append(note_block.block_record_handle)
     return names + [by_handle[h] for h in handles if h in by_handle]

@@ -28,12 +28,13 @@ def sketch_dimension(entity: Any, sagitta: float) -> list[Sketch] | Left:
     if "<>" in shown:
         if measure is None:
             return Left("context", "dimension of an angle or an ordinate")
-        value = _MARKS.get(kind, "") + f"{round(measure * _factor(entity), 4):.10g}"
+        value = _MARKS.get(kind, "") + f"{round(measure * _style(entity, 'dimlfac'), 4):.10g}"
         shown = shown.replace("<>", value)
     words = decode(plain_mtext(shown)).strip()
     if not words:
         return Left("context", "dimension without text")
-    figure = written(entity, (at.x, at.y, at.z), words, _text_height(entity), 0.0, planar=True)
+    height = _style(entity, "dimtxt") * _style(entity, "dimscale")
+    figure = written(entity, (at.x, at.y, at.z), words, height, 0.0, planar=True)
     figure.measure = measure
     return [figure]
 
@@ -47,15 +48,13 @@ def _measure(entity: Any) -> float | None:
     return length if math.isfinite(length) and length > 0.0 else None
 
 
-def _factor(entity: Any) -> float:
-    """Factor between measured and shown lengths."""
-    return float(entity.override().get("dimlfac", 1.0) or 1.0)
-
-
-def _text_height(entity: Any) -> float:
-    style = entity.override()
-    height = float(style.get("dimtxt", 1.0) or 1.0) * float(style.get("dimscale", 1.0) or 1.0)
-    return height if math.isfinite(height) and height > 0.0 else 1.0
+def _style(entity: Any, name: str) -> float:
+    """A positive number of the dimension's style, its own overrides first; 1 where it has none."""
+    try:
+        value = float(entity.override().get(name, 1.0) or 1.0)
+    except Exception:  # the library raises errors of its own for styles the file does not have
+        return 1.0
+    return value if math.isfinite(value) and value > 0.0 else 1.0
 
 
 def sketch_multileader(entity: Any, sagitta: float) -> list[Sketch] | Left:
@@ -71,6 +70,7 @@ def sketch_multileader(entity: Any, sagitta: float) -> list[Sketch] | Left:
     if not words:
         return Left("context", "leader without a note")
     at, height = place.insert, abs(float(context.char_height)) or 1.0
+    height = _style(entity, "dimtxt") * _style(entity, "dimscale")
     figure = written(entity, (at.x, at.y, at.z), words, height, 0.0, planar=False)
     tips = [line.vertices[0] for leader in context.leaders for line in leader.lines if line.vertices]
     figure.xyz = [*figure.xyz, *(c for tip in tips for c in (tip.x, tip.y, tip.z))]
@@ -93,4 +93,3 @@ def read_leader(entity: Any) -> Leader | None:
     tip, tail = vertices[0], vertices[-1]
     note = str(vars(entity.dxf).get("annotation_handle", "0"))
     return Leader((tip[0], tip[1], tip[2]), (tail[0], tail[1], tail[2]), "" if note == "0" else note)
-

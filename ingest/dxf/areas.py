@@ -98,7 +98,9 @@ def sketch_hatch(entity: Any, sagitta: float) -> list[Sketch] | Left:
         xy = np.concatenate(members)
         xyz = np.column_stack((xy, np.full(len(xy), level))).ravel()
         counts = tuple(len(m) for m in members)
-        sketches.append(Sketch(cls=cls, layer=layer, form="outline", xyz=xyz, closed=True, rings=counts, axes=axes, tags=tags))
+        sketches.append(
+            Sketch(cls=cls, layer=layer, form="outline", xyz=xyz, closed=True, rings=counts, axes=axes, tags=tags)
+        )
     return sketches
 
 
@@ -125,8 +127,7 @@ def _ring(path: Any, sagitta: float) -> Floats:
     pieces = [piece for piece in pieces if len(piece) > 1]
     if not pieces:
         return np.empty((0, 2))
-    ring = np.concatenate([piece[:-1] for piece in _chain(pieces)])
-    return ring
+    return np.concatenate([piece[:-1] for piece in _chain(pieces)])
 
 
 def _chain(pieces: list[Floats]) -> list[Floats]:

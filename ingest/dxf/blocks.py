@@ -3,6 +3,7 @@
 from __future__ import annotations
 
 import math
+from collections import Counter
 from dataclasses import replace
 from typing import Any
 
@@ -22,7 +23,7 @@ def insert_matrices(known: dict[str, Any], base: Any) -> tuple[Floats, list[Floa
     """The matrix of an insert and the shift of each of its copies: placed = vertex @ matrix + shift.
 
     Args:
-        known: Attributes of the INSERT: insert, xscale, yscale, zscale, rotation, row and column counts and spacings, extrusion.
+        known: Attributes of the INSERT as the library names them.
         base: Base point of the block.
 
     Returns:
@@ -56,13 +57,18 @@ def copies(known: dict[str, Any]) -> tuple[int, int]:
 class BlockBook:
     """The blocks of one drawing, each drawn once and kept."""
 
-    def __init__(self, document: Any, sagitta: float) -> None:
-        """Args: document as loaded; sagitta in drawing units at scale 1."""
+    def __init__(self, document: Any, sagitta: float, ignored: frozenset[str] = frozenset()) -> None:
+        """Args: document as loaded; sagitta in drawing units at scale 1; layers left out, folded."""
         self._blocks = document.blocks
-        self._sagitta = sagitta
+        self.sagitta = sagitta
+        self._ignored = ignored
         self._drawn: dict[tuple[str, int], Batch] = {}
         self._sizes: dict[str, int] = {}
-        self.left: dict[str, int] = {}
+        self.left: Counter[str] = Counter()
+
+    def block(self, name: str) -> Any:
+        """A block as loaded, None when the file does not have it."""
+        return self._blocks.get(name)
 
     def figures(self, name: str) -> int:
         """Number of figures one insert of the block gives, nested ones included; -1 where a block holds itself."""
@@ -97,22 +103,25 @@ class BlockBook:
         level = math.ceil(math.log2(max(_stretch(matrix), 1e-9)) - 1e-9)
         key = (name.lower(), level)
         if key not in self._drawn:
-            self._drawn[key] = self._draw(name, self._sagitta * 2.0**-level)
+            self._drawn[key] = self._draw(name, self.sagitta * 2.0**-level)
         return self._drawn[key]
 
     def _draw(self, name: str, sagitta: float) -> Batch:
         sketches: list[Sketch] = []
         for entity in self._entities(name):
+            known = vars(entity.dxf)
+            layer = decode(layer_of(known))
+            if layer.casefold() in self._ignored or known.get("invisible", 0):
+                continue
             if entity.dxftype() == "INSERT":
-                sketches += self.nested(entity, self._sagitta / sagitta)
+                sketches += self.nested(entity, self.sagitta / sagitta)
                 continue
             figures = sketch(entity, sagitta)
             if isinstance(figures, Left):
-                self.left[figures.reason] = self.left.get(figures.reason, 0) + 1
+                self.left[figures.reason] += 1
                 continue
             for figure in figures:
-                figure.name = name
-                figure.layer = decode(figure.layer)
+                figure.name, figure.layer = name, layer
             sketches += figures
         return settle(sketches, sagitta)
 
@@ -122,7 +131,7 @@ class BlockBook:
         name = str(known.get("name", ""))
         block = self._blocks.get(name)
         if block is None:
-            self.left["insert of a block that is not in the file"] = 1
+            self.left["insert of a block that is not in the file"] += 1
             return []
         matrix, shifts = insert_matrices(known, block.block.dxf.base_point)
         inner = self.content(name, matrix * outer)

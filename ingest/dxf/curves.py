@@ -98,7 +98,7 @@ def entity_axes(extrusion: Any) -> Floats | None:
         extrusion: Normal of the plane with x, y, z, or None when the entity has none.
 
     Returns:
-        None where the plane is the world's, else the axes as rows, shape (3, 3): world = own @ axes. The rule (AutoCAD DXF
+        None where the plane is the world's, else the axes as rows, shape (3, 3): world = own @ axes. The rule (DXF
         reference, "Arbitrary axis algorithm"): with |nx| and |ny| both below 1/64 the x axis is Y x n, else Z x n.
     """
     if extrusion is None:

@@ -42,7 +42,9 @@ def read_bytes(path: Path) -> bytes:
     except IsADirectoryError:
         raise InputError(path.name, "", "this is a folder", "name the DXF file in it") from None
     except PermissionError:
-        raise InputError(path.name, "", "reading is not permitted", "change the file's permissions or copy it") from None
+        raise InputError(
+            path.name, "", "may not be read (no permission)", "give yourself the right to read it"
+        ) from None
     except OSError as fault:
         raise InputError(path.name, "", f"cannot be opened: {fault.strerror}", "check the path and the disk") from None
     if not data:
@@ -67,7 +69,7 @@ def check_bytes(data: bytes, file: str) -> Tags:
     _check_format(data, file)
     tags = scan_tags(data)
     if not tags.names or tags.names[0] != "SECTION":
-        raise InputError(file, tags.place(0), "this is no DXF file: it does not begin with a section", "name a DXF file")
+        raise InputError(file, tags.place(0), "is no DXF file: it does not begin with a section", "name a DXF file")
     faults = [*_structure_faults(tags), *_number_faults(tags)]
     if faults:
         place, problem, remedy = faults[0]
@@ -81,20 +83,24 @@ def _check_format(data: bytes, file: str) -> None:
             raise InputError(file, "byte 0", f"this is {what}, not a DXF file", remedy)
     nul = data.find(b"\0")
     if nul >= 0 and not data.startswith(b"AutoCAD Binary DXF"):
-        raise InputError(file, f"byte {nul}", "a text DXF file holds no zero bytes: it is damaged or another format", SEND_AGAIN)
+        raise InputError(
+            file, f"byte {nul}", "holds zero bytes, which no text DXF file does: it is damaged", SEND_AGAIN
+        )
 
 
 def _structure_faults(tags: Tags) -> list[tuple[str, str, str]]:
     if tags.bad_code is not None:
         place = tags.place(tags.bad_code) if tags.binary else f"line {2 * tags.bad_code + 1}"
-        line = "" if tags.binary else tags.data.splitlines()[2 * tags.bad_code][:20].decode("ascii", "backslashreplace")
-        return [(place, f"{line.strip()!r} is no group code: bytes are damaged or missing here or just before", SEND_AGAIN)]
+        line = b"" if tags.binary else tags.data.splitlines()[2 * tags.bad_code].strip()[:20]
+        shown = _shown(line)
+        return [(place, f"{shown} is no group code: bytes are damaged or missing here or just before", SEND_AGAIN)]
     faults = []
     if not tags.ended:
         place = f"byte {len(tags.data)}" if tags.binary else f"line {2 * len(tags.codes)}"
         faults.append((place, "the file ends without its end mark (EOF): it has been cut short", SEND_AGAIN))
     if "ENTITIES" not in tags.sections:
-        faults.append((tags.place(len(tags.codes) - 1), "the file has no section ENTITIES: nothing is drawn in it", SEND_AGAIN))
+        place = tags.place(len(tags.codes) - 1)
+        faults.append((place, "the file has no section ENTITIES: nothing is drawn in it", SEND_AGAIN))
     open_, marks = False, ("SECTION", "ENDSEC", "EOF")
     for at, name in zip(tags.zeros.tolist(), tags.names, strict=True):
         if name in marks and open_ != (name == "ENDSEC"):
@@ -120,7 +126,7 @@ def _number_faults(tags: Tags) -> list[tuple[str, str, str]]:
 
 
 def _describe(tags: Tags, kind: str, found: list[int]) -> tuple[str, str, str]:
-    shown = "not a finite number" if tags.binary else repr(tags.value(found[0])[:20].decode("ascii", "backslashreplace"))
+    shown = "" if tags.binary else _shown(tags.value(found[0]))
     count = f" ({len(found)} such numbers)" if len(found) > 1 else ""
     remedies = {
         "decimal comma": "export the drawing again with a decimal point",
@@ -128,10 +134,14 @@ def _describe(tags: Tags, kind: str, found: list[int]) -> tuple[str, str, str]:
     }
     words = {
         "decimal comma": f"decimal comma in {shown}; read as it stands the point would move",
-        "not finite": f"coordinate {shown} is not a finite number",
+        "not finite": f"coordinate {shown} is not a finite number".replace("  ", " "),
         "no number": f"{shown} stands where a number must be; the bytes are damaged",
     }
     return (tags.place(found[0]) + _owner(tags, found[0]), words[kind] + count, remedies.get(kind, SEND_AGAIN))
+
+
+def _shown(raw: bytes) -> str:
+    return repr(raw[:20].decode("ascii", "backslashreplace"))
 
 
 def _owner(tags: Tags, index: int) -> str:
@@ -170,7 +180,7 @@ def _text_suspects(tags: Tags, where: Ints) -> list[int]:
     suspects = set(where[odd | (stops <= starts)].tolist())
     for found in _EXPONENT.finditer(tags.data):
         index = int(np.searchsorted(tags.starts, found.start(), side="right")) - 1
-        if 0 <= index and found.end() <= tags.stops[index] and _in(tags.codes[index : index + 1], NUMBER_CODES)[0]:
+        if index >= 0 and found.end() <= tags.stops[index] and _in(tags.codes[index : index + 1], NUMBER_CODES)[0]:
             suspects.add(index)
     return sorted(suspects)
 

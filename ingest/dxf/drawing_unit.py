@@ -36,6 +36,9 @@ class Vote:
     unit: str
     points: int
     evidence: str
+    decisive: bool = False
+    """Whether something written says so, not only that sizes look right."""
+    doors: bool = False
 
 
 def find_unit(
@@ -72,9 +75,11 @@ def find_unit(
     if stated is None:
         return _guessed(file, code, votes)
     own = next(vote for vote in votes if vote.unit == stated)
-    if own.points >= 0 and own.points >= best.points - 1:
+    written = any(vote.decisive for vote in votes) and not own.decisive
+    doors = best.doors and not own.doors and best.points > own.points
+    if own.points >= 0 and own.points >= best.points - 1 and not written and not doors:
         return DrawingUnit(name=stated, metres=METRES[stated])
-    return _contradicted(file, code, own, votes)
+    return _contradicted(file, code, own, votes, measures)
 
 
 def _guessed(file: str, code: int, votes: list[Vote]) -> DrawingUnit:
@@ -84,14 +89,19 @@ def _guessed(file: str, code: int, votes: list[Vote]) -> DrawingUnit:
     return _asked(file, best.unit, "unit-missing", text, votes)
 
 
-def _contradicted(file: str, code: int, own: Vote, votes: list[Vote]) -> DrawingUnit:
-    best = votes[0]
+def _contradicted(file: str, code: int, own: Vote, votes: list[Vote], measures: Measures) -> DrawingUnit:
+    """The declared unit against better evidence: it is left only for something written, or where it is absurd."""
     said = f"the drawing says {own.unit} ($INSUNITS = {code}), but {own.evidence or 'its sizes do not bear that out'}"
-    if best.points - own.points < 3:
-        text = f"{said}; {own.unit} is kept, {best.unit} would fit better: {best.evidence}"
+    written = next((vote for vote in votes if vote.decisive), None)
+    others = [vote for vote in votes if vote is not own]
+    size = (measures.extent() or 1.0) * METRES[own.unit]
+    clear = others[0].points >= 3 and others[0].points > others[1].points
+    taken = written or (others[0] if clear and not 1.0 <= size <= 50_000.0 else None)
+    if taken is None:
+        text = f"{said}; {own.unit} is kept, {others[0].unit} would fit better: {others[0].evidence}"
         return _asked(file, own.unit, "unit-implausible", text, votes)
-    text = f"{said}; {best.unit} is taken because {best.evidence}"
-    return _asked(file, best.unit, "unit-implausible", text, votes)
+    text = f"{said}; {taken.unit} is taken because {taken.evidence}"
+    return _asked(file, taken.unit, "unit-implausible", text, votes)
 
 
 def _asked(file: str, unit: str, code: str, text: str, votes: list[Vote]) -> DrawingUnit:
@@ -122,14 +132,28 @@ def _vote(unit: str, measures: Measures, shown_as: str | None) -> Vote:
         points = 2 if 5.0 <= size <= 500.0 else 1 if 2.0 <= size <= 2000.0 else -2
         notes.append((points, f"the drawing is then {size:.3g} m wide"))
     notes += _common("circles are then {:.3g} m across", measures.circles, metre, (0.3, 2.5), least=4)
-    notes += _common("door swings are then {:.3g} m", measures.doors, metre, (0.55, 1.3), least=2)
     notes += _common("letters are then {:.2g} m high", measures.letters, metre, (0.04, 2.0), least=3)
-    if shown_as in FEET_AND_INCHES and unit == "inch":
-        notes.append((3, "it shows lengths in feet and inches"))
+    doors = [radius * metre for radius, count in measures.doors.items() if count > 1 and 0.6 <= radius * metre <= 1.1]
+    notes += [(2, f"door swings are then {min(doors):.3g} m")] if doors else []
+    shown = _written(unit, measures, shown_as)
+    if shown:
+        notes.append((4, shown))
     notes += _dimensions(measures, metre)
     points = sum(point for point, _ in notes)
     words = [text for point, text in notes if (point > 0) == (points > 0)]
-    return Vote(unit=unit, points=points, evidence=", ".join(words))
+    decisive = any(point >= 4 for point, _ in notes)
+    return Vote(unit=unit, points=points, evidence=", ".join(words), decisive=decisive, doors=bool(doors))
+
+
+def _written(unit: str, measures: Measures, shown_as: str | None) -> str:
+    """What the drawing says by the way it shows lengths, "" for nothing."""
+    total = sum(measures.shown_in.values())
+    if total and measures.shown_in.get(unit, 0) * 2 > total:
+        feet = " in feet and inches or" if unit == "inch" else ""
+        return f"its dimensions are shown{feet} with the mark of the {unit}"
+    if not total and shown_as in FEET_AND_INCHES and unit == "inch":
+        return "it shows lengths in feet and inches"
+    return ""
 
 
 def _common(

@@ -52,6 +52,7 @@ SOLIDS = {"3DSOLID", "REGION", "BODY", "SURFACE", "EXTRUDEDSURFACE", "LOFTEDSURF
 
 ASIDE: dict[str, Left] = {
     "ATTDEF": Left("context", "attribute definition"),
+    "LEADER": Left("context", "leader line"),
     "VIEWPORT": Left("context", "viewport"),
     "RAY": Left("context", "endless construction line"),
     "XLINE": Left("context", "endless construction line"),

@@ -4,7 +4,6 @@ from __future__ import annotations
 
 import gc
 import logging
-from collections import Counter
 from collections.abc import Iterator
 from contextlib import contextmanager
 from dataclasses import dataclass
@@ -12,13 +11,13 @@ from pathlib import Path
 from typing import Any
 
 from ingest.dxf.damage import SEND_AGAIN, find_bad_number
-from ingest.dxf.tagscan import SUBENTITIES, Tags
+from ingest.dxf.tagscan import Tags
 from ingest.errors import InputError
 
 
 @dataclass(slots=True)
 class Loaded:
-    """A drawing and how it was got. `lost` counts, by type, entities of the file that the library did not keep."""
+    """A drawing and how it was got."""
 
     document: Any
     recovered: str = ""
@@ -63,7 +62,8 @@ def load_document(path: Path, tags: Tags) -> Loaded:
     except Exception as fault:
         bad = find_bad_number(tags)
         place, problem = bad if bad else ("", "")
-        words = f"{problem!r} stands where a number must be" if bad else f"the drawing cannot be loaded: {describe_fault(fault)}"
+        words = f"cannot be loaded: {describe_fault(fault)}"
+        words = f"{problem!r} stands where a number must be" if bad else words
         raise InputError(path.name, place or "whole file", words, SEND_AGAIN) from None
     repairs = tuple(str(entry.message) for entry in auditor.errors)
     return Loaded(document, first, repairs)
@@ -73,11 +73,3 @@ def describe_fault(fault: Exception) -> str:
     """One line of what a library says, without its type unless it says nothing."""
     words = " ".join(str(fault).split())
     return (words[:160] or type(fault).__name__).rstrip(".")
-
-
-def count_lost(raw: Counter[str], document: Any) -> Counter[str]:
-    """Entities the bytes hold and the loaded drawing does not, by type."""
-    loaded = Counter(entity.dxftype() for block in document.blocks for entity in block)
-    for name in SUBENTITIES:
-        loaded.pop(name, None)
-    return raw - loaded

@@ -11,11 +11,13 @@ import numpy as np
 
 from ingest.dxf.blocks import copies, insert_matrices
 from ingest.dxf.curves import Floats
-from ingest.units import FOOT, INCH
+from ingest.units import FOOT, INCH, METRES
 
 MOST_LOOKED_AT = 50_000
 """Entities looked at; more would not change a median."""
 _FEET = re.compile(r"""(?:(\d+(?:\.\d+)?)\s*'\s*-?\s*)?(?:(\d+)\s+)?(\d+(?:\.\d+)?)?(?:/(\d+))?\s*(?:"|'')?""")
+_SUFFIX = re.compile(r"""^(?:<>)?\s*(mm|cm|m|"|'|in|ft)\s*$""")
+_SUFFIXES = {"mm": "mm", "cm": "cm", "m": "m", '"': "inch", "in": "inch", "'": "foot", "ft": "foot"}
 _UNIT = re.compile(r"^\s*([0-9]+(?:\.[0-9]+)?)\s*(mm|cm|m|ft|in)\b")
 
 
@@ -32,6 +34,10 @@ class Measures:
     """Heights of texts."""
     dimensions: list[tuple[float, str]] = field(default_factory=list)
     """Measured length and the text written instead of it."""
+    shown_in: Counter[str] = field(default_factory=Counter)
+    """Unit of the drawing by the way dimensions are shown."""
+    styles: dict[str, str] = field(default_factory=dict)
+    """Dimension style -> unit of the drawing it implies, "" for none."""
 
     def extent(self) -> float | None:
         """Larger side of the drawing without its outermost twentieths; None below two points."""
@@ -60,7 +66,13 @@ def take_measures(document: Any, entities: list[Any]) -> Measures:
 
 
 def _look(
-    document: Any, entities: Any, matrix: Floats, shift: Floats, found: Measures, budget: list[int], path: tuple[str, ...]
+    document: Any,
+    entities: Any,
+    matrix: Floats,
+    shift: Floats,
+    found: Measures,
+    budget: list[int],
+    path: tuple[str, ...],
 ) -> None:
     scale = float(np.abs(np.linalg.det(matrix[:2, :2])) ** 0.5)
     for entity in entities:
@@ -113,7 +125,26 @@ def _sizes(kind: str, entity: Any, known: dict[str, Any], scale: float, found: M
         if height > 0.0:
             found.letters[_tidy(height * scale)] += 1
     elif kind == "DIMENSION" and known.get("dimtype", 0) & 7 in (0, 1):
+        unit = _style_unit(entity, str(known.get("dimstyle", "")), found)
+        if unit:
+            found.shown_in[unit] += 1
         _dimension(entity, known, found)
+
+
+def _style_unit(entity: Any, name: str, found: Measures) -> str:
+    """Unit of the drawing that a dimension style implies: feet and inches count inches, a suffix names its unit."""
+    if name not in found.styles:
+        found.styles[name] = ""
+        style = entity.doc.dimstyles.get(name) if entity.doc and entity.doc.dimstyles.has_entry(name) else None
+        if style is not None:
+            factor = float(style.dxf.get("dimlfac", 1.0) or 1.0)
+            suffix = _SUFFIX.match(str(style.dxf.get("dimpost", "") or ""))
+            if style.dxf.get("dimlunit", 2) in (3, 4) and factor == 1.0:
+                found.styles[name] = "inch"
+            elif suffix:
+                metre = METRES[_SUFFIXES[suffix[1]]] * factor
+                found.styles[name] = next((unit for unit in METRES if abs(METRES[unit] / metre - 1.0) < 1e-9), "")
+    return found.styles[name]
 
 
 def _dimension(entity: Any, known: dict[str, Any], found: Measures) -> None:
@@ -133,10 +164,10 @@ def _tidy(length: float) -> float:
 
 
 def written_length(text: str) -> float | None:
-    """Length that a dimension text states with its unit, m.
+    r"""Length that a dimension text states with its unit, m.
 
     Example:
-        >>> written_length("16'-0\\""), written_length("6.50 m"), written_length("6500")
+        >>> written_length("16'-0\""), written_length("6.50 m"), written_length("6500")
         (4.8768, 6.5, None)
     """
     plain = text.strip()

@@ -3,122 +3,104 @@
 from __future__ import annotations
 
 import hashlib
-from collections import Counter
-from collections.abc import Iterator
+from collections.abc import Callable
 from pathlib import Path
 from typing import Any
 
-import numpy as np
+from ingest.dxf.account import list_raw, open_account
+from ingest.dxf.damage import check_bytes, read_bytes
+from ingest.dxf.draw import Drawer
+from ingest.dxf.drawing_unit import find_unit
+from ingest.dxf.layers import LayerTable
+from ingest.dxf.leaders import tie_leaders
+from ingest.dxf.loading import load_document, quiet
+from ingest.dxf.measures import take_measures
+from ingest.dxf.report import report_findings, report_losses
+from ingest.dxf.tagscan import Tags
+from ingest.model import FileParts
 
-from ingest.dxf.blocks import BlockBook, attribute_texts, attributes, insert_matrices
-from ingest.dxf.curves import SAGITTA
-from ingest.dxf.figures import sketch
-from ingest.dxf.linework import layer_of
-from ingest.dxf.sketch import Left, Placing, Sketch, place, settle
-from ingest.dxf.text import decode
-from ingest.model import FileParts, Part
-from ingest.units import METRES, unit_name
-
-CHUNK = 5_000
-INSUNITS = {1: "inch", 2: "foot", 4: "mm", 5: "cm", 6: "m"}
+RELEASES = {
+    "AC1002": "R2.5", "AC1003": "R2.6", "AC1004": "R9", "AC1006": "R10", "AC1009": "R12", "AC1012": "R13",
+    "AC1014": "R14", "AC1015": "R2000", "AC1018": "R2004", "AC1021": "R2007", "AC1024": "R2010", "AC1027": "R2013",
+    "AC1032": "R2018",
+}  # fmt: skip
 
 
-def read_dxf(path: Path, *, length_unit: str | None = None, ignore_layers: tuple[str, ...] = ()) -> FileParts:
-    """Read a DXF drawing.
+def read_dxf(
+    path: Path,
+    *,
+    length_unit: str | None = None,
+    ignore_layers: tuple[str, ...] = (),
+    progress: Callable[[int], None] | None = None,
+) -> FileParts:
+    """Read a DXF drawing, text or binary, R12 to R2018.
 
     Args:
         path: The file.
-        length_unit: Unit of the drawing as the brief gives it; None to take the file's own.
-        ignore_layers: Layers the brief leaves out.
+        length_unit: Unit of the drawing as the brief gives it; it overrides the drawing's own.
+        ignore_layers: Layers the brief leaves out; capitals do not matter.
+        progress: Called with the number of entities done.
 
     Returns:
-        Parts in metres in the file's own frame. entities = entities that gave a part + context + ignored.
+        Parts in metres in the file's own frame. The entities with parts, `context` and `ignored` add up to `entities`.
 
     Raises:
-        InputError: When the file cannot be read.
+        InputError: When the file cannot be read, is cut short or damaged, or holds more than memory can.
     """
-    import ezdxf
-
-    document = ezdxf.readfile(path)
-    unit = unit_name(length_unit) if length_unit else INSUNITS.get(int(document.header.get("$INSUNITS", 0) or 0), "m")
-    scale = METRES[unit]
-    book = BlockBook(document, SAGITTA / scale)
-    left: dict[str, Counter[str]] = {"context": Counter(), "ignored": Counter()}
-    ignore = {name.lower() for name in ignore_layers}
-    entities = list(document.modelspace())
-    parts: list[Part] = []
-    for start in range(0, len(entities), CHUNK):
-        parts += _read_chunk(entities[start : start + CHUNK], path.name, scale, book, ignore, left)
-    paper = sum(len(layout) for layout in document.layouts if layout.name != "Model")
-    if paper:
-        left["ignored"]["paper space"] += paper
+    data = read_bytes(path)
+    tags = check_bytes(data, path.name)
+    raw, header = list_raw(tags), _Header(tags)
+    sha256 = hashlib.sha256(data).hexdigest()
+    with quiet():
+        loaded = load_document(path, tags)
+        del data, tags
+        account = open_account(loaded.document, raw)
+        entities = account.entities
+        unit = find_unit(
+            path.name,
+            header.units,
+            length_unit,
+            header.shown_as,
+            take_measures(loaded.document, [entity for _, entity in account.named]),
+        )
+        layers = LayerTable(loaded.document, ignore_layers)
+        drawer = Drawer(path.name, unit.metres, loaded.document, layers)
+        _let_go(loaded.document)
+        drawn = drawer.draw(account.named, progress)
+    drawn.aside["ignored"].update(account.aside)
+    losses = report_losses(account, loaded, drawn, drawer.book)
+    findings = report_findings(path.name, account, raw, loaded, drawn, drawer)
     return FileParts(
         file=path.name,
-        sha256=hashlib.sha256(path.read_bytes()).hexdigest(),
+        sha256=sha256,
         kind="dxf",
-        schema_or_version=document.dxfversion,
-        length_unit=unit,
-        unit_scale=scale,
-        entities=len(entities) + paper,
-        parts=tuple(parts),
-        context=dict(sorted(left["context"].items())),
-        ignored=dict(sorted(left["ignored"].items())),
+        schema_or_version=header.version,
+        length_unit=unit.name,
+        unit_scale=unit.metres,
+        entities=entities,
+        parts=tie_leaders(tuple(drawn.parts), drawn.leaders, unit.metres),
+        context=dict(sorted(drawn.aside["context"].items())),
+        ignored=dict(sorted(drawn.aside["ignored"].items())),
+        losses=losses,
+        findings=(*unit.findings, *findings),
+        questions=unit.questions,
+        assumptions=unit.assumptions,
     )
 
 
-def _read_chunk(
-    entities: list[Any], file: str, scale: float, book: BlockBook, ignore: set[str], left: dict[str, Counter[str]]
-) -> Iterator[Part]:
-    plain: list[Sketch] = []
-    reasons: dict[str, Left] = {}
-    made: set[str] = set()
-    unscaled = np.eye(3) * scale
-    parts: list[Part] = []
-    for entity in entities:
-        item = str(entity.dxf.handle)
-        layer = decode(layer_of(vars(entity.dxf)))
-        if layer.lower() in ignore:
-            reasons[item] = Left("ignored", "layer ignored by the brief")
-            continue
-        if entity.dxftype() == "INSERT":
-            new = list(_insert_parts(entity, item, layer, file, scale, book))
-            if new:
-                made.add(item)
-                parts += new
-            else:
-                reasons[item] = Left("ignored", "insert that draws nothing")
-            continue
-        figures = sketch(entity, book._sagitta)
-        if isinstance(figures, Left):
-            reasons[item] = figures
-            continue
-        for figure in figures:
-            figure.item, figure.layer = item, layer
-        plain += figures
-    batch = settle(plain, book._sagitta)
-    for figure, why in batch.dropped:
-        reasons[figure.item] = Left("ignored", why)
-    placed, empty = place(batch, Placing(file, unscaled, np.zeros(3)))
-    made |= {part.source.item for part in placed}
-    for item, why in empty:
-        reasons[item] = Left("ignored", why)
-    for item, why_left in reasons.items():
-        if item not in made:
-            left[why_left.kind][why_left.reason] += 1
-    yield from parts
-    yield from placed
+class _Header:
+    """The header variables that matter, from the bytes: the library fills in defaults the file does not have."""
+
+    def __init__(self, tags: Tags) -> None:
+        self.units = tags.header("$INSUNITS")
+        self.shown_as = tags.header("$LUNITS")
+        code = tags.header("$ACADVER") or ""
+        self.version = f"{RELEASES.get(code, 'unknown release')} ({code})" if code else "no version given"
 
 
-def _insert_parts(entity: Any, item: str, layer: str, file: str, scale: float, book: BlockBook) -> Iterator[Part]:
-    known = vars(entity.dxf)
-    name = str(known.get("name", ""))
-    block = book._blocks.get(name)
-    if block is None:
-        return
-    matrix, shifts = insert_matrices(known, block.block.dxf.base_point)
-    batch = book.content(name, matrix)
-    tags = attributes(entity)
-    for shift in shifts:
-        yield from place(batch, Placing(file, matrix * scale, shift * scale, item, layer, tags))[0]
-    words = settle(attribute_texts(entity), 1.0)
-    yield from place(words, Placing(file, np.eye(3) * scale, np.zeros(3), item, layer))[0]
+def _let_go(document: Any) -> None:
+    """Leave the entities of the modelspace to the account alone, so that memory shrinks while they are drawn."""
+    space = document.modelspace()
+    for entity in space:
+        document.entitydb.discard(entity)
+    space.entity_space.clear()

@@ -204,7 +204,8 @@ class _Mover:
         for count in sketch.rings[1:]:
             holes.append(rest[:count])
             rest = rest[count:]
-        return self._make(sketch, sketch.form, ring, closed=closed and len(ring) > 2, holes=tuple(holes))
+        form: Literal["path", "outline"] = "outline" if sketch.form == "outline" else "path"
+        return self._make(sketch, form, ring, closed=closed and len(ring) > 2, holes=tuple(holes))
 
     def _conic(self, sketch: Sketch, points: tuple[Point3, ...]) -> Part | str:
         centre, a, b = (np.array(p) for p in points)

@@ -146,7 +146,8 @@ def _cut(tags: Tags, bad: NDArray[np.bool_]) -> None:
     """Keep the tags up to the end mark, or up to the first group code that is none."""
     faults = np.flatnonzero(bad)
     zeros = np.flatnonzero((tags.codes == 0) & ~bad)
-    ending = next((z for z in zeros[tags.stops[zeros] - tags.starts[zeros] == 3].tolist() if tags.value(z) == b"EOF"), None)
+    short = zeros[tags.stops[zeros] - tags.starts[zeros] == 3].tolist()
+    ending = next((z for z in short if tags.value(z) == b"EOF"), None)
     if len(faults) and (ending is None or faults[0] < ending):
         tags.bad_code = int(faults[0])
         ending_at = tags.bad_code + 1
@@ -169,7 +170,6 @@ def _find_sections(tags: Tags) -> None:
         tags.sections.setdefault(title, (at + 2, last))
 
 
-_STRINGS = "s"
 _KINDS: tuple[tuple[int, int, str], ...] = (
     (0, 9, "s"), (10, 59, "d"), (60, 79, "h"), (90, 99, "i"), (100, 102, "s"), (105, 105, "s"), (110, 149, "d"),
     (160, 169, "q"), (170, 179, "h"), (210, 239, "d"), (270, 289, "h"), (290, 299, "b"), (300, 309, "s"),
@@ -184,7 +184,9 @@ _KIND = {code: kind for low, high, kind in _KINDS for code in range(low, high + 
 def _scan_binary(data: bytes) -> Tags:
     """Walk through a binary file; one-byte codes up to R12, two-byte codes since R13."""
     at, short = len(BINARY_MARK), len(data) > 23 and data[23] != 0
-    codes, starts, stops = [], [], []
+    codes: list[int] = []
+    starts: list[int] = []
+    stops: list[int] = []
     ended, bad = False, None
     while at < len(data) and not ended:
         code, begin = _binary_code(data, at, short)

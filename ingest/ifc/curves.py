@@ -203,11 +203,11 @@ def conic(curve: Entity) -> tuple[Floats, Floats, Floats, float, float]:
     return matrix[:3, 3], matrix[:3, 0], matrix[:3, 1], float(half[0]), float(half[1])
 
 
-def circle_points(x: float, y: float, radius: float, steps: int = LEAST_STEPS_PER_TURN) -> tuple[tuple[float, float], ...]:
+def circle_points(
+    x: float, y: float, radius: float, steps: int = LEAST_STEPS_PER_TURN
+) -> tuple[tuple[float, float], ...]:
     """Vertices of a regular polygon on a circle, first one due east, counter-clockwise."""
-    return tuple(
-        (x + radius * cos(2 * pi * i / steps), y + radius * sin(2 * pi * i / steps)) for i in range(steps)
-    )
+    return tuple((x + radius * cos(2 * pi * i / steps), y + radius * sin(2 * pi * i / steps)) for i in range(steps))
 
 
 def _as_3d(rows: Any) -> Floats:

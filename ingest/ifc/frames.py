@@ -46,8 +46,10 @@ class FrameTable:
             return known
         flat = frame.is_a() == "IfcAxis2Placement2D"
         up = None if flat else frame.get_argument(AXIS)
-        first = None if frame.is_a() == "IfcAxis1Placement" else frame.get_argument(
-            REF_DIRECTION_2D if flat else REF_DIRECTION
+        first = (
+            None
+            if frame.is_a() == "IfcAxis1Placement"
+            else frame.get_argument(REF_DIRECTION_2D if flat else REF_DIRECTION)
         )
         row = self.add(
             triple(frame.get_argument(LOCATION).get_argument(COORDINATES)),

@@ -48,7 +48,9 @@ def read_georeference(model: Any, units: ProjectUnits) -> Georeference:
         if operations:
             _apply(model, operations[0], units, plain)
             if len(operations) > 1:
-                plain.checks.append(("several-map-conversions", f"{len(operations)} are in the file, the first was used"))
+                plain.checks.append(
+                    ("several-map-conversions", f"{len(operations)} are in the file, the first was used")
+                )
         elif str(model.schema_identifier).startswith("IFC2X3"):
             _apply_property_set(model, units, plain)
         _note_true_north(model, plain)
@@ -191,6 +193,9 @@ def _note_true_north(model: Any, into: Georeference) -> None:
         turn = degrees(atan2(x, y))
         if abs(turn) > 1e-6 and not into.given:
             into.checks.append(
-                ("true-north", f"true north lies {turn:.4f} degrees clockwise of the model's y axis; nothing was turned")
+                (
+                    "true-north",
+                    f"true north lies {turn:.4f} degrees clockwise of the model's y axis; nothing was turned",
+                )
             )
         return

@@ -128,7 +128,9 @@ def _schema_refused(path: Path, data: bytes) -> InputError:
     found = _SCHEMA.search(data)
     name = found[1].decode("ascii", "replace") if found else "not stated"
     draft = "_RC" in name.upper() or name.upper() in ("IFC4X1", "IFC4X2", "IFC2X3_FINAL")
-    kind = "a draft or withdrawn schema whose classes differ from the standard's" if draft else "not a schema known here"
+    kind = (
+        "a draft or withdrawn schema whose classes differ from the standard's" if draft else "not a schema known here"
+    )
     return InputError(
         path.name,
         "FILE_SCHEMA",
@@ -141,7 +143,8 @@ def _syntax_refused(path: Path, data: bytes, log: str, error: str) -> InputError
     lines = [line for line in log.splitlines() if line.startswith("[error]")]
     first = re.sub(r"^(\[[^]]*\]\s*)+", "", lines[0]) if lines else error.split("\n")[0]
     offset = re.search(r"offset (\d+)", first)
-    place = f"line {data.count(b'\n', 0, int(offset[1])) + 1}" if offset else "header" if "header" in error else ""
+    line = data.count(b"\n", 0, int(offset[1])) + 1 if offset else 0
+    place = f"line {line}" if line else "header" if "header" in error else ""
     what = re.sub(r"\s*at offset \d+", "", first) or "the text is not valid"
     return InputError(path.name, place, f"is not valid IFC text: {what[:160]} ({len(lines)} faults)", EXPORT_AGAIN)
 

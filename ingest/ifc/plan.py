@@ -188,7 +188,11 @@ def _sweep_prism(body: Placed, shape: Sweep) -> Prism:
     scale = float(np.linalg.norm(body.base[:3, 0]))
     ring = np.array(shape.profile.outlines[0]) * scale
     half, deep = float(np.abs(ring[:, 0]).max()), float(np.abs(ring[:, 1]).max())
-    line = shapely.LineString(points[:, :2]) if np.ptp(points[:, :2], axis=0).max() > SNAP else shapely.Point(points[0, :2])
+    line = (
+        shapely.LineString(points[:, :2])
+        if np.ptp(points[:, :2], axis=0).max() > SNAP
+        else shapely.Point(points[0, :2])
+    )
     area = shapely.buffer(line, half, cap_style="flat" if line.geom_type == "LineString" else "round")
     return Prism(area, float(points[:, 2].min()) - deep, float(points[:, 2].max()) + deep, shape.notes)
 

@@ -121,7 +121,12 @@ def trapezium(p: Entity) -> Shape:
     left, right = min(-lower / 2, -lower / 2 + shift), max(lower / 2, -lower / 2 + shift + upper)
     middle = (left + right) / 2
     start = -lower / 2 - middle
-    ring = [(start, -depth / 2), (start + lower, -depth / 2), (start + shift + upper, depth / 2), (start + shift, depth / 2)]
+    ring = [
+        (start, -depth / 2),
+        (start + lower, -depth / 2),
+        (start + shift + upper, depth / 2),
+        (start + shift, depth / 2),
+    ]
     return np.array(ring), None, (depth, right - left)
 
 

@@ -109,7 +109,9 @@ class ItemReader:
         if known is None:
             if depth > DEEPEST:
                 raise ValueError("a body is nested too deep or in itself")
-            known = self._known[key] = self._mapped(item, depth) if kind == "IfcMappedItem" else self._other(item, depth)
+            known = self._known[key] = (
+                self._mapped(item, depth) if kind == "IfcMappedItem" else self._other(item, depth)
+            )
         return known
 
     def _mapped(self, item: Entity, depth: int) -> Described:
@@ -233,7 +235,9 @@ class ItemReader:
         whole = all(t is None or not hasattr(t, "is_a") for t in trims)
         if not whole or not item.Directrix.is_a("IfcPolyline"):
             return points
-        start, end = (float(t) if t is not None else spare for t, spare in zip(trims, (0.0, len(points) - 1), strict=True))
+        start, end = (
+            float(t) if t is not None else spare for t, spare in zip(trims, (0.0, len(points) - 1), strict=True)
+        )
         if (start, end) == (0.0, len(points) - 1) or not 0 <= start < end <= len(points) - 1:
             return points
         at = np.arange(len(points))

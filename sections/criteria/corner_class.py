@@ -95,7 +95,6 @@ def _place(stations: Stations, ends: WallEnds) -> _Place:
     ahead = np.where(ends.ahead_kind == INSIDE, ends.ahead, np.inf)
     nearer_back = back <= ahead
     weights = _weight(ends.back_angle), _weight(ends.ahead_angle)
-    angle = np.where(nearer_back, ends.back_angle, ends.ahead_angle)
     return _Place(
         depth=depth,
         near=np.where(nearer_back, back, ahead) / depth,
@@ -103,7 +102,7 @@ def _place(stations: Stations, ends: WallEnds) -> _Place:
         near_weight=np.where(nearer_back, *weights),
         far_weight=np.where(nearer_back, *weights[::-1]),
         length=ends.length / depth,
-        angle=angle,
+        angle=ends.inside_angle,
     )
 
 

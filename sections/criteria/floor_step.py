@@ -1,7 +1,7 @@
 """A step of the dig floor at the wall: the shallow side is pulled along by the deep one.
 
 In a computed case (dig 8 m beside 12 m) the real deflection and moment on the shallow side were 1.24 to 1.38 times the
-2D values within half a depth of the step. How far it goes on other walls is not known, so nothing is claimed near a step.
+2D values within half a depth of the step. How far it goes on other walls is not known, so nothing is claimed near one.
 Source: own computation; the reach is judgement.
 """
 
@@ -38,6 +38,7 @@ def floor_step(site: Site, found: FoundPit, limits: Limits) -> CriterionResult:
         basis="rule: beside a step of the floor nothing is claimed",
         reference="own computation; reach by judgement",
         inputs={"distance": distance},
+        speaks_of=(*WALL_OUTPUTS, "settlement", "heave_utilisation", "hydraulic_utilisation"),
         settled_by="a computation with the real floor levels along the wall",
     )
 

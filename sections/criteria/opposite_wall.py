@@ -37,6 +37,7 @@ def opposite_wall(site: Site, found: FoundPit, limits: Limits) -> CriterionResul
         reference="derived; equal pressure on both walls assumed",
         inputs={"skew": skew, "contrast": contrast},
         own_margin=True,
+        speaks_of=("wall_deflection", "support_force"),
         settled_by="a section or computation that holds both walls with the struts at their real angle",
         silence=dict.fromkeys(("wall_moment_excavated_face", "wall_moment_retained_face"), "statics give no moment"),
     )

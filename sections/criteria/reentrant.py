@@ -62,6 +62,7 @@ def reentrant(site: Site, found: FoundPit, limits: Limits) -> CriterionResult:
             "reach": reach,
             "anchors": np.full(len(reach), anchors),
         },
+        speaks_of=sheet.outputs,
         settled_by="an analysis in three dimensions, or a check of each anchor against every wall, floor and anchor",
     )
 

@@ -10,6 +10,7 @@ from __future__ import annotations
 import numpy as np
 
 from ingest.model import Limits, Site
+from sections.along import kinds_at
 from sections.criteria.sheet import WALL_OUTPUTS, Sheet
 from sections.model import CriterionResult, FoundPit
 
@@ -23,7 +24,7 @@ def shape(site: Site, found: FoundPit, limits: Limits) -> CriterionResult:
     stations = found.stations
     sheet = Sheet(stations, "The wall is straight here.")
     curved = ~np.isnan(stations.radius) | stations.ring
-    kinds = np.array([run.wall.kind for run in found.shape.runs])[stations.run]
+    kinds = kinds_at(found)
     affected = (*WALL_OUTPUTS, "settlement")
     sheet.lack(curved, affected)
     sheet.text(curved, "The wall is curved here; how far the curve relieves or loads it is not assessed.")
@@ -31,8 +32,8 @@ def shape(site: Site, found: FoundPit, limits: Limits) -> CriterionResult:
     sheet.shut(hoop, affected)
     sheet.text(
         hoop,
-        "The wall is a ring that carries thrust round the shaft (hoop action): a plane-strain section grossly over-states "
-        "movement and bending and has no hoop force. Use an axisymmetric section.",
+        "The wall is a ring that carries thrust round the shaft (hoop action): a plane-strain section grossly "
+        "over-states movement and bending and has no hoop force. Use an axisymmetric section.",
     )
     return sheet.close(
         CODE,
@@ -40,5 +41,6 @@ def shape(site: Site, found: FoundPit, limits: Limits) -> CriterionResult:
         basis="ring theory: radial stiffness E t/R^2 that plane strain does not have",
         reference="statics of a ring; own computation",
         inputs={"radius": stations.radius},
+        speaks_of=(*WALL_OUTPUTS, "settlement"),
         settled_by="an axisymmetric section, where the thrust stays in the wall",
     )

@@ -99,7 +99,9 @@ class Sheet:
         cross_check: bool = False,
         recalled: bool = False,
         settled_by: str = "",
+        speaks_of: Iterable[str] = WALL_OUTPUTS,
         silence: dict[str, str] | None = None,
+        carries: tuple[Mechanism, ...] = (),
     ) -> CriterionResult:
         """Hand the sheet in."""
         values = inputs or {}
@@ -120,7 +122,9 @@ class Sheet:
             cross_check=cross_check,
             recalled=recalled,
             settled_by=settled_by,
+            speaks_of=tuple(speaks_of),
             silence=silence or {},
+            carries=carries,
         )
 
     def _columns(self, outputs: Iterable[str]) -> list[int]:

@@ -32,11 +32,11 @@ def supports_gap(site: Site, found: FoundPit, limits: Limits) -> CriterionResult
             width = np.where(near, np.maximum(width, widest), width)
         lonely |= cover[:, j] & (_largest_count(row) < 2)
     sheet.lack(irregular | lonely, (*WALL_OUTPUTS, "settlement"))
-    sheet.text(lonely, "One support alone holds this wall at its level: it repeats nowhere along the wall, so nothing is smeared.")
+    sheet.text(lonely, "One support alone holds this wall at its level: it repeats nowhere, so it cannot be smeared.")
     sheet.text(
         irregular,
-        "A support near here stands for {width:.1f} m of wall, clearly more than its row usually does: beside a gap the real "
-        "wall moves more than the 2D one, by how much is not assessed.",
+        "A support near here stands for {width:.1f} m of wall, clearly more than its row usually does: beside a gap "
+        "the real wall moves more than the 2D one, by how much is not assessed.",
     )
     return sheet.close(
         CODE,
@@ -44,6 +44,7 @@ def supports_gap(site: Site, found: FoundPit, limits: Limits) -> CriterionResult
         basis="rule: a smeared row is regular; gaps are not evaluated",
         reference="project rule (judgement)",
         inputs={"width": width},
+        speaks_of=(*WALL_OUTPUTS, "settlement"),
         settled_by="a computation with every support at its real place",
     )
 

@@ -32,16 +32,17 @@ def supports_skew(site: Site, found: FoundPit, limits: Limits) -> CriterionResul
         else:
             angle = np.where(cover[:, j], np.maximum(angle, out_of_plane(site, found, row)), angle)
     sheet.lack(corner, WALL_OUTPUTS)
-    sheet.text(corner, "Corner struts hold this wall from the wall round the corner, which itself moves: not assessed here.")
+    sheet.text(corner, "Corner struts hold this wall from the wall round the corner, which itself moves: not assessed.")
     steep = angle >= STEEPEST - 1e-6
     sheet.shut(steep, (*WALL_OUTPUTS, "settlement"))
-    sheet.text(steep, "A support stands {angle:.1f} degrees out of the plane of the cut: from 40 degrees it is not smeared.")
+    sheet.text(steep, "A support stands {angle:.1f} degrees out of the plane of the cut; from 40 on it is not smeared.")
     return sheet.close(
         CODE,
         "supports",
         basis="smeared stiffness falls with cos^3 of the angle out of the plane",
         reference="project rule (judgement)",
         inputs={"angle": angle},
+        speaks_of=(*WALL_OUTPUTS, "settlement"),
         settled_by="a computation with every support in its real direction",
     )
 

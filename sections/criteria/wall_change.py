@@ -9,7 +9,7 @@ from __future__ import annotations
 import numpy as np
 
 from ingest.model import Limits, Site
-from sections.along import FREE, changes_of, distance_along, find_ends
+from sections.along import FREE, changes_of, distance_along, find_ends, kinds_at
 from sections.criteria.sheet import WALL_OUTPUTS, Sheet
 from sections.model import CriterionResult, FoundPit
 
@@ -28,14 +28,14 @@ def wall_change(site: Site, found: FoundPit, limits: Limits) -> CriterionResult:
     to_end = np.minimum(back, ahead)
     to_change = distance_along(found, changes_of(found))
     reach = REACH * np.where(np.isnan(stations.depth), np.inf, stations.depth) + 1e-9
-    kinds = np.array([run.wall.kind for run in found.shape.runs])[stations.run]
+    kinds = kinds_at(found)
     affected = (*WALL_OUTPUTS, "settlement")
     near_end = np.isfinite(to_end) & (to_end <= reach)
     sheet.lack(near_end, affected)
-    sheet.text(near_end, "The wall ends {to_end:.1f} m from here; what lies beyond is not known, so nothing is claimed.")
+    sheet.text(near_end, "The wall ends {to_end:.1f} m from here; what lies beyond is not known: nothing is claimed.")
     near_change = np.isfinite(to_change) & (to_change <= reach)
     sheet.lack(near_change, affected)
-    sheet.text(near_change, "The construction of the wall changes {to_change:.1f} m from here: not assessed within one depth.")
+    sheet.text(near_change, "The construction of the wall changes {to_change:.1f} m from here: not assessed so near.")
     bare = np.isin(kinds, ("none", "unknown"))
     sheet.lack(bare, affected)
     sheet.text(bare, "No wall, or a wall of unknown kind, stands here.")
@@ -45,5 +45,6 @@ def wall_change(site: Site, found: FoundPit, limits: Limits) -> CriterionResult:
         basis="rule: beside a change of wall nothing is claimed",
         reference="project rule (judgement)",
         inputs={"to_end": to_end, "to_change": to_change},
+        speaks_of=(*WALL_OUTPUTS, "settlement"),
         settled_by="a computation with the real walls along the perimeter",
     )

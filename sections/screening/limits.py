@@ -66,18 +66,3 @@ def settle(step: Callable[[Floats], Floats], start: Floats) -> tuple[Floats, boo
             share, *_ = np.linalg.lstsq(dF, fs[-1], rcond=1e-10)
             x = x - (dX + dF) @ share
     return x.reshape(start.shape), False
-
-
-def drained_limits(
-    K0: Floats, Ka: Floats, Kp: Floats, vertical: Floats, vertical_dug: Floats
-) -> tuple[Floats, Floats, Floats]:
-    """Relief, reserve and lack of drained ground, from effective stress under the original and the dug surface."""
-    left = Kp * vertical_dug - K0 * vertical
-    return np.maximum((K0 - Ka) * vertical, 0.0), np.maximum(left, 0.0), np.maximum(-left, 0.0)
-
-
-def undrained_limits(K0: Floats, su: Floats, vertical: Floats, vertical_dug: Floats) -> tuple[Floats, Floats, Floats]:
-    """The same in total stress: active sigma_v - 2 s_u, passive sigma_v + 2 s_u, never below zero."""
-    left = vertical_dug + 2 * su - K0 * vertical
-    active = np.maximum(vertical - 2 * su, 0.0)
-    return np.maximum(K0 * vertical - active, 0.0), np.maximum(left, 0.0), np.maximum(-left, 0.0)

@@ -6,9 +6,11 @@ from collections.abc import Sequence
 from dataclasses import dataclass
 
 import numpy as np
+from scipy.linalg import cho_factor, cho_solve
 
-from sections.model import Floats
-from sections.screening.hermite import line_matrices, moments
+from sections.model import Floats, Ints
+from sections.screening.hermite import LineMatrices, line_matrices, moments
+from sections.screening.limits import at_element_ends
 from sections.screening.wall import DOWN, FoldedWall
 
 
@@ -31,25 +33,93 @@ class TwinAnswer:
     force: Floats
 
 
-def strip(wall: FoldedWall, facet: int) -> tuple[Floats, Floats]:
-    """Stiffness (2 nz, 2 nz) and load of one metre of wall at a facet, without supports."""
-    down = line_matrices(np.diff(wall.z))
+@dataclass(frozen=True)
+class Strip:
+    """One metre of wall without supports: stiffness (2 nz, 2 nz), load, and where the wall is (ne,)."""
+
+    stiffness: Floats
+    load: Floats
+    bending: Floats
+
+
+@dataclass(frozen=True)
+class TwinModel:
+    """One or two strips joined by props, factorised. `free` are the unknowns that have wall."""
+
+    z: Floats
+    down: LineMatrices
+    strips: Sequence[Strip]
+    props: Sequence[Prop]
+    free: Ints
+    factor: tuple[Floats, bool]
+    load: Floats
+
+    def solve(self, extra: Floats) -> Floats:
+        """Unknowns under the load and an extra pressure (strips, ne, 2)."""
+        load = self.load + np.concatenate([_pressure_load(self.down, e) for e in extra])
+        U = np.zeros(len(load))
+        U[self.free] = cho_solve(self.factor, load[self.free])
+        return U
+
+    def movement(self, extra: Floats) -> Floats:
+        """Deflection (strips, ne, 2) at element tops and bases under an extra pressure."""
+        w = self.solve(extra)[0::2].reshape(len(self.strips), -1)
+        return at_element_ends(w)
+
+    def answer(self, extra: Floats) -> TwinAnswer:
+        """Answer of the first wall."""
+        U = self.solve(extra)
+        size = 2 * len(self.z)
+        w, slope = U[0:size:2], U[1:size:2]
+        M = moments(self.z, w, slope, self.strips[0].bending)
+        two = len(self.strips) > 1
+        far = [U[size + 2 * p.opposite] if two and p.opposite >= 0 else 0.0 for p in self.props]
+        force = np.array([p.stiffness * (w[p.node] + other) for p, other in zip(self.props, far, strict=True)])
+        return TwinAnswer(self.z, w, M, force)
+
+
+def cut_strip(wall: FoldedWall, facet: int) -> Strip:
+    """One metre of the wall at a facet."""
+    down, on = line_matrices(np.diff(wall.z)), wall.on[facet].astype(float)
+    bending = wall.Dv[facet] * on
+    element = (
+        bending[:, None, None] * down.bend
+        + (wall.spring[facet] * on)[:, None, None] * down.mass
+        + (DOWN * wall.spread[facet] * on)[:, None, None] * down.slope
+    )
     size = 2 * len(wall.z)
-    stiffness, load = np.zeros((size, size)), np.zeros(size)
-    for e in np.nonzero(wall.on[facet])[0]:
-        i = slice(2 * e, 2 * e + 4)
-        stiffness[i, i] += (
-            wall.Dv[facet] * down.bend[e]
-            + wall.spring[facet, e] * down.mass[e]
-            + DOWN * wall.spread[facet, e] * down.slope[e]
-        )
-        top, base = wall.pressure[facet, e]
-        load[i] += top * (down.even[e] - down.ramp[e]) + base * down.ramp[e]
-    return stiffness, load
+    stiffness = np.zeros((size, size))
+    index = 2 * np.arange(len(on))[:, None] + np.arange(4)
+    np.add.at(stiffness, (index[:, :, None], index[:, None, :]), element)
+    return Strip(stiffness, _pressure_load(down, wall.pressure[facet] * on[:, None]), bending)
+
+
+def _pressure_load(down: LineMatrices, pressure: Floats) -> Floats:
+    """Load vector (2 nz,) of a pressure (ne, 2) linear down each element."""
+    each = pressure[:, :1] * (down.even - down.ramp) + pressure[:, 1:] * down.ramp
+    index = 2 * np.arange(len(each))[:, None] + np.arange(4)
+    return np.bincount(index.ravel(), each.ravel(), 2 * len(each) + 2).astype(float)
+
+
+def solve_strips(strips: Sequence[Strip], props: Sequence[Prop], wall: FoldedWall) -> TwinModel:
+    """Join strips by their props and factorise."""
+    size = len(strips[0].load)
+    K = np.zeros((size * len(strips), size * len(strips)))
+    for i, strip in enumerate(strips):
+        K[i * size : (i + 1) * size, i * size : (i + 1) * size] = strip.stiffness
+    two = len(strips) > 1
+    for prop in props:
+        spot = [2 * prop.node] + ([size + 2 * prop.opposite] if two and prop.opposite >= 0 else [])
+        K[np.ix_(spot, spot)] += prop.stiffness
+    own = np.concatenate([strip.stiffness.diagonal() for strip in strips])
+    free = np.flatnonzero(own > 0).astype(np.int64)
+    factor = cho_factor(K[np.ix_(free, free)])
+    load = np.concatenate([strip.load for strip in strips])
+    return TwinModel(wall.z, line_matrices(np.diff(wall.z)), strips, props, free, factor, load)
 
 
 def solve_twin(wall: FoldedWall, facet: int, props: Sequence[Prop], opposite: int | None = None) -> TwinAnswer:
-    """Solve the section cut at a facet.
+    """Solve the section cut at a facet, linear ground.
 
     Args:
         wall: The folded wall; its arrays at the facet are the section.
@@ -60,21 +130,5 @@ def solve_twin(wall: FoldedWall, facet: int, props: Sequence[Prop], opposite: in
     Returns:
         The first wall's answer.
     """
-    first, load = strip(wall, facet)
-    size = len(load)
-    K, F = first, load
-    if opposite is not None:
-        second, load2 = strip(wall, opposite)
-        K = np.block([[first, np.zeros((size, size))], [np.zeros((size, size)), second]])
-        F = np.concatenate([load, load2])
-    for prop in props:
-        spot = [2 * prop.node] + ([size + 2 * prop.opposite] if prop.opposite >= 0 and opposite is not None else [])
-        K[np.ix_(spot, spot)] += prop.stiffness
-    free = np.nonzero(K.diagonal() > 0)[0]
-    U = np.zeros(len(F))
-    U[free] = np.linalg.solve(K[np.ix_(free, free)], F[free])
-    w, slope = U[0:size:2], U[1:size:2]
-    M = moments(wall.z, w, slope, np.where(wall.on[facet], wall.Dv[facet], 0.0))
-    across = [U[size + 2 * p.opposite] if p.opposite >= 0 and opposite is not None else 0.0 for p in props]
-    force = np.array([p.stiffness * (w[p.node] + far) for p, far in zip(props, across, strict=True)])
-    return TwinAnswer(wall.z, w, M, force)
+    strips = [cut_strip(wall, f) for f in ([facet] if opposite is None else [facet, opposite])]
+    return solve_strips(strips, props, wall).answer(np.zeros((len(strips), len(wall.z) - 1, 2)))

@@ -1,4 +1,4 @@
-"""Circles through points, near-circular rings and regular polygons, and near-circular parts of a perimeter."""
+"""The best circle through points."""
 
 from __future__ import annotations
 

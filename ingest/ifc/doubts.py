@@ -1,0 +1,121 @@
+"""What a reader took as so, what wants a look, and what only the engineer can say."""
+
+from __future__ import annotations
+
+import json
+
+import numpy as np
+
+from ingest.ifc.georeference import Georeference
+from ingest.ifc.units import ProjectUnits
+from ingest.model import Part
+from ingest.trail import Assumption, Finding, Question, Reading, Severity
+
+LEAST_EXTENT = 1.0
+GREATEST_EXTENT = 20_000.0
+"""Sites smaller or larger than this, m, are taken for a wrong unit (judgement)."""
+SHOWN = 5
+
+
+class Doubts:
+    """Collects findings, assumptions and questions of one file in the order they come up."""
+
+    def __init__(self, file: str) -> None:
+        self._file = file
+        self._findings: list[Finding] = []
+        self._assumptions: list[Assumption] = []
+        self._questions: list[Question] = []
+        self._damaged: dict[str, str] = {}
+        self._unplaced: dict[str, str] = {}
+
+    def findings(self) -> tuple[Finding, ...]:
+        """All findings so far."""
+        return tuple(self._findings)
+
+    def assumptions(self) -> tuple[Assumption, ...]:
+        """All assumptions so far."""
+        return tuple(self._assumptions)
+
+    def questions(self) -> tuple[Question, ...]:
+        """All questions so far."""
+        return tuple(self._questions)
+
+    def _find(self, code: str, severity: Severity, text: str) -> None:
+        number = len(self._findings) + 1
+        self._findings.append(
+            Finding(id=f"{self._file}-F{number}", code=code, severity=severity, where=self._file, text=text)
+        )
+
+    def note_damage(self, item: str, why: str) -> None:
+        """An element whose attributes or geometry could not be read."""
+        self._damaged.setdefault(item, why[:120])
+
+    def note_unplaced(self, item: str, why: str | None) -> None:
+        """An element that cannot be placed."""
+        self._unplaced.setdefault(item, why or "its placement leads back to itself")
+
+    def about_damage(self, damage: list[str], losses: list[str]) -> None:
+        """Turn damage into losses and findings."""
+        for text in damage:
+            self._find("ifc-damage", "check", text)
+        for found, what in ((self._damaged, "cannot be read"), (self._unplaced, "cannot be placed")):
+            if found:
+                first = "; ".join(f"{item} ({why})" for item, why in list(found.items())[:SHOWN])
+                losses.append(f"{len(found)} elements {what}: {first}")
+        for text in losses:
+            self._find("ifc-loss", "check", text)
+
+    def about_georeference(self, georeference: Georeference) -> None:
+        """Findings and assumptions of the map conversion."""
+        for code, text in georeference.checks:
+            self._find(f"ifc-{code}", "note" if code == "true-north" else "check", text)
+        for code, text, basis in georeference.assumed:
+            self._assume(code, text, basis)
+
+    def _assume(self, code: str, text: str, basis: str) -> None:
+        number = len(self._assumptions) + 1
+        self._assumptions.append(
+            Assumption(id=f"{self._file}-A{number}", code=code, about=self._file, text=text, basis=basis)
+        )
+
+    def about_units(self, units: ProjectUnits, parts: list[Part]) -> None:
+        """Ask about the length unit when it is missing, or when the model has an unlikely size."""
+        for text in units.doubts:
+            self._find("ifc-unit", "check", text)
+        extent = extent_of(parts)
+        if not units.declared:
+            better = _better_unit(extent)
+            self._assume("length-unit", f"no length unit is declared; {units.name} was used", "none given in the file")
+            self._ask(units, better, f"no length unit is declared; in {units.name} the model is {extent:.4g} m across")
+        elif parts and not LEAST_EXTENT <= extent <= GREATEST_EXTENT:
+            text = f"the model is {extent:.4g} m across in its declared unit, {units.name}"
+            self._find("ifc-unit-size", "check", text)
+            self._ask(units, _better_unit(extent / units.length), text)
+
+    def _ask(self, units: ProjectUnits, better: str, text: str) -> None:
+        line = f'[files.{json.dumps(self._file)}] length_unit = "{better}"'
+        readings = (
+            Reading(reading=f"the unit is {units.name}", evidence=text, confidence=0.3),
+            Reading(reading=f"the unit is {better}", evidence="gives the model a likely size", confidence=0.5),
+        )
+        self._questions.append(
+            Question(
+                id=f"{self._file}-Q{len(self._questions) + 1}", about="length unit", readings=readings, brief_line=line
+            )
+        )
+
+
+def extent_of(parts: list[Part]) -> float:
+    """Largest side of the box about all points of all parts, m; 0 without parts."""
+    at = [point for part in parts for point in part.points]
+    if not at:
+        return 0.0
+    return float(np.ptp(np.array(at), axis=0).max())
+
+
+def _better_unit(size: float) -> str:
+    """Unit that makes a model of this many units a likely site of 5 to 500 m."""
+    for unit, metres in (("m", 1.0), ("mm", 1e-3), ("cm", 1e-2), ("foot", 0.3048)):
+        if 5.0 <= size * metres <= 500.0:
+            return unit
+    return "m" if size < 1000 else "mm"

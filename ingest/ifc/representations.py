@@ -1,0 +1,100 @@
+"""Which representation of a product to read: the body in its most telling form, else axis, footprint or box."""
+
+from __future__ import annotations
+
+from typing import Any
+
+from ingest.ifc.attributes import IDENTIFIER, REPRESENTATION_TYPE, REPRESENTATIONS
+from ingest.ifc.properties import UNREADABLE
+from ingest.ifc.solids import Described, ItemReader, Line
+
+Entity = Any
+
+_BEST_FIRST = {
+    kind: rank
+    for rank, kind in enumerate(
+        (
+            "SweptSolid", "AdvancedSweptSolid", "MappedRepresentation", "Clipping", "CSG", "SolidModel", "Brep",
+            "AdvancedBrep", "Tessellation", "SurfaceModel", "SectionedSpine",
+        )
+    )
+}  # fmt: skip
+_AXES = frozenset({"Axis", "Reference", "Directrix"})
+_FOOTPRINTS = frozenset({"FootPrint", "Footprint", "Plan"})
+_NOT_READ = frozenset({"Box", "CoG", "Profile", "Annotation", "Lighting", "Clearance", "Light", "WalkingLine"})
+
+
+class Chosen:
+    """What was read of one product: bodies, axis, footprint, and why nothing was."""
+
+    __slots__ = ("axes", "bodies", "footprints", "note", "reason")
+
+    def __init__(self) -> None:
+        self.bodies: Described = ()
+        self.axes: Described = ()
+        self.footprints: Described = ()
+        self.reason = "no geometry"
+        self.note = ""
+
+
+def choose(shape: Entity | None, items: ItemReader, want_axis: bool) -> Chosen:
+    """Read the representation of a product.
+
+    Args:
+        shape: IfcProductDefinitionShape or None.
+        items: Reader of items.
+        want_axis: False when a body is enough.
+    """
+    chosen = Chosen()
+    if shape is None:
+        return chosen
+    representations = shape.get_argument(REPRESENTATIONS)
+    if len(representations) == 1 and representations[0].get_argument(IDENTIFIER) == "Body":
+        chosen.bodies = _try([representations[0]], items, chosen)
+        return chosen
+    bodies, axes, footprints, boxes = _sorted(representations)
+    chosen.bodies = _try(bodies, items, chosen)
+    if axes and (want_axis or not chosen.bodies):
+        chosen.axes = _try(axes, items, Chosen())
+    if not chosen.bodies:
+        chosen.footprints = _try(footprints, items, Chosen())
+        if boxes and not chosen.axes and not _closed(chosen.footprints):
+            chosen.bodies = _try(boxes, items, Chosen())
+    return chosen
+
+
+def _sorted(representations: tuple[Entity, ...]) -> tuple[list[Entity], list[Entity], list[Entity], list[Entity]]:
+    bodies, axes, footprints, boxes = [], [], [], []
+    for one in representations:
+        name = one.get_argument(IDENTIFIER) or ""
+        if name in _AXES:
+            axes.append(one)
+        elif name in _FOOTPRINTS:
+            footprints.append(one)
+        elif name == "Box":
+            boxes.append(one)
+        elif name not in _NOT_READ:
+            bodies.append(one)
+    bodies.sort(key=lambda one: _BEST_FIRST.get(one.get_argument(REPRESENTATION_TYPE) or "", len(_BEST_FIRST)))
+    return bodies, axes, footprints, boxes
+
+
+def _try(representations: list[Entity], items: ItemReader, chosen: Chosen) -> Described:
+    """The first representation that can be read; a body of bare lines only when there is no better one."""
+    spare: Described = ()
+    for one in representations:
+        try:
+            found = items.representation(one)
+        except (*UNREADABLE, RecursionError, OverflowError, ZeroDivisionError) as error:
+            text = str(error)
+            chosen.reason = text if text.endswith("is not read") and len(text) < 80 else "geometry cannot be read"
+            chosen.note = chosen.note or text[:120]
+            continue
+        if found and not all(isinstance(shape, Line) for shape, _ in found):
+            return found
+        spare = spare or found
+    return spare
+
+
+def _closed(described: Described) -> bool:
+    return any(isinstance(shape, Line) and len(shape.points) > 3 for shape, _ in described)

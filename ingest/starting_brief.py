@@ -1,0 +1,137 @@
+"""A first brief for the engineer: what was found, what was guessed, what is asked, as lines to uncomment."""
+
+from __future__ import annotations
+
+from collections.abc import Iterator
+from pathlib import Path
+
+from ingest.model import NOTICE, Column, Load, Pile, Plate, Receptor, Site, Support, Waler, WallPiece
+from ingest.receive import shown
+
+Recorded = WallPiece | Pile | Support | Waler | Plate | Column | Load | Receptor
+Roled = tuple[str, str, str, str, float]
+
+
+def write_starting_brief(site: Site, path: str | Path) -> None:
+    """Write a brief in which every guess and every question is a commented line with its evidence.
+
+    Args:
+        site: The site as read.
+        path: Where to write; an existing file is left alone.
+
+    Raises:
+        FileExistsError: The file is there already.
+    """
+    text = "\n".join(_lines(site)) + "\n"
+    with Path(path).open("x", encoding="utf-8", newline="\n") as stream:
+        stream.write(text)
+
+
+def _lines(site: Site) -> Iterator[str]:
+    yield "# Starting brief. Lengths m, forces kN, stresses kPa, angles degrees; plan coordinates world."
+    yield f"# {NOTICE}"
+    yield "# Take the # off a line to state it; a line left commented changes nothing."
+    yield ""
+    yield "[site]"
+    yield f"name = {quoted(site.name)}"
+    yield from _given_or_asked("ground_level", site.ground_level)
+    yield ""
+    yield "[levels]"
+    yield from _given_or_asked("formation", site.formation)
+    yield from _given_or_asked("top", site.wall_top)
+    yield from _given_or_asked("dig_allowance", site.dig_allowance)
+    yield from _given_or_asked("water_retained", site.water_retained)
+    yield from _given_or_asked("water_excavated", site.water_excavated)
+    yield from _files(site)
+    yield from _roles(site)
+    yield from _questions(site)
+    yield from _assumptions(site)
+
+
+def _given_or_asked(key: str, value: float | None) -> Iterator[str]:
+    yield f"# {key} = 0.0    # m, not given" if value is None else f"{key} = {value!r}"
+
+
+def _files(site: Site) -> Iterator[str]:
+    for entry in site.inputs:
+        if entry.kind == "brief":
+            continue
+        yield ""
+        yield f"# {one_line(entry.file)}: {entry.kind} {one_line(entry.schema_or_version)}, read in {entry.length_unit}"
+        yield f"# [files.{quoted(entry.file)}]"
+        if entry.kind != "ags":
+            yield f"# length_unit = {quoted(entry.length_unit)}"
+        yield "# shift = [0.0, 0.0]"
+
+
+def _roles(site: Site) -> Iterator[str]:
+    counts: dict[Roled, int] = {}
+    for item in _records(site):
+        if item.evidence is None or item.evidence.why.startswith("brief"):
+            continue
+        kind = getattr(item, "kind", None) if item.evidence.role == "wall" else None
+        key, value = ("layer", item.layer) if item.layer else ("name", item.name)
+        if value:
+            line = f"match = {{ {key} = {quoted(value)} }}"
+            roled = (line, item.evidence.role, kind or "", item.evidence.why, item.evidence.confidence)
+            counts[roled] = counts.get(roled, 0) + 1
+    if counts:
+        yield ""
+        yield "# Roles as found; state the ones that are wrong."
+    for (line, role, kind, why, confidence), count in sorted(counts.items()):
+        yield ""
+        yield f"# {count} found: {one_line(why)} (confidence {confidence:.2f})"
+        yield "# [[roles]]"
+        yield f"# {line}"
+        yield f'# role = "{role}"'
+        if kind:
+            yield f'# wall_kind = "{kind}"'
+
+
+def _records(site: Site) -> Iterator[Recorded]:
+    yield from site.walls
+    yield from site.piles
+    yield from site.supports
+    yield from site.walers
+    yield from site.plates
+    yield from site.columns
+    yield from site.loads
+    yield from site.receptors
+
+
+def _questions(site: Site) -> Iterator[str]:
+    if site.questions:
+        yield ""
+        yield "# Questions; the lines below each one settle it."
+    for question in site.questions:
+        yield ""
+        yield f"# {question.id}: {one_line(question.about)}"
+        for reading in question.readings:
+            yield f"#   {one_line(reading.reading)}: {one_line(reading.evidence)} (confidence {reading.confidence:.2f})"
+        for line in question.brief_line.split("\n"):
+            yield f"# {one_line(line)}"
+
+
+def _assumptions(site: Site) -> Iterator[str]:
+    if site.assumptions:
+        yield ""
+        yield "# Assumptions; confirm the ones that hold."
+    for assumption in site.assumptions:
+        yield ""
+        about = f"{assumption.about}: " if assumption.about else ""
+        yield f"# {one_line(about + assumption.text)} ({one_line(assumption.basis)})"
+        yield "# [[decisions.confirm]]"
+        yield f"# assumption = {quoted(assumption.id)}"
+        yield '# by = ""'
+
+
+def quoted(text: str) -> str:
+    """A TOML basic string of any text."""
+    escapes = {"\\": "\\\\", '"': '\\"', "\n": "\\n", "\r": "\\r", "\t": "\\t"}
+    safe = (escapes.get(c) or (f"\\u{ord(c):04x}" if ord(c) < 32 or ord(c) == 127 else c) for c in text)
+    return '"' + "".join(safe) + '"'
+
+
+def one_line(text: str) -> str:
+    """A text that cannot leave its comment line."""
+    return shown(text.replace("\n", " "))

@@ -1,0 +1,117 @@
+"""Run the screening of one pit: every variant, every stage, the ratio at every facet, and the band they span."""
+
+from __future__ import annotations
+
+from collections.abc import Callable
+from dataclasses import dataclass
+
+import numpy as np
+
+from sections.model import Floats, Ints
+from sections.screening.demands import NAMES, Demands, over_stages, ratios, twin_demands, wall_demands
+from sections.screening.limits import PressureLimits, at_element_ends, excess, settle
+from sections.screening.scene import Scene, Variant, beams_of, members_of, wall_of
+from sections.screening.solve import Answer, Factored, answer, factorise
+from sections.screening.strips import Smeared, smear_rows, stage_twins
+from sections.screening.supports import Members, select
+from sections.screening.wall import FoldedWall, load_vector
+
+
+@dataclass(frozen=True)
+class VariantRatios:
+    """Ratios (ns, 4) of one variant for `NAMES`, and the stage that governs in 3D and in the twin, (ns, 4) each."""
+
+    variant: Variant
+    ratio: Floats
+    stage_real: Ints
+    stage_flat: Ints
+
+
+def run_variant(scene: Scene, variant: Variant) -> VariantRatios:
+    """Run all stages of one variant."""
+    members, rows = members_of(scene, variant) if scene.found.rows else (None, ())
+    smeared = smear_rows(scene, members, rows) if members is not None else _no_rows(scene)
+    real, flat = [], []
+    for dig_to, rows_in in scene.stages:
+        wall, limits = wall_of(scene, variant, dig_to)
+        keep = np.array([rows_in[r] for r in rows], bool)
+        here = select(members, keep) if members is not None else _no_members()
+        found = _solve(wall, limits, factorise(wall, here, beams_of(scene, variant, rows_in)))
+        force = np.full(len(rows), np.nan)
+        force[keep] = found.force
+        real.append(wall_demands(wall, found, _per_metre(smeared, force)))
+        groups, answers, which = stage_twins(wall, limits, smeared, rows_in)
+        flat.append(twin_demands(groups, answers, which, len(scene.found.rows)))
+    most_real, where_real = over_stages(real)
+    most_flat, where_flat = over_stages(flat)
+    piles = bool(np.any(scene.found.stations.rows))
+    return VariantRatios(
+        variant,
+        ratios(most_real, most_flat, bay_mean(scene, smeared), piles),
+        np.column_stack([where_real[name] for name in NAMES]),
+        np.column_stack([where_flat[name] for name in NAMES]),
+    )
+
+
+def _solve(wall: FoldedWall, limits: PressureLimits, model: Factored) -> Answer:
+    if not np.any(np.isfinite(limits.relief)):
+        return answer(model, model.solve(model.load))
+
+    def movement(over: Floats) -> Floats:
+        U = model.solve(model.load + load_vector(wall, np.where(wall.on[:, :, None], over, 0.0)))
+        value = answer(model, U).value
+        ends, normals = wall.ends, wall.normals
+        nodes = sum(np.einsum("sd,sdz->sz", normals, value[ends[:, i], :2]) for i in (0, 1)) / 2
+        return at_element_ends(np.asarray(nodes))
+
+    over, _ = settle(lambda e: excess(limits, movement(e)), np.zeros(wall.pressure.shape))
+    U = model.solve(model.load + load_vector(wall, np.where(wall.on[:, :, None], over, 0.0)))
+    return answer(model, U)
+
+
+def _per_metre(smeared: Smeared, force: Floats) -> Floats:
+    """(ns, rows) force of the member that stands for each facet over its tributary width, square to the wall."""
+    if len(force) == 0:
+        return np.zeros((len(smeared.opposite), 0))
+    each = np.where(smeared.member >= 0, force[smeared.member], np.nan) / smeared.tributary
+    return np.asarray(each.T)
+
+
+def bay_mean(scene: Scene, smeared: Smeared) -> Callable[[Floats], Floats]:
+    """Mean over one bay of supports centred at each facet, within its side; the value itself where there is no row."""
+    lengths = np.hypot(*np.diff(np.vstack([scene.grid.points, scene.grid.points[:1]]), axis=0).T)[: len(scene.EI)]
+    sides = scene.found.stations.side[scene.grid.station]
+    widths = np.full(len(scene.EI), 0.0)
+    if len(smeared.tributary):
+        widths = np.nan_to_num(np.max(np.nan_to_num(smeared.tributary), axis=0))
+
+    def mean(values: Floats) -> Floats:
+        out = values.copy()
+        for side in np.unique(sides):
+            here = np.flatnonzero(sides == side)
+            edges = np.concatenate([[0.0], np.cumsum(lengths[here])])
+            total = np.concatenate([[0.0], np.cumsum(values[here] * lengths[here])])
+            middle = (edges[1:] + edges[:-1]) / 2
+            half = np.maximum(widths[here] / 2, lengths[here] / 2)
+            low, high = np.maximum(middle - half, 0.0), np.minimum(middle + half, edges[-1])
+            out[here] = (np.interp(high, edges, total) - np.interp(low, edges, total)) / (high - low)
+        return np.asarray(out)
+
+    return mean
+
+
+def _no_members() -> Members:
+    nothing = np.zeros(0, int)
+    return Members(
+        stiffness=np.zeros(0), column=nothing, node=nothing, far_column=nothing, far_node=nothing,
+        direction=np.zeros((0, 2)), preload=np.zeros(0),
+    )  # fmt: skip
+
+
+def _no_rows(scene: Scene) -> Smeared:
+    ns = len(scene.EI)
+    nothing = np.zeros((0, ns))
+    return Smeared(
+        stiffness=nothing, tributary=nothing, member=np.zeros((0, ns), int), node=np.zeros(0, int),
+        far_node=np.zeros(0, int), opposite=np.full(ns, -1),
+    )  # fmt: skip

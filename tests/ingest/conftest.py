@@ -1,0 +1,8 @@
+"""The builders beside this file are imported by the tests of the readers."""
+
+from __future__ import annotations
+
+import sys
+from pathlib import Path
+
+sys.path.insert(0, str(Path(__file__).parent))
