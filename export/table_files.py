@@ -1,9 +1,10 @@
-"""How a table becomes a file: CSV that no spreadsheet takes for formulas, and a workbook with equal bytes every time."""
+"""How a table becomes a file: CSV that no spreadsheet takes for formulas, and a workbook of equal bytes every time."""
 
 from __future__ import annotations
 
 import csv
 import io
+import zipfile
 from collections.abc import Sequence
 from dataclasses import dataclass
 from datetime import datetime
@@ -70,12 +71,25 @@ def write_workbook(sheets: Sequence[Sheet], path: Path) -> None:
     import xlsxwriter  # type: ignore[import-untyped]
 
     options = {"strings_to_formulas": False, "strings_to_urls": False, "strings_to_numbers": False}
-    with xlsxwriter.Workbook(str(path), options) as book:
+    made = io.BytesIO()
+    with xlsxwriter.Workbook(made, {**options, "in_memory": True}) as book:
         book.set_properties({"title": "cutworthy tables", "comments": NOTICE, "created": EPOCH})
         head = book.add_format({"bold": True, "text_wrap": True, "valign": "top", "bottom": 1})
         wrap = book.add_format({"text_wrap": True, "valign": "top"})
         for sheet in sheets:
             _fill(book.add_worksheet(sheet.name), sheet, head, wrap)
+    path.write_bytes(_sorted_archive(made.getvalue()))
+
+
+def _sorted_archive(data: bytes) -> bytes:
+    """The same ZIP with its members by name and the fixed date."""
+    out = io.BytesIO()
+    with zipfile.ZipFile(io.BytesIO(data)) as old, zipfile.ZipFile(out, "w", zipfile.ZIP_DEFLATED) as new:
+        for name in sorted(old.namelist()):
+            info = zipfile.ZipInfo(name, EPOCH.timetuple()[:6])
+            info.compress_type = zipfile.ZIP_DEFLATED
+            new.writestr(info, old.read(name))
+    return out.getvalue()
 
 
 def _fill(page: Any, sheet: Sheet, head: Any, wrap: Any) -> None:

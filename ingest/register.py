@@ -123,5 +123,6 @@ def _move(file: FileParts, shift: Point, turn: float) -> FileParts:
     return replace(
         file,
         parts=tuple(of_part(part) for part in file.parts),
+        setting=tuple(of_part(part) for part in file.setting),
         boreholes=tuple(of_hole(hole) for hole in file.boreholes),
     )

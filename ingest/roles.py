@@ -15,7 +15,7 @@ from ingest.model import Evidence, Part, Role, WallKind
 from ingest.record import record
 from ingest.surroundings import WALL_ROW, Place, find_places, straight, upright
 from ingest.trail import Question, Reading
-from ingest.words import find_meanings
+from ingest.words import find_meanings, layer_name
 
 LEAST = 0.5
 """Confidence below which a part keeps to the context (judgement)."""
@@ -68,7 +68,7 @@ def find_roles(parts: Sequence[Part], brief: Brief) -> tuple[RoleGiven, ...]:
         One role per part, in the order of `parts`.
     """
     first = [find_role(part, brief, Place()) for part in parts]
-    is_wall = [given.role == "wall" for given in first]
+    is_wall = [given.role == "wall" and given.retaining for given in first]
     is_slab = [given.role == "slab" and given.use != "floor" for given in first]
     places = find_places(parts, is_wall, is_slab)
     return tuple(
@@ -93,7 +93,7 @@ def find_role(part: Part, brief: Brief, place: Place) -> RoleGiven:
         return _given(part, stated)
     if part.form == "text":
         return _given(part, Clue(role="level", why=f'text "{part.text[:40]}"', confidence=0.6))
-    clues = [*_from_class(part, place), *_from_place(part, place), *_from_names(part, place)]
+    clues = [*_from_class(part, place), *_from_properties(part), *_from_place(part, place), *_from_names(part, place)]
     noted = next((clue for clue in clues if clue.use == "annotation"), None)
     if noted is not None:
         return _given(part, noted)
@@ -157,6 +157,19 @@ def _from_class(part: Part, place: Place) -> list[Clue]:
     ]
 
 
+def _from_properties(part: Part) -> list[Clue]:
+    if not part.tags:
+        return []
+    names = {name.casefold() for name in part.tags}
+    found = []
+    for entry in _vocabulary()["property"]:
+        said = sorted(names & set(entry["names"]))
+        if said:
+            why = f"properties {', '.join(said)}"
+            found.append(Clue(role=entry["role"], why=why, confidence=entry["confidence"]))
+    return found
+
+
 def _from_place(part: Part, place: Place) -> list[Clue]:
     clues: list[Clue] = []
     if place.row_count and place.row_ratio < WALL_ROW:
@@ -178,7 +191,8 @@ def _from_place(part: Part, place: Place) -> list[Clue]:
 
 def _from_names(part: Part, place: Place) -> list[Clue]:
     clues = []
-    for what, text, share in (("layer", part.layer, 1.0), ("name", part.name, 0.9)):
+    name = "" if part.name == part.layer else part.name
+    for what, text, share in (("layer", layer_name(part.layer), 1.0), ("name", name, 0.9)):
         meanings = find_meanings(text) if text else ()
         real = [m for m in meanings if m.role != "context" or m.use == "annotation"]
         for meaning in real or meanings:
@@ -262,9 +276,13 @@ def _given(part: Part, clue: Clue, question: Question | None = None) -> RoleGive
 
 
 @cache
+def _vocabulary() -> dict[str, Any]:
+    return tomllib.loads(files("ingest").joinpath("roles_classes.toml").read_text(encoding="utf-8"))
+
+
+@cache
 def _class_entry(cls: str, kind: str) -> dict[str, Any] | None:
-    data = tomllib.loads(files("ingest").joinpath("roles_classes.toml").read_text(encoding="utf-8"))
-    entries = [entry for entry in data["class"] if cls.startswith(entry["cls"])]
+    entries = [entry for entry in _vocabulary()["class"] if cls.startswith(entry["cls"])]
     exact = [entry for entry in entries if kind and kind in entry.get("predefined", ())]
     plain = [entry for entry in entries if "predefined" not in entry]
     return max(exact or plain, key=lambda entry: len(entry["cls"]), default=None)

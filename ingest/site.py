@@ -8,6 +8,7 @@ from difflib import get_close_matches
 from pathlib import Path
 from typing import TypeVar
 
+from ingest.basement import ground_given, sort_building
 from ingest.brief import Brief, read_brief
 from ingest.build_floors import build_columns, build_floors, build_plates
 from ingest.build_ground import build_limits, build_lines, build_materials, build_stages, build_strata, start_of
@@ -86,8 +87,9 @@ def site_of(files: Sequence[FileParts], brief: Brief, notes: Notes | None = None
         notes.findings += file.findings
     moved = lay_files(files, brief, notes)
     given = find_roles([part for file in moved.files for part in file.parts], brief)
+    given, ground = sort_building(given, moved.files, notes)
     notes.questions += [item.question for item in given if item.question is not None]
-    site = _records(given, moved, notes)
+    site = _records(given, moved, ground, notes)
     site = note_missing(site, given, notes)
     questions, assumptions, findings = notes.numbered()
     return replace(
@@ -100,7 +102,7 @@ def site_of(files: Sequence[FileParts], brief: Brief, notes: Notes | None = None
     )
 
 
-def _records(given: Sequence[RoleGiven], moved: Moved, notes: Notes) -> Site:
+def _records(given: Sequence[RoleGiven], moved: Moved, ground: float | None, notes: Notes) -> Site:
     brief = notes.brief
 
     def having(*roles: Role) -> list[RoleGiven]:
@@ -117,7 +119,7 @@ def _records(given: Sequence[RoleGiven], moved: Moved, notes: Notes) -> Site:
         frame=moved.frame,
         inputs=_inputs(moved, brief),
         start=start_of(brief, moved),
-        ground_level=brief.site.ground_level,
+        ground_level=ground_given(brief, ground),
         formation=brief.levels.formation,
         wall_top=brief.levels.top,
         dig_allowance=brief.levels.dig_allowance,

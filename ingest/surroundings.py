@@ -87,7 +87,8 @@ def _place(n: int, part: Part, row: tuple[int, float] | None, lowest: float | No
     count, ratio = row or (0, math.nan)
     if upright(part) is not None:
         top = part.z_top if part.z_top is not None else max(p[2] for p in part.points)
-        below = lowest is not None and part.form == "bar" and top <= lowest + 0.3
+        tall = part.form == "bar" or part.z_top is not None
+        below = lowest is not None and tall and top <= lowest + 0.3
         return Place(row_count=count, row_ratio=ratio, below_slab=below)
     if not straight(part) or walls.empty:
         return Place()

@@ -46,6 +46,14 @@ def split_words(name: str) -> tuple[str, ...]:
     return tuple(_WORD.findall("".join(letter for letter in flat if not unicodedata.combining(letter))))
 
 
+def layer_name(layer: str) -> str:
+    """A layer's own name: the prefix of the drawing it was bound from taken off, words of ISO 13567-2 fields only."""
+    from ingest.dxf.layers import read_iso_fields, split_xref
+
+    fields = read_iso_fields(layer)
+    return split_xref(layer)[1] if fields is None else f"{fields.element} {fields.user}".replace("-", " ")
+
+
 @cache
 def find_meanings(name: str) -> tuple[Meaning, ...]:
     """Find what a layer or object name means, best first.

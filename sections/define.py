@@ -5,36 +5,32 @@ from __future__ import annotations
 from collections.abc import Sequence
 from dataclasses import dataclass
 
-import numpy as np
-
 from ingest.model import Material, Site
 from ingest.trail import Assumption, Finding, NotAssessed
 from sections.cut import Cut, crossings
 from sections.definition import (
-    Extent,
     Ground,
-    Half,
+    Implied,
+    RingAxis,
     SectionDefinition,
+    SectionLoad,
     SectionMaterial,
     SectionMember,
-    SectionReceptor,
     SectionStage,
     Water,
 )
-from sections.ground import nearest_borehole
 from sections.implied import imply
 from sections.model import Band, Represents, SectionWall, Verdict
 from sections.section_balance import balance_section, list_actions
 from sections.section_bearing import bearing_members
+from sections.section_frame import borehole_distance, local_point, mirrors, model_extent, receptors_met, world_point
 from sections.section_ground import layers_of_cut, soil_material, surface_line, water_lines
 from sections.section_loads import load_rows, load_stages
 from sections.section_plates import slab_members
+from sections.section_ring import ring_parts
 from sections.section_stages import DigProfile, Prop, dig_profile, plan_stages
 from sections.section_supports import support_members
 from sections.section_walls import wall_member
-
-BELOW_TOE = 2.0
-"""Model below the wall toe, in excavated depths (judgement)."""
 
 
 @dataclass(frozen=True, kw_only=True)
@@ -66,95 +62,94 @@ def wall_names(cut: Cut) -> dict[str, str]:
     return names
 
 
+@dataclass(frozen=True, kw_only=True)
+class _Parts:
+    """Members and loads of a section of either kind."""
+
+    members: tuple[SectionMember, ...]
+    props: tuple[Prop, ...]
+    loads: tuple[SectionLoad, ...]
+    implied: tuple[Implied, ...]
+    assumptions: tuple[Assumption, ...]
+    findings: tuple[Finding, ...]
+
+
 def define_section(site: Site, cut: Cut, judged: Judged) -> SectionDefinition:
-    """Build the definition of a plane-strain section.
+    """Build the definition of a section.
 
     Args:
         site: The site as received, local coordinates.
-        cut: The line and its walls, from the retained side of the first wall.
+        cut: The line and its walls: from the retained side of the first wall, or from the axis of a ring.
         judged: Verdicts, bands and stretches worked out elsewhere.
 
     Returns:
-        The definition, per metre run of wall. What the site does not say stays None and is listed as a finding or under
-        `not_assessed`; nothing is put in its place.
+        The definition, per metre run of wall or per radian. What the site does not say stays None and is listed as a
+        finding or under `not_assessed`; nothing is put in its place.
     """
     names = wall_names(cut)
-    assumptions: list[Assumption] = []
-    findings: list[Finding] = []
-    walls: list[SectionMember] = []
-    for wall in cut.walls:
-        member, (taken, seen) = wall_member(site, wall, names[wall.side])
-        walls.append(member)
-        assumptions += taken
-        findings += seen
-    supports, props, refused = support_members(site, cut, names)
-    slabs, slab_props = slab_members(site, cut, names)
-    piles, pile_notes = bearing_members(site, cut)
-    members = (*walls, *supports, *slabs, *piles)
-    loads, load_notes = load_rows(site, cut, judged.stands_for)
+    ring = cut.kind == "axisymmetric"
+    parts = _ring(site, cut, names) if ring else _plane(site, cut, names, judged.stands_for)
     extent, extent_notes = model_extent(cut)
     layers, columns, ground_notes = layers_of_cut(site, cut, extent.z[0])
     water = water_lines(site, cut)
-    materials = _materials(site, members, extent.z[0])
-    dig = _dig(site, cut)
-    stages, staged, gaps = _stages(site, dig, names, (*props, *slab_props), load_stages(site, cut), water)
-    findings += [*refused, *pile_notes, *load_notes, *extent_notes, *ground_notes, *gaps]
+    materials = _materials(site, parts.members, extent.z[0])
+    stages, staged, gaps = _stages(site, _dig(site, cut), names, parts.props, load_stages(site, cut), water)
     return SectionDefinition(
         id=judged.id,
-        kind="plane_strain",
-        line=(_world(site, cut.start), _world(site, cut.end)),
+        kind="axisymmetric" if ring else "plane_strain",
+        line=(world_point(site, cut.start), world_point(site, cut.end)),
         represents=judged.represents,
         verdicts=judged.verdicts,
         walls=judged.walls,
         score=judged.score,
-        half=_half(cut, members, loads),
-        axis=None,
+        half=mirrors(cut, parts.members, parts.loads),
+        axis=RingAxis(point=world_point(site, cut.start), r_of_wall=cut.walls[0].x) if ring else None,
         extent=extent,
         materials=materials,
         ground=Ground(
-            surface=surface_line(cut), layers=layers, water=water, nearest_borehole=_nearest_borehole(site, cut)
+            surface=surface_line(cut), layers=layers, water=water, nearest_borehole=borehole_distance(site, cut)
         ),
-        members=members,
-        loads=loads,
+        members=parts.members,
+        loads=parts.loads,
         stages=stages,
         criteria=judged.criteria,
-        balance=balance_section(cut, members, columns, materials, site.water_retained),
-        implied=imply(members, loads),
-        actions_without_twin=list_actions(cut, members),
-        receptors=_receptors(site, cut),
-        assumptions=(*assumptions, *staged),
-        findings=tuple(findings),
+        balance=balance_section(cut, parts.members, columns, materials, site.water_retained),
+        implied=parts.implied,
+        actions_without_twin=list_actions(cut, parts.members),
+        receptors=receptors_met(site, cut),
+        assumptions=(*parts.assumptions, *staged),
+        findings=(*parts.findings, *extent_notes, *ground_notes, *gaps),
         not_assessed=_not_assessed(site),
     )
 
 
-def model_extent(cut: Cut) -> tuple[Extent, tuple[Finding, ...]]:
-    """Size of the model: the cut's own length, the surface, and BELOW_TOE excavated depths below the lowest toe."""
-    levels = [wall.level for wall in cut.walls]
-    ground = [level["ground"] for level in levels if level["ground"] is not None]
-    low = [level["toe"] if level["toe"] is not None else level["floor"] for level in levels]
-    depth = [g["ground"] - g["floor"] for g in levels if g["ground"] is not None and g["floor"] is not None]
-    known_low = [level for level in low if level is not None]
-    top = max(ground, default=0.0)
-    reach = BELOW_TOE * max(depth, default=0.0)
-    base = (min(known_low) if known_low else top) - reach
-    findings = ()
-    if not known_low or not ground or not depth:
-        findings = (
-            Finding(
-                id="extent",
-                code="level_missing",
-                severity="check",
-                where="extent",
-                text="A ground, dig or toe level is not given: the size of the model is a guess",
-            ),
-        )
-    basis = (
-        "3 excavated depths behind each wall, 2 inside the pit where no far wall is in the section, 2 below the lowest "
-        "known toe or dig level (judgement)"
+def _plane(site: Site, cut: Cut, names: dict[str, str], stands_for: float | None) -> _Parts:
+    made = [wall_member(site, wall, names[wall.side]) for wall in cut.walls]
+    supports, props, refused = support_members(site, cut, names)
+    slabs, slab_props = slab_members(site, cut, names)
+    piles, pile_notes = bearing_members(site, cut)
+    loads, load_notes = load_rows(site, cut, stands_for)
+    members = (*(member for member, _ in made), *supports, *slabs, *piles)
+    return _Parts(
+        members=members,
+        props=(*props, *slab_props),
+        loads=loads,
+        implied=imply(members, loads),
+        assumptions=tuple(a for _, (taken, _) in made for a in taken),
+        findings=(*(f for _, (_, seen) in made for f in seen), *refused, *pile_notes, *load_notes),
     )
-    right = "roller"
-    return Extent(x=(0.0, cut.length), z=(base, top), left="roller", right=right, base="fixed", basis=basis), findings
+
+
+def _ring(site: Site, cut: Cut, names: dict[str, str]) -> _Parts:
+    parts = ring_parts(site, cut, names[cut.walls[0].side])
+    return _Parts(
+        members=parts.members,
+        props=parts.props,
+        loads=parts.loads,
+        implied=parts.implied,
+        assumptions=(),
+        findings=parts.findings,
+    )
 
 
 def _materials(site: Site, members: Sequence[SectionMember], base: float) -> dict[str, SectionMaterial]:
@@ -164,13 +159,13 @@ def _materials(site: Site, members: Sequence[SectionMember], base: float) -> dic
 
 
 def _structural(material: Material) -> SectionMaterial:
-    values = {"unit_weight": material.unit_weight, "E": None if material.E is None else ((0.0, material.E),)}
-    standing = {name: "missing" if value is None else "given" for name, value in values.items()}
+    E = None if material.E is None else ((0.0, material.E),)
+    given = {"unit_weight": material.unit_weight, "E": E}
     return SectionMaterial(
         kind=material.kind,
         unit_weight=material.unit_weight,
-        E=values["E"],
-        standing=standing,  # type: ignore[arg-type]
+        E=E,
+        standing={name: "missing" if value is None else "given" for name, value in given.items()},
     )
 
 
@@ -191,7 +186,7 @@ def _dig(site: Site, cut: Cut) -> DigProfile | None:
         spans = [((inside,), max(at_walls))]
     for floor in cut.walls[0].found.pit.floors:
         if floor.dig_level is not None and floor.outline:
-            spans.append((crossings(cut, [_local(site, point) for point in floor.outline]), floor.dig_level))
+            spans.append((crossings(cut, [local_point(site, point) for point in floor.outline]), floor.dig_level))
     return dig_profile(inside, spans, ground)
 
 
@@ -215,42 +210,6 @@ def _stages(
     return plan_stages(site, dig, tuple(names.values()), props, loads, [line.id for line in water])
 
 
-def _half(cut: Cut, members: Sequence[SectionMember], loads: Sequence[object]) -> Half:
-    """Whether the section mirrors about its middle: walls, levels, supports alike and no load on one side only."""
-    if len(cut.walls) != 2:
-        return Half(is_half=False, at_x=None, basis="one wall only")
-    a, b = cut.walls
-    runs = [w.found.pit.runs[int(w.found.stations.run[w.station])].wall for w in (a, b)]
-    levels = all(a.level[name] == b.level[name] for name in a.level)
-    alike = runs[0].kind == runs[1].kind and runs[0].diameter == runs[1].diameter and runs[0].centres == runs[1].centres
-    one_sided = [member.id for member in members if member.form == "bar" and member.side in ("left", "right")]
-    if levels and alike and not loads and not one_sided:
-        return Half(is_half=False, at_x=(a.x + b.x) / 2, basis="mirrors about its middle: half of it may be analysed")
-    return Half(is_half=False, at_x=None, basis="does not mirror: walls, levels, supports or loads differ")
-
-
-def _nearest_borehole(site: Site, cut: Cut) -> float | None:
-    if not site.boreholes:
-        return None
-    points = [cut.point(x) for x in np.linspace(0.0, cut.length, 21)]
-    return float(np.min(nearest_borehole(site, points)))
-
-
-def _receptors(site: Site, cut: Cut) -> tuple[SectionReceptor, ...]:
-    """Receptors the cut passes through, with their distance to the nearest wall of the section."""
-    found = []
-    for number, receptor in enumerate(site.receptors, start=1):
-        spans = crossings(cut, receptor.points) if len(receptor.points) > 2 else ()
-        for a, b in spans:
-            level = receptor.level if receptor.level is not None else 0.0
-            gap = min(min(abs(a - wall.x), abs(b - wall.x)) for wall in cut.walls)
-            line = ((a, level), (b, level))
-            found.append(
-                SectionReceptor(id=receptor.id or f"receptor-{number}", kind=receptor.kind, at=line, distance=gap)
-            )
-    return tuple(found)
-
-
 def _not_assessed(site: Site) -> tuple[NotAssessed, ...]:
     what = [
         ("overall stability and deep sliding", "no computation of it", "check it apart from this section"),
@@ -262,17 +221,3 @@ def _not_assessed(site: Site) -> tuple[NotAssessed, ...]:
             ("water pressure and base stability against flow", "no water level given", "[levels] water_retained")
         )
     return tuple(NotAssessed(what=a, why=b, what_to_do=c) for a, b, c in what)
-
-
-def _world(site: Site, point: tuple[float, float]) -> tuple[float, float]:
-    turn = np.radians(site.frame.rotation_deg)
-    c, s = np.cos(turn), np.sin(turn)
-    x, y = point
-    return float(site.frame.offset[0] + c * x - s * y), float(site.frame.offset[1] + s * x + c * y)
-
-
-def _local(site: Site, point: tuple[float, float]) -> tuple[float, float]:
-    turn = np.radians(site.frame.rotation_deg)
-    c, s = np.cos(turn), np.sin(turn)
-    x, y = point[0] - site.frame.offset[0], point[1] - site.frame.offset[1]
-    return float(c * x + s * y), float(-s * x + c * y)

@@ -89,7 +89,8 @@ class JudgedPit:
         """Rows of the criteria table for one wall of a section: one for every criterion and output it can speak of."""
         rows: list[Band] = []
         for result in self.results:
-            rows += [self._row(result, station, o, wall) for o, name in enumerate(self.outputs) if name in result.speaks_of]
+            spoken = [o for o, name in enumerate(self.outputs) if name in result.speaks_of]
+            rows += [self._row(result, station, o, wall) for o in spoken]
         return tuple(rows)
 
     def station_outputs(self) -> dict[str, StationOutput]:
@@ -176,6 +177,8 @@ class JudgedPit:
         if self.outputs[o] == "wall_moment_retained_face" and self.found.stations.rows[i]:
             return "No margin has been measured for the retained face of rows of piles."
         name = self.outputs[o]
+        if name == "settlement":
+            return "Only published ratios speak of it, and those never stand alone."
         speaks = [r for r in self.results if name in r.speaks_of and not r.cross_check]
         if not speaks:
             return "No criterion of this version speaks of it."

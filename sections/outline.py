@@ -6,6 +6,7 @@ from collections.abc import Sequence
 from dataclasses import dataclass, replace
 
 import numpy as np
+import shapely
 
 from sections.model import Bools, Floats, Ints
 from sections.sides import Samples, Side, fit_side
@@ -15,6 +16,8 @@ SAGITTA = 0.005
 """Rise of the chords that list an arc, m."""
 SAME_LINE = 0.025
 """Neighbouring sides that one line fits this well are one side, m."""
+LONE = 0.1
+"""A lone point this close to the corner of its neighbours belongs to it, m."""
 SAME_TURN = 6.0
 """And turn less than this, degrees."""
 TANGENT = 3.0
@@ -122,7 +125,7 @@ def build_outline(samples: Samples, sides: Sequence[Side], short: float) -> Outl
     kept = merge_sides(samples, sides)
     if len(kept) == 1 and samples.closed:
         return full_circle(kept[0])
-    return _assemble(_drop_cuts(kept, samples.closed, short), samples.closed)
+    return _assemble(samples, _drop_cuts(samples, kept, short))
 
 
 def full_circle(side: Side, east: float = 0.0) -> Outline:
@@ -140,24 +143,39 @@ def _step(radius: float) -> float:
     return float(2 * np.arccos(max(1 - SAGITTA / radius, 0.5)))
 
 
-def _drop_cuts(sides: list[Side], closed: bool, short: float) -> list[Side]:
-    """Leave out lone points and very short straights between two sides that meet close by."""
+def _drop_cuts(samples: Samples, sides: list[Side], short: float) -> list[Side]:
+    """Settle lone points and very short straights: part of a corner, a side of two bays, or a vertex of their own."""
     kept = list(sides)
+    closed = samples.closed
     k = 0 if closed else 1
     while k < len(kept) - (0 if closed else 1) and len(kept) > (3 if closed else 2):
         side, a, b = kept[k], kept[k - 1], kept[(k + 1) % len(kept)]
-        span = float(np.hypot(*(side.last - side.first)))
-        gap = float(np.hypot(*(b.first - a.last)))
-        if side.form != "arc" and span <= short and _meet(a, b, 1.5 * gap + 0.1) is not None:
-            del kept[k]
-        else:
-            k += 1
+        if side.form == "point" or (side.form == "line" and np.hypot(*(side.last - side.first)) <= short):
+            gap = float(np.hypot(*(b.first - a.last)))
+            point = _meet(a, b, 1.5 * gap + 0.1)
+            middle = 0.5 * (side.first + side.last)
+            if point is not None and (side.form == "line" or _beside((a.last, point, b.first), middle) <= LONE):
+                del kept[k]
+                continue
+            if side.form == "point" and _beside((a.last, b.first), middle) <= SAME_LINE:
+                kept[k] = _straight(a.last, b.first, side.block)
+        k += 1
     return kept
+
+
+def _beside(way: Sequence[Floats], point: Floats) -> float:
+    return float(shapely.LineString(way).distance(shapely.Point(point)))
+
+
+def _straight(first: Floats, last: Floats, block: tuple[int, int]) -> Side:
+    ahead = (last - first) / np.hypot(*(last - first))
+    return Side(form="line", first=first, last=last, ahead=ahead, centre=np.zeros(2), radius=np.inf, turn=0,
+                block=block)  # fmt: skip
 
 
 def _meet(a: Side, b: Side, near: float) -> Floats | None:
     """Point where two sides meet, None where they do not within `near` of their ends."""
-    points = [_candidate for _candidate in _meetings(a, b) if _candidate is not None]
+    points = _meetings(a, b)
     middle = 0.5 * (a.last + b.first)
     points.sort(key=lambda p: float(np.hypot(*(p - middle))))
     if points and np.hypot(*(points[0] - a.last)) <= near and np.hypot(*(points[0] - b.first)) <= near:
@@ -202,21 +220,38 @@ def _arc_arc(a: Side, b: Side) -> list[Floats]:
     return [a.centre + x * unit + side, a.centre + x * unit - side]
 
 
-def _assemble(sides: list[Side], closed: bool) -> Outline:
+def _assemble(samples: Samples, sides: list[Side]) -> Outline:
     """Vertices at the joints, arcs listed by chords."""
     count = len(sides)
     starts, stops = [s.first for s in sides], [s.last for s in sides]
-    pieces = range(count) if closed else range(count - 1)
-    for k in pieces:
-        a, b = sides[k], sides[(k + 1) % count]
-        gap = float(np.hypot(*(b.first - a.last)))
-        turn = abs(float(cross(a.ahead, b.ahead))) if a.form == b.form == "line" else 1.0
-        point = _meet(a, b, 1.2 * gap / max(turn, 0.05) + 0.3)
-        if point is None and gap <= SAME_LINE * 2:
-            point = 0.5 * (a.last + b.first)
+    for k in range(count if samples.closed else count - 1):
+        point = _joint(samples, sides[k], sides[(k + 1) % count])
         if point is not None:
             stops[k], starts[(k + 1) % count] = point, point
-    return _listed(sides, starts, stops, closed)
+    return _listed(sides, starts, stops, samples.closed)
+
+
+def _joint(samples: Samples, a: Side, b: Side) -> Floats | None:
+    """Where two neighbouring sides meet; None where a bay or a step of its own lies between them."""
+    gap = float(np.hypot(*(b.first - a.last)))
+    lines = a.form == b.form == "line"
+    turn = float(np.arcsin(min(abs(float(cross(a.ahead, b.ahead))), 1.0))) if lines else np.pi / 2
+    point = _meet(a, b, 1.2 * gap / max(np.sin(turn), 0.05) + 0.3)
+    if point is None:
+        return 0.5 * (a.last + b.first) if gap <= 2 * SAME_LINE else None
+    pace = max(_pace(samples, a), _pace(samples, b))
+    round_it = float(np.hypot(*(point - a.last)) + np.hypot(*(b.first - point)))
+    square = turn > np.radians(75.0) and gap <= 1.5 * pace
+    if lines and gap > 0.95 * pace and round_it > 1.25 * pace and not square:
+        return None
+    return point
+
+
+def _pace(samples: Samples, side: Side) -> float:
+    """Spacing of the piles of a side, m; infinite for a side that is not a row of piles."""
+    mine = np.arange(*side.block) % len(samples.xy)
+    piles = mine[samples.pile[mine]]
+    return float(np.median(samples.weight[piles])) if len(piles) else np.inf
 
 
 def _listed(sides: list[Side], starts: list[Floats], stops: list[Floats], closed: bool) -> Outline:

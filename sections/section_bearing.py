@@ -84,7 +84,7 @@ def _alone(name: str, pile: Pile) -> Finding:
         code="bearing_pile_not_in_a_row",
         severity="note",
         where=name,
-        text="A bearing pile near the cut stands in no row across it: not drawn as a wall; use a spring or leave it out",
+        text="A bearing pile near the cut stands in no row across it: no wall is drawn; use a spring or leave it out",
         sources=pile.sources,
     )
 

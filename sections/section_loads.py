@@ -46,7 +46,7 @@ def load_rows(site: Site, cut: Cut, stands_for: float | None) -> tuple[tuple[Sec
         effect on the wall to keep.
     """
     rows, findings = [], []
-    for name, load, wall in _loads_at(site, cut):
+    for name, load, wall in loads_at(site, cut):
         row, problem = _row(name, load, wall, cut, stands_for)
         rows.append(row)
         if problem:
@@ -65,10 +65,11 @@ def load_rows(site: Site, cut: Cut, stands_for: float | None) -> tuple[tuple[Sec
 
 def load_stages(site: Site, cut: Cut) -> dict[str, str | None]:
     """Stage in which each load of the section comes on; None from the start."""
-    return {name: load.stage for name, load, _ in _loads_at(site, cut)}
+    return {name: load.stage for name, load, _ in loads_at(site, cut)}
 
 
-def _loads_at(site: Site, cut: Cut) -> list[tuple[str, Load, CutWall]]:
+def loads_at(site: Site, cut: Cut) -> list[tuple[str, Load, CutWall]]:
+    """Loads of a cut by id, with the wall each is seen from."""
     met: dict[str, tuple[str, Load, CutWall]] = {}
     for wall in cut.walls:
         found = wall.found

@@ -110,16 +110,9 @@ def _smear(
         return _bare(real), _lacking(("modulus", E), ("pile diameter", given.diameter))
     if given.kind == "king_post" and structural and structural.spacing:
         section = _post_section(site, wall, run_index)
-        if E and section and section.section and section.section.A and section.section.I:
-            shape = section.section
-            real = post(
-                E=E,
-                A=shape.A,
-                I=shape.I,
-                unit_weight=weight,
-                spacing=structural.spacing,
-                width=shape.width,  # type: ignore[arg-type]
-            )
+        shape = section.section if section else None
+        if E and shape and shape.A and shape.I:
+            real = post(E=E, A=shape.A, I=shape.I, unit_weight=weight, spacing=structural.spacing, width=shape.width)
             return smear_pile_wall(real, name="post", EI_factor=factor), ()
         return _bare(RealMember(spacing=structural.spacing, E_kPa=E)), _lacking(("modulus", E), ("post section", None))
     return _bare(_known(given)), (f"construction ({given.kind})",)

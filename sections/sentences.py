@@ -19,6 +19,7 @@ NAMES = {
     "hoop_force": "hoop force",
 }
 
+
 @dataclass(frozen=True, kw_only=True)
 class Said:
     """What a sentence is made of, for one output at one station.

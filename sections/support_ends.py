@@ -206,14 +206,16 @@ def _select(
     head_met, far_met = meeting.head_met[chosen], meeting.far_met[chosen]
     head_at = np.where(head_met, meeting.head.at[chosen], np.nan)
     far_at = np.where(far_met, meeting.far.at[chosen], np.nan)
-    # the head of an anchor or raker is drawn first; of a strut it is the end met first along the wall
-    backwards = head_met & far_met & ~one_ended & (far_at < head_at)
+    sides = find_sides(shape)
+    one, other = _sides_of(sides, head_at), _sides_of(sides, far_at)
+    # the head of an anchor or raker is drawn first; of a strut it is the end on the side that comes first
+    later = (other < one) | ((other == one) & (far_at < head_at))
+    backwards = head_met & far_met & ~one_ended & later
     turned = (~head_met & far_met) | backwards
     head, far = head[chosen], far[chosen]
     head, far = np.where(turned[:, None], far, head), np.where(turned[:, None], head, far)
     head_at, far_at = np.where(turned, far_at, head_at), np.where(turned, head_at, far_at)
     far_at = np.where(one_ended, np.nan, far_at)
-    sides = find_sides(shape)
     head_side, far_side = _sides_of(sides, head_at), _sides_of(sides, far_at)
     role = _roles(sides, drawn, head, far, far_side, head_side, meeting.inside[chosen])
     return SupportEnds(

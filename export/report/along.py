@@ -122,7 +122,8 @@ def stretches(chainage: Sequence[float], values: Sequence[str | None], length: f
 def worst_words(table: StationTable, outputs: Sequence[str]) -> tuple[VerdictWord, ...]:
     """Per station the worst verdict of some outputs; `not_assessed` where an output is not listed."""
     rank = {word: n for n, word in enumerate(WORST_FIRST)}
-    blank: tuple[VerdictWord, ...] = ("not_assessed",) * len(table.chainage)
+    nothing: VerdictWord = "not_assessed"
+    blank = (nothing,) * len(table.chainage)
     listed = [table.outputs[o].verdict if o in table.outputs else blank for o in outputs] or [blank]
     worst: list[VerdictWord] = []
     for words in zip(*listed, strict=True):

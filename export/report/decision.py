@@ -5,7 +5,18 @@ from __future__ import annotations
 from export.report.markup import Html, join, tag
 from export.report.tables import listing, table
 from export.report.verdict_marks import named_swatch
-from export.report.words import KIND_NAMES, NOT_GIVEN, band, count, fixed, metres, output_name, run_length, stretch
+from export.report.words import (
+    KIND_NAMES,
+    NOT_GIVEN,
+    band,
+    count,
+    fixed,
+    metres,
+    output_name,
+    provisional_mark,
+    run_length,
+    stretch,
+)
 from sections.definition import SectionDefinition
 from sections.model import ChosenSection, Proposal
 
@@ -111,7 +122,7 @@ def _section_row(section: ChosenSection, proposal: Proposal, lengths: dict[str, 
             cells.append(named_swatch("not_assessed"))
         else:
             ends = "" if verdict.low is None and verdict.high is None else f", {band(verdict.low, verdict.high)}"
-            cells.append(named_swatch(verdict.verdict, ends + (" (provisional)" if verdict.provisional else "")))
+            cells.append(named_swatch(verdict.verdict, ends + provisional_mark(verdict)))
     score = (
         tag("span", "none", title="a governing output is not assessed")
         if section.score is None

@@ -62,8 +62,9 @@ def ribbon_drawing(pit: Pit, proposal: Proposal) -> Html:
     for row in pit.members:
         if row.along:
             _members(pen, pit, row)
-    for name, output in stations.outputs.items() if stations is not None else ():
-        _output(pen, pit, stations, name, output, proposal.limits)
+    if stations is not None:
+        for name, output in stations.outputs.items():
+            _output(pen, pit, stations, name, output, proposal.limits)
     foot = pen.y + 8
     lines = "".join(f"M{pen.x(corner.at):.2f} {44}V{foot:.2f}" for corner in pit.corners)
     pin = tag("path", d=f"M0 30V{foot:.2f}", class_="marker")

@@ -17,7 +17,7 @@ from export.report.section_tables import (
 from export.report.section_view import section_drawing
 from export.report.tables import table
 from export.report.verdict_marks import named_swatch
-from export.report.words import KIND_NAMES, band, criterion_name, fixed, output_name, stretch
+from export.report.words import KIND_NAMES, band, criterion_name, fixed, output_name, provisional_mark, stretch
 from export.section_json import NOT_INCLUDED
 from sections.definition import SectionDefinition
 from sections.model import SectionWall
@@ -89,7 +89,7 @@ def _verdicts(definition: SectionDefinition) -> Html:
         rows.append(
             [
                 output_name(output),
-                named_swatch(worst.verdict, " (provisional)" if worst.provisional else ""),
+                named_swatch(worst.verdict, provisional_mark(worst)),
                 join(_lines(walls)),
                 criterion_name(worst.dominant) if worst.dominant else "none",
                 worst.stage or "not given",

@@ -21,10 +21,14 @@
     const section = pit.section[n];
     const head = make("b", `Chainage ${at.toFixed(1)} m: ` + (section ? `represented by ${section}` : "no section represents this"));
     const list = document.createElement("dl");
+    const silent = [];
     for (const [output, rows] of Object.entries(pit.says)) {
-      const [, sentence] = rows[n];
-      list.append(make("dt", data.words.outputs[output]), make("dd", pit.sentences[sentence]));
+      const [word, sentence] = rows[n];
+      const name = data.words.outputs[output];
+      if (word === "not_assessed") silent.push(name);
+      else list.append(make("dt", name), make("dd", pit.sentences[sentence]));
     }
+    if (silent.length) list.append(make("dt", data.words.verdicts.not_assessed), make("dd", silent.join("; ")));
     says.replaceChildren(head, list);
     slider.setAttribute("aria-valuetext", `chainage ${at.toFixed(1)} m`);
     const [x, y] = pit.xy[n];

@@ -2,10 +2,10 @@
 
 from __future__ import annotations
 
-from collections.abc import Iterable, Sequence
+from collections.abc import Iterable
 from math import floor, log10
 
-from sections.model import Represents, Unrepresented, Verdict, VerdictWord
+from sections.model import Represents, Unrepresented, Verdict
 
 NARROW = "\u202f"
 MINUS = "\u2212"
@@ -157,10 +157,9 @@ def criterion_name(code: str) -> str:
     return code.replace(".", ", ").replace("_", " ")
 
 
-def verdict_phrase(verdict: Verdict) -> str:
-    """Verdict word, provisional or not, and band."""
-    word = VERDICT_NAMES[verdict.verdict] + (", provisional" if verdict.provisional else "")
-    return word if verdict.low is None and verdict.high is None else f"{word}, {band(verdict.low, verdict.high)}"
+def provisional_mark(verdict: Verdict) -> str:
+    """Mark behind the word of a verdict that rests on inputs nobody has confirmed; one without a band needs none."""
+    return " (provisional)" if verdict.provisional and verdict.verdict != "not_assessed" else ""
 
 
 def stretch(pit: str, start: float, to: float) -> str:
@@ -181,11 +180,6 @@ def run_length(start: float, to: float, length: float) -> float:
 def metres(items: Iterable[Represents | Unrepresented], lengths: dict[str, float]) -> float:
     """Total length of some stretches, m."""
     return sum(run_length(item.start, item.to, lengths.get(item.pit, 0.0)) for item in items)
-
-
-def worst(words: Sequence[VerdictWord], order: Sequence[VerdictWord]) -> VerdictWord:
-    """The worst of some verdict words, `not_assessed` when there are none."""
-    return min(words, key=order.index) if words else "not_assessed"
 
 
 def count(number: int, thing: str) -> str:

@@ -9,17 +9,19 @@ from typing import Any
 
 import numpy as np
 
-from ingest.dxf.curves import Floats, entity_axes
+from ingest.dxf.curves import entity_axes
 from ingest.dxf.figures import sketch
 from ingest.dxf.linework import layer_of
+from ingest.dxf.placing import Matrix
 from ingest.dxf.sketch import Batch, Left, Sketch, settle
 from ingest.dxf.text import decode, sketch_text
+from ingest.model import Point3
 
 MOST_FIGURES = 1_000_000
 """More figures than this from one insert are a fault of the file or an attack."""
 
 
-def insert_matrices(known: dict[str, Any], base: Any) -> tuple[Floats, list[Floats]]:
+def insert_matrices(known: dict[str, Any], base: Any) -> tuple[Matrix, list[Point3]]:
     """The matrix of an insert and the shift of each of its copies: placed = vertex @ matrix + shift.
 
     Args:
@@ -27,24 +29,61 @@ def insert_matrices(known: dict[str, Any], base: Any) -> tuple[Floats, list[Floa
         base: Base point of the block.
 
     Returns:
-        The 3 x 3 matrix for row vectors, and one shift of shape (3,) a copy, row by row. Rows and columns of an array
-        turn with the insert but are not scaled.
+        The matrix for row vectors, and one shift a copy, row by row. Rows and columns of an array turn with the insert
+        but are not scaled.
     """
     turn = math.radians(known.get("rotation", 0.0))
     cos, sin = math.cos(turn), math.sin(turn)
-    rotation = np.array([[cos, sin, 0.0], [-sin, cos, 0.0], [0.0, 0.0, 1.0]])
-    scale = np.array([known.get("xscale") or 1.0, known.get("yscale") or 1.0, known.get("zscale") or 1.0])
-    axes = entity_axes(known.get("extrusion"))
+    sx, sy, sz = known.get("xscale") or 1.0, known.get("yscale") or 1.0, known.get("zscale") or 1.0
+    turned: Matrix = ((cos, sin, 0.0), (-sin, cos, 0.0), (0.0, 0.0, 1.0))
+    matrix: Matrix = ((sx * cos, sx * sin, 0.0), (-sy * sin, sy * cos, 0.0), (0.0, 0.0, sz))
     at = known.get("insert")
-    place = np.array([at.x, at.y, at.z]) if at is not None else np.zeros(3)
-    matrix = scale[:, None] * rotation
+    spot: Point3 = (at.x, at.y, at.z) if at is not None else (0.0, 0.0, 0.0)
+    axes = entity_axes(known.get("extrusion"))
     if axes is not None:
-        matrix, rotation, place = matrix @ axes, rotation @ axes, place @ axes
-    first = place - np.array([base.x, base.y, base.z]) @ matrix
+        a, b, c = ((row[0], row[1], row[2]) for row in axes.tolist())
+        plane: Matrix = (a, b, c)
+        turned, matrix, spot = times(turned, plane), times(matrix, plane), turn_point(spot, plane)
+    first = minus(spot, turn_point((base.x, base.y, base.z), matrix))
     columns, rows = copies(known)
+    if columns == rows == 1:
+        return matrix, [first]
     dx, dy = known.get("column_spacing", 0.0), known.get("row_spacing", 0.0)
-    shifts = [first + np.array([j * dx, i * dy, 0.0]) @ rotation for i in range(rows) for j in range(columns)]
-    return matrix, shifts
+    steps = ((j * dx, i * dy, 0.0) for i in range(rows) for j in range(columns))
+    return matrix, [plus(first, turn_point(step, turned)) for step in steps]
+
+
+def turn_point(point: Point3, matrix: Matrix) -> Point3:
+    """A row vector times a matrix."""
+    (x, y, z), (a, b, c) = point, matrix
+    return x * a[0] + y * b[0] + z * c[0], x * a[1] + y * b[1] + z * c[1], x * a[2] + y * b[2] + z * c[2]
+
+
+def times(first: Matrix, second: Matrix) -> Matrix:
+    """The matrix that does the first, then the second."""
+    a, b, c = first
+    return turn_point(a, second), turn_point(b, second), turn_point(c, second)
+
+
+def plus(a: Point3, b: Point3) -> Point3:
+    """Sum of two vectors."""
+    return a[0] + b[0], a[1] + b[1], a[2] + b[2]
+
+
+def minus(a: Point3, b: Point3) -> Point3:
+    """Difference of two vectors."""
+    return a[0] - b[0], a[1] - b[1], a[2] - b[2]
+
+
+def scaled(matrix: Matrix, factor: float) -> Matrix:
+    """A matrix times a number."""
+    a, b, c = matrix
+    return scaled_point(a, factor), scaled_point(b, factor), scaled_point(c, factor)
+
+
+def scaled_point(point: Point3, factor: float) -> Point3:
+    """A vector times a number."""
+    return point[0] * factor, point[1] * factor, point[2] * factor
 
 
 def copies(known: dict[str, Any]) -> tuple[int, int]:
@@ -63,12 +102,20 @@ class BlockBook:
         self.sagitta = sagitta
         self._ignored = ignored
         self._drawn: dict[tuple[str, int], Batch] = {}
+        self._bases: dict[str, Any] = {}
         self._sizes: dict[str, int] = {}
         self.left: Counter[str] = Counter()
 
     def block(self, name: str) -> Any:
         """A block as loaded, None when the file does not have it."""
         return self._blocks.get(name)
+
+    def base(self, name: str) -> Any:
+        """Base point of a block."""
+        found = self._bases.get(name)
+        if found is None:
+            found = self._bases[name] = self._blocks.get(name).block.dxf.base_point
+        return found
 
     def figures(self, name: str) -> int:
         """Number of figures one insert of the block gives, nested ones included; -1 where a block holds itself."""
@@ -98,7 +145,7 @@ class BlockBook:
         block = self._blocks.get(name)
         return list(block) if block is not None else []
 
-    def content(self, name: str, matrix: Floats) -> Batch:
+    def content(self, name: str, matrix: Matrix) -> Batch:
         """The figures of a block in its own units, fine enough for the scale it is inserted at."""
         level = math.ceil(math.log2(max(_stretch(matrix), 1e-9)) - 1e-9)
         key = (name.lower(), level)
@@ -134,29 +181,33 @@ class BlockBook:
             self.left["insert of a block that is not in the file"] += 1
             return []
         matrix, shifts = insert_matrices(known, block.block.dxf.base_point)
-        inner = self.content(name, matrix * outer)
+        inner = self.content(name, scaled(matrix, outer))
         layer, tags = decode(layer_of(known)), attributes(entity)
-        plan = math.sqrt(abs(float(np.linalg.det(matrix[:2, :2]))))
+        (p, q, _), (r, t, _), (_, _, rise) = matrix
+        plan = math.sqrt(abs(p * t - q * r))
         placed = attribute_texts(entity)
         for shift in shifts:
-            moved = inner.xyz @ matrix + shift
+            moved = inner.xyz @ np.array(matrix) + np.array(shift)
             for figure, a, b in zip(inner.sketches, inner.starts, inner.starts[1:], strict=False):
                 placed.append(
                     replace(
                         figure,
                         xyz=moved[a:b].ravel(),
+                        bulges=None,
+                        axes=None,
                         layer=layer if figure.layer == "0" else figure.layer,
                         width=figure.width * plan if figure.width else None,
-                        rise=figure.rise * float(matrix[2, 2]),
+                        measure=figure.measure * plan if figure.measure else None,
+                        rise=figure.rise * rise,
                         tags={**(figure.tags or {}), **tags} if tags else figure.tags,
                     )
                 )
         return placed
 
 
-def _stretch(matrix: Floats) -> float:
+def _stretch(matrix: Matrix) -> float:
     """Largest factor by which a matrix stretches the plan."""
-    return float(np.linalg.norm(matrix[:2], axis=1).max())
+    return max(math.hypot(*matrix[0]), math.hypot(*matrix[1]))
 
 
 def attributes(entity: Any) -> dict[str, str]:

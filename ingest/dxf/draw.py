@@ -3,20 +3,30 @@
 from __future__ import annotations
 
 from collections import Counter
-from collections.abc import Callable, Sequence
+from collections.abc import Callable
 from dataclasses import dataclass, field
 from typing import Any
 
 import numpy as np
 
 from ingest.dxf.annotation import Leader, read_leader
-from ingest.dxf.blocks import MOST_FIGURES, BlockBook, attribute_texts, attributes, copies, insert_matrices
+from ingest.dxf.blocks import (
+    MOST_FIGURES,
+    BlockBook,
+    attribute_texts,
+    attributes,
+    copies,
+    insert_matrices,
+    scaled,
+    scaled_point,
+)
 from ingest.dxf.clip import clip_parts, clipping_outline
-from ingest.dxf.curves import SAGITTA
+from ingest.dxf.curves import SAGITTA, Floats
 from ingest.dxf.figures import sketch
-from ingest.dxf.layers import LayerTable
+from ingest.dxf.layers import LayerTable, LayerUse
 from ingest.dxf.linework import layer_of
-from ingest.dxf.sketch import Left, Placing, Sketch, place, settle
+from ingest.dxf.placing import IDENTITY, Placing, place
+from ingest.dxf.sketch import Batch, Left, Sketch, settle
 from ingest.dxf.text import decode
 from ingest.errors import InputError
 from ingest.model import Part
@@ -27,6 +37,7 @@ MOST_PARTS = 3_000_000
 
 BRIEF_SAYS_NO = Left("ignored", "layer ignored by the brief")
 HIDDEN = Left("context", "hidden entity")
+DRAWS_NOTHING = Left("context", "insert that draws nothing")
 
 
 @dataclass(slots=True)
@@ -41,6 +52,17 @@ class Drawn:
     """First item of each reason."""
 
 
+@dataclass(slots=True)
+class _Chunk:
+    """Entities drawn together: plain figures, and the places of each block."""
+
+    plain: list[Sketch] = field(default_factory=list)
+    places: dict[int, tuple[Batch, list[Placing]]] = field(default_factory=dict)
+    clipped: dict[str, tuple[Floats, bool]] = field(default_factory=dict)
+    tables: set[str] = field(default_factory=set)
+    why: dict[str, Left] = field(default_factory=dict)
+
+
 class Drawer:
     """Draws the entities of one file."""
 
@@ -49,8 +71,7 @@ class Drawer:
         self.file, self.scale, self.layers = file, scale, layers
         self.book = BlockBook(document, SAGITTA / scale, layers.ignored)
         self.drawn = Drawn()
-        self._made: set[str] = set()
-        self._why: dict[str, Left] = {}
+        self._world = Placing(scaled(IDENTITY, scale), (0.0, 0.0, 0.0))
 
     def draw(self, named: list[tuple[str, Any]], progress: Callable[[int], None] | None = None) -> Drawn:
         """Draw all entities; the list is emptied on the way so that their memory is given back."""
@@ -67,39 +88,38 @@ class Drawer:
                 raise InputError(self.file, chunk[-1][0], words, "send less of the drawing")
         return self.drawn
 
-    def _draw_chunk(self, chunk: list[tuple[str, Any]]) -> None:
-        plain: list[Sketch] = []
-        parts: list[tuple[int, Part]] = []
-        order = {item: k for k, (item, _) in enumerate(chunk)}
-        self._made, self._why = set(), {}
-        for item, entity in chunk:
-            found = self._one(item, entity)
-            if isinstance(found, Left):
-                self._why[item] = found
-                continue
-            for figure in found:
-                if isinstance(figure, Part):
-                    self._made.add(item)
-                    parts.append((order[item], figure))
-                else:
-                    plain.append(figure)
-        parts += [(order[part.source.item], part) for part in self._place_plain(plain)]
-        parts.sort(key=lambda pair: pair[0])
-        self.drawn.parts += [part for _, part in parts]
-        for item, _ in chunk:
-            if item not in self._made:
-                kind, reason = self._why.get(item, Left("ignored", "draws nothing"))
+    def _draw_chunk(self, entities: list[tuple[str, Any]]) -> None:
+        chunk = _Chunk()
+        for item, entity in entities:
+            left = self._one(item, entity, chunk)
+            if left is not None:
+                chunk.why[item] = left
+        parts: dict[str, list[Part]] = {item: [] for item, _ in entities}
+        batch = settle(chunk.plain, self.book.sagitta)
+        for figure, why in batch.dropped:
+            chunk.why.setdefault(figure.item, Left("ignored", why))
+        for settled, places in [*chunk.places.values(), (batch, [self._world])]:
+            for placed in place(settled, places, self.file):
+                if placed.part is None:
+                    chunk.why.setdefault(placed.item, Left("ignored", placed.reason))
+                elif placed.item not in chunk.tables or placed.part.form == "text":
+                    parts[placed.item].append(placed.part)
+        for item, (outline, hidden_inside) in chunk.clipped.items():
+            parts[item] = clip_parts(parts[item], outline, hidden_inside)
+        for item, own in parts.items():
+            self.drawn.parts += own
+            if not own:
+                kind, reason = chunk.why.get(item, DRAWS_NOTHING)
                 self.drawn.aside[kind][reason] += 1
                 self.drawn.examples.setdefault(reason, item)
 
-    def _one(self, item: str, entity: Any) -> Sequence[Sketch | Part] | Left:
-        known = vars(entity.dxf)
-        layer = self.layers.plain(layer_of(known))
-        if layer.casefold() in self.layers.ignored:
+    def _one(self, item: str, entity: Any, chunk: _Chunk) -> Left | None:
+        layer = self.layers.use(layer_of(vars(entity.dxf)))
+        if layer.left_out:
             return BRIEF_SAYS_NO
         kind = entity.dxftype()
         if kind in ("INSERT", "ACAD_TABLE"):
-            return self._insert(item, entity, layer)
+            return self._insert(item, entity, layer, chunk)
         if kind == "LEADER":
             leader = read_leader(entity)
             if leader is not None:
@@ -108,51 +128,44 @@ class Drawer:
         figures = sketch(entity, self.book.sagitta)
         if isinstance(figures, Left):
             return figures
-        state = self.layers.state(layer)
         for figure in figures:
-            figure.item, figure.layer = item, layer
-            if state:
-                figure.tags = {**(figure.tags or {}), "layer_state": state}
-        return figures
+            figure.item, figure.layer = item, layer.name
+            if layer.state:
+                figure.tags = {**(figure.tags or {}), "layer_state": layer.state}
+        chunk.plain += figures
+        return None
 
-    def _place_plain(self, plain: list[Sketch]) -> list[Part]:
-        batch = settle(plain, self.book.sagitta)
-        placed, empty = place(batch, Placing(self.file, np.eye(3) * self.scale, np.zeros(3)))
-        for item, why in [*((s.item, why) for s, why in batch.dropped), *empty]:
-            self._why[item] = Left("ignored", why)
-        self._made |= {part.source.item for part in placed}
-        return placed
-
-    def _insert(self, item: str, entity: Any, layer: str) -> list[Part] | Left:
+    def _insert(self, item: str, entity: Any, layer: LayerUse, chunk: _Chunk) -> Left | None:
         known = vars(entity.dxf)
         table = entity.dxftype() == "ACAD_TABLE"
         name = str(known.get("geometry" if table else "name", ""))
         refused = self._refuse_insert(name, known)
         if refused is not None:
             return refused
-        block = self.book.block(name)
-        matrix, shifts = insert_matrices(known, block.block.dxf.base_point)
+        base = self.book.base(name)
+        matrix, shifts = insert_matrices(known, base)
         batch = self.book.content(name, matrix)
-        state = self.layers.state(layer)
-        tags = {**({} if table else attributes(entity)), **({"layer_state": state} if state else {})}
-        window = None if table else clipping_outline(entity, block.block.dxf.base_point)
+        for _, why in batch.dropped:
+            chunk.why.setdefault(item, Left("ignored", why))
+        own = {} if table else attributes(entity)
+        tags = {**own, "layer_state": layer.state} if layer.state else own
+        places = chunk.places.setdefault(id(batch), (batch, []))[1]
+        metres = scaled(matrix, self.scale)
         columns, _ = copies(known)
-        parts: list[Part] = []
-        reasons: list[str] = [why for _, why in batch.dropped]
         for k, shift in enumerate(shifts):
-            evidence = f"row {k // columns + 1}, column {k % columns + 1} of an array" if len(shifts) > 1 else ""
-            at = Placing(self.file, matrix * self.scale, shift * self.scale, item, layer, tags, evidence)
-            placed, empty = place(batch, at)
-            if window is not None:
-                placed = clip_parts(placed, window[0] @ at.matrix + at.shift, window[1])
-            parts += [part for part in placed if part.form == "text"] if table else placed
-            reasons += [why for _, why in empty]
-        if not table:
-            words = settle(attribute_texts(entity), self.book.sagitta)
-            parts += place(words, Placing(self.file, np.eye(3) * self.scale, np.zeros(3), item, layer))[0]
-        if parts:
-            return parts
-        return Left("ignored", reasons[0]) if reasons else Left("context", "insert that draws nothing")
+            words = f"row {k // columns + 1}, column {k % columns + 1} of an array" if len(shifts) > 1 else ""
+            places.append(Placing(metres, scaled_point(shift, self.scale), item, layer.name, tags, words))
+        if table:
+            chunk.tables.add(item)
+            return None
+        for figure in attribute_texts(entity):
+            figure.item = item
+            figure.layer = layer.name if figure.layer == "0" else figure.layer
+            chunk.plain.append(figure)
+        window = clipping_outline(entity, base)
+        if window is not None:
+            chunk.clipped[item] = (window[0] @ np.array(metres) + np.array(places[-1].shift), window[1])
+        return None
 
     def _refuse_insert(self, name: str, known: dict[str, Any]) -> Left | None:
         if known.get("invisible", 0):
@@ -167,6 +180,6 @@ class Drawer:
         figures = self.book.figures(name)
         if figures < 0:
             return Left("ignored", "insert of a block that holds itself")
-        if figures * columns * rows > MOST_FIGURES or columns * rows > MOST_FIGURES:
+        if max(figures, 1) * columns * rows > MOST_FIGURES:
             return Left("ignored", f"insert that gives more than {MOST_FIGURES} figures")
         return None

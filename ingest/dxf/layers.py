@@ -95,6 +95,15 @@ def layer_words(name: str) -> tuple[str, ...]:
     return tuple(word.casefold() for word in _WORD.findall(_CAMEL.sub(" ", plain).replace("_", " ")))
 
 
+@record
+class LayerUse:
+    """What to know of a layer when something is drawn on it; `state` is off, frozen or ""."""
+
+    name: str
+    state: str
+    left_out: bool
+
+
 class LayerTable:
     """The layers of one drawing: readable names, which are off or frozen, which the brief leaves out."""
 
@@ -102,26 +111,25 @@ class LayerTable:
         """Args: the loaded drawing, the layers the brief leaves out."""
         self.ignored = frozenset(decode(name).casefold() for name in ignore)
         self.names: set[str] = set()
-        self._plain: dict[str, str] = {}
+        self._uses: dict[str, LayerUse] = {}
         self._state: dict[str, str] = {}
         for layer in document.layers:
-            name = self.plain(str(layer.dxf.name))
+            name = decode(str(layer.dxf.name))
             self.names.add(name)
             if layer.is_frozen():
                 self._state[name.casefold()] = "frozen"
             elif layer.is_off():
                 self._state[name.casefold()] = "off"
 
-    def plain(self, name: str) -> str:
-        """The readable form of a layer name."""
-        found = self._plain.get(name)
+    def use(self, raw: str) -> LayerUse:
+        """What to know of a layer, by its name in the file."""
+        found = self._uses.get(raw)
         if found is None:
-            found = self._plain[name] = decode(name)
+            name = decode(raw)
+            folded = name.casefold()
+            found = LayerUse(name=name, state=self._state.get(folded, ""), left_out=folded in self.ignored)
+            self._uses[raw] = found
         return found
-
-    def state(self, name: str) -> str:
-        """`off`, `frozen`, or "" for a layer that is shown."""
-        return self._state.get(name.casefold(), "")
 
     def nearest(self, wanted: str, used: set[str]) -> str:
         """The layer whose name is closest to one that does not exist, "" when none is near."""

@@ -5,15 +5,21 @@ from __future__ import annotations
 import struct
 from collections import Counter
 from dataclasses import dataclass, field
+from typing import Any
 
 import numpy as np
 from numpy.typing import NDArray
 
-Ints = NDArray[np.int64]
+Ints = NDArray[np.signedinteger[Any]]
 
 BINARY_MARK = b"AutoCAD Binary DXF\r\n\x1a\x00"
 SUBENTITIES = {"VERTEX", "SEQEND", "ATTRIB"}
 """Listed after the entity they belong to, never counted alone."""
+_MARKS = {"SECTION", "ENDSEC", "EOF"}
+_PIECE = 1 << 22
+"""Bytes of a text file looked at in one go."""
+_BLANK = np.zeros(256, dtype=np.bool_)
+_BLANK[[9, 13, 32]] = True
 NUMBER_CODES = ((10, 59), (110, 149), (210, 239), (460, 469), (1010, 1059))
 
 
@@ -33,6 +39,8 @@ class Tags:
     zeros: Ints = field(default_factory=lambda: np.empty(0, dtype=np.int64))
     names: list[str] = field(default_factory=list)
     """Value of each tag with group code 0, in step with `zeros`."""
+    marks: list[int] = field(default_factory=list)
+    """Where SECTION, ENDSEC and EOF stand in `names`."""
     sections: dict[str, tuple[int, int]] = field(default_factory=dict)
     """Section name -> first and last tag index (last excluded); the first one of a name."""
 
@@ -83,90 +91,105 @@ def scan_tags(data: bytes) -> Tags:
         Its tags; a file cut short has `ended` False, a damaged one `bad_code`.
     """
     tags = _scan_binary(data) if data.startswith(BINARY_MARK) else _scan_text(data)
+    tags.zeros = np.flatnonzero(tags.codes == 0)
+    if tags.bad_code is not None:
+        tags.zeros = tags.zeros[tags.zeros < tags.bad_code]
+    tags.names = [tags.value(z).decode("latin-1") for z in tags.zeros.tolist()]
     _find_sections(tags)
     return tags
 
 
 def _scan_text(data: bytes) -> Tags:
+    """Go through the lines in pieces of some megabytes: large arrays cost more than the work on them."""
     if b"\n" not in data:
         data = data.replace(b"\r", b"\n")
     raw = np.frombuffer(data, dtype=np.uint8)
-    breaks = np.flatnonzero(raw == 10)
-    if len(data) and data[-1:] != b"\n":
-        breaks = np.append(breaks, len(data))
-    begins = np.concatenate(([0], breaks[:-1] + 1)) if len(breaks) else breaks
-    if data.startswith(b"\xef\xbb\xbf"):
-        begins[0] = 3
-    ends = _strip_end(raw, begins, breaks)
-    pairs = len(ends) // 2
-    codes, bad = _read_codes(raw, begins[0 : 2 * pairs : 2], ends[0 : 2 * pairs : 2])
-    starts, stops = _strip_start(raw, begins[1::2][:pairs], ends[1::2][:pairs]), ends[1::2][:pairs]
-    tags = Tags(data, False, codes, starts, stops, ended=False)
-    _cut(tags, bad)
-    return tags
+    found = [(np.empty(0, dtype=np.int16), np.empty(0, dtype=np.int64), np.empty(0, dtype=np.int64))]
+    at, count, span = 3 if data.startswith(b"\xef\xbb\xbf") else 0, 0, _PIECE
+    bad_code: int | None = None
+    ended = False
+    while at < len(data) and bad_code is None and not ended:
+        ends = _line_ends(raw, at, span)
+        if len(ends) < 2:
+            if at + span >= len(data):
+                break
+            span *= 2  # a line longer than the piece
+            continue
+        begins = np.concatenate(([at], ends[:-1] + 1))
+        at = int(ends[-1]) + 1
+        codes, bad, starts, stops = _read_pairs(raw, begins, ends)
+        keep, bad_at, ended = _cut(data, codes, bad, starts, stops)
+        bad_code = count + bad_at if bad_at is not None else None
+        found.append((codes[:keep], starts[:keep], stops[:keep]))
+        count += keep
+    merged = [np.concatenate(arrays) for arrays in zip(*found, strict=True)]
+    return Tags(data, False, merged[0], merged[1], merged[2], ended, bad_code)
 
 
-def _strip_end(raw: NDArray[np.uint8], begins: Ints, ends: Ints) -> Ints:
-    """Take carriage returns and blanks off the end of each line."""
+def _line_ends(raw: NDArray[np.uint8], at: int, span: int) -> Ints:
+    """Ends of an even number of lines from a byte on, as many as fit into the span."""
+    ends = np.flatnonzero(raw[at : at + span] == 10) + at
+    if at + span >= len(raw) and raw[-1] != 10:
+        ends = np.append(ends, len(raw))
+    return ends[: len(ends) // 2 * 2]
+
+
+def _read_pairs(
+    raw: NDArray[np.uint8], begins: Ints, ends: Ints
+) -> tuple[NDArray[np.int16], NDArray[np.bool_], Ints, Ints]:
+    """Group codes, which of them are none, and the bounds of the values, of pairs of lines."""
     ends = ends.copy()
-    while True:
-        last = raw[np.maximum(ends - 1, 0)] if len(raw) else ends
-        blank = (ends > begins) & ((last == 13) | (last == 32) | (last == 9))
-        if not blank.any():
-            return ends
-        ends[blank] -= 1
+    todo = np.arange(len(ends))
+    while len(todo := todo[(ends[todo] > begins[todo]) & _BLANK[raw[ends[todo] - 1]]]):
+        ends[todo] -= 1
+    starts, stops = begins[1::2].copy(), ends[1::2]
+    todo = np.arange(len(starts))
+    while len(todo := todo[(starts[todo] < stops[todo]) & _BLANK[raw[np.minimum(starts[todo], len(raw) - 1)]]]):
+        starts[todo] += 1
+    codes, bad = _read_codes(raw, begins[::2], ends[::2])
+    return codes, bad, starts, stops
 
 
-def _strip_start(raw: NDArray[np.uint8], begins: Ints, ends: Ints) -> Ints:
-    """Take blanks off the start of each line."""
-    begins = begins.copy()
-    while True:
-        first = raw[np.minimum(begins, len(raw) - 1)] if len(raw) else begins
-        blank = (begins < ends) & ((first == 32) | (first == 9))
-        if not blank.any():
-            return begins
-        begins[blank] += 1
-
-
-def _read_codes(raw: NDArray[np.uint8], begins: Ints, ends: Ints) -> tuple[Ints, NDArray[np.bool_]]:
+def _read_codes(raw: NDArray[np.uint8], begins: Ints, ends: Ints) -> tuple[NDArray[np.int16], NDArray[np.bool_]]:
     """Group codes of the code lines, and which of them are none."""
-    begins = _strip_start(raw, begins, ends)
     length = ends - begins
-    codes = np.zeros(len(begins), dtype=np.int64)
-    bad = (length < 1) | (length > 4)
-    for back in range(4):
-        there = length > back
-        digit = raw[np.where(there, ends - 1 - back, 0)].astype(np.int64) - 48 if len(raw) else codes
-        bad |= there & ((digit < 0) | (digit > 9))
-        codes += np.where(there, digit * 10**back, 0)
+    codes = np.zeros(len(begins), dtype=np.int16)
+    bad = (length < 1) | (length > 12)
+    open_ = ~bad
+    for back in range(12):
+        there = open_ & (length > back)
+        if not there.any():
+            break
+        byte = raw[np.where(there, ends - 1 - back, 0)]
+        digit = byte - 48  # wraps for what is no digit
+        open_ = there & (digit < 10)
+        bad |= there & (digit > 9) & ((byte != 32) | (back == 0)) | open_ & (back > 3)
+        if back < 4:
+            codes += np.where(open_, digit, 0).astype(np.int16) * np.int16(10**back)
     return codes, bad | (codes > 1071)
 
 
-def _cut(tags: Tags, bad: NDArray[np.bool_]) -> None:
-    """Keep the tags up to the end mark, or up to the first group code that is none."""
+def _cut(
+    data: bytes, codes: NDArray[np.int16], bad: NDArray[np.bool_], starts: Ints, stops: Ints
+) -> tuple[int, int | None, bool]:
+    """How many tags count: up to the end mark, or up to the first group code that is none."""
     faults = np.flatnonzero(bad)
-    zeros = np.flatnonzero((tags.codes == 0) & ~bad)
-    short = zeros[tags.stops[zeros] - tags.starts[zeros] == 3].tolist()
-    ending = next((z for z in short if tags.value(z) == b"EOF"), None)
+    zeros = np.flatnonzero((codes == 0) & (stops - starts == 3) & ~bad).tolist()
+    ending = next((z for z in zeros if data[starts[z] : stops[z]] == b"EOF"), None)
     if len(faults) and (ending is None or faults[0] < ending):
-        tags.bad_code = int(faults[0])
-        ending_at = tags.bad_code + 1
-    else:
-        tags.ended = ending is not None
-        ending_at = len(tags.codes) if ending is None else ending + 1
-    tags.codes, tags.starts, tags.stops = tags.codes[:ending_at], tags.starts[:ending_at], tags.stops[:ending_at]
-    tags.zeros = zeros[zeros < ending_at]
-    tags.names = [tags.value(z).decode("latin-1") for z in tags.zeros.tolist()]
+        return int(faults[0]) + 1, int(faults[0]), False
+    return (len(codes), None, False) if ending is None else (ending + 1, None, True)
 
 
 def _find_sections(tags: Tags) -> None:
     """Note where each section begins and ends."""
-    for k, (at, name) in enumerate(zip(tags.zeros.tolist(), tags.names, strict=True)):
-        if name != "SECTION" or at + 1 >= len(tags.codes) or tags.codes[at + 1] != 2:
+    tags.marks = [k for k, name in enumerate(tags.names) if name in _MARKS]
+    for k, following in zip(tags.marks, [*tags.marks[1:], None], strict=True):
+        at = int(tags.zeros[k])
+        if tags.names[k] != "SECTION" or at + 1 >= len(tags.codes) or tags.codes[at + 1] != 2:
             continue
         title = tags.value(at + 1).decode("latin-1")
-        stop = next((j for j in range(k + 1, len(tags.names)) if tags.names[j] in ("ENDSEC", "SECTION", "EOF")), None)
-        last = int(tags.zeros[stop]) if stop is not None else len(tags.codes)
+        last = int(tags.zeros[following]) if following is not None else len(tags.codes)
         tags.sections.setdefault(title, (at + 2, last))
 
 
@@ -203,10 +226,7 @@ def _scan_binary(data: bytes) -> Tags:
         at = stop + 1 if kind == "s" else stop
         ended = code == 0 and data[first:stop] == b"EOF"
     arrays = [np.array(values, dtype=np.int64) for values in (codes, starts, stops)]
-    tags = Tags(data, True, arrays[0], arrays[1], arrays[2], ended, bad)
-    tags.zeros = np.flatnonzero(tags.codes == 0)
-    tags.names = [tags.value(z).decode("latin-1") for z in tags.zeros.tolist()]
-    return tags
+    return Tags(data, True, arrays[0], arrays[1], arrays[2], ended, bad)
 
 
 def _binary_code(data: bytes, at: int, short: bool) -> tuple[int, int]:

@@ -150,4 +150,3 @@ def _toe_in_aquiclude(site: Site, found: FoundPit) -> Bools:
         above = np.where(begins, np.fmin(above, at_toe), above)
         at_toe = np.where(begins, np.nan if value is None else value, at_toe)
     return np.asarray(at_toe <= AQUICLUDE * above)
-

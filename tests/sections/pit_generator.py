@@ -244,19 +244,28 @@ class Draughtsman:
             self.line(pit, run)
 
     def row(self, pit, run):
-        """Piles at from, from + s ... below to; an open way has one at its very end too."""
-        total = run.stop - run.start
-        n = max(round(total / run.spacing), 2)
-        step = total / n
-        run.spacing = step
-        last = n + 1 if not pit.closed and abs(run.stop - pit.length) < 1e-6 else n
-        run.count = last
-        for k in range(last):
-            x, y = pit.at(run.start + k * step)
+        """Piles at from, from + s ... below to; an open way has one at its very end too.
+
+        Set out side by side, with a pile in every corner, or (where all sides are long) once round without regard to
+        corners.
+        """
+        ends = [run.start, *self.breaks(pit, run), run.stop]
+        if min(np.diff(ends)) > 6 * run.spacing and self.r.random() < 0.3 and len(ends) > 2:
+            ends = [run.start, run.stop]
+        places = []
+        for a, b in zip(ends, ends[1:], strict=False):
+            n = max(round((b - a) / run.spacing), 1)
+            places += [a + (b - a) * k / n for k in range(n)]
+        if not pit.closed and abs(run.stop - pit.length) < 1e-6:
+            places.append(run.stop)
+        run.spacing = float(np.median(np.diff(places)))
+        run.count = len(places)
+        for k, s in enumerate(places):
+            x, y = pit.at(s)
             male = run.kind == "secant" and k % 2 == 1
             size = run.size * (0.8 if run.kind == "secant" and not male else 1.0)
             self.piles.append(Pile(
-                id=f"pile{len(self.piles)}", centre=(x, y), kind=run.kind,
+                id=f"pile{len(self.piles)}", centre=(float(x), float(y)), kind=run.kind,
                 diameter=None if run.kind == "king_post" else size,
                 section=BarSection(designation="H", width=0.3, depth=0.3) if run.kind == "king_post" else None,
                 top=0.0, toe=run.toe + (0.0 if male or run.kind != "secant" else 4.0),

@@ -78,7 +78,10 @@ def test_a_change_of_strut_spacing_is_found_at_the_strut_where_it_changes():
 def test_a_regular_row_is_one_zone_however_the_stations_fall():
     struts = [strut((100.0 + x, 200.0), (100.0 + x, 220.0)) for x in 2.6 + 5.2 * np.arange(6)]
     jitter = np.random.default_rng(4).uniform(-0.02, 0.02, 6)
-    moved = [replace(s, head=(s.head[0] + j, *s.head[1:]), far=(s.far[0] + j, *s.far[1:])) for s, j in zip(struts, jitter, strict=True)]
+    moved = [
+        replace(s, head=(s.head[0] + j, *s.head[1:]), far=(s.far[0] + j, *s.far[1:]))
+        for s, j in zip(struts, jitter, strict=True)
+    ]
     pit = found(shape_of(rectangle(31.2)), supports=tuple(moved))
     assert pit.pit.zones[0].to == pytest.approx(31.2)
 
@@ -144,7 +147,11 @@ def test_a_step_of_the_floor_ends_a_zone_where_it_meets_the_wall():
 def test_dipping_strata_end_zones_where_a_top_has_moved_by_its_tolerance():
     # top of clay falls from -2 at x = 100 to -5 at x = 130, 0.1 per metre; tolerance 0.5 m: five metres a zone
     holes = tuple(
-        Borehole(id=f"B{i}", location=(x, y, 0.0), layers=(Layer(top=0.0, base=z, code="MG"), Layer(top=z, base=-20.0, code="CL")))
+        Borehole(
+            id=f"B{i}",
+            location=(x, y, 0.0),
+            layers=(Layer(top=0.0, base=z, code="MG"), Layer(top=z, base=-20.0, code="CL")),
+        )
         for i, (x, y, z) in enumerate([(100, 190, -2.0), (130, 190, -5.0), (100, 230, -2.0), (130, 230, -5.0)])
     )
     strata = (Stratum(name="made ground", from_boreholes="MG"), Stratum(name="clay", from_boreholes="CL"))

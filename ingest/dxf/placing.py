@@ -1,0 +1,191 @@
+"""Settled figures -> parts in metres, one set for each place they are put at."""
+
+from __future__ import annotations
+
+import math
+from collections.abc import Sequence
+from typing import Literal, NamedTuple
+
+import numpy as np
+
+from ingest.dxf.curves import SAGITTA, flatten_conic
+from ingest.dxf.sketch import OUT_OF_REACH, Batch, Sketch
+from ingest.model import Part, Point3
+from ingest.trail import Source
+
+FARTHEST = 1e8
+"""Coordinates beyond this many metres are more than twice the earth's girth: no place on a site."""
+Matrix = tuple[Point3, Point3, Point3]
+IDENTITY: Matrix = ((1.0, 0.0, 0.0), (0.0, 1.0, 0.0), (0.0, 0.0, 1.0))
+_AT_ONCE = 200_000
+"""Vertices moved in one go."""
+
+
+class Placing(NamedTuple):
+    """Where a batch goes: world metres = vertex @ matrix + shift, and what its parts inherit.
+
+    With an empty `item` each figure keeps its own.
+    """
+
+    matrix: Matrix
+    shift: Point3
+    item: str = ""
+    layer: str = "0"
+    tags: dict[str, str] | None = None
+    evidence: str = ""
+
+
+class Placed(NamedTuple):
+    """One figure at one place: the part, or the reason why there is none."""
+
+    place: int
+    item: str
+    part: Part | None
+    reason: str
+
+
+def place(batch: Batch, places: Sequence[Placing], file: str) -> list[Placed]:
+    """Turn a batch into parts in metres.
+
+    Args:
+        batch: Settled sketches.
+        places: Where they go.
+        file: Name for the sources.
+
+    Returns:
+        One entry for each figure at each place, in order of the places.
+    """
+    found: list[Placed] = []
+    step = max(1, _AT_ONCE // max(1, len(batch.xyz)))
+    for first in range(0, len(places), step):
+        some = places[first : first + step]
+        matrices, shifts = np.array([p.matrix for p in some]), np.array([p.shift for p in some])
+        moved = np.matmul(batch.xyz, matrices) + shifts[:, None, :]
+        far = _far(moved, batch.starts)
+        level = moved[:, :, 2]
+        flat = (level == level[:, :1]).all(axis=1).tolist()
+        for k, (xs, ys, zs) in enumerate(moved.transpose(0, 2, 1).tolist()):
+            if flat[k] and zs:
+                zs = [zs[0]] * len(zs)
+            mover = _Mover(some[k], file)
+            for n, sketch in enumerate(batch.sketches):
+                a, b = batch.starts[n], batch.starts[n + 1]
+                points = tuple(zip(xs[a:b], ys[a:b], zs[a:b], strict=True))
+                part = OUT_OF_REACH if (k, n) in far else mover.part(sketch, points)
+                item = some[k].item or sketch.item
+                found.append(
+                    Placed(first + k, item, None, part) if isinstance(part, str) else Placed(first + k, item, part, "")
+                )
+    return found
+
+
+def _far(moved: np.ndarray, starts: list[int]) -> set[tuple[int, int]]:
+    """Places and figures with a vertex off the earth."""
+    if not moved.size or np.abs(moved).max() < FARTHEST:
+        return set()
+    places, vertices = np.nonzero(~(np.abs(moved).max(axis=2) < FARTHEST))
+    figures = np.searchsorted(starts, vertices, side="right") - 1
+    return set(zip(places.tolist(), figures.tolist(), strict=True))
+
+
+class _Mover:
+    """Makes the parts of one place."""
+
+    def __init__(self, at: Placing, file: str) -> None:
+        self.at, self.file = at, file
+        (a, b, _), (c, d, _), (_, _, self.rise_scale) = at.matrix
+        self.plan_scale = math.sqrt(abs(a * d - b * c))
+
+    def part(self, sketch: Sketch, points: tuple[Point3, ...]) -> Part | str:
+        """The part, or the reason why there is none."""
+        if not points:
+            return "no coordinates"
+        form = sketch.form
+        if form == "path" or form == "outline":
+            return self._line(sketch, form, points)
+        if form == "conic":
+            return self._conic(sketch, points)
+        if form == "text":
+            return self._text(sketch, points)
+        return self._make(sketch, "point", points[:1])
+
+    def _line(self, sketch: Sketch, form: Literal["path", "outline"], points: tuple[Point3, ...]) -> Part | str:
+        closed = sketch.closed
+        outer = sketch.rings[0] if sketch.rings else len(points)
+        ring, rest = points[:outer], points[outer:]
+        if len(ring) > 2 and ring[0] == ring[-1]:
+            ring, closed = ring[:-1], True
+        if len(ring) < 2 or (len(ring) == 2 and ring[0] == ring[1]):
+            return "zero length"
+        holes: list[tuple[Point3, ...]] = []
+        for count in sketch.rings[1:]:
+            holes.append(rest[:count])
+            rest = rest[count:]
+        return self._make(sketch, form, ring, closed=closed and len(ring) > 2, holes=tuple(holes))
+
+    def _conic(self, sketch: Sketch, points: tuple[Point3, ...]) -> Part | str:
+        centre, a, b = points
+        radius, other = math.dist(centre, a), math.dist(centre, b)
+        if max(radius, other) == 0.0:
+            return "zero radius"
+        slack = 1e-6 * radius
+        along, across = _arm(centre, a), _arm(centre, b)
+        level = abs(along[2]) <= slack and abs(across[2]) <= slack
+        square = abs(sum(u * v for u, v in zip(along, across, strict=True))) <= slack * radius
+        round_ = level and square and abs(radius - other) <= slack
+        whole = sketch.span is None or sketch.span[1] - sketch.span[0] >= math.tau - 1e-9
+        if whole and round_:
+            return self._make(sketch, "circle", points[:1], closed=True, radius=radius)
+        span = sketch.span or (0.0, math.tau)
+        chords = flatten_conic(np.array(centre), np.array(along), np.array(across), span, SAGITTA)
+        path = tuple((x, y, z) for x, y, z in chords.tolist())
+        tags = {"arc_centre": f"{centre[0]!r} {centre[1]!r}", "arc_radius": repr(radius)} if round_ else None
+        return self._make(sketch, "path", path[:-1] if whole else path, closed=whole, tags=tags)
+
+    def _text(self, sketch: Sketch, points: tuple[Point3, ...]) -> Part | str:
+        start, along, up, *tips = points
+        turn = math.degrees(math.atan2(along[1] - start[1], along[0] - start[0]))
+        tags = {"height": f"{math.dist(start, up):.6g}", "rotation": f"{turn:.6g}"}
+        if tips:
+            tags["leader"] = "; ".join(f"{x!r} {y!r}" for x, y, _ in tips)
+        if sketch.measure is not None:
+            tags["measured"] = f"{sketch.measure * self.plan_scale:.9g}"
+        return self._make(sketch, "text", points[:1], tags=tags)
+
+    def _make(
+        self,
+        sketch: Sketch,
+        form: Literal["path", "outline", "point", "circle", "text"],
+        points: tuple[Point3, ...],
+        *,
+        closed: bool = False,
+        holes: tuple[tuple[Point3, ...], ...] = (),
+        radius: float | None = None,
+        tags: dict[str, str] | None = None,
+    ) -> Part:
+        at = self.at
+        bottom = top = None
+        if sketch.rise:
+            edges = sorted((points[0][2], points[0][2] + sketch.rise * self.rise_scale))
+            bottom, top = edges[0], edges[1]
+        return Part(
+            source=Source(file=self.file, item=at.item or sketch.item),
+            form=form,
+            points=points,
+            layer=at.layer if at.item and sketch.layer == "0" else sketch.layer,
+            cls=sketch.cls,
+            name=sketch.name,
+            closed=closed,
+            holes=holes,
+            radius=radius,
+            thickness=sketch.width * self.plan_scale if sketch.width else None,
+            z_bottom=bottom,
+            z_top=top,
+            text=sketch.text,
+            tags={**(at.tags or {}), **(sketch.tags or {}), **(tags or {})},
+            evidence=at.evidence or sketch.evidence,
+        )
+
+
+def _arm(centre: Point3, end: Point3) -> Point3:
+    return end[0] - centre[0], end[1] - centre[1], end[2] - centre[2]

@@ -1,0 +1,96 @@
+"""The frame of a section: size of the model, halving, and what lies along the cut."""
+
+from __future__ import annotations
+
+from collections.abc import Sequence
+from typing import Literal
+
+import numpy as np
+
+from ingest.model import Point, Site
+from ingest.trail import Finding
+from sections.cut import Cut, crossings
+from sections.definition import Extent, Half, SectionMember, SectionReceptor
+from sections.ground import nearest_borehole
+from sections.world import to_local, to_world
+
+BELOW_TOE = 2.0
+"""Model below the wall toe, in excavated depths (judgement)."""
+
+
+def model_extent(cut: Cut) -> tuple[Extent, tuple[Finding, ...]]:
+    """Size of the model: the cut's own length, the surface, and BELOW_TOE excavated depths below the lowest toe."""
+    levels = [wall.level for wall in cut.walls]
+    ground = [level["ground"] for level in levels if level["ground"] is not None]
+    low = [level["toe"] if level["toe"] is not None else level["floor"] for level in levels]
+    depth = [g["ground"] - g["floor"] for g in levels if g["ground"] is not None and g["floor"] is not None]
+    known_low = [level for level in low if level is not None]
+    top = max(ground, default=0.0)
+    reach = BELOW_TOE * max(depth, default=0.0)
+    base = (min(known_low) if known_low else top) - reach
+    findings: tuple[Finding, ...] = ()
+    if not known_low or not ground or not depth:
+        findings = (
+            Finding(
+                id="extent",
+                code="level_missing",
+                severity="check",
+                where="extent",
+                text="A ground, dig or toe level is not given: the size of the model is a guess",
+            ),
+        )
+    basis = (
+        "3 excavated depths behind each wall, 2 inside the pit where no far wall is in the section, 2 below the lowest "
+        "known toe or dig level (judgement)"
+    )
+    left: Literal["axis", "roller"] = "axis" if cut.kind == "axisymmetric" else "roller"
+    return Extent(x=(0.0, cut.length), z=(base, top), left=left, right="roller", base="fixed", basis=basis), findings
+
+
+def mirrors(cut: Cut, members: Sequence[SectionMember], loads: Sequence[object]) -> Half:
+    """Whether the section mirrors about its middle: walls, levels, supports alike and no load on one side only."""
+    if len(cut.walls) != 2:
+        return Half(is_half=False, at_x=None, basis="one wall only")
+    a, b = cut.walls
+    runs = [w.found.pit.runs[int(w.found.stations.run[w.station])].wall for w in (a, b)]
+    levels = all(a.level[name] == b.level[name] for name in a.level)
+    alike = runs[0].kind == runs[1].kind and runs[0].diameter == runs[1].diameter and runs[0].centres == runs[1].centres
+    one_sided = [member.id for member in members if member.form == "bar" and member.side in ("left", "right")]
+    if levels and alike and not loads and not one_sided:
+        return Half(is_half=False, at_x=(a.x + b.x) / 2, basis="mirrors about its middle: half of it may be analysed")
+    return Half(is_half=False, at_x=None, basis="does not mirror: walls, levels, supports or loads differ")
+
+
+def borehole_distance(site: Site, cut: Cut) -> float | None:
+    """Least distance from the cut to a borehole, m; None without boreholes."""
+    if not site.boreholes:
+        return None
+    points = [cut.point(x) for x in np.linspace(0.0, cut.length, 21)]
+    return float(np.min(nearest_borehole(site, points)))
+
+
+def receptors_met(site: Site, cut: Cut) -> tuple[SectionReceptor, ...]:
+    """Receptors the cut passes through, with their distance to the nearest wall of the section."""
+    found = []
+    for number, receptor in enumerate(site.receptors, start=1):
+        spans = crossings(cut, receptor.points) if len(receptor.points) > 2 else ()
+        for a, b in spans:
+            level = receptor.level if receptor.level is not None else 0.0
+            gap = min(min(abs(a - wall.x), abs(b - wall.x)) for wall in cut.walls)
+            line = ((a, level), (b, level))
+            found.append(
+                SectionReceptor(id=receptor.id or f"receptor-{number}", kind=receptor.kind, at=line, distance=gap)
+            )
+    return tuple(found)
+
+
+def world_point(site: Site, point: Point) -> Point:
+    """World coordinates of a local plan point."""
+    x, y = to_world(site.frame, [point])[0]
+    return float(x), float(y)
+
+
+def local_point(site: Site, point: Point) -> Point:
+    """Local coordinates of a world plan point."""
+    x, y = to_local(site.frame, [point])[0]
+    return float(x), float(y)
