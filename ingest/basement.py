@@ -1,4 +1,4 @@
-"""The pit inside a building model: which walls stand in the ground, which slabs lie at the bottom, where the ground is."""
+"""The pit inside a building model: which walls stand in the ground, which slabs lie lowest, where the ground is."""
 
 from __future__ import annotations
 

@@ -13,6 +13,7 @@ from ingest.model import BarSection, Material, Part, Pile, Point3, Support, Wale
 from ingest.notes import Notes, label
 from ingest.rigidity import find_rigidity
 from ingest.roles import RoleGiven
+from ingest.tie_texts import Tied
 
 SupportRole = Literal["strut", "corner_strut", "raker", "anchor"]
 FIELDS = tuple(name for name in SupportTable.model_fields if name not in ("match", "role", "level"))
@@ -23,6 +24,7 @@ def build_supports(
     walls: Sequence[WallPiece],
     piles: Sequence[Pile],
     materials: Sequence[Material],
+    tied: Tied,
     notes: Notes,
 ) -> tuple[Support, ...]:
     """Make the supports; a member drawn once for several levels of the brief gives one support a level.
@@ -32,6 +34,7 @@ def build_supports(
         walls: Walls, to tell the head of an anchor from its far end.
         piles: Piles, likewise.
         materials: Materials of the brief.
+        tied: Levels written beside the members.
         notes: Takes what is missing, assumed or refused.
 
     Returns:
@@ -46,7 +49,7 @@ def build_supports(
             notes.refuse(item.part, f"{item.role} that is not one straight member")
             continue
         for numbers, entry in _entries(item, notes):
-            supports.append(_support(item, _ordered(item, ends, near), entry, numbers, known, notes))
+            supports.append(_support(item, _ordered(item, ends, near), entry, numbers, known, tied, notes))
     return tuple(supports)
 
 
@@ -117,12 +120,13 @@ def _support(
     entry: dict[str, Any],
     numbers: list[int],
     materials: dict[str, Material],
+    tied: Tied,
     notes: Notes,
 ) -> Support:
     role = cast(SupportRole, item.role)
     part = item.part
     _check_preload(role, entry["preload"], numbers, notes)
-    head, far, level_given, inclination_given = _placed(item, ends, entry, notes)
+    head, far, level_given, inclination_given = _placed(item, ends, entry, tied, notes)
     section, EA, EI, weight = find_rigidity(label(item), part, entry, numbers, materials, notes)
     return Support(
         id="",
@@ -165,11 +169,13 @@ def _check_preload(role: SupportRole, preload: float | None, numbers: list[int],
 
 
 def _placed(
-    item: RoleGiven, ends: tuple[Point3, Point3], entry: dict[str, Any], notes: Notes
+    item: RoleGiven, ends: tuple[Point3, Point3], entry: dict[str, Any], tied: Tied, notes: Notes
 ) -> tuple[Point3, Point3, bool, bool]:
     head, far = ends
     drawn = _drawn_level(item.part)
-    level = entry["level"] if entry["level"] is not None else head[2] if drawn is not None else None
+    level = (
+        entry["level"] if entry["level"] is not None else head[2] if drawn is not None else tied.value(item, "level")
+    )
     slope = far[2] - head[2] if drawn is not None else None
     z = 0.0 if level is None else level
     run = math.dist(head[:2], far[:2])

@@ -13,6 +13,7 @@ from ingest.notes import Notes
 from ingest.record import record
 from ingest.roles import RoleGiven
 from ingest.surroundings import upright
+from ingest.tie_texts import Tied
 
 POST = 1.5
 """Largest side of a post drawn by its outline, m (judgement)."""
@@ -29,11 +30,12 @@ class WallGiven:
     toe: float | None = None
 
 
-def build_walls(given: Sequence[RoleGiven], notes: Notes) -> tuple[tuple[WallPiece, ...], tuple[Pile, ...]]:
+def build_walls(given: Sequence[RoleGiven], tied: Tied, notes: Notes) -> tuple[tuple[WallPiece, ...], tuple[Pile, ...]]:
     """Make wall pieces and piles.
 
     Args:
         given: Parts with role wall or bearing_pile.
+        tied: Levels written beside them.
         notes: Takes the parts that give nothing, with the reason.
 
     Returns:
@@ -43,7 +45,9 @@ def build_walls(given: Sequence[RoleGiven], notes: Notes) -> tuple[tuple[WallPie
     piles: list[Pile] = []
     capping = _capping_beam(notes)
     for item in given:
-        found = _pile(item, notes, capping) or (_wall(item, notes, capping) if item.role == "wall" else None)
+        found = _pile(item, tied, notes, capping) or (
+            _wall(item, tied, notes, capping) if item.role == "wall" else None
+        )
         if isinstance(found, Pile):
             piles.append(found)
         elif isinstance(found, WallPiece):
@@ -53,8 +57,12 @@ def build_walls(given: Sequence[RoleGiven], notes: Notes) -> tuple[tuple[WallPie
     return tuple(walls), tuple(piles)
 
 
-def given_in_brief(part: Part, notes: Notes) -> WallGiven:
-    """What the [[walls]] entries that fit a part say; entries without a match fit every wall."""
+def given_of(item: RoleGiven, tied: Tied, notes: Notes) -> WallGiven:
+    """What the [[walls]] entries that fit a part say, then the part itself, then a note beside it.
+
+    Entries without a match fit every wall.
+    """
+    part = item.part
     entries = [e for e in notes.brief.walls if e.match is None or fits(e.match, part)]
     entries.sort(key=lambda entry: entry.match is None)
 
@@ -63,7 +71,8 @@ def given_in_brief(part: Part, notes: Notes) -> WallGiven:
 
     levels = notes.brief.levels
     drawn_top, drawn_toe = _levels(part)
-    top, toe = _first_number(first("top"), drawn_top, levels.top), _first_number(first("toe"), drawn_toe)
+    top = _first_number(first("top"), drawn_top, tied.value(item, "top"), levels.top)
+    toe = _first_number(first("toe"), drawn_toe, tied.value(item, "toe"))
     _check_levels(part, entries, top, toe, notes)
     material, factor, continuity = first("material"), first("EI_factor"), first("continuity")
     return WallGiven(
@@ -95,14 +104,14 @@ def _capping_beam(notes: Notes) -> bool | None:
     return None
 
 
-def _pile(item: RoleGiven, notes: Notes, capping: bool | None) -> Pile | None:
+def _pile(item: RoleGiven, tied: Tied, notes: Notes, capping: bool | None) -> Pile | None:
     part = item.part
     round_ = upright(part)
     post = None if round_ else _post(item)
     if round_ is None and post is None:
         return None
     centre, diameter = round_ if round_ else (centroid(part), None)
-    said = given_in_brief(part, notes)
+    said = given_of(item, tied, notes)
     bearing = item.role == "bearing_pile"
     kind: WallKind | None = None if bearing else item.wall_kind or "unknown"
     return Pile(
@@ -113,8 +122,8 @@ def _pile(item: RoleGiven, notes: Notes, capping: bool | None) -> Pile | None:
         bearing=None if bearing and item.use == "pile" else bearing,
         section=post or part.section,
         male=None if item.use not in ("male", "female") else item.use == "male",
-        top=said.top if not bearing else _levels(part)[0],
-        toe=said.toe if not bearing else _levels(part)[1],
+        top=said.top if not bearing else _first_number(_levels(part)[0], tied.value(item, "top")),
+        toe=said.toe if not bearing else _first_number(_levels(part)[1], tied.value(item, "toe")),
         material=said.material,
         EI_factor=said.EI_factor,
         continuity=said.continuity,
@@ -142,12 +151,12 @@ def _post(item: RoleGiven) -> BarSection | None:
     return None
 
 
-def _wall(item: RoleGiven, notes: Notes, capping: bool | None) -> WallPiece | None:
+def _wall(item: RoleGiven, tied: Tied, notes: Notes, capping: bool | None) -> WallPiece | None:
     part = item.part
     axis, closed, drawn, thickness = _axis(part)
     if len(axis) < 2:
         return None
-    said = given_in_brief(part, notes)
+    said = given_of(item, tied, notes)
     return WallPiece(
         id="",
         axis=axis,

@@ -10,6 +10,9 @@ from ingest.notes import Notes
 from ingest.roles import RoleGiven
 from ingest.trail import LedgerEntry
 
+APART = ("superstructure", "wall of the building")
+"""Reasons the ledger gives by name."""
+
 
 def make_ledger(files: Sequence[FileParts], given: Sequence[RoleGiven], notes: Notes) -> dict[str, LedgerEntry]:
     """Close the books of all files.
@@ -72,6 +75,6 @@ def _fate(item: RoleGiven, notes: Notes) -> tuple[int, str, str]:
 
 def _short(item: RoleGiven) -> str:
     why = item.evidence.why
-    return (
-        "the brief says context" if why.startswith("brief") else why if why.startswith("superstructure") else "no role"
-    )
+    if why.startswith("brief"):
+        return "the brief says context"
+    return why.partition(":")[0] if why.startswith(APART) else "no role"

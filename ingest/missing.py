@@ -2,27 +2,19 @@
 
 from __future__ import annotations
 
-from collections.abc import Sequence
-
 from ingest.model import Site
 from ingest.notes import Notes
-from ingest.roles import RoleGiven
 
 
-def note_missing(site: Site, given: Sequence[RoleGiven], notes: Notes) -> Site:
+def note_missing(site: Site, notes: Notes) -> None:
     """Ask for what a section cannot do without.
 
     Args:
         site: The site as built.
-        given: Roles, for the count of what was found.
         notes: Takes the questions.
-
-    Returns:
-        The site, unchanged.
     """
     _ask_levels(site, notes)
     _ask_supports(site, notes)
-    return site
 
 
 def _ask_levels(site: Site, notes: Notes) -> None:

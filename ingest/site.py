@@ -24,6 +24,8 @@ from ingest.notes import Notes
 from ingest.register import Moved, lay_files
 from ingest.roles import RoleGiven, find_roles
 from ingest.starting_brief import write_starting_brief
+from ingest.tie_texts import tie_texts
+from ingest.unmatched import note_unmatched
 
 __all__ = ["READERS", "read_site", "site_of", "write_starting_brief"]
 
@@ -90,7 +92,8 @@ def site_of(files: Sequence[FileParts], brief: Brief, notes: Notes | None = None
     given, ground = sort_building(given, moved.files, notes)
     notes.questions += [item.question for item in given if item.question is not None]
     site = _records(given, moved, ground, notes)
-    site = note_missing(site, given, notes)
+    note_missing(site, notes)
+    note_unmatched([item.part for item in given], site, notes)
     questions, assumptions, findings = notes.numbered()
     return replace(
         site,
@@ -109,8 +112,9 @@ def _records(given: Sequence[RoleGiven], moved: Moved, ground: float | None, not
         return [item for item in given if item.role in roles]
 
     materials = build_materials(notes)
-    walls, piles = build_walls(having("wall", "bearing_pile"), notes)
-    supports = build_supports(having("strut", "corner_strut", "raker", "anchor"), walls, piles, materials, notes)
+    tied = tie_texts(given, notes)
+    walls, piles = build_walls(having("wall", "bearing_pile"), tied, notes)
+    supports = build_supports(having("strut", "corner_strut", "raker", "anchor"), walls, piles, materials, tied, notes)
     dug = [item for item in given if item.role == "slab" and item.use == "floor"]
     stages, sequence = build_stages(brief)
     return Site(

@@ -15,6 +15,8 @@ Floats = NDArray[np.float64]
 
 PILE_DIAMETER = (0.2, 3.5)
 """Diameters taken for piles, m (common practice, no source)."""
+PILE_LENGTH = 2.0
+"""Shortest pile, m (judgement)."""
 WALL_ROW = 1.8
 """Piles at less than this many diameters stand close enough for a wall; bearing piles stand at 2.5 to 3 (judgement)."""
 ROW_LEAST = 5
@@ -87,8 +89,7 @@ def _place(n: int, part: Part, row: tuple[int, float] | None, lowest: float | No
     count, ratio = row or (0, math.nan)
     if upright(part) is not None:
         top = part.z_top if part.z_top is not None else max(p[2] for p in part.points)
-        tall = part.form == "bar" or part.z_top is not None
-        below = lowest is not None and tall and top <= lowest + 0.3
+        below = lowest is not None and top <= lowest + 0.3 and _pile_size(part)
         return Place(row_count=count, row_ratio=ratio, below_slab=below)
     if not straight(part) or walls.empty:
         return Place()
@@ -96,6 +97,13 @@ def _place(n: int, part: Part, row: tuple[int, float] | None, lowest: float | No
     dip = math.degrees(math.atan2(head[2] - far[2], math.dist(head[:2], far[:2])))
     ends = sum(walls.near(point[:2]) for point in part.points)
     return Place(ends_at_walls=ends, inclination=dip, far_side=walls.side(far[:2]) if dip > 3 else "")
+
+
+def _pile_size(part: Part) -> bool:
+    """Round and upright, of a pile's diameter, and long: hoses and dowels stand below slabs too."""
+    low, high = PILE_DIAMETER
+    heights = [point[2] for point in part.points] + [z for z in (part.z_bottom, part.z_top) if z is not None]
+    return part.radius is not None and low <= 2 * part.radius <= high and max(heights) - min(heights) >= PILE_LENGTH
 
 
 def _pile_rows(parts: Sequence[Part]) -> dict[int, tuple[int, float]]:

@@ -7,11 +7,14 @@ from dataclasses import dataclass
 import numpy as np
 import shapely
 from numpy.typing import ArrayLike
+from shapely.geometry.base import BaseGeometry
 
 from sections.model import Bools, Floats, Ints, PitShape
 
 ON = 1e-3
 """Chainages closer than this are one place, m."""
+OPEN_DEPTH = 20.0
+"""How far in front of an open wall its dig is taken to reach, m (judgement)."""
 
 
 @dataclass(frozen=True, kw_only=True)
@@ -86,9 +89,23 @@ def line_of(shape: PitShape) -> shapely.LineString:
 
 
 def area_of(shape: PitShape) -> shapely.Polygon:
-    """The plan of a closed pit; an open wall is closed straight between its ends."""
-    polygon = shapely.Polygon(shape.axis)
-    return polygon if polygon.is_valid else polygon.buffer(0.0)
+    """The plan of a pit; for an open wall the ground in front of it, closed straight between its ends or 20 m deep."""
+    if shape.closed:
+        return _largest(shapely.Polygon(shape.axis))
+    line = line_of(shape)
+    front: BaseGeometry = line.buffer(OPEN_DEPTH, single_sided=True)
+    if len(shape.axis) > 2:
+        ring = shapely.Polygon(shape.axis)
+        front = shapely.union(front, ring.buffer(0.0)) if shapely.is_ccw(ring.exterior) else front
+    behind = line.buffer(-OPEN_DEPTH, single_sided=True)
+    return _largest(shapely.difference(front, behind))
+
+
+def _largest(area: BaseGeometry) -> shapely.Polygon:
+    """The largest polygon of a plan that may touch or cross itself."""
+    valid = area if area.is_valid else area.buffer(0.0)
+    parts = [part for part in getattr(valid, "geoms", [valid]) if isinstance(part, shapely.Polygon)]
+    return max(parts, key=lambda part: part.area)
 
 
 def segments_of(shape: PitShape) -> tuple[Floats, Floats, Floats]:

@@ -15,7 +15,7 @@ from sections.support_rows import Rows
 from sections.walk import Walk
 
 REMNANT = 1.5
-"""A row reaches a wall's end, or half way to the next row, that is no further off than this many spacings (judgement)."""
+"""A row covers what is left to the end of the wall or half way to the next row up to this many spacings (judgement)."""
 
 
 @dataclass(frozen=True, kw_only=True)
@@ -104,7 +104,7 @@ def rows_at(
     spacing = np.full((count, len(steps.chainage)), np.nan)
     for cover in covers:
         length = float(sides.length[cover.side])
-        place = steps.place + 2.0 * ON
+        place = np.minimum(steps.place + 2.0 * ON, length - 0.5 * ON)
         for turn in (-length, 0.0, length) if sides.loop else (0.0,):
             shifted = place + turn
             on = (steps.side == cover.side) & (shifted >= cover.start - ON) & (shifted < cover.to)

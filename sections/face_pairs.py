@@ -21,6 +21,7 @@ THICKEST, THINNEST = 2.0, 0.05
 PARALLEL = 4.0
 """Faces of one wall are parallel within this (chords of two arcs may differ a little), degrees."""
 SLIVER = 0.03
+MUCH_THICKER = 1.3
 SURE_MARGIN = 0.2
 """A second matching that is worse by less than this leaves the pairing open."""
 
@@ -78,7 +79,7 @@ def candidates(faces: Faces, within: bool) -> Ints:
 
     Args:
         faces: The faces.
-        within: True to look only at faces of one body, False to look at all.
+        within: True to look only at faces of one body (which is longer than it is thick), False to look at all.
     """
     lines = shapely.linestrings(np.stack((faces.p, faces.q), axis=1))
     a, b = shapely.STRtree(lines).query(lines, predicate="dwithin", distance=THICKEST)
@@ -96,7 +97,21 @@ def candidates(faces: Faces, within: bool) -> Ints:
     for side in (a, b):
         said = faces.thickness[side]
         ok &= np.isnan(said) | (np.abs(offset - said) <= 0.03)
+    if within:
+        ok &= _usual(faces.body[a], offset, np.where(ok, high - low, 0.0))
     return np.column_stack((a[ok], b[ok]))
+
+
+def _usual(body: Ints, offset: Floats, length: Floats) -> Bools:
+    """Pairs that are not much thicker than what most of the body is: its two ends are no faces of it."""
+    ok = np.ones(len(body), dtype=bool)
+    for one in np.unique(body):
+        mine = np.flatnonzero(body == one)
+        order = mine[np.argsort(offset[mine])]
+        along = np.cumsum(length[order])
+        middle = offset[order[int(np.searchsorted(along, 0.5 * along[-1]))]]
+        ok[mine] = offset[mine] <= MUCH_THICKER * middle
+    return ok
 
 
 def _overlap(faces: Faces, a: Ints, b: Ints) -> tuple[Floats, Floats]:

@@ -8,10 +8,11 @@ from dataclasses import replace
 import numpy as np
 
 from ingest.model import Site
-from sections.chainage import find_sides
+from ingest.trail import Finding, Question
+from sections.chainage import area_of, find_sides
 from sections.floors import FloorPlan, find_floors, find_steps, floor_records
 from sections.mirror import find_axes
-from sections.model import FoundPit, Ints, Neighbour, Pit, PitShape
+from sections.model import Floats, FoundPit, Neighbour, Pit, PitShape
 from sections.near_loads import find_loads, find_receptors
 from sections.neighbours import find_neighbours
 from sections.numbering import number_rows
@@ -59,11 +60,16 @@ def describe_pits(site: Site, shapes: Sequence[PitShape]) -> tuple[FoundPit, ...
     """Describe pits whose perimeters are known."""
     wall_piles = frozenset(i for shape in shapes for run in shape.piles for i in run)
     all_ends, unmet = meet_supports(site, shapes)
-    depths = [_depth(site, find_floors(site, shape)) for shape in shapes]
+    plans = {shape.id: find_floors(site, shape) for shape in shapes}
+    depths = [_depth(site, plans[shape.id]) for shape in shapes]
     found = []
     for i, (shape, ends) in enumerate(zip(shapes, all_ends, strict=True)):
-        strays = unmet if i == 0 else unmet[:0]
-        found.append(_describe(site, shape, ends, strays, wall_piles, find_neighbours(shapes, i, depths)))
+        notes = note_supports(site, shape, ends, unmet if i == 0 else unmet[:0])
+        # of several rings around it, it lies directly in the smallest
+        outer = sorted((s for s in shapes if s.id in shape.enclosing), key=lambda s: (area_of(s).area, s.id))
+        around = plans[outer[0].id] if outer else None
+        neighbours = find_neighbours(shapes, i, depths)
+        found.append(_describe(site, shape, ends, (plans[shape.id], around), wall_piles, neighbours, notes))
     return tuple(found)
 
 
@@ -74,33 +80,40 @@ def _depth(site: Site, plan: FloorPlan) -> float:
     return float(site.ground_level - np.min(plan.levels))
 
 
+def _retained_level(ground: Floats) -> float | None:
+    """Level of the ground around a pit where it is one and the same all round, else None."""
+    if np.any(np.isnan(ground)) or np.ptp(ground) > 0.0:
+        return None
+    return float(ground[0])
+
+
 def _describe(
     site: Site,
     shape: PitShape,
     ends: SupportEnds,
-    strays: Ints,
+    floors: tuple[FloorPlan, FloorPlan | None],
     wall_piles: frozenset[int],
     neighbours: tuple[Neighbour, ...],
+    notes: tuple[tuple[Finding, ...], tuple[Question, ...]],
 ) -> FoundPit:
     sides = find_sides(shape)
-    plan = find_floors(site, shape)
+    plan, around = floors
     steps = find_steps(plan, shape, site.limits)
     loads = find_loads(site, shape, _depth(site, plan))
     rows = number_rows(find_rows(site, shape, sides, ends), shape.id)
     rows = replace(rows, rows=carry_by_walers(site, shape, rows.rows))
     extra = np.array([at for step in steps for at in step.at])
-    stations, zones = stand(site, shape, sides, plan, rows, loads, extra)
+    stations, zones = stand(site, shape, sides, plan, rows, loads, extra, around)
     members = (*(row.member for row in rows.rows), *find_members(site, shape, wall_piles))
     near = tuple(load.load for load in loads)
-    level_findings, assumptions = note_levels(site, shape, plan)
-    support_findings, questions = note_supports(site, shape, ends, strays)
+    level_findings, assumptions = note_levels(site, shape, plan, around is not None)
     frame = site.frame
     pit = Pit(
         id=shape.id,
         closed=shape.closed,
         length=shape.length,
         perimeter=to_world(frame, shape.axis),
-        ground_level=site.ground_level,
+        ground_level=_retained_level(stations.ground),
         arcs=world_arcs(frame, shape.arcs),
         corners=world_corners(frame, shape.corners),
         runs=shape.runs,
@@ -120,8 +133,8 @@ def _describe(
         shape=shape,
         stations=stations,
         rows=rows.rows,
-        findings=(*level_findings, *support_findings),
-        questions=questions,
+        findings=(*level_findings, *notes[0]),
+        questions=notes[1],
         assumptions=assumptions,
         loads={load.load.id: load.index for load in loads},
     )

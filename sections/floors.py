@@ -52,7 +52,7 @@ def find_floors(site: Site, shape: PitShape) -> FloorPlan:
     floors, visible = [], []
     for i, (floor, area) in enumerate(shown):
         deeper = [other for f, other in shown[i + 1 :] if _dug(f) < _dug(floor) - 1e-9]
-        left = area.difference(shapely.union_all(deeper)) if deeper else area
+        left = _polygons(area.difference(shapely.union_all(deeper))) if deeper else area
         if left.area > SMALL:
             floors.append(floor)
             visible.append(left)
@@ -110,7 +110,14 @@ def _area(floor: Floor, pit: shapely.Polygon) -> BaseGeometry:
     if len(floor.outline) < 3:
         return shapely.Polygon()
     outline = shapely.make_valid(shapely.Polygon(floor.outline))
-    return shapely.intersection(outline, pit)
+    return _polygons(shapely.intersection(outline, pit))
+
+
+def _polygons(geometry: BaseGeometry) -> BaseGeometry:
+    """Only the areas of a geometry: an overlay may leave lines and points where outlines touch."""
+    parts = [part for part in shapely.get_parts(geometry) if part.geom_type == "Polygon"]
+    inner = [p for part in shapely.get_parts(geometry) if part.geom_type == "MultiPolygon" for p in part.geoms]
+    return shapely.union_all([*parts, *inner]) if parts or inner else shapely.Polygon()
 
 
 def _joined(floors: list[Floor], areas: list[BaseGeometry]) -> tuple[list[Floor], list[BaseGeometry]]:
@@ -154,6 +161,22 @@ def floor_at_wall(plan: FloorPlan, shape: PitShape, chainage: Floats, half_thick
         near = (drop > 0.0) & (distance[i] + FACE <= RULES_WITHIN * drop)
         ruled = np.where(near, np.minimum(ruled, plan.levels[i]), ruled)
     return np.asarray(ruled)
+
+
+def level_behind(plan: FloorPlan, inner: PitShape, chainage: Floats, half_thickness: Floats) -> Floats:
+    """Level retained by a wall that stands within another pit: that pit's floor behind the wall, m.
+
+    Args:
+        plan: Floors of the pit around; those that lie within the inner one do not count.
+        inner: The pit within.
+    """
+    within = area_of(inner)
+    outside = [i for i, area in enumerate(plan.areas) if area.intersection(within).area < 0.5 * area.area]
+    if not outside:
+        return np.full(len(chainage), np.nan)
+    behind = point_at(inner, chainage) - (half_thickness + FACE)[:, None] * normal_at(inner, chainage)
+    distance = np.vstack([shapely.distance(shapely.points(behind), plan.areas[i]) for i in outside])
+    return np.asarray(plan.levels[outside][np.argmin(distance, axis=0)])
 
 
 def _main_floors(plan: FloorPlan, shape: PitShape, half_thickness: float) -> list[int]:

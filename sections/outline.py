@@ -85,19 +85,22 @@ def _joined_tail(samples: Samples, sides: list[Side]) -> list[Side] | None:
 
 
 def _as_one(samples: Samples, a: Side, b: Side) -> Side | None:
-    """One side through both, if one line or arc fits them."""
-    if a.form != b.form or a.form == "point":
+    """One side through both, if one line or arc fits them; a lone point may belong to the arc beside it."""
+    forms = {a.form, b.form}
+    if forms not in ({"line"}, {"arc"}, {"arc", "point"}):
         return None
     keep = np.concatenate((np.arange(*a.block), np.arange(*b.block)))
     both = samples.pick(keep)
-    if a.form == "line":
+    if "point" in forms:
+        pass
+    elif a.form == "line":
         if a.ahead @ b.ahead < np.cos(np.radians(SAME_TURN)):
             return None
     elif a.turn != b.turn or abs(a.radius - b.radius) > 0.1 * max(a.radius, b.radius):
         return None
-    one = fit_side(both, 0, len(keep), a.form == "arc")
-    off = both.xy - one.centre if a.form == "arc" else both.xy - one.first
-    away = np.abs(np.hypot(*off.T) - one.radius) if a.form == "arc" else np.abs(cross(one.ahead, off))
+    one = fit_side(both, 0, len(keep), "arc" in forms)
+    off = both.xy - one.centre if one.form == "arc" else both.xy - one.first
+    away = np.abs(np.hypot(*off.T) - one.radius) if one.form == "arc" else np.abs(cross(one.ahead, off))
     if away.max() > SAME_LINE:
         return None
     return replace(one, block=(a.block[0], b.block[1]))
@@ -236,7 +239,8 @@ def _joint(samples: Samples, a: Side, b: Side) -> Floats | None:
     gap = float(np.hypot(*(b.first - a.last)))
     lines = a.form == b.form == "line"
     turn = float(np.arcsin(min(abs(float(cross(a.ahead, b.ahead))), 1.0))) if lines else np.pi / 2
-    point = _meet(a, b, 1.2 * gap / max(np.sin(turn), 0.05) + 0.3)
+    blurred = max((np.sqrt(0.1 * side.radius) for side in (a, b) if side.form == "arc"), default=0.0)
+    point = _meet(a, b, 1.2 * gap / max(np.sin(turn), 0.05) + 0.3 + blurred)
     if point is None:
         return 0.5 * (a.last + b.first) if gap <= 2 * SAME_LINE else None
     pace = max(_pace(samples, a), _pace(samples, b))

@@ -19,6 +19,8 @@ NEIGHBOURS = 8
 MAX_TURN = 40.0
 """Largest turn inside one row, degrees; sharper ones are corners, which the wall lines make where they meet."""
 STRAIGHT_TURN = 25.0
+OVER_GAP = 3
+"""Rank added to a bay that spans a gap."""
 CLOSE_ROW = 1.8
 """Spacing over diameter up to which a row can only be a wall (common practice, no source)."""
 WIDEST = 6.0
@@ -96,7 +98,9 @@ def find_pile_rows(piles: Sequence[Pile]) -> tuple[PileRow, ...]:
     edges = edges[_alike(edges, piles, chosen, named)]
     grid = _in_grid(edges, xy, named, size)
     edges = edges[~(grid[edges[:, 0]] | grid[edges[:, 1]])]
-    links = _link(edges, xy, *_ranked(tree, xy, edges))
+    rank, span = _ranked(tree, xy, edges)
+    links = _link(edges, xy, rank, span)
+    _link_single(edges, links, rank, span)
     rows = (_row(chain, closed, xy, index, named) for chain, closed in _chains(links))
     return tuple(row for row in rows if len(row.piles) >= (2 if row.sure else 3))
 
@@ -155,7 +159,7 @@ def _ranked(tree: cKDTree, xy: Floats, edges: Ints) -> tuple[Ints, Floats]:
     alone = (tree.query(2 * p - q)[0] > 0.35 * span).astype(np.int64) + (tree.query(2 * q - p)[0] > 0.35 * span)
     nearest = tree.query(xy, k=2)[0][:, 1]
     over_gap = span > 1.6 * np.maximum(nearest[edges[:, 0]], nearest[edges[:, 1]])
-    return np.asarray(alone + 3 * over_gap, dtype=np.int64), span
+    return np.asarray(alone + OVER_GAP * over_gap, dtype=np.int64), span
 
 
 def _link(edges: Ints, xy: Floats, rank: Ints, span: Floats) -> list[list[int]]:
@@ -175,11 +179,21 @@ def _link(edges: Ints, xy: Floats, rank: Ints, span: Floats) -> list[list[int]]:
         return bool(ax * bx + ay * by >= limit * np.sqrt((ax * ax + ay * ay) * (bx * bx + by * by)))
 
     for (p, q), tier in zip(edges[order].tolist(), rank[order].tolist(), strict=True):
-        limit = straight if tier in (0, 3) else turned
+        limit = straight if tier in (0, OVER_GAP) else turned
         if fits(p, q, limit) and fits(q, p, limit):
             links[p].append(q)
             links[q].append(p)
     return links
+
+
+def _link_single(edges: Ints, links: list[list[int]], rank: Ints, span: Floats) -> None:
+    """A pile alone between two corners joins the rows that end beside it, whatever the direction."""
+    single = np.array([not near for near in links])
+    maybe = np.flatnonzero((single[edges[:, 0]] | single[edges[:, 1]]) & (rank < OVER_GAP))
+    for p, q in edges[maybe[np.argsort(np.round(span[maybe], 4), kind="stable")]].tolist():
+        if len(links[p]) < 2 and len(links[q]) < 2:
+            links[p].append(q)
+            links[q].append(p)
 
 
 def _chains(links: list[list[int]]) -> list[tuple[list[int], bool]]:

@@ -2,6 +2,8 @@
 
 from __future__ import annotations
 
+import numpy as np
+
 from ingest.model import Site
 from ingest.trail import Assumption, Finding, Question, Reading, Source
 from sections.floors import FloorPlan
@@ -11,10 +13,19 @@ from sections.support_ends import SupportEnds
 SHOWN = 5
 
 
-def note_levels(site: Site, shape: PitShape, plan: FloorPlan) -> tuple[tuple[Finding, ...], tuple[Assumption, ...]]:
-    """What is missing of the levels: without them no excavated depth is known."""
+def note_levels(
+    site: Site, shape: PitShape, plan: FloorPlan, within: bool
+) -> tuple[tuple[Finding, ...], tuple[Assumption, ...]]:
+    """What is missing of the levels: without them no excavated depth is known.
+
+    Args:
+        within: True for a pit that lies in another one.
+    """
     findings = []
-    if site.ground_level is None:
+    if within:
+        text = "This pit lies in another: it retains that pit's floor, wherever a deeper floor of its own is known."
+        findings.append(_finding(shape, "pit-in-pit", "check", "retained side", text))
+    elif site.ground_level is None:
         text = "No ground level is given, so no excavated depth is known and nothing can be assessed."
         findings.append(_finding(shape, "ground-level", "check", "retained side", text))
     if not plan.floors:
@@ -60,6 +71,16 @@ def note_supports(
         text = f"{len(strays)} supports bear on no wall and are not used: {_listed(site, strays)}."
         sources = tuple(source for i in strays for source in site.supports[i].sources)
         findings.append(_finding(shape, "support-off-wall", "check", "supports", text, sources))
+    loose = [
+        int(i)
+        for i, role, at, beyond in zip(ends.index, ends.role, ends.far_at, ends.beyond, strict=True)
+        if role == "strut" and np.isnan(at) and not beyond
+    ]
+    if loose:
+        text = f"{len(loose)} struts meet a wall at one end only; what the far end bears on is not known: "
+        sources = tuple(source for i in loose for source in site.supports[i].sources)
+        text += f"{_listed(site, np.array(loose))}."
+        findings.append(_finding(shape, "strut-far-end", "check", "supports", text, sources))
     if ends.copies:
         count = sum(len(sources) for sources in ends.copies.values())
         text = f"{count} supports are drawn twice; each is counted once."

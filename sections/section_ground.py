@@ -49,13 +49,21 @@ def _band_outlines(x: Floats, top: Floats, base: Floats) -> tuple[Curve, ...]:
     shape: BaseGeometry = Polygon(np.vstack([lower[::-1], upper[::-1]]))
     if not shape.is_valid:
         shape = make_valid(shape)
-    parts = [part for part in getattr(shape, "geoms", [shape]) if isinstance(part, Polygon) and part.area > THIN]
+    parts = [part for part in _polygons(shape) if part.area > THIN]
     return tuple(_ring(part) for part in sorted(parts, key=lambda part: part.bounds))
+
+
+def _polygons(shape: BaseGeometry) -> list[Polygon]:
+    """Polygons of a shape, however deep its collections nest."""
+    if isinstance(shape, Polygon):
+        return [shape]
+    return [polygon for part in getattr(shape, "geoms", ()) for polygon in _polygons(part)]
 
 
 def _ring(shape: Polygon) -> Curve:
     """Counter-clockwise outline from its lowest leftmost vertex, collinear vertices left out."""
     points = np.asarray(cast(Polygon, shape.normalize()).exterior.coords)[:-1]
+    points = points[np.hypot(*(points - np.roll(points, 1, 0)).T) > 1e-9]
     before, after = np.roll(points, 1, 0), np.roll(points, -1, 0)
     a, b = points - before, after - points
     bend = np.abs(a[:, 0] * b[:, 1] - a[:, 1] * b[:, 0]) > 1e-9

@@ -1,13 +1,13 @@
 """How severe a section's place is, as a vector to rank by; nothing is blended and nothing here is for design.
 
-For movement and stability only: a stiffer wall moves less and takes more moment and force, so this says nothing of those,
-and never whether one section may stand for another place. Formulas are recalled unless marked as seen.
+For movement and stability only: a stiffer wall moves less and takes more moment and force, so this says nothing of
+those, and never whether one section may stand for another place. Formulas are recalled unless marked as seen.
 """
 
 from __future__ import annotations
 
 from collections.abc import Mapping, Sequence
-from math import cos, inf, radians, sin, sqrt, tan
+from math import cos, inf, radians, sin, tan
 
 import numpy as np
 from numpy.typing import ArrayLike
@@ -41,7 +41,7 @@ def stiffness_by_water(EI: ArrayLike, h: ArrayLike) -> Floats:
 
 
 def stiffness_by_soil(EI: ArrayLike, h: ArrayLike, unit_weight: ArrayLike) -> Floats:
-    """System stiffness EI/(gamma_t h^4), unit weight of soil in kN/m3. Source: Mana & Clough 1981, seen in UFC 3-220-20."""
+    """System stiffness EI/(gamma_t h^4), by the soil's weight. Source: Mana & Clough 1981, seen in UFC 3-220-20."""
     return np.asarray(np.asarray(EI, float) / (np.asarray(unit_weight, float) * np.asarray(h, float) ** 4))
 
 
@@ -58,12 +58,12 @@ def stability_number(unit_weight: ArrayLike, H: ArrayLike, su: ArrayLike) -> Flo
 def spandrel_settlement(distance: ArrayLike) -> Floats:
     """Settlement over its maximum at the wall, by distance over excavated depth. Source: Hsieh & Ou 1998 (recalled)."""
     d = np.asarray(distance, float)
-    near = 1.0 - 0.636 * np.sqrt(d)
-    return np.clip(np.where(d <= 2.0, near, 0.342 - 0.171 * np.sqrt(d)), 0.0, None)
+    near, beyond = 1.0 - 0.636 * np.sqrt(d), 0.342 - 0.171 * np.sqrt(d)
+    return np.asarray(np.clip(np.where(d <= 2.0, near, beyond), 0.0, None))
 
 
 def concave_settlement(distance: ArrayLike) -> Floats:
-    """Settlement over its maximum, half a depth behind the wall. Source: Hsieh & Ou 1998 (0.1 at two depths recalled)."""
+    """Settlement over its maximum, half a depth behind the wall. Source: Hsieh & Ou 1998 (0.1 at 2 recalled)."""
     return np.asarray(np.interp(np.asarray(distance, float), [0.0, 0.5, 2.0, 4.0], [0.5, 1.0, 0.1, 0.0]))
 
 
@@ -104,18 +104,16 @@ def apparent_pressure_stiff_clay(unit_weight: float, H: float, factor: float = 0
 
 
 def member_factor(inclination: float, skew: float) -> float:
-    """Force along a support over the level pressure it holds square to the wall, 1/(cos(dip) cos(skew)); angles in degrees.
+    """Force along a support over the level pressure it holds square to the wall, 1/(cos(dip) cos(skew)).
 
-    Dividing by the cosine of one angle alone is right for level struts only.
+    Angles in degrees. Dividing by the cosine of one angle alone is right for level struts only.
     """
     return 1.0 / (cos(radians(inclination)) * cos(radians(skew)))
 
 
 def uplift_and_thrust(N: float, inclination: float, skew: float) -> tuple[float, float]:
     """Vertical part of a support's force on the wall and the thrust along it, kN."""
-    dip, turn = radians(inclination), radians(skew)
-    thrust = N * sqrt(max(0.0, 1.0 - sin(dip) ** 2 - (cos(dip) * cos(turn)) ** 2))
-    return N * sin(dip), thrust
+    return N * sin(radians(inclination)), N * cos(radians(inclination)) * sin(radians(skew))
 
 
 def find_severity(site: Site, found: FoundPit) -> dict[str, Floats]:
@@ -133,7 +131,7 @@ def find_severity(site: Site, found: FoundPit) -> dict[str, Floats]:
         "surcharge": stations.surcharge,
         "system_stiffness_by_water": stiffness_by_water(EI, h),
         "plane_strain_ratio": find_plane_strain_ratio(site, found).ratio,
-        "receptor_distance_over_depth": _receptor_distance(site, found) / stations.depth,
+        "receptor_distance_over_depth": _over(_receptor_distance(site, found), stations.depth),
         "system_stiffness_by_soil": stiffness_by_soil(EI, h, weight),
         "stability_number": stability_number(weight, stations.depth, su),
     }
@@ -157,13 +155,19 @@ def rank_severity(vectors: Sequence[Mapping[str, float | None]]) -> tuple[int, .
     return tuple(sorted(range(len(vectors)), key=lambda position: (key(position), position)))
 
 
+def _over(distance: Floats, depth: Floats) -> Floats:
+    return distance / np.where(depth > 0.0, depth, np.nan)
+
+
 def _receptor_distance(site: Site, found: FoundPit) -> Floats:
     """Distance from each station to the nearest receptor on plan, m; nan without receptors."""
     import shapely
 
     points = shapely.points(found.stations.xy)
-    least = np.full(len(points), inf)
+    least = np.full(len(found.stations.xy), inf)
     for receptor in site.receptors:
+        if not receptor.points:
+            continue
         outline = shapely.LineString(receptor.points) if len(receptor.points) > 1 else shapely.Point(receptor.points[0])
         least = np.minimum(least, shapely.distance(points, outline))
     return np.where(np.isfinite(least), least, np.nan)

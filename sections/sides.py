@@ -150,8 +150,24 @@ def tolerance_of(samples: Samples) -> Floats:
     return np.where(samples.pile, max(1.5 * noise, TOLERANCE), TOLERANCE)
 
 
-def find_sides(samples: Samples) -> tuple[Side, ...]:
-    """Split a way into straight sides, arcs and lone points, in order along it."""
+def find_sides(samples: Samples) -> tuple[Samples, tuple[Side, ...]]:
+    """Split a way into straight sides, arcs and lone points, in order along it.
+
+    A ring is split twice, the second time from a break that the first found, so that where the walk began leaves no
+    trace.
+
+    Returns:
+        The samples as they were split last, and the sides.
+    """
+    sides = _split(samples)
+    if samples.closed and len(sides) > 2:
+        start = sides[len(sides) // 2].block[0]
+        samples = samples.pick(np.roll(np.arange(len(samples.xy)), -start))
+        sides = _split(samples)
+    return samples, sides
+
+
+def _split(samples: Samples) -> tuple[Side, ...]:
     sigma = tolerance_of(samples)
     starts = _candidates(samples, sigma)
     stops = np.append(starts[1:], len(samples.xy))

@@ -38,25 +38,31 @@ def stand(
     rows: Rows,
     loads: Sequence[NearLoad],
     extra: Floats,
+    around: FloorPlan | None = None,
 ) -> tuple[Stations, tuple[Zone, ...]]:
     """Walk a pit and divide it into zones.
 
     Args:
         extra: Further chainages to stand at (steps of the floor, boreholes).
+        around: Floors of the pit this one lies in.
     """
     depth = _largest_depth(site, plan)
     covers = find_covers(rows, sides, site.limits, single=depth if np.isfinite(depth) else np.inf)
     events = [_ends_of_runs(shape), *_support_places(rows.rows), extra]
     events += [sides.start[c.side] + np.array([c.start, c.to]) for c in covers]
     events += [load_ends(shape, near.load, depth) for near in loads]
-    steps = walk(site, shape, sides, plan, events)
-    around = _surround(shape, steps, loads)
+    steps = walk(site, shape, sides, plan, events, around)
+    bearing_on = _surround(shape, steps, loads)
     spacing, held = rows_at(covers, sides, steps, len(rows.rows))
-    pressures = {"surcharge": around.surcharge, "footing": around.footing, "line load": around.line_load}
+    pressures = {
+        "surcharge": bearing_on.surcharge,
+        "footing": bearing_on.footing,
+        "line load": bearing_on.line_load,
+    }
     signature = sign(site, shape, steps, rows.rows, spacing, held, pressures, layers_along(site, steps.xy))
     sections = {row.member.id: _section_of(site, row) for row in rows.rows}
     zones, zone = find_zones(shape, sides, steps, signature, rows.rows, sections)
-    return _assemble(site, shape, sides, steps, around, (held, zone), rows.rows), zones
+    return _assemble(site, shape, sides, steps, bearing_on, (held, zone), rows.rows), zones
 
 
 def _largest_depth(site: Site, plan: FloorPlan) -> float:

@@ -3,7 +3,7 @@
 from __future__ import annotations
 
 from collections.abc import Sequence
-from dataclasses import dataclass
+from dataclasses import dataclass, replace
 
 import numpy as np
 import shapely
@@ -33,9 +33,12 @@ class SupportEnds:
         role: strut, corner_strut, raker or anchor, as geometry has it.
         drawn: The role the file or the brief gave.
         turned: True where head and far end are swapped against the site's record.
-        head, far: (k, 3) ends; the level is nan where not given.
+        head, far: (k, 3) ends.
+        level_given: False where the levels of the ends are not known.
         head_at, far_at: Chainage where each end meets the wall, nan where it does not.
         head_side, far_side: Side of the wall, -1 where it does not meet.
+        beyond: Pit whose wall the far end meets when it is another pit's (a strut between a ring and one within it),
+            "" when none; beyond_at: chainage there, nan when none.
         copies: Sources of the duplicates left out, by index into `Site.supports`.
     """
 
@@ -45,11 +48,24 @@ class SupportEnds:
     turned: Bools
     head: Floats
     far: Floats
+    level_given: Bools
     head_at: Floats
     far_at: Floats
     head_side: Ints
     far_side: Ints
     copies: dict[int, tuple[Source, ...]]
+    beyond: tuple[str, ...] = ()
+    beyond_at: Floats | None = None
+
+    @property
+    def head_level(self) -> Floats:
+        """Level of the heads, m; nan where not given."""
+        return np.where(self.level_given, self.head[:, 2], np.nan)
+
+    @property
+    def far_level(self) -> Floats:
+        """Level of the far ends, m; nan where not given."""
+        return np.where(self.level_given, self.far[:, 2], np.nan)
 
 
 @dataclass(frozen=True, kw_only=True)
@@ -73,7 +89,7 @@ def drop_copies(supports: Sequence[Support], limits: Limits) -> tuple[Ints, dict
         return np.zeros(0, dtype=np.int64), {}
     head, far = _ends(supports)
     scale = np.array([1.0, 1.0, limits.plan / limits.level])
-    head, far = np.nan_to_num(head) * scale, np.nan_to_num(far) * scale
+    head, far = head * scale, far * scale
     pairs = cKDTree(0.5 * (head + far)).query_pairs(limits.plan, output_type="ndarray")
     one, two = pairs[:, 0], pairs[:, 1]
     straight = np.maximum(_apart(head[one], head[two]), _apart(far[one], far[two]))
@@ -104,9 +120,6 @@ def _apart(a: Floats, b: Floats) -> Floats:
 def _ends(supports: Sequence[Support]) -> tuple[Floats, Floats]:
     head = np.array([support.head for support in supports], dtype=np.float64).reshape(-1, 3)
     far = np.array([support.far for support in supports], dtype=np.float64).reshape(-1, 3)
-    blind = np.array([not support.level_given for support in supports], dtype=bool)
-    head[blind, 2] = np.nan
-    far[blind, 2] = np.nan
     return head, far
 
 
@@ -127,11 +140,25 @@ def meet_supports(site: Site, shapes: Sequence[PitShape]) -> tuple[tuple[Support
     cost = np.vstack([meeting.cost for meeting in meetings])
     owner = np.argmin(cost, axis=0)
     met = np.isfinite(np.min(cost, axis=0))
-    found = tuple(
-        _select(site, shape, np.flatnonzero(met & (owner == i)), (meeting, kept, head, far), copies)
-        for i, (shape, meeting) in enumerate(zip(shapes, meetings, strict=True))
-    )
-    return found, kept[~met]
+    found = []
+    for i, (shape, meeting) in enumerate(zip(shapes, meetings, strict=True)):
+        chosen = np.flatnonzero(met & (owner == i))
+        ends = _select(site, shape, chosen, (meeting, kept, head, far), copies)
+        others = [(other, m) for other, m in zip(shapes, meetings, strict=True) if other is not shape]
+        found.append(_reach_beyond(ends, chosen, others))
+    return tuple(found), kept[~met]
+
+
+def _reach_beyond(ends: SupportEnds, chosen: Ints, others: Sequence[tuple[PitShape, _Meeting]]) -> SupportEnds:
+    """Note the far ends of struts that bear on the wall of another pit."""
+    at = np.full(len(chosen), np.nan)
+    pit = [""] * len(chosen)
+    loose = np.isnan(ends.far_at) & np.array([role == "strut" for role in ends.role], dtype=bool)
+    for shape, meeting in others:
+        met = np.where(ends.turned, meeting.head_met[chosen], meeting.far_met[chosen]) & loose & np.isnan(at)
+        at[met] = np.where(ends.turned, meeting.head.at[chosen], meeting.far.at[chosen])[met]
+        pit = [shape.id if hit else known for hit, known in zip(met, pit, strict=True)]
+    return replace(ends, beyond=tuple(pit), beyond_at=at)
 
 
 def _meet(site: Site, shape: PitShape, head: Floats, far: Floats, anchor: Bools) -> _Meeting:
@@ -195,8 +222,9 @@ def _select(
     """The supports of one pit, each with its head on the wall and its role as the geometry has it."""
     if all_of is None:
         flat, tall = np.zeros(0), np.zeros((0, 3))
+        never = np.zeros(0, dtype=bool)
         return SupportEnds(
-            index=chosen, role=(), drawn=(), turned=np.zeros(0, dtype=bool), head=tall, far=tall, head_at=flat,
+            index=chosen, role=(), drawn=(), turned=never, head=tall, far=tall, level_given=never, head_at=flat,
             far_at=flat, head_side=chosen, far_side=chosen, copies={},
         )  # fmt: skip
     meeting, kept, head, far = all_of
@@ -219,7 +247,8 @@ def _select(
     head_side, far_side = _sides_of(sides, head_at), _sides_of(sides, far_at)
     role = _roles(sides, drawn, head, far, far_side, head_side, meeting.inside[chosen])
     return SupportEnds(
-        index=index, role=role, drawn=drawn, turned=turned, head=head, far=far, head_at=head_at, far_at=far_at,
+        index=index, role=role, drawn=drawn, turned=turned, head=head, far=far,
+        level_given=np.array([site.supports[i].level_given for i in index], dtype=bool), head_at=head_at, far_at=far_at,
         head_side=head_side, far_side=far_side, copies={int(i): copies[int(i)] for i in index if int(i) in copies},
     )  # fmt: skip
 

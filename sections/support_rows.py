@@ -70,7 +70,7 @@ def find_rows(site: Site, shape: PitShape, sides: Sides, ends: SupportEnds) -> R
 
 
 def _facts(site: Site, shape: PitShape, sides: Sides, ends: SupportEnds) -> _Ends:
-    levels = group_alike(np.concatenate([ends.head[:, 2], ends.far[:, 2]]), site.limits.level)
+    levels = group_alike(np.concatenate([ends.head_level, ends.far_level]), site.limits.level)
     count = len(ends.index)
     plan = ends.far[:, :2] - ends.head[:, :2]
     normal = normal_at(shape, np.nan_to_num(ends.head_at))
@@ -100,6 +100,7 @@ def _groups(site: Site, sides: Sides, facts: _Ends) -> list[Ints]:
         _codes((_section_of(member), member.material or "") for member in members),
         ends.head_side,
         ends.far_side,
+        _codes(ends.beyond),
         facts.head_level,
         group_alike(facts.inclination, INCLINATION),
         group_alike(skew, SKEW),
@@ -226,10 +227,10 @@ def _member(
         spacing_range=(float(np.min(widths)), float(np.max(widths))) if uneven else None,
         inclination=_mean(facts.inclination[piece]),
         skew=_mean(facts.skew[piece]),
-        level=_mean(ends.head[piece, 2]),
+        level=_mean(ends.head_level[piece]),
         free_length=_mean(_column(members, "free_length")),
         bond_length=_mean(_column(members, "bond_length")),
-        along=tuple(_along(shape, stand, sides) for stand in own),
+        along=(*(_along(shape, stand, sides) for stand in own), *_along_beyond(ends, piece)),
         sources=_sources(ends, piece, members),
     )
 
@@ -246,6 +247,14 @@ def _along(shape: PitShape, stand: Stand, sides: Sides) -> Along:
     start = float(sides.start[stand.side]) + stand.places[[0, -1]]
     first, last = np.mod(start, shape.length) if shape.closed else start
     return Along(pit=shape.id, start=float(first), to=float(last), end=cast(Literal["head", "far"], stand.end))
+
+
+def _along_beyond(ends: SupportEnds, piece: Ints) -> tuple[Along, ...]:
+    """Where the far ends stand on the wall of another pit."""
+    if ends.beyond_at is None or not ends.beyond[piece[0]]:
+        return ()
+    at = ends.beyond_at[piece]
+    return (Along(pit=ends.beyond[piece[0]], start=float(np.min(at)), to=float(np.max(at)), end="far"),)
 
 
 def _sources(ends: SupportEnds, piece: Ints, members: Sequence[Support]) -> tuple[Source, ...]:

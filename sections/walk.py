@@ -9,7 +9,7 @@ import numpy as np
 
 from ingest.model import Limits, Site
 from sections.chainage import ON, Sides, cast, normal_at, point_at, side_of, within, wrapped
-from sections.floors import FloorPlan, floor_at_wall
+from sections.floors import FloorPlan, floor_at_wall, level_behind
 from sections.model import Bools, Floats, Ints, PitShape, Run
 
 STRIDE = 0.5
@@ -42,10 +42,14 @@ class Walk:
     weight: Floats
 
 
-def walk(site: Site, shape: PitShape, sides: Sides, plan: FloorPlan, events: Sequence[Floats]) -> Walk:
+def walk(
+    site: Site, shape: PitShape, sides: Sides, plan: FloorPlan, events: Sequence[Floats], around: FloorPlan | None
+) -> Walk:
     """Stand at every event and at most half a metre apart between.
 
     Args:
+        plan: Floors of the pit.
+        around: Floors of the pit this one lies in, None when it lies in none.
         events: Chainages to stand at (corners, ends of runs, supports, ends of loads); of two that are the same
             place the one listed first is kept.
     """
@@ -56,6 +60,8 @@ def walk(site: Site, shape: PitShape, sides: Sides, plan: FloorPlan, events: Seq
     side, _ = side_of(sides, probe)
     place = np.mod(chainage - sides.start[side], shape.length) if shape.closed else chainage - sides.start[side]
     run = run_at(shape, probe)
+    half = 0.5 * np.nan_to_num(thickness_of(shape, run))
+    floor = floor_at_wall(plan, shape, probe, half)
     return Walk(
         chainage=chainage,
         probe=probe,
@@ -66,10 +72,20 @@ def walk(site: Site, shape: PitShape, sides: Sides, plan: FloorPlan, events: Seq
         run=run,
         top=_of_runs(shape, run, "top"),
         toe=_of_runs(shape, run, "toe"),
-        ground=np.full(len(chainage), np.nan if site.ground_level is None else site.ground_level),
-        floor=floor_at_wall(plan, shape, probe, 0.5 * np.nan_to_num(thickness_of(shape, run))),
+        ground=_retained(site, shape, probe, half, floor, around),
+        floor=floor,
         weight=np.diff(np.append(chainage, shape.length)),
     )
+
+
+def _retained(
+    site: Site, shape: PitShape, probe: Floats, half: Floats, floor: Floats, around: FloorPlan | None
+) -> Floats:
+    """Retained level: the ground level, or the floor of the pit around; not known where that is the pit's own floor."""
+    if around is None:
+        return np.full(len(probe), np.nan if site.ground_level is None else site.ground_level)
+    level = level_behind(around, shape, probe, half)
+    return np.where(level - floor > site.limits.level, level, np.nan)
 
 
 def _stand_at(shape: PitShape, events: Sequence[Floats]) -> Floats:

@@ -157,7 +157,7 @@ def _tees(graph: WallGraph, tolerance: float) -> tuple[Ints, Ints, WallGraph]:
     point = graph.xy[node]
     beside = np.minimum(np.hypot(*(point - graph.xy[a]).T), np.hypot(*(point - graph.xy[b]).T))
     along = graph.xy[b] - graph.xy[a]
-    t = ((point - graph.xy[a]) * along).sum(axis=1) / (along**2).sum(axis=1)
+    t = ((point - graph.xy[a]) * along).sum(axis=1) / np.maximum((along**2).sum(axis=1), 1e-12)
     inside = (beside > 0.5 * tolerance) & (t > 0) & (t < 1)
     return edge[inside].astype(np.int64), node[inside].astype(np.int64), graph
 

@@ -13,19 +13,24 @@ from sections.model import Floats, Ints
 from sections.wall_graph import WallGraph, add_nodes, cross, cut, stub_length
 from sections.wall_lines import WallLine
 
+NEXT_PILE = 1.25
+"""The end of a row of piles joins another end within this many spacings, whatever the direction."""
+NEAR_PILE = 0.4
+"""A wall that meets a bay within this share of its length from a pile meets the pile: no pile is cut off."""
 FACING = 25.0
 """Two ends within this of looking straight at each other continue one line, degrees."""
 
 
 @dataclass(frozen=True, kw_only=True, eq=False)
 class LooseEnds:
-    """Nodes with one edge: node, its edge, the direction in which the wall would go on, how far it may."""
+    """Nodes with one edge: node, its edge, the direction in which the wall would go on, how far it may, pile spacing (0: none)."""
 
     node: Ints
     edge: Ints
     at: Floats
     ahead: Floats
     reach: Floats
+    pace: Floats
 
 
 @dataclass(frozen=True, kw_only=True)
@@ -78,12 +83,14 @@ def loose_ends(graph: WallGraph, lines: Sequence[WallLine]) -> LooseEnds:
     drawn = np.array([_direction(graph, lines, int(e)) for e in mine]).reshape(-1, 2)
     outward = graph.ends[mine, 1] == node
     reach = np.array([lines[i].reach for i in graph.line[mine]])
+    pace = np.array([lines[i].pace for i in graph.line[mine]])
     return LooseEnds(
         node=node.astype(np.int64),
         edge=mine,
         at=graph.xy[node],
         ahead=np.where(outward[:, None], drawn, -drawn),
         reach=reach,
+        pace=pace,
     )
 
 
@@ -112,16 +119,18 @@ def _end_to_end(ends: LooseEnds, tolerance: float) -> list[Join]:
     back = -np.maximum(tolerance, 0.1 * np.minimum(ends.reach[i], ends.reach[j]))
     corner = (np.abs(det) > 0.03) & (s >= back) & (t >= back)
     corner &= (s <= stretch * ends.reach[i]) & (t <= stretch * ends.reach[j])
+    pace = np.maximum(ends.pace[i], ends.pace[j])
+    beside = ~corner & (span <= NEXT_PILE * pace)
     look = np.cos(np.radians(FACING)) * span
     facing = ((di * gap).sum(axis=1) >= look) & (-(dj * gap).sum(axis=1) >= look)
     facing &= span <= np.maximum(ends.reach[i], ends.reach[j])
     meet = ends.at[i] + s[:, None] * di
-    cost = np.where(facing, span, np.maximum(s, 0.0) + np.maximum(t, 0.0))
-    straight = facing | (np.minimum(np.abs(s), np.abs(t)) <= tolerance)
+    cost = np.where(facing, span, np.where(corner, np.maximum(s, 0.0) + np.maximum(t, 0.0), 1.5 * span))
+    straight = facing | beside | (np.minimum(np.abs(s), np.abs(t)) <= tolerance)
     return [
         Join(cost=float(cost[k]), end=int(i[k]), other=int(j[k]), node=int(ends.node[j[k]]) if straight[k] else None,
              point=None if straight[k] else (float(meet[k, 0]), float(meet[k, 1])))
-        for k in np.flatnonzero(corner | facing)
+        for k in np.flatnonzero(corner | facing | beside)
     ]  # fmt: skip
 
 
@@ -138,7 +147,8 @@ def _end_to_edge(graph: WallGraph, ends: LooseEnds, tolerance: float) -> list[Jo
     s = cross(graph.xy[a] - ends.at[end], along) / np.where(ok, det, 1.0)
     meet = ends.at[end] + s[:, None] * ends.ahead[end]
     to_a, to_b = np.hypot(*(meet - graph.xy[a]).T), np.hypot(*(meet - graph.xy[b]).T)
-    at_node = np.minimum(to_a, to_b) <= tolerance
+    is_bay = (graph.pile[a] >= 0) & (graph.pile[b] >= 0)
+    at_node = np.minimum(to_a, to_b) <= np.where(is_bay, NEAR_PILE * np.hypot(*along.T), tolerance)
     nearer = np.where(to_a < to_b, a, b)
     return [
         Join(cost=float(s[k]), end=int(end[k]), node=int(nearer[k])) if at_node[k] else

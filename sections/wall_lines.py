@@ -30,6 +30,7 @@ class WallLine:
         piles: (m,) index into `Site.piles` of each vertex; empty for a wall that is not a row of piles.
         piece: Index into `Site.walls`; -1 for a row of piles.
         toe: Deepest toe along the line; None when not given.
+        pace: Spacing of a row of piles, m; 0 for other walls.
         paired: True where the line is the middle of two faces.
     """
 
@@ -40,6 +41,7 @@ class WallLine:
     piles: Ints
     piece: int
     toe: float | None
+    pace: float = 0.0
     paired: bool = False
 
     @property
@@ -74,6 +76,7 @@ def _row_line(site: Site, row: PileRow, origin: Point) -> WallLine:
         kind=row_kind([pile.kind for pile in piles], row.spacing, size),
         thickness=size,
         reach=1.3 * row.spacing + 0.1,
+        pace=row.spacing,
         piles=np.append(index, index[:1]) if row.closed else index,
         piece=-1,
         toe=lowest(pile.toe for pile in piles),

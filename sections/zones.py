@@ -73,7 +73,8 @@ def _zone_starts(shape: PitShape, sides: Sides, steps: Walk, signature: Signatur
         starts += [int(piece[end]) for end in [0, *ends[:-1].tolist()]]
     if shape.closed and not np.any(turn) and len(starts) == 1:
         starts = [0]
-    return np.array(sorted(starts), dtype=np.int64)
+    # the end of an open wall has no length of its own
+    return np.array(sorted(i for i in starts if shape.closed or i == 0 or i < count - 1), dtype=np.int64)
 
 
 def _widest_jump(table: Floats) -> int:

@@ -61,7 +61,7 @@ def tag(name: str, /, *children: Child, **attributes: str | float | bool | None)
     return Html(f"<{name}{marks}>{join(children)}</{name}>")
 
 
-VOID = frozenset({"meta", "input", "br", "hr", "link"})
+VOID = frozenset({"meta", "input", "br", "hr", "link", "img"})
 DRAWN = frozenset({"line", "path", "polygon", "polyline", "circle", "rect", "use", "ellipse"})
 KEPT = frozenset({"viewBox", "patternUnits", "patternTransform", "preserveAspectRatio", "textLength", "lengthAdjust"})
 

@@ -51,7 +51,10 @@ def report_page(proposal: Proposal, definitions: Sequence[SectionDefinition], si
     for n, (key, title, body) in enumerate(sheets, start=1):
         index = tag("nav", tag("h3", "Sheets"), contents, aria_label="Sheets") if n == 1 else None
         drawn.append(_sheet(key, title, join([body, index]), _strip(name, title, site.date, n, total)))
-    script, css = _asset("sheet.js"), _asset("drawing.css") + _asset("sheet.css") + output_rules(proposal)
+    script, css = (
+        _asset("sheet.js") + _asset("spatial.js"),
+        _asset("drawing.css") + _asset("sheet.css") + output_rules(proposal),
+    )
     head = tag(
         "head",
         tag("meta", charset="utf-8"),
@@ -81,7 +84,7 @@ def _sheets(
         ("plan", "Plan", _plan(proposal, site)),
         ("ribbon", "The perimeter unrolled", _ribbons(proposal)),
     ]
-    sheets += [(f"section-{one.id}", section_title(one), section_body(one)) for one in definitions]
+    sheets += [(f"section-{one.id}", section_title(one), section_body(one, proposal, site)) for one in definitions]
     sheets += [
         ("register", "Register to sign off", register(proposal, definitions)),
         ("not-assessed", "Not assessed", not_assessed(proposal, definitions)),

@@ -49,7 +49,13 @@ def plan_drawing(proposal: Proposal, site: Site | None) -> Html:
         legend((28, view.height + 80), 158.0),
         _legend_of_cuts((430, view.height + 50)),
     ]
-    place: dict[str, str | float] = {"x0": f"{view.x0:.4f}", "y1": f"{view.y1:.4f}", "k": view.k, "left": view.left, "top": view.top}
+    place: dict[str, str | float] = {
+        "x0": f"{view.x0:.4f}",
+        "y1": f"{view.y1:.4f}",
+        "k": view.k,
+        "left": view.left,
+        "top": view.top,
+    }
     title = "Plan of the excavation with verdicts and chosen cuts"
     return drawing("plan", "plan", title, _description(proposal), view.height + FOOT, body, **place)
 

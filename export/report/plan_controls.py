@@ -102,10 +102,16 @@ def station_data(proposal: Proposal) -> Html:
     """What the slider needs, as data the browser never runs."""
     pits = {pit.id: _pit_data(pit, proposal.stations[pit.id]) for pit in proposal.pits if pit.id in proposal.stations}
     words = {"verdicts": VERDICT_NAMES, "outputs": {o: output_name(o) for o in outputs_of(proposal)}}
-    text = json.dumps({"pits": pits, "words": words}, separators=(",", ":"), ensure_ascii=True)
+    text = data_text({"pits": pits, "words": words})
+    return Html(f'<script type="application/json" id="stations">{text}</script>\n')
+
+
+def data_text(tree: object) -> str:
+    """JSON that may stand in a page: no character of it can end its element."""
+    text = json.dumps(tree, separators=(",", ":"), ensure_ascii=True, allow_nan=False)
     for mark, escaped in (("<", "\\u003c"), (">", "\\u003e"), ("&", "\\u0026")):
         text = text.replace(mark, escaped)
-    return Html(f'<script type="application/json" id="stations">{text}</script>\n')
+    return text
 
 
 def _pit_data(pit: Pit, table: StationTable) -> dict[str, object]:

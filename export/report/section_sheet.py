@@ -2,6 +2,7 @@
 
 from __future__ import annotations
 
+from export.report.axonometry import spatial_figure
 from export.report.markup import Html, join, tag
 from export.report.section_tables import (
     actions_table,
@@ -19,8 +20,9 @@ from export.report.tables import table
 from export.report.verdict_marks import named_swatch
 from export.report.words import KIND_NAMES, band, criterion_name, fixed, output_name, provisional_mark, stretch
 from export.section_json import NOT_INCLUDED
+from ingest.model import Site
 from sections.definition import SectionDefinition
-from sections.model import SectionWall
+from sections.model import Proposal, SectionWall
 
 
 def section_title(definition: SectionDefinition) -> str:
@@ -29,7 +31,7 @@ def section_title(definition: SectionDefinition) -> str:
     return f"Section {definition.id}: {KIND_NAMES[definition.kind]}" + (f", at {at}" if at else "")
 
 
-def section_body(definition: SectionDefinition) -> Html:
+def section_body(definition: SectionDefinition, proposal: Proposal, site: Site) -> Html:
     """Everything on a section's sheet below its heading."""
     per = (
         "per metre run of wall" if definition.kind == "plane_strain" else "per radian, walls per metre of circumference"
@@ -53,6 +55,7 @@ def section_body(definition: SectionDefinition) -> Html:
             tag("h3", "Balance"),
             balance_tables(definition),
             tag("h3", "What the section implies in three dimensions"),
+            spatial_figure(definition, proposal, site),
             implied_table(definition),
             tag("h3", "What the section cannot show"),
             actions_table(definition),

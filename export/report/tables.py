@@ -2,11 +2,14 @@
 
 from __future__ import annotations
 
+import re
 from collections.abc import Iterable, Sequence
 
 from export.report.markup import Child, Html, join, tag
 from ingest.trail import Source
 
+LONGEST_WORD = 24
+MARKS = re.compile(r"<[^>]*>")
 UNIT_STARTS = frozenset({"kN", "kNm2", "kPa", "K"})
 
 
@@ -34,7 +37,7 @@ def table(
     for row in rows:
         cells = []
         for place, (cell, n) in enumerate(zip(row, right, strict=True)):
-            mark = "n" if n else None
+            mark = " ".join(word for word, on in (("n", n), ("long", _has_long_word(cell))) if on) or None
             first = place == 0 and named
             cells.append(tag("th", cell, scope="row", class_=mark) if first else tag("td", cell, class_=mark))
         body.append(tag("tr", *cells))
@@ -42,6 +45,11 @@ def table(
         return tag("p", f"{caption}: none.", class_="none")
     inner = tag("table", tag("caption", caption), tag("thead", top), tag("tbody", *body), class_=class_ or None)
     return tag("div", inner, class_="wide", tabindex="0", role="region", aria_label=caption)
+
+
+def _has_long_word(cell: Child) -> bool:
+    """Whether a cell holds a word that must be broken to fit a sheet of paper."""
+    return any(len(word) > LONGEST_WORD for word in MARKS.sub(" ", cell or "").split())
 
 
 def key_words(key: str) -> tuple[str, str]:

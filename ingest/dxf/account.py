@@ -119,9 +119,10 @@ def open_account(document: Any, raw: RawFigures) -> Account:
         The account. Entities the library dropped from a layout or an unused block stand in `aside` as lost.
     """
     space = list(document.modelspace())
-    named = list(zip(_names(space, raw), space, strict=True))
-    layouts = [block for block in document.blocks if block.name.lower().startswith(_LAYOUTS)]
-    in_layouts = Counter(e.dxftype() for block in layouts for e in block)
+    kinds = [e.dxftype() for e in space]
+    named = list(zip(_names(space, kinds, raw), space, strict=True))
+    sheets = [layout for layout in document.layouts if layout.name != "Model"]
+    in_layouts = Counter(kinds) + Counter(e.dxftype() for sheet in sheets for e in sheet)
     expected = raw.space.copy()
     for name, counts in raw.blocks.items():
         if name.lower().startswith(_LAYOUTS):
@@ -132,15 +133,16 @@ def open_account(document: Any, raw: RawFigures) -> Account:
         aside[f"lost in reading: {kind}"] += count
     own = {name.lower() for name in raw.blocks}
     reached = _reached(document)
-    unused = [b for b in document.blocks if b not in layouts and b.name.lower() in own - reached and len(b)]
+    blocks = [block for block in document.blocks if not block.name.lower().startswith(_LAYOUTS)]
+    unused = [block for block in blocks if block.name.lower() in own - reached and len(block)]
     aside["block never inserted"] = sum(len(block) for block in unused)
-    loaded = in_layouts + Counter(e.dxftype() for b in document.blocks if b not in layouts for e in b)
+    loaded = in_layouts + Counter(e.dxftype() for block in blocks for e in block)
     return Account(named, +aside, raw.total() - loaded, tuple(sorted(block.name for block in unused)))
 
 
-def _names(space: list[Any], raw: RawFigures) -> list[str]:
+def _names(space: list[Any], kinds: list[str], raw: RawFigures) -> list[str]:
     """Names of the loaded entities; the raw ones where both lists agree, else handles made unique."""
-    if [e.dxftype() for e in space] == raw.kinds:
+    if kinds == raw.kinds:
         return raw.items
     seen: Counter[str] = Counter()
     names = []

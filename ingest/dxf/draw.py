@@ -3,7 +3,7 @@
 from __future__ import annotations
 
 from collections import Counter
-from collections.abc import Callable
+from collections.abc import Callable, Iterator
 from dataclasses import dataclass, field
 from typing import Any
 
@@ -95,15 +95,8 @@ class Drawer:
             if left is not None:
                 chunk.why[item] = left
         parts: dict[str, list[Part]] = {item: [] for item, _ in entities}
-        batch = settle(chunk.plain, self.book.sagitta)
-        for figure, why in batch.dropped:
-            chunk.why.setdefault(figure.item, Left("ignored", why))
-        for settled, places in [*chunk.places.values(), (batch, [self._world])]:
-            for placed in place(settled, places, self.file):
-                if placed.part is None:
-                    chunk.why.setdefault(placed.item, Left("ignored", placed.reason))
-                elif placed.item not in chunk.tables or placed.part.form == "text":
-                    parts[placed.item].append(placed.part)
+        for part in self._place_all(chunk):
+            parts[part.source.item].append(part)
         for item, (outline, hidden_inside) in chunk.clipped.items():
             parts[item] = clip_parts(parts[item], outline, hidden_inside)
         for item, own in parts.items():
@@ -112,6 +105,20 @@ class Drawer:
                 kind, reason = chunk.why.get(item, DRAWS_NOTHING)
                 self.drawn.aside[kind][reason] += 1
                 self.drawn.examples.setdefault(reason, item)
+        for _, entity in entities:
+            entity.destroy()
+
+    def _place_all(self, chunk: _Chunk) -> Iterator[Part]:
+        plain = settle(chunk.plain, self.book.sagitta)
+        for figure, why in plain.dropped:
+            chunk.why.setdefault(figure.item, Left("ignored", why))
+        for batch, places in [*chunk.places.values(), (plain, [self._world])]:
+            placed = place(batch, places, self.file)
+            for item, why in placed.empty:
+                chunk.why.setdefault(item, Left("ignored", why))
+            for part in placed.parts:
+                if part.form == "text" or part.source.item not in chunk.tables:
+                    yield part
 
     def _one(self, item: str, entity: Any, chunk: _Chunk) -> Left | None:
         layer = self.layers.use(layer_of(vars(entity.dxf)))

@@ -45,17 +45,15 @@ def sketch_lwpolyline(entity: Any, sagitta: float) -> list[Sketch] | Left:
     xyz = np.empty((len(values), 3))
     xyz[:, :2] = values[:, :2]
     xyz[:, 2] = known.get("elevation", 0.0)
-    bulges, widths = values[:, 4], values[:, 2:4]
-    width = known.get("const_width") or (even_width(widths) if widths.any() else None)
     line = Sketch(
         cls="LWPOLYLINE",
         layer=layer_of(known),
         form="path",
         xyz=xyz.ravel(),
         closed=bool(known.get("flags", 0) & 1),
-        bulges=bulges if bulges.any() else None,
+        bulges=values[:, 4],
         axes=entity_axes(known.get("extrusion")),
-        width=width,
+        width=known.get("const_width") or even_width(values[:, 2:4]),
         rise=known.get("thickness", 0.0),
     )
     return [_disc(line) or line]
@@ -63,7 +61,7 @@ def sketch_lwpolyline(entity: Any, sagitta: float) -> list[Sketch] | Left:
 
 def _disc(line: Sketch) -> Sketch | None:
     """A closed polyline whose arcs are one circle, as that circle out to the edge of its width."""
-    if not line.closed or line.bulges is None or not 1 < len(line.bulges) < 9:
+    if not line.closed or line.bulges is None or not 1 < len(line.bulges) < 9 or not line.bulges[0]:
         return None
     vertices = np.asarray(line.xyz, dtype=np.float64).reshape(-1, 3)
     found = circle_of_bulges(vertices[:, :2], np.asarray(line.bulges, dtype=np.float64))
@@ -76,7 +74,7 @@ def _disc(line: Sketch) -> Sketch | None:
 
 def even_width(widths: Floats) -> float | None:
     """The width of a polyline when it is the same at every vertex, else None."""
-    first = float(widths.flat[0])
+    first = float(widths[0, 0])
     return first if first > 0.0 and bool((widths == first).all()) else None
 
 

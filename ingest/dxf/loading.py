@@ -11,7 +11,7 @@ from pathlib import Path
 from typing import Any
 
 from ingest.dxf.damage import SEND_AGAIN, find_bad_number
-from ingest.dxf.tagscan import Tags
+from ingest.dxf.tagscan import scan_tags
 from ingest.errors import InputError
 
 
@@ -40,12 +40,11 @@ def quiet() -> Iterator[None]:
             gc.enable()
 
 
-def load_document(path: Path, tags: Tags) -> Loaded:
+def load_document(path: Path) -> Loaded:
     """Load a drawing.
 
     Args:
-        path: The file.
-        tags: Its bare tags, already checked.
+        path: The file; its bytes have been checked.
 
     Raises:
         InputError: When recovery mode fails as well.
@@ -60,7 +59,7 @@ def load_document(path: Path, tags: Tags) -> Loaded:
     try:
         document, auditor = recover.readfile(path)
     except Exception as fault:
-        bad = find_bad_number(tags)
+        bad = find_bad_number(scan_tags(path.read_bytes()))
         place, problem = bad if bad else ("", "")
         words = f"cannot be loaded: {describe_fault(fault)}"
         words = f"{problem!r} stands where a number must be" if bad else words

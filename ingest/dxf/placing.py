@@ -8,7 +8,7 @@ from typing import Literal, NamedTuple
 
 import numpy as np
 
-from ingest.dxf.curves import SAGITTA, flatten_conic
+from ingest.dxf.curves import SAGITTA, Floats, flatten_conic
 from ingest.dxf.sketch import OUT_OF_REACH, Batch, Sketch
 from ingest.model import Part, Point3
 from ingest.trail import Source
@@ -36,15 +36,13 @@ class Placing(NamedTuple):
 
 
 class Placed(NamedTuple):
-    """One figure at one place: the part, or the reason why there is none."""
+    """What became of a batch: its parts, and (item, reason) for each figure that gave none."""
 
-    place: int
-    item: str
-    part: Part | None
-    reason: str
+    parts: list[Part]
+    empty: list[tuple[str, str]]
 
 
-def place(batch: Batch, places: Sequence[Placing], file: str) -> list[Placed]:
+def place(batch: Batch, places: Sequence[Placing], file: str) -> Placed:
     """Turn a batch into parts in metres.
 
     Args:
@@ -53,39 +51,45 @@ def place(batch: Batch, places: Sequence[Placing], file: str) -> list[Placed]:
         file: Name for the sources.
 
     Returns:
-        One entry for each figure at each place, in order of the places.
+        Parts in order of the places.
     """
-    found: list[Placed] = []
+    found = Placed([], [])
     step = max(1, _AT_ONCE // max(1, len(batch.xyz)))
+    spans = list(zip(batch.sketches, batch.starts, batch.starts[1:], strict=False))
     for first in range(0, len(places), step):
         some = places[first : first + step]
         matrices, shifts = np.array([p.matrix for p in some]), np.array([p.shift for p in some])
         moved = np.matmul(batch.xyz, matrices) + shifts[:, None, :]
         far = _far(moved, batch.starts)
-        level = moved[:, :, 2]
-        flat = (level == level[:, :1]).all(axis=1).tolist()
+        flat = (moved[:, :, 2] == moved[:, :1, 2]).all(axis=1).tolist()
         for k, (xs, ys, zs) in enumerate(moved.transpose(0, 2, 1).tolist()):
-            if flat[k] and zs:
-                zs = [zs[0]] * len(zs)
-            mover = _Mover(some[k], file)
-            for n, sketch in enumerate(batch.sketches):
-                a, b = batch.starts[n], batch.starts[n + 1]
-                points = tuple(zip(xs[a:b], ys[a:b], zs[a:b], strict=True))
-                part = OUT_OF_REACH if (k, n) in far else mover.part(sketch, points)
-                item = some[k].item or sketch.item
-                found.append(
-                    Placed(first + k, item, None, part) if isinstance(part, str) else Placed(first + k, item, part, "")
-                )
+            # one float for all levels of a plane figure: half the memory
+            levels = zs[:1] * len(zs) if flat[k] else zs
+            points = list(zip(xs, ys, levels, strict=True))
+            _place_once(spans, points, _Mover(some[k], file), far.get(k, set()), found)
     return found
 
 
-def _far(moved: np.ndarray, starts: list[int]) -> set[tuple[int, int]]:
-    """Places and figures with a vertex off the earth."""
+def _place_once(
+    spans: list[tuple[Sketch, int, int]], points: list[Point3], mover: _Mover, far: set[int], found: Placed
+) -> None:
+    for n, (sketch, a, b) in enumerate(spans):
+        part = OUT_OF_REACH if n in far else mover.part(sketch, tuple(points[a:b]))
+        if isinstance(part, str):
+            found.empty.append((mover.at.item or sketch.item, part))
+        else:
+            found.parts.append(part)
+
+
+def _far(moved: Floats, starts: list[int]) -> dict[int, set[int]]:
+    """By place, the figures with a vertex off the earth."""
     if not moved.size or np.abs(moved).max() < FARTHEST:
-        return set()
+        return {}
     places, vertices = np.nonzero(~(np.abs(moved).max(axis=2) < FARTHEST))
-    figures = np.searchsorted(starts, vertices, side="right") - 1
-    return set(zip(places.tolist(), figures.tolist(), strict=True))
+    found: dict[int, set[int]] = {}
+    for k, n in zip(places.tolist(), (np.searchsorted(starts, vertices, side="right") - 1).tolist(), strict=True):
+        found.setdefault(k, set()).add(n)
+    return found
 
 
 class _Mover:

@@ -5,7 +5,6 @@ from __future__ import annotations
 import hashlib
 from collections.abc import Callable
 from pathlib import Path
-from typing import Any
 
 from ingest.dxf.account import list_raw, open_account
 from ingest.dxf.damage import check_bytes, read_bytes
@@ -51,9 +50,9 @@ def read_dxf(
     tags = check_bytes(data, path.name)
     raw, header = list_raw(tags), _Header(tags)
     sha256 = hashlib.sha256(data).hexdigest()
+    del data, tags
     with quiet():
-        loaded = load_document(path, tags)
-        del data, tags
+        loaded = load_document(path)
         account = open_account(loaded.document, raw)
         entities = account.entities
         unit = find_unit(
@@ -65,7 +64,8 @@ def read_dxf(
         )
         layers = LayerTable(loaded.document, ignore_layers)
         drawer = Drawer(path.name, unit.metres, loaded.document, layers)
-        _let_go(loaded.document)
+        # from here on only the account holds the figures, so that memory shrinks while they are drawn
+        loaded.document.modelspace().entity_space.clear()
         drawn = drawer.draw(account.named, progress)
     drawn.aside["ignored"].update(account.aside)
     losses = report_losses(account, loaded, drawn, drawer.book)
@@ -96,11 +96,3 @@ class _Header:
         self.shown_as = tags.header("$LUNITS")
         code = tags.header("$ACADVER") or ""
         self.version = f"{RELEASES.get(code, 'unknown release')} ({code})" if code else "no version given"
-
-
-def _let_go(document: Any) -> None:
-    """Leave the entities of the modelspace to the account alone, so that memory shrinks while they are drawn."""
-    space = document.modelspace()
-    for entity in space:
-        document.entitydb.discard(entity)
-    space.entity_space.clear()

@@ -3,22 +3,28 @@
 from __future__ import annotations
 
 from dataclasses import dataclass
+from typing import TypeAlias
 
 import numpy as np
 from numpy.typing import NDArray
 
 from ingest.ifc.facets import Facets
 from ingest.ifc.frames import NO_FRAME, Triple
-from ingest.ifc.solids import Extrusion, ItemReader, Line, Shape, Sweep
+from ingest.ifc.solids import Described, Extrusion, ItemReader, Line, Shape, Sweep
 
-Floats = NDArray[np.float64]
+Floats: TypeAlias = NDArray[np.float64]
+
+CHUNK = 4096
+"""Rows turned from arrays into tuples at once: faster than one by one, and small in memory."""
+_NOWHERE = (0.0, 0.0, 0.0)
 
 
 @dataclass(slots=True)
 class Placed:
-    """One body in the world. `origin`, `x`, `y` are the frame its profile lies in, `vector` its full extrusion, m.
+    """One body in the world. `origin`, `x`, `y` are the frame its profile lies in, m.
 
-    `base` brings the item's own coordinates, in file units, to world metres.
+    `vector` is the full extrusion, or the way from the first to the last point of a line of two points. `base` brings
+    the item's own coordinates, in file units, to world metres.
     """
 
     shape: Shape
@@ -42,7 +48,7 @@ class Placed:
 
 
 class BodyList:
-    """Bodies gathered for many products, placed together."""
+    """Bodies gathered for many products, placed together by `place` and handed out by `take`."""
 
     def __init__(self) -> None:
         self._shapes: list[Shape] = []
@@ -50,42 +56,71 @@ class BodyList:
         self._mappings: list[int] = []
         self._frames: list[int] = []
         self._vectors: list[Triple] = []
+        self._chunk = -1
+        self._rows: list[tuple[Triple, Triple, Triple, Triple]] = []
 
     def __len__(self) -> int:
         return len(self._shapes)
 
-    def add(self, shape: Shape, placement: int, mapping: int) -> int:
-        """Append one body; returns its number."""
-        self._shapes.append(shape)
-        self._placements.append(placement)
-        self._mappings.append(mapping)
-        swept = isinstance(shape, Extrusion)
-        self._frames.append(shape.frame if swept else NO_FRAME)
-        self._vectors.append(shape.vector if swept else (0.0, 0.0, 0.0))
-        return len(self._shapes) - 1
+    def add(self, described: Described, placement: int) -> int:
+        """Append bodies of one product; returns the number after the last of them."""
+        for shape, mapping in described:
+            self._shapes.append(shape)
+            self._placements.append(placement)
+            self._mappings.append(mapping)
+            if isinstance(shape, Extrusion):
+                self._frames.append(shape.frame)
+                self._vectors.append(shape.vector)
+            else:
+                self._frames.append(NO_FRAME)
+                self._vectors.append(shape.way if isinstance(shape, Line) else _NOWHERE)
+        return len(self._shapes)
 
-    def place(self, world: Floats, items: ItemReader) -> tuple[list[Placed], NDArray[np.bool_]]:
+    def place(self, world: Floats, items: ItemReader) -> None:
         """Place all bodies.
 
         Args:
             world: (n, 4, 4) placements, from file units to world metres.
             items: Reader that holds the frames and mappings the bodies refer to.
-
-        Returns:
-            The placed bodies, and for each whether all its numbers are finite.
         """
-        if not self._shapes:
-            return [], np.zeros(0, bool)
-        frames = items.frames.matrices()
+        self._frame_matrices = items.frames.matrices()
         with np.errstate(all="ignore"):
-            base = world[self._placements]
-            mapped = np.flatnonzero(self._mappings)
+            base = world[np.array(self._placements, int)]
+            mappings = np.array(self._mappings, int)
+            mapped = np.flatnonzero(mappings)
             if len(mapped):
-                base[mapped] = base[mapped] @ items.operators.matrices()[np.array(self._mappings)[mapped]]
-            full = base @ frames[self._frames]
-            vectors = np.einsum("nij,nj->ni", full[:, :3, :3], np.array(self._vectors, float))
-        finite = np.isfinite(full).all(axis=(1, 2)) & np.isfinite(vectors).all(axis=1)
-        origins, xs, ys = (list(map(tuple, full[:, :3, k].tolist())) for k in (3, 0, 1))
-        rows = zip(self._shapes, origins, xs, ys, map(tuple, vectors.tolist()), base, strict=True)
-        placed = [Placed(shape, o, x, y, v, matrix, frames) for shape, o, x, y, v, matrix in rows]
-        return placed, finite
+                base[mapped] = base[mapped] @ items.operators.matrices()[mappings[mapped]]
+            full = base @ self._frame_matrices[np.array(self._frames, int)]
+            vectors = np.array(self._vectors, float).reshape(-1, 3)
+            self._placed = np.empty((len(full), 4, 3))
+            self._placed[:, 0], self._placed[:, 1], self._placed[:, 2] = full[:, :3, 3], full[:, :3, 0], full[:, :3, 1]
+            self._placed[:, 3] = np.einsum("nij,nj->ni", full[:, :3, :3], vectors)
+        self._base = base
+        self._bad = ~(np.isfinite(self._placed).all(axis=(1, 2)) & np.isfinite(base).all(axis=(1, 2)))
+        self._any_bad = bool(self._bad.any())
+
+    def take(self, first: int, end: int) -> list[Placed]:
+        """The placed bodies of these rows.
+
+        Raises:
+            ValueError: If one of their coordinates is no finite number.
+        """
+        if first == end:
+            return []
+        if self._any_bad and self._bad[first:end].any():
+            raise ValueError("coordinates are not finite numbers")
+        return [
+            Placed(self._shapes[row], *self._row(row), self._base[row], self._frame_matrices)
+            for row in range(first, end)
+        ]
+
+    def _row(self, row: int) -> tuple[Triple, Triple, Triple, Triple]:
+        chunk = row // CHUNK
+        if chunk == self._chunk + 1:
+            self._chunk = chunk
+            part = self._placed[chunk * CHUNK : (chunk + 1) * CHUNK]
+            columns = (map(tuple, part[:, k].tolist()) for k in range(4))
+            self._rows = list(zip(*columns, strict=True))
+        if chunk == self._chunk:
+            return self._rows[row - chunk * CHUNK]
+        return tuple(map(tuple, self._placed[row].tolist()))  # type: ignore[return-value]

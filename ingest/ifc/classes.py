@@ -80,19 +80,15 @@ class Classes:
     """Looks up the group of a product by its class, walking up the schema once per class."""
 
     def __init__(self) -> None:
-        self._known: dict[str, tuple[Group, str]] = {}
+        self._known: dict[str, tuple[str, Group, str]] = {}
 
-    def of(self, product: Entity) -> tuple[Group, str]:
-        """Group of a product, and the reason when it is context only."""
+    def of(self, product: Entity) -> tuple[str, Group, str]:
+        """Class and group of a product, and the reason when it is context only."""
         name = product.is_a()
         known = self._known.get(name)
         if known is None:
-            known = self._known[name] = next(
-                ((group, reason) for base, group, reason in _READ if is_kind(product, base)), ("any", "")
+            found: tuple[Group, str] = next(
+                ((group, reason) for base, group, reason in _READ if product.is_a(base)), ("any", "")
             )
+            known = self._known[name] = (name, *found)
         return known
-
-
-def is_kind(product: Entity, base: str) -> bool:
-    """True when the product is of this class or below it; a class its schema does not know gives False."""
-    return bool(product.is_a(base))

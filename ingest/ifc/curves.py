@@ -51,7 +51,7 @@ class CurveReader:
         reader = _READERS.get(kind)
         if reader is None:
             raise ValueError(f"{kind} is not read")
-        points: Floats = np.asarray(reader(self, curve, depth), float)
+        points = reader(self, curve, depth)
         if len(points) < 2 or not np.isfinite(points).all():
             raise ValueError(f"{kind} #{curve.id()} has no two finite points")
         return points

@@ -4,6 +4,7 @@ from __future__ import annotations
 
 from collections.abc import Sequence
 from dataclasses import dataclass, field
+from functools import lru_cache
 from typing import Any
 
 import numpy as np
@@ -46,9 +47,7 @@ class Element:
 
     def part(self, form: Form, points: Sequence[Point3], evidence: Sequence[str], **more: Any) -> Part:
         """A part of this element; evidence sentences are joined."""
-        said = [text for text in evidence if text]
-        if self.of_parts:
-            said.append(f"body taken from its {self.of_parts} parts")
+        said = (*evidence, f"body taken from its {self.of_parts} parts") if self.of_parts else tuple(evidence)
         return Part(
             source=self.source,
             form=form,
@@ -58,7 +57,7 @@ class Element:
             name=self.name,
             material=self.material.name if self.material else "",
             tags=self.tags,
-            evidence="; ".join(said),
+            evidence=_joined(said),
             **more,
         )
 
@@ -70,11 +69,18 @@ class Element:
         return None
 
 
+@lru_cache(maxsize=1024)
+def _joined(said: tuple[str, ...]) -> str:
+    """Sentences joined; the same words of many elements are one string in memory."""
+    return "; ".join(filter(None, said))
+
+
 class SectionTable:
     """Cross-sections of bars in metres, each profile worked out once."""
 
     def __init__(self) -> None:
         self._moments: dict[int, tuple[Profile, Moments]] = {}
+        self._sections: dict[tuple[int, float, tuple[float, float] | None], BarSection] = {}
 
     def moments(self, profile: Profile) -> Moments:
         """Area and second moments in file units; the profile is kept so that its id stays its own."""
@@ -92,6 +98,13 @@ class SectionTable:
             level_way: Direction in the profile's coordinates that is level on site: I is taken about it. None for
                 an upright bar, whose I is the largest there is.
         """
+        way = level_way and (round(level_way[0], 12), round(level_way[1], 12))
+        key = (id(profile), round(scale, 12), way)
+        if key not in self._sections:
+            self._sections[key] = self._work_out(profile, scale, level_way)
+        return self._sections[key]
+
+    def _work_out(self, profile: Profile, scale: float, level_way: tuple[float, float] | None) -> BarSection:
         m = self.moments(profile)
         second = m.largest[0] if level_way is None else m.about(level_way)
         width, depth = _extents(profile, level_way)

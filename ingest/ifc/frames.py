@@ -44,11 +44,12 @@ class FrameTable:
         known = self._rows.get(key)
         if known is not None:
             return known
-        flat = frame.is_a() == "IfcAxis2Placement2D"
+        kind = frame.is_a()
+        flat = kind == "IfcAxis2Placement2D"
         up = None if flat else frame.get_argument(AXIS)
         first = (
             None
-            if frame.is_a() == "IfcAxis1Placement"
+            if kind == "IfcAxis1Placement"
             else frame.get_argument(REF_DIRECTION_2D if flat else REF_DIRECTION)
         )
         row = self.add(

@@ -3,29 +3,41 @@
 from __future__ import annotations
 
 from dataclasses import dataclass
-from typing import Any
+from sys import intern
+from typing import Any, TypeAlias
 
 from ingest.ifc.attributes import DESCRIPTION, GUID, NAME, OBJECT_TYPE, PLACEMENT, REPRESENTATION, TAG
+from ingest.ifc.bodies import BodyList
 from ingest.ifc.classes import COUNTED_OUT, WHOLE_FROM_PARTS, Classes, Group
 from ingest.ifc.curves import CurveReader
 from ingest.ifc.elements import Element
 from ingest.ifc.frames import FrameTable
 from ingest.ifc.loads import items_of_actions, load_tags
 from ingest.ifc.placement import PlacementTable
-from ingest.ifc.properties import UNREADABLE, PropertyTable, number_text
+from ingest.ifc.properties import UNREADABLE, PropertyTable
 from ingest.ifc.relations import MaterialUse, Relations
-from ingest.ifc.representations import Chosen, choose
+from ingest.ifc.representations import choose
 from ingest.ifc.solids import ItemReader
 from ingest.ifc.units import read_units
 from ingest.trail import Source
 
-Entity = Any
-_PIECES = ("IfcBuildingElementPart", "IfcBuildingElementProxy")
+Entity: TypeAlias = Any
+_TEXT_ATTRIBUTES = (("ObjectType", OBJECT_TYPE), ("Description", DESCRIPTION), ("Tag", TAG))
+_KIND_ATTRIBUTES = ("PredefinedType", "ShapeType")
 
 
 @dataclass(slots=True)
 class Product:
-    """One product. `reason` says why it is context, or why it cannot be read; `part_of` that another one holds it."""
+    """One product.
+
+    Attributes:
+        reason: Why it is context, or why it has no body.
+        part_of: Says that another element holds it.
+        placement: Row of its placement.
+        rows: Numbers of its first body, first axis, first footprint, and the number after the last; None before it is
+            described.
+        fault: What was wrong with its geometry.
+    """
 
     key: int
     entity: Entity
@@ -36,7 +48,8 @@ class Product:
     part_of: str = ""
     has_parts: bool = False
     placement: int = 0
-    chosen: Chosen | None = None
+    rows: tuple[int, int, int, int] | None = None
+    fault: str = ""
 
 
 class Inventory:
@@ -51,7 +64,8 @@ class Inventory:
         self.placements = PlacementTable(self.frames)
         self.items = ItemReader(self.frames, CurveReader(self.units.length, self.units.angle))
         self._loads = items_of_actions(model)
-        self._last_attribute: dict[str, int | None] = {}
+        self.bodies = BodyList()
+        self._kind_positions: dict[str, int | None] = {}
         self.doubles = 0
         self.products = self._list(model)
         self._by_key = {product.key: product for product in self.products}
@@ -66,9 +80,8 @@ class Inventory:
             if key in seen:
                 continue
             seen.add(key)
-            group, reason = classes.of(entity)
-            item = self._item(entity, key, guids)
-            found.append(Product(key, entity, item, entity.is_a(), group, reason))
+            name, group, reason = classes.of(entity)
+            found.append(Product(key, entity, self._item(entity, key, guids), name, group, reason))
         found.sort(key=lambda product: product.key)
         return found
 
@@ -85,21 +98,14 @@ class Inventory:
 
     def _link_parts(self) -> None:
         for product in self.products:
-            parts = self.relations.parts.get(product.key)
-            product.has_parts = bool(parts)
-        for product in self.products:
-            whole = self._by_key.get(self._whole_key(product))
+            product.has_parts = product.key in self.relations.parts
+            whole = self._by_key.get(self.relations.whole.get(product.key, -1))
             if whole is None or whole.group == "setting":
                 continue
             if whole.cls == "IfcBorehole" and product.group == "ground":
                 product.part_of = "stratum of a borehole"
-            elif whole.group in WHOLE_FROM_PARTS and product.cls in _PIECES:
-                if product.cls == "IfcBuildingElementPart" or not _has_body(whole.entity):
-                    product.part_of = "part of an element read whole"
-
-    def _whole_key(self, product: Product) -> int:
-        whole = self.relations.whole.get(product.key)
-        return -1 if whole is None else int(whole.id())
+            elif whole.group in WHOLE_FROM_PARTS and _is_piece(product, whole):
+                product.part_of = "part of an element read whole"
 
     def parts_of(self, product: Product, depth: int = 0) -> list[Product]:
         """Products a product is made of, those of parts included."""
@@ -113,11 +119,11 @@ class Inventory:
         return list({p.key: p for p in found}.values())
 
     def openings_of(self, product: Product) -> list[Product]:
-        """Openings of a plate whose bodies were described."""
+        """Openings of a plate; they are described with it."""
         if product.group != "plate":
             return []
         found = (self._by_key.get(opening.id()) for opening in self.relations.openings.get(product.key, ()))
-        return [opening for opening in found if opening is not None and opening.chosen is not None]
+        return [opening for opening in found if opening is not None]
 
     def describe(self, product: Product) -> None:
         """Describe placement and geometry of a product, and the openings of a plate."""
@@ -126,61 +132,55 @@ class Inventory:
         if product.group == "load" and (item := self._loads.get(product.key)) is not None:
             shape = shape or item.get_argument(REPRESENTATION)
             placement = placement or item.get_argument(PLACEMENT)
-        product.placement = self.placements.row(placement)
-        product.chosen = choose(shape, self.items, product.group != "plate")
-        if product.group == "plate":
-            for opening in self.relations.openings.get(product.key, ()):
-                known = self._by_key.get(opening.id())
-                if known is not None and known.chosen is None:
-                    known.placement = self.placements.row(known.entity.get_argument(PLACEMENT))
-                    known.chosen = choose(known.entity.get_argument(REPRESENTATION), self.items, False)
+        product.placement = placement_row = self.placements.row(placement)
+        chosen = choose(shape, self.items, product.group != "plate")
+        first = len(self.bodies)
+        ends = [self.bodies.add(d, placement_row) for d in (chosen.bodies, chosen.axes, chosen.footprints)]
+        product.rows = (first, ends[0], ends[1], ends[2])
+        product.reason, product.fault = chosen.reason, chosen.fault
+        for opening in self.openings_of(product):
+            if opening.rows is None:
+                self.describe(opening)
 
     def element(self, product: Product) -> Element:
         """The element of a product, with its attributes and properties; bodies are added by the caller."""
         entity, key = product.entity, product.key
         own_type = self.properties.type_of(key)
         material = self.relations.material(key, None if own_type is None else own_type.id())
-        tags = self._tags(product, own_type, material)
         return Element(
             source=Source(file=self.file, item=product.item),
             cls=product.cls,
             group=product.group,
-            name=str(entity.get_argument(NAME) or ""),
-            layer=self._layer(entity),
+            name=entity.get_argument(NAME) or "",
+            layer=self._layer(entity) if self.relations.layers else "",
             material=material,
-            tags=tags,
+            tags=self._tags(product, own_type, material),
             length=self.units.length,
         )
 
     def _tags(self, product: Product, own_type: Entity | None, material: MaterialUse | None) -> dict[str, str]:
-        entity, key = product.entity, product.key
+        entity, key, relations = product.entity, product.key, self.relations
         tags: dict[str, str] = {}
-        for name, position in (("ObjectType", OBJECT_TYPE), ("Description", DESCRIPTION)):
+        for name, position in _TEXT_ATTRIBUTES if product.group not in ("load", "line") else _TEXT_ATTRIBUTES[:2]:
             value = entity.get_argument(position)
             if value:
                 tags[name] = str(value)
-        if product.group not in ("load", "line"):
-            value = entity.get_argument(TAG)
-            if value and isinstance(value, str):
-                tags["Tag"] = value
-        self._kind_tags(entity, own_type, tags)
-        storey = self._storey(product)
-        if storey:
-            tags["Storey"] = storey
-        if key in self.relations.groups:
-            tags["Group"] = ", ".join(self.relations.groups[key])
-        if key in self.relations.codes:
-            tags["Classification"] = self.relations.codes[key]
+        self._add_kind(entity, own_type, tags)
+        place = relations.place(key)
+        if place is not None:
+            tags["Storey" if place[1] else "ContainedIn"] = place[0]
+        if key in relations.groups:
+            tags["Group"] = ", ".join(relations.groups[key])
+        if key in relations.codes:
+            tags["Classification"] = relations.codes[key]
         if material is not None and material.layers:
-            scale = self.units.length
-            tags["MaterialLayers"] = "; ".join(f"{n} {number_text(t * scale)}" for n, t in material.layers)
+            tags["MaterialLayers"] = relations.layer_words(material, self.units.length)
         if product.group == "load":
             tags.update(load_tags(entity, self.units))
-        for name, text in self.properties.tags(key).items():
-            tags.setdefault(name, text)
+        self.properties.add_tags(key, tags)
         return tags
 
-    def _kind_tags(self, entity: Entity, own_type: Entity | None, tags: dict[str, str]) -> None:
+    def _add_kind(self, entity: Entity, own_type: Entity | None, tags: dict[str, str]) -> None:
         """Predefined type of the occurrence, else of its type, and the type's name."""
         kind = self._predefined(entity)
         if own_type is not None:
@@ -196,34 +196,18 @@ class Inventory:
 
     def _predefined(self, entity: Entity) -> str | None:
         name = entity.is_a()
-        if name not in self._last_attribute:
+        if name not in self._kind_positions:
             names = list(entity.get_attribute_names())
-            found = [i for i, n in enumerate(names) if n in ("PredefinedType", "ShapeType")]
-            self._last_attribute[name] = found[0] if found else None
-        position = self._last_attribute[name]
+            self._kind_positions[name] = next((i for i, n in enumerate(names) if n in _KIND_ATTRIBUTES), None)
+        position = self._kind_positions[name]
         value = None if position is None else entity.get_argument(position)
-        return str(value) if value else None
-
-    def _storey(self, product: Product) -> str:
-        """Name of the storey an element stands in, its whole's when it has none of its own."""
-        key = product.key
-        for _ in range(8):
-            storey = self.relations.storey.get(key)
-            if storey is not None:
-                return str(storey.get_argument(NAME) or "")
-            whole = self.relations.whole.get(key)
-            if whole is None:
-                return ""
-            key = whole.id()
-        return ""
+        return intern(value) if value else None
 
     def _layer(self, entity: Entity) -> str:
         """Drawing layer of the representation or of one of its items."""
         layers = self.relations.layers
-        shape = entity.get_argument(REPRESENTATION) if layers else None
-        if shape is None:
-            return ""
-        for one in shape.get_argument(2):
+        shape = entity.get_argument(REPRESENTATION)
+        for one in () if shape is None else shape.get_argument(2):
             for candidate in (one, *one.get_argument(3)):
                 name = layers.get(candidate.id())
                 if name:
@@ -250,3 +234,10 @@ def _has_body(entity: Entity) -> bool:
         return any((one.get_argument(1) or "Body") == "Body" for one in shape.get_argument(2))
     except UNREADABLE:
         return False
+
+
+def _is_piece(product: Product, whole: Product) -> bool:
+    """True for a product that is but a piece of a wall, bar or plate: a part by class, or a proxy that is its body."""
+    return product.cls == "IfcBuildingElementPart" or (
+        product.cls == "IfcBuildingElementProxy" and not _has_body(whole.entity)
+    )

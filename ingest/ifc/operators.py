@@ -2,32 +2,33 @@
 
 from __future__ import annotations
 
-from typing import Any
+from typing import Any, TypeAlias
 
 import numpy as np
 from numpy.typing import NDArray
 
-from ingest.ifc.frames import FrameTable
+from ingest.ifc.frames import FrameTable, Triple, triple
 
-Entity = Any
-Floats = NDArray[np.float64]
+Entity: TypeAlias = Any
+Floats: TypeAlias = NDArray[np.float64]
 
 
 class OperatorTable:
-    """Matrices of mappings; row 0 is the identity."""
+    """Matrices of mappings; row 0 is the identity. Most mappings only move: these are kept as their shift."""
 
     def __init__(self, frames: FrameTable) -> None:
         self._frames = frames
         self._rows: dict[tuple[int, int], int] = {}
         self._chains: dict[tuple[int, int], int] = {}
-        self._matrices: list[Floats] = [np.eye(4)]
+        self._made: list[Floats | Triple] = [(0.0, 0.0, 0.0)]
 
     def row(self, operator: Entity, origin: Entity) -> int:
         """Row of one mapping: `origin`, a frame of the source, is brought onto the target of the operator."""
         key = (operator.id(), origin.id())
         known = self._rows.get(key)
         if known is None:
-            known = self._rows[key] = self._append(self._matrix(operator, origin))
+            self._made.append(self._read(operator, origin))
+            known = self._rows[key] = len(self._made) - 1
         return known
 
     def chain(self, outer: int, inner: int) -> int:
@@ -37,50 +38,57 @@ class OperatorTable:
         key = (outer, inner)
         known = self._chains.get(key)
         if known is None:
-            known = self._chains[key] = self._append(self._matrices[outer] @ self._matrices[inner])
+            self._made.append(_full(self._made[outer]) @ _full(self._made[inner]))
+            known = self._chains[key] = len(self._made) - 1
         return known
 
-    def _append(self, matrix: Floats) -> int:
-        self._matrices.append(matrix)
-        return len(self._matrices) - 1
-
-    def _matrix(self, operator: Entity, origin: Entity) -> Floats:
-        matrix = operator_matrix(operator)
+    def _read(self, operator: Entity, origin: Entity) -> Floats | Triple:
+        made = read_operator(operator)
         row = self._frames.row(origin)
         if self._frames.is_plain(row):
-            return matrix
-        return np.asarray(matrix @ np.linalg.inv(self._frames.matrix(row)))
+            return made
+        return np.asarray(_full(made) @ np.linalg.inv(self._frames.matrix(row)))
 
     def matrices(self) -> Floats:
         """All mappings as (n, 4, 4), in the file's units."""
-        return np.array(self._matrices)
+        matrices = np.tile(np.eye(4), (len(self._made), 1, 1))
+        shifts = [(row, made) for row, made in enumerate(self._made) if isinstance(made, tuple)]
+        matrices[[row for row, _ in shifts], :3, 3] = [made for _, made in shifts]
+        for row, made in enumerate(self._made):
+            if not isinstance(made, tuple):
+                matrices[row] = made
+        return matrices
 
 
-def operator_matrix(operator: Entity) -> Floats:
-    """Matrix (4, 4) of an IfcCartesianTransformationOperator, which may scale and mirror.
-
-    Axes are made square to each other in the order third, first, second (ISO 10303-42, base axes).
-    """
-    flat = operator.is_a("IfcCartesianTransformationOperator2D")
-    first, second, at = operator.get_argument(0), operator.get_argument(1), operator.get_argument(2)
-    third = None if flat else operator.get_argument(4)
-    one = float(operator.get_argument(3) or 1.0)
-    scales = [one, float(getattr(operator, "Scale2", None) or one), float(getattr(operator, "Scale3", None) or one)]
+def _full(made: Floats | Triple) -> Floats:
+    if not isinstance(made, tuple):
+        return made
     matrix = np.eye(4)
-    if first is not None or second is not None or third is not None:
-        matrix[:3, :3] = _base_axes(_ratios(first), _ratios(second), _ratios(third))
-    if scales != [1.0, 1.0, 1.0]:
-        matrix[:3, :3] *= scales
-    coordinates = at.get_argument(0)
-    matrix[: len(coordinates), 3] = coordinates
+    matrix[:3, 3] = made
     return matrix
 
 
-def _ratios(direction: Entity | None) -> Floats | None:
-    if direction is None:
-        return None
-    ratios = direction.get_argument(0)
-    return np.array([*ratios, 0.0][:3], float)
+def read_operator(operator: Entity) -> Floats | Triple:
+    """Matrix (4, 4) of an IfcCartesianTransformationOperator, which may scale and mirror; its shift when it only moves.
+
+    Axes are made square to each other in the order third, first, second (ISO 10303-42, base axes).
+    """
+    kind = operator.is_a()
+    flat = kind.startswith("IfcCartesianTransformationOperator2D")
+    ways = (operator.get_argument(0), operator.get_argument(1), None if flat else operator.get_argument(4))
+    one = float(operator.get_argument(3) or 1.0)
+    at = triple(operator.get_argument(2).get_argument(0))
+    if ways == (None, None, None) and one == 1.0 and not kind.endswith("nonUniform"):
+        return at
+    scales = [one, float(getattr(operator, "Scale2", None) or one), float(getattr(operator, "Scale3", None) or one)]
+    matrix = np.eye(4)
+    matrix[:3, :3] = _base_axes(*(None if way is None else _ratios(way) for way in ways)) * scales
+    matrix[:3, 3] = at
+    return matrix
+
+
+def _ratios(direction: Entity) -> Floats:
+    return np.array(triple(direction.get_argument(0)), float)
 
 
 def _base_axes(first: Floats | None, second: Floats | None, third: Floats | None) -> Floats:

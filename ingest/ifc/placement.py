@@ -54,9 +54,9 @@ class PlacementTable:
         try:
             self._frame_rows[row] = self._own_frame(placement)
             parent = self._parent(placement)
-            if parent is None or parent.is_a("IfcObjectPlacement"):
-                return row, parent
-            raise ValueError(f"placed relative to a {parent.is_a()}")
+            if parent is not None:
+                parent.id()
+            return row, parent
         except (AttributeError, TypeError, ValueError, RuntimeError, IndexError, KeyError) as error:
             self.unread[row] = str(error)[:80] or type(error).__name__
         return row, None

@@ -3,13 +3,14 @@
 from __future__ import annotations
 
 from collections.abc import Iterable
-from typing import Any
+from sys import intern
+from typing import Any, TypeAlias
 
 from ingest.ifc.attributes import NAME, RELATED_OBJECTS, RELATING
 from ingest.ifc.units import ProjectUnits, unit_factor
 
-Entity = Any
-Tags = dict[str, str]
+Entity: TypeAlias = Any
+Tags: TypeAlias = dict[str, str]
 
 _SETS_OF_TYPE = 5
 _PROPERTIES = 4
@@ -30,33 +31,42 @@ _KIND_MEASURES = {
     "PLANARFORCEUNIT": "IfcPlanarForceMeasure",
 }
 UNREADABLE = (AttributeError, TypeError, ValueError, RuntimeError, IndexError, KeyError)
+"""What damaged attributes raise: missing, of the wrong kind, or no longer there."""
 
 
 class PropertyTable:
-    """Property sets of occurrences and types, read when asked for and each only once."""
+    """Property sets of occurrences and types, read when asked for; those of many products only once."""
 
     def __init__(self, model: Any, units: ProjectUnits) -> None:
         self._units = units
         self._sets: dict[int, list[Entity]] = {}
         self._types: dict[int, Entity] = {}
-        self._read: dict[int, tuple[str, Tags]] = {}
+        self._shared: dict[int, tuple[str, Tags] | None] = {}
         self._of_type: dict[int, Tags] = {}
         self._factors: dict[str, float | None] = {}
+        self._texts: dict[float, str] = {}
         self.unread = 0
-        """Number of property sets and properties that were damaged."""
+        """Number of property sets and relations that were damaged."""
         for relation in model.by_type("IfcRelDefinesByProperties"):
-            self._note(relation, self._sets)
+            self._note_sets(relation)
         for relation in model.by_type("IfcRelDefinesByType"):
-            self._note(relation, None)
+            self._note_type(relation)
 
-    def _note(self, relation: Entity, into: dict[int, list[Entity]] | None) -> None:
+    def _note_sets(self, relation: Entity) -> None:
+        try:
+            relating, related = relation.get_argument(RELATING), relation.get_argument(RELATED_OBJECTS)
+            if len(related) > 1 and not isinstance(relating, tuple) and relating.id():
+                self._shared[relating.id()] = None
+            for one in related:
+                self._sets.setdefault(one.id(), []).append(relating)
+        except UNREADABLE:
+            self.unread += 1
+
+    def _note_type(self, relation: Entity) -> None:
         try:
             relating = relation.get_argument(RELATING)
-            for related in relation.get_argument(RELATED_OBJECTS):
-                if into is None:
-                    self._types[related.id()] = relating
-                else:
-                    into.setdefault(related.id(), []).append(relating)
+            for one in relation.get_argument(RELATED_OBJECTS):
+                self._types[one.id()] = relating
         except UNREADABLE:
             self.unread += 1
 
@@ -64,20 +74,19 @@ class PropertyTable:
         """The type object of a product, by the product's id."""
         return self._types.get(key)
 
-    def tags(self, key: int) -> Tags:
-        """Properties of a product and its type, name to text; what the product says stands above its type.
+    def add_tags(self, key: int, tags: Tags) -> None:
+        """Add the properties of a product and its type to its tags, name to text.
 
-        A name that comes in two sets with different values keeps the first; the other is kept as `set: name`.
+        What the product says stands above its type. A name that comes twice with different values keeps the first;
+        the other is kept as `set: name`.
         """
-        found: Tags = {}
         for entity in self._sets.get(key, ()):
             for name, values in self._definitions(entity):
-                _merge(found, name, values)
+                _merge(tags, name, values)
         own = self._types.get(key)
         if own is not None:
             for name, text in self._type_tags(own).items():
-                found.setdefault(name, text)
-        return found
+                tags.setdefault(name, text)
 
     def _type_tags(self, own: Entity) -> Tags:
         key = own.id()
@@ -94,31 +103,34 @@ class PropertyTable:
 
     def _definitions(self, entity: Entity) -> Iterable[tuple[str, Tags]]:
         if isinstance(entity, tuple):
-            return [self._set(one) for one in entity]
-        if entity.is_a() == "IfcPropertySetDefinitionSet":
-            return [self._set(one) for one in entity.wrappedValue]
-        return (self._set(entity),)
+            return [self._set(one, one.is_a()) for one in entity]
+        kind = entity.is_a()
+        if kind == "IfcPropertySetDefinitionSet":
+            return [self._set(one, one.is_a()) for one in entity.wrappedValue]
+        return (self._set(entity, kind),)
 
-    def _set(self, entity: Entity) -> tuple[str, Tags]:
-        key = entity.id()
-        known = self._read.get(key)
-        if known is None:
-            found: Tags = {}
-            kind = entity.is_a()
-            try:
-                if kind == "IfcPropertySet":
-                    self._properties(entity.get_argument(_PROPERTIES), found)
-                elif kind == "IfcElementQuantity":
-                    self._quantities(entity.get_argument(_QUANTITIES), found)
-            except UNREADABLE:
-                self.unread += 1
-            known = self._read[key] = (str(entity.get_argument(NAME) or ""), found)
-        return known
+    def _set(self, entity: Entity, kind: str) -> tuple[str, Tags]:
+        key = entity.id() if self._shared else -1
+        known = self._shared.get(key)
+        if known is not None:
+            return known
+        found: Tags = {}
+        try:
+            if kind == "IfcPropertySet":
+                self._properties(entity.get_argument(_PROPERTIES), found)
+            elif kind == "IfcElementQuantity":
+                self._quantities(entity.get_argument(_QUANTITIES), found)
+        except UNREADABLE:
+            self.unread += 1
+        read = (entity.get_argument(NAME) or "", found)
+        if key in self._shared:
+            self._shared[key] = read
+        return read
 
     def _properties(self, properties: Iterable[Entity], found: Tags, prefix: str = "") -> None:
         for one in properties:
             kind = one.is_a()
-            name = prefix + str(one.get_argument(0) or "")
+            name = intern(prefix + (one.get_argument(0) or ""))
             if kind == "IfcPropertySingleValue":
                 value = one.get_argument(2)
                 if value is not None:
@@ -141,16 +153,21 @@ class PropertyTable:
             factor = self._factor(_QUANTITY_MEASURES.get(kind, ""), one.get_argument(2))
             value = one.get_argument(3)
             if isinstance(value, (int, float)):
-                found[str(one.get_argument(0) or "")] = number_text(value if factor is None else value * factor)
+                name = intern(one.get_argument(0) or "")
+                found[name] = number_text(value if factor is None else value * factor)
 
     def _text(self, value: Entity, unit: Entity | None) -> str:
         bare = value.get_argument(0)
+        if isinstance(bare, float):
+            factor = self._factor(value.is_a(), unit)
+            number = bare if factor is None else bare * factor
+            known = self._texts.get(number)
+            if known is None:
+                known = self._texts[number] = number_text(number)
+            return known
         if isinstance(bare, bool):
             return "true" if bare else "false"
-        if not isinstance(bare, float):
-            return str(bare)
-        factor = self._factor(value.is_a(), unit)
-        return number_text(bare if factor is None else bare * factor)
+        return bare if isinstance(bare, str) else str(bare)
 
     def _factor(self, measure: str, unit: Entity | None) -> float | None:
         if unit is None:
@@ -169,7 +186,10 @@ class PropertyTable:
 
 def _merge(found: Tags, set_name: str, values: Tags) -> None:
     for name, text in values.items():
-        if found.setdefault(name, text) != text:
+        known = found.get(name)
+        if known is None:
+            found[name] = text
+        elif known != text:
             found[f"{set_name}: {name}"] = text
 
 

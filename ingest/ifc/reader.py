@@ -7,22 +7,24 @@ from collections import Counter
 from collections.abc import Iterator
 from contextlib import contextmanager
 from pathlib import Path
-from typing import Any
+from typing import TypeAlias
 
 import numpy as np
+from numpy.typing import NDArray
+from shapely.errors import GEOSException
 
-from ingest.ifc.bodies import BodyList, Placed
 from ingest.ifc.doubts import Doubts
 from ingest.ifc.elements import Element, NoPart, SectionTable
 from ingest.ifc.georeference import read_georeference
+from ingest.ifc.ground import read_borehole
 from ingest.ifc.inventory import Inventory, Product
 from ingest.ifc.makers import make_parts
 from ingest.ifc.opening import open_model
 from ingest.ifc.properties import UNREADABLE
-from ingest.ifc.solids import Described
+from ingest.ifc.representations import NO_GEOMETRY
 from ingest.model import Borehole, FileParts, Part
 
-Entity = Any
+Floats: TypeAlias = NDArray[np.float64]
 
 
 def read_ifc(path: Path, *, length_unit: str | None = None) -> FileParts:
@@ -78,9 +80,11 @@ class _Reading:
         inventory = self.inventory
         georeference = read_georeference(self.model, inventory.units)
         for product in inventory.products:
-            self._describe(product)
+            if product.group != "context":
+                self._describe(product)
         self._place(georeference.matrix)
-        self._count_and_make()
+        for product in inventory.products:
+            self._make_parts(product)
         self.doubts.about_units(inventory.units, self.parts)
         self.doubts.about_georeference(georeference)
         self.doubts.about_damage(inventory.damage(), self.losses)
@@ -108,107 +112,86 @@ class _Reading:
 
     def _describe(self, product: Product) -> None:
         """Gather what has to be placed; nothing is placed yet."""
-        if product.group == "context":
-            return
         try:
             self.inventory.describe(product)
         except (*UNREADABLE, RecursionError, OverflowError) as error:
-            product.reason = "damaged: its attributes cannot be read"
-            self.doubts.note_damage(product.item, str(error))
+            product.reason, product.fault = "attributes cannot be read", str(error)
 
-    def _place(self, matrix: Any) -> None:
-        inventory = self.inventory
-        world, unplaced = inventory.placements.solve()
-        self.world = np.einsum("ij,njk->nik", matrix, world)
-        self.unplaced = unplaced
-        self.bodies = BodyList()
-        self._ranges: dict[int, tuple[range, range, range]] = {}
-        for product in inventory.products:
-            if product.chosen is not None:
-                chosen = product.chosen
-                rows = (chosen.bodies, chosen.axes, chosen.footprints)
-                self._ranges[product.key] = tuple(self._add(d, product.placement) for d in rows)  # type: ignore[assignment]
-        self.placed, self.finite = self.bodies.place(self.world, inventory.items)
+    def _place(self, matrix: Floats) -> None:
+        world, self.unplaced = self.inventory.placements.solve()
+        with np.errstate(all="ignore"):
+            self.world = np.einsum("ij,njk->nik", matrix, world)
+        self.inventory.bodies.place(self.world, self.inventory.items)
 
-    def _add(self, described: Described, placement: int) -> range:
-        first = len(self.bodies)
-        for shape, mapping in described:
-            self.bodies.add(shape, placement, mapping)
-        return range(first, len(self.bodies))
-
-    def _count_and_make(self) -> None:
-        for product in self.inventory.products:
-            if product.group == "context":
-                self.context[product.reason] += 1
-                continue
-            try:
+    def _make_parts(self, product: Product) -> None:
+        if product.group == "context":
+            self.context[product.reason] += 1
+            return
+        try:
+            if product.part_of:
+                self.context[product.part_of] += 1
+            else:
                 self._make(product)
-            except NoPart as reason:
-                self._leave_out(product, str(reason))
-            except (*UNREADABLE, OverflowError, ZeroDivisionError, np.linalg.LinAlgError) as error:
-                self.doubts.note_damage(product.item, str(error))
-                self._leave_out(product, "geometry cannot be read")
+        except NoPart as reason:
+            self._leave_out(product, str(reason))
+        except (*UNREADABLE, OverflowError, ZeroDivisionError, GEOSException, np.linalg.LinAlgError) as error:
+            product.fault = product.fault or str(error)
+            self._leave_out(product, "geometry cannot be read")
 
     def _leave_out(self, product: Product, reason: str) -> None:
+        if product.fault:
+            self.doubts.note_damage(product.item, product.fault)
         if product.group == "setting":
             return
-        whole = product.part_of
-        if whole:
-            self.context[whole] += 1
-        elif product.has_parts and reason == "no geometry":
+        if reason == NO_GEOMETRY and product.reason:
+            reason = product.reason
+        if product.has_parts and reason == NO_GEOMETRY:
             self.context["assembly of other elements"] += 1
         else:
             self.ignored[reason] += 1
 
     def _make(self, product: Product) -> None:
-        if product.part_of:
-            raise NoPart(product.part_of)
         element = self._element(product)
         if product.cls == "IfcBorehole":
             strata = [self._element(part) for part in self.inventory.parts_of(product)]
-            self.boreholes.append(make_borehole(element, strata))
+            self.boreholes.append(read_borehole(element, strata))
             self.context["borehole"] += 1
             return
         made = make_parts(element, self.sections)
         (self.setting if product.group == "setting" else self.parts).extend(made)
+        if product.fault:
+            self.doubts.note_damage(product.item, f"{product.fault}; read another way")
 
     def _element(self, product: Product) -> Element:
-        if product.reason:
-            raise NoPart(product.reason)
+        if product.rows is None:
+            raise NoPart(product.reason or NO_GEOMETRY)
         if self.unplaced[product.placement]:
             self.doubts.note_unplaced(product.item, self.inventory.placements.unread.get(product.placement))
             raise NoPart("placement refers to itself or cannot be read")
         element = self.inventory.element(product)
-        element.origin = tuple(float(v) for v in self.world[product.placement][:3, 3])  # type: ignore[assignment]
-        own = self._ranges.get(product.key)
-        if own is not None:
-            element.bodies, element.axes, element.footprints = (self._take(rows) for rows in own)
+        first, axes, footprints, end = product.rows
+        take = self.inventory.bodies.take
+        element.bodies, element.axes = take(first, axes), take(axes, footprints)
+        element.footprints = take(footprints, end)
+        if product.group in ("setting", "ground"):
+            x, y, z = self.world[product.placement][:3, 3].tolist()
+            element.origin = (x, y, z)
         if not element.bodies and product.has_parts:
             self._take_from_parts(element, product)
         for opening in self.inventory.openings_of(product):
-            element.openings += self._take(self._ranges[opening.key][0])
+            if opening.rows is not None:
+                element.openings += take(*opening.rows[:2])
         return element
-
-    def _take(self, rows: range) -> list[Placed]:
-        if not all(self.finite[row] for row in rows):
-            raise NoPart("coordinates are not finite numbers")
-        return [self.placed[row] for row in rows]
 
     def _take_from_parts(self, element: Element, product: Product) -> None:
         for part in self.inventory.parts_of(product):
-            if part.key in self._ranges and part.part_of:
-                found = self._take(self._ranges[part.key][0])
+            if part.rows is not None and part.part_of:
+                found = self.inventory.bodies.take(*part.rows[:2])
                 element.bodies += found
                 element.of_parts += bool(found)
 
     def _check_sum(self) -> None:
         items = {part.source.item for part in self.parts}
         total = len(items) + sum(self.context.values()) + sum(self.ignored.values())
-        assert total == self.inventory.entities, f"{total} accounted for of {self.inventory.entities}"
-
-
-def make_borehole(element: Element, strata: list[Element]) -> Borehole:
-    """A borehole from its element and those of its strata."""
-    from ingest.ifc.ground import read_borehole
-
-    return read_borehole(element, strata)
+        if total != self.inventory.entities:
+            raise RuntimeError(f"{total} products accounted for, {self.inventory.entities} are in the file")

@@ -2,7 +2,7 @@
 
 from __future__ import annotations
 
-from collections.abc import Iterator
+from collections.abc import Callable, Iterator
 from dataclasses import dataclass
 from typing import Any
 
@@ -15,7 +15,7 @@ from ingest.ifc.attributes import (
     RELATING_STRUCTURE,
     WHOLE,
 )
-from ingest.ifc.properties import UNREADABLE
+from ingest.ifc.properties import UNREADABLE, number_text
 
 Entity = Any
 
@@ -51,54 +51,55 @@ class MaterialUse:
 
 
 class Relations:
-    """Tables by product id, filled in one pass over each kind of relation."""
+    """Tables by product id, filled in one pass over each kind of relation.
+
+    Attributes:
+        materials: Material entity.
+        places: Name of the spatial element an element stands in, and whether that is a storey.
+        parts, whole: Parts of a whole, and the id of the whole of a part.
+        openings: Openings of an element.
+        groups, codes: Names of groups and systems; classification.
+        layers: Drawing layer, by the id of a representation or item.
+        unread: Number of damaged relations.
+    """
 
     def __init__(self, model: Any) -> None:
         self.materials: dict[int, Entity] = {}
-        self.storey: dict[int, Entity] = {}
+        self.places: dict[int, tuple[str, bool]] = {}
         self.parts: dict[int, list[Entity]] = {}
-        self.whole: dict[int, Entity] = {}
+        self.whole: dict[int, int] = {}
         self.openings: dict[int, list[Entity]] = {}
         self.groups: dict[int, list[str]] = {}
         self.codes: dict[int, str] = {}
         self.layers: dict[int, str] = {}
         self.unread = 0
         self._uses: dict[int, MaterialUse] = {}
-        self._fill(model)
+        self._layer_words: dict[int, str] = {}
+        self._fill_belongings(model)
+        self._fill_structure(model)
 
-    def _pairs(self, model: Any, name: str, many: int, one: int) -> Iterator[tuple[Entity, Entity]]:
+    def _each(
+        self, model: Any, name: str, many: int, one: int, read: Callable[[Entity], Any]
+    ) -> Iterator[tuple[int, Entity, Any]]:
+        """Id and entity of each member with what `read` makes of the single side; damaged relations are counted."""
         for relation in of_type(model, name):
             try:
-                single = relation.get_argument(one)
-                for member in relation.get_argument(many):
-                    yield member, single
+                single = read(relation.get_argument(one))
+                members = [(member.id(), member) for member in relation.get_argument(many)]
             except UNREADABLE:
                 self.unread += 1
+                continue
+            for key, member in members:
+                yield key, member, single
 
-    def _fill(self, model: Any) -> None:
-        for member, material in self._pairs(model, "IfcRelAssociatesMaterial", RELATED_OBJECTS, RELATING):
-            self.materials[member.id()] = material
-        for member, storey in self._pairs(
-            model, "IfcRelContainedInSpatialStructure", RELATED_ELEMENTS, RELATING_STRUCTURE
-        ):
-            self.storey[member.id()] = storey
-        for name in ("IfcRelAggregates", "IfcRelNests"):
-            for member, whole in self._pairs(model, name, PARTS, WHOLE):
-                self.parts.setdefault(whole.id(), []).append(member)
-                self.whole[member.id()] = whole
-        for member, group in self._pairs(model, "IfcRelAssignsToGroup", RELATED_OBJECTS, 6):
-            self.groups.setdefault(member.id(), []).append(str(group.get_argument(NAME) or ""))
-        for member, code in self._pairs(model, "IfcRelAssociatesClassification", RELATED_OBJECTS, RELATING):
-            if code.is_a("IfcClassificationReference"):
-                self.codes[member.id()] = " ".join(str(v) for v in (code.get_argument(1), code.get_argument(2)) if v)
-        self._fill_layers(model)
-        for relation in of_type(model, "IfcRelVoidsElement"):
-            try:
-                self.openings.setdefault(relation.get_argument(4).id(), []).append(relation.get_argument(5))
-            except UNREADABLE:
-                self.unread += 1
-
-    def _fill_layers(self, model: Any) -> None:
+    def _fill_belongings(self, model: Any) -> None:
+        for key, _, material in self._each(model, "IfcRelAssociatesMaterial", RELATED_OBJECTS, RELATING, _entity):
+            self.materials[key] = material
+        for key, _, name in self._each(model, "IfcRelAssignsToGroup", RELATED_OBJECTS, 6, _name):
+            self.groups.setdefault(key, []).append(name)
+        for key, _, code in self._each(model, "IfcRelAssociatesClassification", RELATED_OBJECTS, RELATING, _code):
+            if code:
+                self.codes[key] = code
         for layer in of_type(model, "IfcPresentationLayerAssignment"):
             try:
                 name = str(layer.get_argument(0) or "")
@@ -106,6 +107,39 @@ class Relations:
                     self.layers.setdefault(item.id(), name)
             except UNREADABLE:
                 self.unread += 1
+
+    def _fill_structure(self, model: Any) -> None:
+        contained = "IfcRelContainedInSpatialStructure"
+        for key, _, place in self._each(model, contained, RELATED_ELEMENTS, RELATING_STRUCTURE, _place):
+            self.places[key] = place
+        for kind in ("IfcRelAggregates", "IfcRelNests"):
+            for key, member, whole in self._each(model, kind, PARTS, WHOLE, _key):
+                self.parts.setdefault(whole, []).append(member)
+                self.whole[key] = whole
+        for relation in of_type(model, "IfcRelVoidsElement"):
+            try:
+                self.openings.setdefault(relation.get_argument(4).id(), []).append(_entity(relation.get_argument(5)))
+            except UNREADABLE:
+                self.unread += 1
+
+    def place(self, key: int) -> tuple[str, bool] | None:
+        """Spatial element a product stands in, its whole's when it has none of its own."""
+        for _ in range(8):
+            place = self.places.get(key)
+            if place is not None:
+                return place
+            whole = self.whole.get(key)
+            if whole is None:
+                return None
+            key = whole
+        return None
+
+    def layer_words(self, use: MaterialUse, scale: float) -> str:
+        """The layers of a material use as text, thicknesses in m."""
+        known = self._layer_words.get(id(use))
+        if known is None:
+            known = self._layer_words[id(use)] = "; ".join(f"{n} {number_text(t * scale)}" for n, t in use.layers)
+        return known
 
     def material(self, key: int, type_key: int | None) -> MaterialUse | None:
         """Material of a product; where its own says less, what its type adds (layers without a usage)."""
@@ -159,3 +193,26 @@ def read_material(material: Entity) -> MaterialUse:
 
 def _layer_name(layer: Entity) -> str:
     return "" if layer.Material is None else str(layer.Material.Name or "")
+
+
+def _entity(one: Entity) -> Entity:
+    one.id()
+    return one
+
+
+def _key(one: Entity) -> int:
+    return int(one.id())
+
+
+def _name(one: Entity) -> str:
+    return str(one.get_argument(NAME) or "")
+
+
+def _place(one: Entity) -> tuple[str, bool]:
+    return _name(one), bool(one.is_a("IfcBuildingStorey"))
+
+
+def _code(one: Entity) -> str:
+    if not one.is_a("IfcClassificationReference"):
+        return ""
+    return " ".join(str(v) for v in (one.get_argument(1), one.get_argument(2)) if v)

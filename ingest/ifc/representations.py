@@ -2,13 +2,14 @@
 
 from __future__ import annotations
 
-from typing import Any
+from dataclasses import dataclass
+from typing import Any, TypeAlias
 
 from ingest.ifc.attributes import IDENTIFIER, REPRESENTATION_TYPE, REPRESENTATIONS
 from ingest.ifc.properties import UNREADABLE
 from ingest.ifc.solids import Described, ItemReader, Line
 
-Entity = Any
+Entity: TypeAlias = Any
 
 _BEST_FIRST = {
     kind: rank
@@ -21,20 +22,19 @@ _BEST_FIRST = {
 }  # fmt: skip
 _AXES = frozenset({"Axis", "Reference", "Directrix"})
 _FOOTPRINTS = frozenset({"FootPrint", "Footprint", "Plan"})
-_NOT_READ = frozenset({"Box", "CoG", "Profile", "Annotation", "Lighting", "Clearance", "Light", "WalkingLine"})
+_NOT_READ = frozenset({"CoG", "Profile", "Annotation", "Lighting", "Clearance", "Light", "WalkingLine"})
+NO_GEOMETRY = "no geometry"
 
 
+@dataclass(slots=True)
 class Chosen:
-    """What was read of one product: bodies, axis, footprint, and why nothing was."""
+    """What was read of one product: bodies, axis, footprint; why there is no body, and what the fault was."""
 
-    __slots__ = ("axes", "bodies", "footprints", "note", "reason")
-
-    def __init__(self) -> None:
-        self.bodies: Described = ()
-        self.axes: Described = ()
-        self.footprints: Described = ()
-        self.reason = "no geometry"
-        self.note = ""
+    bodies: Described = ()
+    axes: Described = ()
+    footprints: Described = ()
+    reason: str = NO_GEOMETRY
+    fault: str = ""
 
 
 def choose(shape: Entity | None, items: ItemReader, want_axis: bool) -> Chosen:
@@ -49,17 +49,19 @@ def choose(shape: Entity | None, items: ItemReader, want_axis: bool) -> Chosen:
     if shape is None:
         return chosen
     representations = shape.get_argument(REPRESENTATIONS)
-    if len(representations) == 1 and representations[0].get_argument(IDENTIFIER) == "Body":
-        chosen.bodies = _try([representations[0]], items, chosen)
-        return chosen
+    if len(representations) == 1:
+        name = representations[0].get_argument(IDENTIFIER)
+        if name == "Body":
+            chosen.bodies = _first_read(representations, items, chosen)
+            return chosen
     bodies, axes, footprints, boxes = _sorted(representations)
-    chosen.bodies = _try(bodies, items, chosen)
+    chosen.bodies = _first_read(bodies, items, chosen)
     if axes and (want_axis or not chosen.bodies):
-        chosen.axes = _try(axes, items, Chosen())
+        chosen.axes = _first_read(axes, items, Chosen())
     if not chosen.bodies:
-        chosen.footprints = _try(footprints, items, Chosen())
+        chosen.footprints = _first_read(footprints, items, Chosen())
         if boxes and not chosen.axes and not _closed(chosen.footprints):
-            chosen.bodies = _try(boxes, items, Chosen())
+            chosen.bodies = _first_read(boxes, items, Chosen())
     return chosen
 
 
@@ -67,7 +69,9 @@ def _sorted(representations: tuple[Entity, ...]) -> tuple[list[Entity], list[Ent
     bodies, axes, footprints, boxes = [], [], [], []
     for one in representations:
         name = one.get_argument(IDENTIFIER) or ""
-        if name in _AXES:
+        if name == "Body":
+            bodies.append(one)
+        elif name in _AXES:
             axes.append(one)
         elif name in _FOOTPRINTS:
             footprints.append(one)
@@ -75,11 +79,12 @@ def _sorted(representations: tuple[Entity, ...]) -> tuple[list[Entity], list[Ent
             boxes.append(one)
         elif name not in _NOT_READ:
             bodies.append(one)
-    bodies.sort(key=lambda one: _BEST_FIRST.get(one.get_argument(REPRESENTATION_TYPE) or "", len(_BEST_FIRST)))
+    if len(bodies) > 1:
+        bodies.sort(key=lambda one: _BEST_FIRST.get(one.get_argument(REPRESENTATION_TYPE) or "", len(_BEST_FIRST)))
     return bodies, axes, footprints, boxes
 
 
-def _try(representations: list[Entity], items: ItemReader, chosen: Chosen) -> Described:
+def _first_read(representations: list[Entity] | tuple[Entity, ...], items: ItemReader, chosen: Chosen) -> Described:
     """The first representation that can be read; a body of bare lines only when there is no better one."""
     spare: Described = ()
     for one in representations:
@@ -87,10 +92,13 @@ def _try(representations: list[Entity], items: ItemReader, chosen: Chosen) -> De
             found = items.representation(one)
         except (*UNREADABLE, RecursionError, OverflowError, ZeroDivisionError) as error:
             text = str(error)
-            chosen.reason = text if text.endswith("is not read") and len(text) < 80 else "geometry cannot be read"
-            chosen.note = chosen.note or text[:120]
+            plain = text.endswith("is not read") and len(text) < 80
+            chosen.reason = text if plain else "geometry cannot be read"
+            chosen.fault = chosen.fault or ("" if plain else text[:120] or type(error).__name__)
             continue
-        if found and not all(isinstance(shape, Line) for shape, _ in found):
+        if found and not isinstance(found[0][0], Line):
+            return found
+        if any(not isinstance(shape, Line) for shape, _ in found):
             return found
         spare = spare or found
     return spare

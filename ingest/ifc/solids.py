@@ -1,4 +1,4 @@
-"""What the items of a representation are: extrusions, sweeps, meshes and curves, described in the file's own numbers."""
+"""What the items of a representation are: extrusions, sweeps, meshes and curves, in the file's own numbers."""
 
 from __future__ import annotations
 
@@ -68,9 +68,10 @@ class Sweep:
 
 @dataclass(frozen=True, slots=True)
 class Line:
-    """A bare curve (n, 3) or a single point (1, 3)."""
+    """A bare curve (n, 3) or a single point (1, 3); `way` runs from the first to the second of two points."""
 
     points: Floats
+    way: Triple = (0.0, 0.0, 0.0)
 
 
 Shape = Extrusion | Sweep | Facets | Line
@@ -141,7 +142,7 @@ class ItemReader:
         if item.is_a("IfcBooleanResult"):
             return self._boolean(item, depth)
         if item.is_a("IfcCurve"):
-            return ((Line(self._curves.points(item)), 0),)
+            return ((make_line(self._curves.points(item)), 0),)
         mesh = MESHES.get(kind)
         if mesh is not None:
             return ((mesh(item, self._curves), 0),)
@@ -261,6 +262,14 @@ class ItemReader:
     def _point(self, item: Entity, _depth: int) -> Described:
         x, y, *z = item.Coordinates
         return ((Line(np.array([[x, y, z[0] if z else 0.0]], float)), 0),)
+
+
+def make_line(points: Floats) -> Line:
+    """A bare curve from its points."""
+    if len(points) != 2:
+        return Line(points)
+    x, y, z = (points[1] - points[0]).tolist()
+    return Line(points, (x, y, z))
 
 
 def _noted(body: Shape, note: str) -> Shape:

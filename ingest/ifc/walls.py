@@ -91,8 +91,7 @@ def _along_first(
     for axis in element.axes:
         shape = axis.shape
         if isinstance(shape, Line) and len(shape.points) == 2:
-            ends = axis.points()
-            x, y = float(ends[1, 0] - ends[0, 0]), float(ends[1, 1] - ends[0, 1])
+            x, y, _ = axis.vector
             along, across = abs(x * first[0] + y * first[1]), abs(x * second[0] + y * second[1])
             if max(along, across) > 0:
                 return along >= across

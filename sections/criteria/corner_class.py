@@ -90,7 +90,7 @@ def corner_class(site: Site, found: FoundPit, limits: Limits) -> CriterionResult
 
 
 def _place(stations: Stations, ends: WallEnds) -> _Place:
-    depth = stations.depth
+    depth = np.where(stations.depth > 0.0, stations.depth, np.nan)
     back = np.where(ends.back_kind == INSIDE, ends.back, np.inf)
     ahead = np.where(ends.ahead_kind == INSIDE, ends.ahead, np.inf)
     nearer_back = back <= ahead
@@ -112,13 +112,13 @@ def _weight(angle: Floats) -> Floats:
 
 
 def _able(stations: Stations, ends: WallEnds, place: _Place, sheet: Sheet) -> Bools:
-    """Say why a station cannot be judged, and tell which ones can."""
+    """Say why a station cannot be judged, the first reason that applies, and tell which ones can."""
     has_corner = np.isfinite(ends.to_inside)
     wall = (np.where(np.isnan(stations.top), stations.ground, stations.top) - stations.toe) / place.depth
     short = place.length < 1.0 - 1e-9
     reasons = (
-        (np.isnan(place.depth), "Excavated depth not given here, so the distance to a corner cannot be put in depths."),
-        (place.depth <= 0.0, "Nothing is excavated here."),
+        (np.isnan(stations.depth), "Excavated depth not given here, so the distance to a corner cannot be put in depths."),
+        (stations.depth <= 0.0, "Nothing is excavated here."),
         (~np.isnan(stations.radius), "The wall is curved here; the class of wall is known for straight walls only."),
         (ends.has(REENTRANT), "This wall ends in a re-entrant corner, so its other end gives it no sure relief."),
         (_outside(place.depth, DEPTH_RANGE), "Excavated depth {depth:.1f} m is outside the 5 to 18 m of the cases."),
@@ -130,7 +130,7 @@ def _able(stations: Stations, ends: WallEnds, place: _Place, sheet: Sheet) -> Bo
         ),
     )
     able = has_corner.copy()
-    for where, words in reasons:
+    for where, words in reversed(reasons):
         sheet.text(where, words)
         able &= ~where
     return able

@@ -109,7 +109,9 @@ def mean_vertical_spacing(found: FoundPit) -> Floats:
     of_row = np.array([np.nan if row.member.level is None else row.member.level for row in found.rows])
     levels = np.unique(of_row[~np.isnan(of_row)])
     cover = cover_of(found.stations, len(of_row))
-    held = np.array([cover[:, of_row == level].any(axis=1) for level in levels], dtype=bool).reshape(len(levels), -1).T
+    held = np.zeros((len(cover), len(levels)), dtype=bool)
+    for j, level in enumerate(levels):
+        held[:, j] = cover[:, of_row == level].any(axis=1)
     count = held.sum(axis=1)
     top = np.max(np.where(held, levels, -np.inf), axis=1, initial=-np.inf)
     bottom = np.min(np.where(held, levels, np.inf), axis=1, initial=np.inf)
@@ -123,7 +125,8 @@ def plane_strain_ratio(site: Site, found: FoundPit, limits: Limits) -> Criterion
     stations, ends = found.stations, find_ends(found)
     published = find_plane_strain_ratio(site, found)
     sheet = Sheet(stations, published.why or "Outside the range of the published analyses, or not at mid-wall.")
-    middle = np.abs(ends.back - ends.ahead) <= 2 * MIDDLE * published.length + 1e-9
+    length = np.where(np.isfinite(ends.length), ends.length, 0.0)
+    middle = np.abs(np.where(length > 0.0, ends.back - 0.5 * length, np.inf)) <= MIDDLE * length + 1e-9
     able = ~np.isnan(published.ratio) & middle & (bay_of(found) > 0.0)
     sheet.say(able, MOVEMENTS, published.ratio, published.ratio)
     sheet.text(

@@ -107,7 +107,7 @@ def water_gradient(site: Site, found: FoundPit, limits: Limits) -> CriterionResu
 
 
 def _able(site: Site, found: FoundPit, ends: WallEnds, flow: _Flow, sheet: Sheet) -> Bools:
-    """Say why a station cannot be judged, and tell which ones can."""
+    """Say why a station cannot be judged, the first reason that applies, and tell which ones can."""
     stations = found.stations
     outside = water_along(site, stations.xy)
     told = site.water_excavated is not None and _permeabilities(site).size > 0
@@ -127,7 +127,7 @@ def _able(site: Site, found: FoundPit, ends: WallEnds, flow: _Flow, sheet: Sheet
         (given & _toe_in_aquiclude(site, found), "The toe stands in a tight layer: uplift of the plug rules."),
     )
     able = given.copy()
-    for where, words in reasons:
+    for where, words in reversed(reasons):
         sheet.text(where, words)
         able &= ~where
     return able

@@ -8,7 +8,7 @@ from dataclasses import dataclass
 import numpy as np
 
 from sections.model import Floats, Ints
-from sections.screening.demands import NAMES, Demands, over_stages, ratios, twin_demands, wall_demands
+from sections.screening.demands import NAMES, over_stages, ratios, twin_demands, wall_demands
 from sections.screening.limits import PressureLimits, at_element_ends, excess, settle
 from sections.screening.scene import Scene, Variant, beams_of, members_of, wall_of
 from sections.screening.solve import Answer, Factored, answer, factorise

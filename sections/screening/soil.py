@@ -100,7 +100,7 @@ def vertical(soil: Soil, surface: Floats, water: Floats, *, total: Bools | None 
     stress = np.zeros((len(surface), len(top), 2))
     stress[:, :, 1] = np.cumsum(height * soil.weight, axis=1)
     stress[:, 1:, 0] = stress[:, :-1, 1]
-    pore = pore_pressure(soil, np.fmin(water, surface))
+    pore = pore_pressure(soil, np.minimum(water, surface))
     if total is not None:
         pore = np.where(total[:, :, None], 0.0, pore)
     return np.maximum(stress - pore, 0.0)
@@ -117,7 +117,7 @@ def unbalanced(soil: Soil, dig: Floats) -> Floats:
     undrained = ~np.isnan(soil.su)
     at_rest = soil.K0[:, :, None] * (vertical(soil, soil.ground, soil.water, total=undrained))
     at_rest += soil.K0[:, :, None] * soil.surcharge[:, None, None]
-    at_rest += np.where(undrained[:, :, None], 0.0, pore_pressure(soil, np.fmin(soil.water, soil.ground)))
+    at_rest += np.where(undrained[:, :, None], 0.0, pore_pressure(soil, np.minimum(soil.water, soil.ground)))
     above = (soil.level.mean(axis=1)[None, :] > dig[:, None]) & (soil.level[None, :, 1] < soil.ground[:, None])
     return np.asarray(np.where(above[:, :, None], at_rest, 0.0))
 
@@ -131,7 +131,7 @@ def find_limits(soil: Soil, dig: Floats) -> tuple[Floats, Floats, Floats]:
     undrained = ~np.isnan(soil.su)
     original = vertical(soil, soil.ground, soil.water, total=undrained)
     behind = original + soil.surcharge[:, None, None]
-    dug = vertical(soil, dig, np.fmin(soil.water, dig), total=undrained)
+    dug = vertical(soil, dig, np.minimum(soil.water, dig), total=undrained)
     K0, su, c = soil.K0[:, :, None], np.nan_to_num(soil.su)[:, :, None], soil.c[:, :, None]
     Ka = (np.tan(np.radians(45 - np.nan_to_num(soil.phi) / 2)) ** 2)[:, :, None]
     clay = undrained[:, :, None]

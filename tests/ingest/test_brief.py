@@ -249,10 +249,22 @@ def test_a_missing_brief_is_told(tmp_path: Path) -> None:
         read_brief(tmp_path / "none.toml")
 
 
-VALUES = ("1", '"a = [#"', "[1,\n  2, # ]\n  3]", '"""x\n[[y]]\nz = 1"""', "'''\n]'''", "{ a = 1, b = [2] }", "-1e3 # c = 4")
+VALUES = (
+    "1",
+    '"a = [#"',
+    "[1,\n  2, # ]\n  3]",
+    '"""x\n[[y]]\nz = 1"""',
+    "'''\n]'''",
+    "{ a = 1, b = [2] }",
+    "-1e3 # c = 4",
+)
 
 
-@given(st.lists(st.tuples(st.sampled_from(["[t]", "[[u]]", ""]), st.lists(st.sampled_from(VALUES), max_size=3)), max_size=5))
+@given(
+    st.lists(
+        st.tuples(st.sampled_from(["[t]", "[[u]]", ""]), st.lists(st.sampled_from(VALUES), max_size=3)), max_size=5
+    )
+)
 def test_each_key_has_the_line_it_was_written_on(blocks: list[tuple[str, list[str]]]) -> None:
     text, expected, key, count, table = "", {}, 0, {"t": 0, "u": 0}, ()
     for header, values in blocks:

@@ -54,7 +54,16 @@ def good_ifc(path: Path) -> None:
         body = make("IfcExtrudedAreaSolid", disc, origin, up, 12.25)
         shape = make("IfcShapeRepresentation", context, "Body", "SweptSolid", [body])
         whole = make("IfcProductDefinitionShape", None, None, [shape])
-        make("IfcPile", ifcopenshell.guid.new(), None, f"pile {n}", None, None, make("IfcLocalPlacement", None, at), whole)
+        make(
+            "IfcPile",
+            ifcopenshell.guid.new(),
+            None,
+            f"pile {n}",
+            None,
+            None,
+            make("IfcLocalPlacement", None, at),
+            whole,
+        )
     model.write(str(path))
 
 
@@ -205,7 +214,10 @@ def test_a_packed_model_is_read_and_a_bomb_is_not(tmp_path: Path) -> None:
     good_ifc(plain)
     with zipfile.ZipFile(packed, "w", zipfile.ZIP_DEFLATED) as archive:
         archive.write(plain, "../inside.ifc")
-    with zipfile.ZipFile(bomb, "w", zipfile.ZIP_DEFLATED) as archive, archive.open("m.ifc", "w", force_zip64=True) as inside:
+    with (
+        zipfile.ZipFile(bomb, "w", zipfile.ZIP_DEFLATED) as archive,
+        archive.open("m.ifc", "w", force_zip64=True) as inside,
+    ):
         inside.write(b"ISO-10303-21;")
         for _ in range(80):
             inside.write(bytes(1_000_000))
@@ -223,8 +235,8 @@ HOSTILE = {
     "crash": "import os, signal\ndef read(path):\n    os.kill(os.getpid(), signal.SIGSEGV)\n",
     "memory": "def read(path):\n    return [bytes(50_000_000) for _ in range(100)]\n",
     "exit": "import os\ndef read(path):\n    os._exit(3)\n",
-    "chatter": "import os\nfrom ingest.ags import read_ags\ndef read(path):\n    print('noise')\n    os.write(1, b'noise')\n"
-    "    return read_ags(path)\n",
+    "chatter": "import os\nfrom ingest.ags import read_ags\n"
+    "def read(path):\n    print('noise')\n    os.write(1, b'noise')\n    return read_ags(path)\n",
     "fault": "def read(path):\n    raise KeyError(str(path))\n",
 }
 

@@ -25,7 +25,9 @@ def problems_in(folder: Path, text: str | bytes) -> tuple[tuple[str, str, str], 
 
 
 def test_rows_are_read_with_their_line_and_the_columns_of_others(tmp_path: Path) -> None:
-    rows = read_results(written(tmp_path, HEAD + 'S1,dig 2,P1-strut-1,N,-150.5,kN/m,"a, b"\n\nS1,dig 2,P1-W,M,80,kN.m/m,c\n'))
+    rows = read_results(
+        written(tmp_path, HEAD + 'S1,dig 2,P1-strut-1,N,-150.5,kN/m,"a, b"\n\nS1,dig 2,P1-W,M,80,kN.m/m,c\n')
+    )
     assert [(row.line, row.quantity, row.value, row.unit, row.extra) for row in rows] == [
         (2, "N", -150.5, "kN/m", {"run": "a, b"}),
         (4, "M", 80.0, "kNm/m", {"run": "c"}),

@@ -113,9 +113,7 @@ def test_overlapping_piles_are_secant() -> None:
 
 
 def test_a_dense_field_of_circles_is_no_row() -> None:
-    field = [
-        part("circle", (0.8 * i, 0.8 * j, 0.0), radius=0.3, item=f"{i}-{j}") for i in range(6) for j in range(6)
-    ]
+    field = [part("circle", (0.8 * i, 0.8 * j, 0.0), radius=0.3, item=f"{i}-{j}") for i in range(6) for j in range(6)]
     assert {given.role for given in find_roles(field, Brief())} == {"context"}
 
 

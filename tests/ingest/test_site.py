@@ -89,7 +89,13 @@ def test_the_first_pit_is_read_whole(tmp_path: Path) -> None:
     site = read_pit(tmp_path)
     assert len(site.piles) == 100
     pile = site.piles[0]
-    assert (pile.centre, pile.diameter, pile.kind, pile.top, pile.toe) == ((100.0, 200.0), 0.75, "contiguous", 0.0, -12.0)
+    assert (pile.centre, pile.diameter, pile.kind, pile.top, pile.toe) == (
+        (100.0, 200.0),
+        0.75,
+        "contiguous",
+        0.0,
+        -12.0,
+    )
     assert pile.material == "concrete"
     assert pile.bearing is False
     assert len(site.supports) == 10
@@ -106,8 +112,8 @@ def test_the_first_pit_is_read_whole(tmp_path: Path) -> None:
 def test_rigidity_of_a_strut_comes_from_its_section(tmp_path: Path) -> None:
     # A = pi (0.508^2 - 0.476^2)/4 = 0.0247306 m2; EN 1993-1-1 cl. 3.2.6 (recalled) E = 210 GPa; weight 78.5 kN/m3 x A
     strut = read_pit(tmp_path).supports[0]
-    assert strut.EA == pytest.approx(210e6 * math.pi * (0.508**2 - 0.476**2) / 4)
-    assert strut.EI == pytest.approx(210e6 * math.pi * (0.508**4 - 0.476**4) / 64)
+    assert pytest.approx(210e6 * math.pi * (0.508**2 - 0.476**2) / 4) == strut.EA
+    assert pytest.approx(210e6 * math.pi * (0.508**4 - 0.476**4) / 64) == strut.EI
     assert strut.weight == pytest.approx(78.5 * 0.0247306, rel=1e-5)
     assert strut.preload == -200.0
 
@@ -132,7 +138,14 @@ def test_national_grid_coordinates_become_local_ones(tmp_path: Path) -> None:
 def test_without_a_brief_everything_missing_is_asked_and_nothing_is_made_up(tmp_path: Path) -> None:
     site = read_pit(tmp_path, brief="")
     asked = "\n".join(question.about for question in site.questions)
-    for word in ("ground level", "formation level", "toe level", "STRUTS: level", "STRUTS: section", "footing or receptor"):
+    for word in (
+        "ground level",
+        "formation level",
+        "toe level",
+        "STRUTS: level",
+        "STRUTS: section",
+        "footing or receptor",
+    ):
         assert word in asked
     assert site.ground_level is None
     assert site.piles[0].toe is None
@@ -211,7 +224,10 @@ def test_a_raker_goes_down_from_the_wall(tmp_path: Path) -> None:
 
 def test_a_strut_drawn_once_for_two_levels_is_two_struts(tmp_path: Path) -> None:
     line = part("path", (10.0, 0.0, 0.0), (10.0, 20.0, 0.0), layer="STRUTS", item="s")
-    text = "".join(f"[[supports]]\nmatch = {{ layer = 'STRUTS' }}\nlevel = {z}\nEA = {EA}\n" for z, EA in ((-1.5, 1e6), (-5.0, 2e6)))
+    text = "".join(
+        f"[[supports]]\nmatch = {{ layer = 'STRUTS' }}\nlevel = {z}\nEA = {EA}\n"
+        for z, EA in ((-1.5, 1e6), (-5.0, 2e6))
+    )
     site = site_of([parts_of(line)], brief_of(tmp_path, text + "[[supports]]\nthermal_range = 15.0\n"))
     assert sorted((s.head[2], s.EA, s.thermal_range) for s in site.supports) == [(-5.0, 2e6, 15.0), (-1.5, 1e6, 15.0)]
     assert site.ledger["a.dxf"].used == 1
@@ -268,7 +284,9 @@ def test_shapes_that_cannot_be_their_role_are_ignored_with_the_reason() -> None:
 
 
 def test_an_entity_of_many_parts_counts_once() -> None:
-    grid = [part("circle", (3.0 * n, 0.0, 0.0), radius=0.3, layer="BEARING PILES", item="one insert") for n in range(25)]
+    grid = [
+        part("circle", (3.0 * n, 0.0, 0.0), radius=0.3, layer="BEARING PILES", item="one insert") for n in range(25)
+    ]
     site = site_of([parts_of(*grid, context={"dimension": 3}, ignored={"proxy": 2})], Brief())
     assert len(site.piles) == 25
     book = site.ledger["a.dxf"]
@@ -298,8 +316,14 @@ def test_files_far_apart_are_asked_about_and_laid_together_by_the_brief(tmp_path
     laid = site_of(files, brief)
     assert not laid.findings
     # (5000, 0) turned by 90 degrees is (0, 5000), shifted to (10, 0); (5020, 0) goes to (10, 20)
-    assert [laid.supports[0].head[:2], laid.supports[0].far[:2]] == [pytest.approx((10.0, 0.0)), pytest.approx((10.0, 20.0))]
-    assert {entry.file: entry.registered.rotation_deg for entry in laid.inputs if entry.registered} == {"a.dxf": 0.0, "b.dxf": 90.0}
+    assert [laid.supports[0].head[:2], laid.supports[0].far[:2]] == [
+        pytest.approx((10.0, 0.0)),
+        pytest.approx((10.0, 20.0)),
+    ]
+    assert {entry.file: entry.registered.rotation_deg for entry in laid.inputs if entry.registered} == {
+        "a.dxf": 0.0,
+        "b.dxf": 90.0,
+    }
 
 
 def test_points_of_the_brief_are_world_coordinates(tmp_path: Path) -> None:

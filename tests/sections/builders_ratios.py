@@ -175,8 +175,7 @@ def _found(
 ) -> tuple[Site, m.FoundPit]:
     supports: list[Support] = list(site.supports)
     held = [_support_row(shape, row, supports, j) for j, row in enumerate(rows)]
-    count = round(shape.length / step)
-    chainage = np.arange(count) * (shape.length / count)
+    chainage = np.arange(0.0, shape.length - 1e-6, step)
     if not shape.closed:
         chainage = np.append(chainage, shape.length)
     stations = _stations(shape, chainage, ground, floor, held, channels)

@@ -69,6 +69,7 @@ class TruthRun:
     size: float | None = None
     toe: float = -14.0
     count: int | None = None
+    spacings: tuple[float, float] | None = None
 
 
 @dataclass
@@ -250,14 +251,20 @@ class Draughtsman:
         corners.
         """
         ends = [run.start, *self.breaks(pit, run), run.stop]
+        if pit.circle is not None and len(ends) > 2:
+            run.spacing = min(run.spacing, 0.49 * min(np.diff(ends)))  # fewer piles to a side make no polygon
         if min(np.diff(ends)) > 6 * run.spacing and self.r.random() < 0.3 and len(ends) > 2:
             ends = [run.start, run.stop]
+        lengths = np.diff(ends)
+        while np.ptp(lengths / np.maximum(np.round(lengths / run.spacing), 1)) > 0.08 * run.spacing:
+            run.spacing *= 0.95
         places = []
         for a, b in zip(ends, ends[1:], strict=False):
             n = max(round((b - a) / run.spacing), 1)
             places += [a + (b - a) * k / n for k in range(n)]
         if not pit.closed and abs(run.stop - pit.length) < 1e-6:
             places.append(run.stop)
+        run.spacings = (float(np.diff(places).min()), float(np.diff(places).max()))
         run.spacing = float(np.median(np.diff(places)))
         run.count = len(places)
         for k, s in enumerate(places):
@@ -313,8 +320,10 @@ class Draughtsman:
             return [way] if self.r.random() < 0.5 or k in (0, len(way) - 1) else [way[: k + 1], way[k:]]
         parts = self.r.choice((1, 1, 2, 3))
         shares = sorted([0.0, 1.0, *(self.r.uniform(0.1, 0.9) for _ in range(parts - 1))])
+        if min(np.diff(shares)) * np.hypot(*(way[1] - way[0])) < 0.3:
+            return [way]
         points = [way[0] + (way[1] - way[0]) * s for s in shares]
-        return [[p, q] for p, q in zip(points, points[1:], strict=False) if np.hypot(*(q - p)) > 0.3]
+        return [[p, q] for p, q in zip(points, points[1:], strict=False)]
 
     def frayed(self, way):
         """Ends moved along the wall by up to half the gap, so that two neighbours make up to the whole of it."""

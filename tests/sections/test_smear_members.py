@@ -27,7 +27,9 @@ CHS_EA, CHS_EI = 5193429.648, 157308.984
 
 
 def full_member(skew, inclination, spacing, **more) -> RealMember:
-    given_ = dict(EA_kN=CHS_EA, EI_kNm2=CHS_EI, weight_kN_per_m=1.9, preload_kN=-500.0, limit_kN=3000.0, free_strain=2e-4)
+    given_ = dict(
+        EA_kN=CHS_EA, EI_kNm2=CHS_EI, weight_kN_per_m=1.9, preload_kN=-500.0, limit_kN=3000.0, free_strain=2e-4
+    )
     return RealMember(skew=skew, inclination=inclination, spacing=spacing, **(given_ | more))
 
 
@@ -91,7 +93,7 @@ def test_strain_energy_of_the_drawn_bar_and_beam_is_that_of_the_real_one(skew, i
 
 
 @given(skew=skews, inclination=inclinations, spacing=spacings)
-def test_moment_shear_and_weight_taken_back_are_those_of_the_real_beam(skew, inclination, spacing):
+def test_moment_and_shear_from_self_weight_are_those_of_the_real_beam_in_the_plane(skew, inclination, spacing):
     # cantilever of true length 10 m under its own weight w: root moment w_n L^2/2, shear w_n L, w_n across the member
     w, length = 1.9, 10.0
     direction = smear.Direction(skew=skew, inclination=inclination)
@@ -195,9 +197,7 @@ def test_thrust_adds_up_from_the_corner_to_the_shear_stop():
     assert smear.thrust_to_shear_stop((100.0, 200.0), 30.0) == pytest.approx(150.0)
 
 
-@given(
-    angle=st.floats(-180, 180), skew=st.floats(-85, 85), inclination=st.floats(-85, 85), length=st.floats(0.5, 80)
-)
+@given(angle=st.floats(-180, 180), skew=st.floats(-85, 85), inclination=st.floats(-85, 85), length=st.floats(0.5, 80))
 def test_direction_found_from_two_points_is_the_one_they_were_made_with(angle, skew, inclination, length):
     turn = radians(angle)
     along, normal = np.array([cos(turn), sin(turn)]), np.array([-sin(turn), cos(turn)])

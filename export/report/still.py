@@ -1,0 +1,159 @@
+"""A still picture of a scene through a depth buffer, as a small indexed PNG: for paper, and where scripts are off."""
+
+from __future__ import annotations
+
+import base64
+import struct
+import zlib
+from collections.abc import Sequence
+from dataclasses import dataclass
+from math import cos, radians, sin
+
+import numpy as np
+from numpy.typing import NDArray
+
+from export.report.solids import Solid
+from sections.model import Floats
+
+YAW, PITCH = 38.0, 24.0
+WIDTH, HEIGHT = 1000, 720
+MARGIN = 24
+LIFT = 0.08
+"""An edge counts as seen when it lies at most this far behind the nearest face, m."""
+PAPER, INK = (253, 252, 247), (27, 38, 49)
+ACCENT = (11, 90, 104)
+TONES = 8
+PAPER_INDEX, INK_INDEX, FIRST_PLAIN, FIRST_MARKED = 0, 1, 2, 2 + TONES
+
+
+@dataclass(frozen=True)
+class Scale:
+    """From metres as seen to pixels; one for both pictures of a pair, so that they compare."""
+
+    k: float
+    middle: Floats
+
+    def pixels(self, seen: Floats) -> Floats:
+        """Right, down, depth."""
+        x = WIDTH / 2 + (seen[:, 0] - self.middle[0]) * self.k
+        y = HEIGHT / 2 - (seen[:, 1] - self.middle[1]) * self.k
+        return np.column_stack((x, y, seen[:, 2]))
+
+
+def turned(points: Floats, yaw: float = YAW, pitch: float = PITCH) -> Floats:
+    """Points as seen: right, up, and depth towards the eye, m."""
+    a, b = radians(yaw), radians(pitch)
+    right = np.array((cos(a), sin(a), 0.0))
+    up = np.array((-sin(a) * sin(b), cos(a) * sin(b), cos(b)))
+    eye = np.array((sin(a) * cos(b), -cos(a) * cos(b), sin(b)))
+    return np.asarray(points @ np.column_stack((right, up, eye)))
+
+
+def common_scale(solids: Sequence[Solid]) -> Scale:
+    """The scale at which all bodies fit."""
+    seen = turned(np.vstack([solid.points for solid in solids]))
+    low, high = seen.min(axis=0), seen.max(axis=0)
+    room = np.array((WIDTH - 2 * MARGIN, HEIGHT - 2 * MARGIN))
+    k = float(np.min(room / np.maximum(high[:2] - low[:2], 1e-6)))
+    return Scale(k, (low + high) / 2)
+
+
+class Sheet:
+    """Pixels as palette indices, and the depth of what is seen at each."""
+
+    def __init__(self) -> None:
+        self.index = np.full((HEIGHT, WIDTH), PAPER_INDEX, dtype=np.uint8)
+        self.depth = np.full((HEIGHT, WIDTH), -np.inf)
+
+    def face(self, ring: Floats, index: int) -> None:
+        """Fill a convex ring given in pixels and depth."""
+        low = np.maximum(np.floor(ring[:, :2].min(axis=0)).astype(int), 0)
+        high = np.minimum(np.ceil(ring[:, :2].max(axis=0)).astype(int) + 1, (WIDTH, HEIGHT))
+        plane = _plane(ring)
+        if plane is None or (high <= low).any():
+            return
+        x = np.arange(low[0], high[0]) + 0.5
+        y = (np.arange(low[1], high[1]) + 0.5)[:, None]
+        inside = np.ones((high[1] - low[1], high[0] - low[0]), dtype=bool)
+        turn = np.sign(_area(ring))
+        for (ax, ay, _), (bx, by, _) in zip(ring, np.roll(ring, -1, axis=0), strict=True):
+            inside &= turn * ((bx - ax) * (y - ay) - (by - ay) * (x - ax)) >= 0
+        z = plane[0] * x + plane[1] * y + plane[2]
+        area = (slice(low[1], high[1]), slice(low[0], high[0]))
+        seen = inside & (z > self.depth[area])
+        self.depth[area][seen] = z[seen]
+        self.index[area][seen] = index
+
+    def edge(self, a: Floats, b: Floats) -> None:
+        """Draw a line two pixels wide where nothing stands before it."""
+        n = int(max(abs(b[0] - a[0]), abs(b[1] - a[1]), 1)) + 1
+        line = a + np.linspace(0.0, 1.0, n)[:, None] * (b - a)
+        xs, ys = np.floor(line[:, 0]).astype(int), np.floor(line[:, 1]).astype(int)
+        for dx, dy in ((0, 0), (1, 0), (0, 1)):
+            x, y = np.clip(xs + dx, 0, WIDTH - 1), np.clip(ys + dy, 0, HEIGHT - 1)
+            seen = line[:, 2] + LIFT >= self.depth[y, x]
+            self.index[y[seen], x[seen]] = INK_INDEX
+
+
+def _area(ring: Floats) -> float:
+    x, y = ring[:, 0], ring[:, 1]
+    return float(x @ np.roll(y, -1) - y @ np.roll(x, -1))
+
+
+def _plane(ring: Floats) -> Floats | None:
+    """Depth over the sheet as a x + b y + c; None for a face seen edge-on."""
+    for n in range(2, len(ring)):
+        matrix = np.column_stack((ring[[0, n - 1, n], :2], np.ones(3)))
+        if abs(np.linalg.det(matrix)) > 1e-3:
+            return np.asarray(np.linalg.solve(matrix, ring[[0, n - 1, n], 2]))
+    return None
+
+
+def still_picture(solids: Sequence[Solid], scale: Scale) -> str:
+    """The picture as a data URI."""
+    sheet = Sheet()
+    seen = [turned(solid.points) for solid in solids]
+    pixels = [scale.pixels(points) for points in seen]
+    for solid, points, dots in zip(solids, seen, pixels, strict=True):
+        first = FIRST_MARKED if solid.marked else FIRST_PLAIN
+        for face in solid.faces:
+            tone = _tone(points[list(face)])
+            if tone is not None:
+                sheet.face(dots[list(face)], first + tone)
+    for solid, dots in zip(solids, pixels, strict=True):
+        for a, b in solid.edges:
+            sheet.edge(dots[a], dots[b])
+    return "data:image/png;base64," + base64.b64encode(_png(sheet.index)).decode()
+
+
+def _tone(ring: Floats) -> int | None:
+    """Lightest where a face looks at the eye; None for a face without area."""
+    normal = np.cross(ring[1] - ring[0], ring[2] - ring[0])
+    size = float(np.linalg.norm(normal))
+    return None if size < 1e-9 else min(int(abs(float(normal[2])) / size * TONES), TONES - 1)
+
+
+def _palette() -> bytes:
+    def mixed(colour: tuple[int, int, int], share: float) -> bytes:
+        return bytes(round(p + (c - p) * share) for p, c in zip(PAPER, colour, strict=True))
+
+    plain = [mixed(INK, 0.36 - 0.26 * n / (TONES - 1)) for n in range(TONES)]
+    marked = [mixed(ACCENT, 0.62 - 0.28 * n / (TONES - 1)) for n in range(TONES)]
+    return b"".join([bytes(PAPER), mixed(INK, 0.9), *plain, *marked])
+
+
+def _png(index: NDArray[np.uint8]) -> bytes:
+    """An indexed PNG (ISO/IEC 15948) of 8 bits a pixel."""
+
+    def chunk(kind: bytes, data: bytes) -> bytes:
+        return struct.pack(">I", len(data)) + kind + data + struct.pack(">I", zlib.crc32(kind + data))
+
+    rows = np.hstack((np.zeros((len(index), 1), dtype=np.uint8), index)).tobytes()
+    head = struct.pack(">IIBBBBB", index.shape[1], index.shape[0], 8, 3, 0, 0, 0)
+    return (
+        b"\x89PNG\r\n\x1a\n"
+        + chunk(b"IHDR", head)
+        + chunk(b"PLTE", _palette())
+        + chunk(b"IDAT", zlib.compress(rows, 9))
+        + chunk(b"IEND", b"")
+    )

@@ -1,0 +1,262 @@
+"""Which lines on the plan are the retaining wall: rings and open walls chosen by evidence.
+
+Walls that are built from the ground down come first; walls of a building only close what those leave open, or stand in
+where there are no others.
+"""
+
+from __future__ import annotations
+
+from collections.abc import Sequence
+from dataclasses import dataclass, replace
+
+import numpy as np
+import shapely
+from scipy.sparse import coo_array
+from scipy.sparse.csgraph import connected_components
+
+from ingest.model import Point, Site
+from ingest.trail import Finding, Question, Reading
+from sections.model import Bools, Floats
+from sections.rings import Trace, find_open, find_rings
+from sections.wall_graph import WallGraph, build_graph
+from sections.wall_joins import close_joins
+from sections.wall_lines import WallLine
+
+LEAST_AREA = 3.0
+"""Rings of less are no pit, m2 (judgement)."""
+SAME_WALL = 1.5
+"""Two rings one inside the other at less than this on average are one wall drawn twice or lined, m (judgement)."""
+LEAST_OPEN = 3.0
+"""Shorter open walls are no perimeter, m (judgement)."""
+LEAST_SHARE = 0.1
+"""Rings of building walls smaller than this share of the largest are rooms or shafts of the building (judgement)."""
+
+
+@dataclass(frozen=True, kw_only=True, eq=False)
+class Choice:
+    """Ways chosen as perimeters, what was seen on the way, and what is asked."""
+
+    traces: tuple[Trace, ...]
+    findings: tuple[Finding, ...] = ()
+    questions: tuple[Question, ...] = ()
+
+
+def choose_rings(site: Site, lines: Sequence[WallLine], origin: Point) -> Choice:
+    """Choose the retaining rings and open walls of a site among its wall lines."""
+    embedded = np.array([line.embedded for line in lines], dtype=bool)
+    shallow = embedded & np.array([_is_shallow(site, line) for line in lines], dtype=bool)
+    if not embedded.any():
+        return _building_rings(site, lines, origin)
+    graph = _network(site, lines, embedded & ~shallow)
+    rings = _pits(find_rings(graph, np.ones(len(graph.ends), dtype=bool)))
+    rings, findings = _once(rings, lines, origin)
+    rest = _unused(graph, rings)
+    loose, inside = _outside(rest, rings)
+    closing = _closing_rings(site, lines, embedded, loose) if loose.any() else []
+    if closing:
+        rings, more = _once([*rings, *closing], lines, origin)
+        findings += more
+        loose &= ~np.isin(rest.line, np.concatenate([_lines_of(ring) for ring in closing]))
+    ways = [way for way in find_open(rest.pick(loose)) if _length(way) >= LEAST_OPEN]
+    findings += [_gap(way, origin) for way in ways if _nearly_closed(way)]
+    findings += _inside_note(rest.pick(inside), origin)
+    if not rings and not ways:
+        return _building_rings(site, lines, origin)
+    return Choice(traces=(*rings, *ways), findings=(*findings, *_shallow_note(site, lines, shallow, origin)))
+
+
+def _is_shallow(site: Site, line: WallLine) -> bool:
+    """A toe in the upper half of the dig: a guide wall or an upstand, not the wall that retains."""
+    if line.toe is None or site.formation is None or site.ground_level is None:
+        return False
+    return line.toe > 0.5 * (site.ground_level + site.formation)
+
+
+def _network(site: Site, lines: Sequence[WallLine], chosen: Bools) -> WallGraph:
+    index = np.flatnonzero(chosen)
+    some = [lines[i] for i in index.tolist()]
+    if not some:
+        empty = np.zeros(0, dtype=np.int64)
+        return WallGraph(xy=np.zeros((0, 2)), ends=np.zeros((0, 2), dtype=np.int64), line=empty, part=empty,
+                         forward=empty.astype(bool), pile=empty)  # fmt: skip
+    graph = close_joins(build_graph(some, site.limits.plan), some, site.limits.plan)
+    return replace(graph, line=index[graph.line].astype(np.int64))
+
+
+def _pits(rings: Sequence[Trace]) -> list[Trace]:
+    return [ring for ring in rings if area_of(ring.points) >= LEAST_AREA]
+
+
+def area_of(points: Floats) -> float:
+    """Area inside a ring of points, m2."""
+    x, y = points.T
+    return float(0.5 * (x @ np.roll(y, -1) - y @ np.roll(x, -1)))
+
+
+def _length(way: Trace) -> float:
+    points = way.points
+    return float(np.hypot(*np.diff(points, axis=0).T).sum())
+
+
+def _lines_of(ring: Trace) -> Floats:
+    return np.unique(ring.graph.line[ring.edges])
+
+
+def _once(rings: Sequence[Trace], lines: Sequence[WallLine], origin: Point) -> tuple[list[Trace], list[Finding]]:
+    """Of two rings that are the same wall the one of better evidence stays."""
+    areas = [shapely.Polygon(ring.points) for ring in rings]
+    order = sorted(range(len(rings)), key=lambda k: (-_evidence(rings[k], lines), -areas[k].area))
+    kept: list[int] = []
+    findings = []
+    for k in order:
+        twin = next((j for j in kept if _same_wall(areas[j], areas[k])), None)
+        if twin is None:
+            kept.append(k)
+            continue
+        x, y = areas[k].representative_point().coords[0]
+        findings.append(Finding(
+            id="", code="wall-drawn-twice", severity="note", where=f"({x + origin[0]:.2f}, {y + origin[1]:.2f})",
+            text="Two rings lie closer together than a pit could: one wall drawn twice, or a lining. "
+                 "The one of better evidence (piles, then faces, then lines) is taken.",
+        ))  # fmt: skip
+    return [rings[k] for k in sorted(kept)], findings
+
+
+def _evidence(ring: Trace, lines: Sequence[WallLine]) -> float:
+    """Share of a ring that is piles, and less for paired faces and known thickness."""
+    used = [lines[i] for i in ring.graph.line[ring.edges].tolist()]
+    worth = [3.0 if len(line.piles) else 2.0 if line.paired else 1.0 if line.embedded else 0.0 for line in used]
+    return round(float(np.mean(worth)), 3)
+
+
+def _same_wall(a: shapely.Polygon, b: shapely.Polygon) -> bool:
+    small, large = sorted((a, b), key=lambda p: p.area)
+    if not large.buffer(0.05).contains(small):
+        return False
+    return 2.0 * (large.area - small.area) / (large.length + small.length) < SAME_WALL
+
+
+def _unused(graph: WallGraph, rings: Sequence[Trace]) -> WallGraph:
+    """Edges that are on no ring, ends of rings marked by their nodes kept."""
+    used = {tuple(sorted(pair)) for ring in rings for pair in ring.graph.ends[ring.edges].tolist()}
+    free = np.array([tuple(sorted(pair)) not in used for pair in graph.ends.tolist()], dtype=bool)
+    return graph.pick(free)
+
+
+def _outside(rest: WallGraph, rings: Sequence[Trace]) -> tuple[Bools, Bools]:
+    """Which left-over edges stand free outside all rings, and which lie inside one; wings at a ring are neither."""
+    count = len(rest.ends)
+    if not count:
+        return np.zeros(0, dtype=bool), np.zeros(0, dtype=bool)
+    on_ring = np.zeros(len(rest.xy), dtype=bool)
+    inside_node = np.zeros(len(rest.xy), dtype=bool)
+    for ring in rings:
+        on_ring[ring.nodes] = True
+        inside_node |= shapely.contains_xy(shapely.Polygon(ring.points), rest.xy)
+    size = (len(rest.xy),) * 2
+    total, label = connected_components(coo_array((np.ones(count), rest.ends.T), shape=size), directed=False)
+    touches = np.bincount(label, on_ring & (rest.degree > 0), minlength=total) > 0
+    within = np.bincount(label, inside_node, minlength=total) > 0
+    part = label[rest.ends[:, 0]]
+    return ~touches[part] & ~within[part], within[part]
+
+
+def _closing_rings(site: Site, lines: Sequence[WallLine], embedded: Bools, loose: Bools) -> list[Trace]:
+    """Rings that walls of a building, or failing that lines of no known kind, close with what is left open."""
+    kinds = np.array([line.kind for line in lines])
+    for others in (np.isin(kinds, ("concrete", "masonry", "none")), ~embedded):
+        if not others.any():
+            continue
+        graph = _network(site, lines, embedded | others)
+        rings = _pits(find_rings(graph, embedded[graph.line]))
+        closed = [ring for ring in rings if 0.25 <= embedded[ring.graph.line[ring.edges]].mean() < 1.0
+                  or _share(ring, embedded) >= 0.25]  # fmt: skip
+        fresh = [ring for ring in closed if not embedded[ring.graph.line[ring.edges]].all()]
+        if fresh:
+            return fresh
+    return []
+
+
+def _share(ring: Trace, embedded: Bools) -> float:
+    """Share of the length of a ring that is embedded wall."""
+    span = np.hypot(*(np.roll(ring.points, -1, axis=0) - ring.points).T)
+    return float(span[embedded[ring.graph.line[ring.edges]]].sum() / span.sum())
+
+
+def _building_rings(site: Site, lines: Sequence[WallLine], origin: Point) -> Choice:
+    """Outlines of the lowest storey where there are only walls of a building, or lines of no known kind."""
+    toes = [line.toe for line in lines if line.toe is not None]
+    lowest = np.array([line.toe is None or line.toe <= min(toes) + 1.0 for line in lines], dtype=bool)
+    for chosen in (lowest, np.ones(len(lines), dtype=bool)):
+        graph = _network(site, lines, chosen)
+        rings = sorted(_pits(find_rings(graph, np.zeros(len(graph.ends), dtype=bool))), key=lambda r: -area_of(r.points))
+        if rings:
+            return _outermost(rings, lines, origin)
+    ways = [way for way in find_open(_network(site, lines, lowest)) if _length(way) >= LEAST_OPEN]
+    return Choice(traces=tuple(ways[:1]) if not site.plates else ())
+
+
+def _outermost(rings: Sequence[Trace], lines: Sequence[WallLine], origin: Point) -> Choice:
+    areas = [shapely.Polygon(ring.points) for ring in rings]
+    kept: list[int] = []
+    questions = []
+    for k, area in enumerate(areas):
+        outer = next((j for j in kept if areas[j].contains(area.representative_point())), None)
+        if outer is None and area.area >= LEAST_SHARE * areas[0].area:
+            kept.append(k)
+        elif outer is not None and area.area >= LEAST_SHARE * areas[outer].area and not _same_wall(areas[outer], area):
+            x, y = np.array(area.representative_point().coords[0]) + origin
+            questions.append(_inner_question(len(questions) + 1, x, y))
+    return Choice(traces=tuple(rings[k] for k in kept), questions=tuple(questions))
+
+
+def _inner_question(number: int, x: float, y: float) -> Question:
+    return Question(
+        id=f"inner-ring-{number}",
+        about=f"the closed ring of walls near ({x:.2f}, {y:.2f}) inside another",
+        readings=(
+            Reading(reading="walls of the building inside the pit", evidence="no kind of wall is known", confidence=0.7),
+            Reading(reading="a deeper pit within the pit", evidence="it is closed and not small", confidence=0.3),
+        ),
+        brief_line='[[roles]] match = {layer = "..."}, role = "wall", wall_kind = "sheet"',
+    )
+
+
+def _nearly_closed(way: Trace) -> bool:
+    gap = float(np.hypot(*(way.points[-1] - way.points[0])))
+    return gap <= 0.25 * _length(way)
+
+
+def _gap(way: Trace, origin: Point) -> Finding:
+    a, b = way.points[0] + origin, way.points[-1] + origin
+    gap = float(np.hypot(*(b - a)))
+    return Finding(
+        id="", code="wall-gap", severity="check", where=f"({a[0]:.2f}, {a[1]:.2f}) to ({b[0]:.2f}, {b[1]:.2f})",
+        text=f"{gap:.2f} m between the two ends of the wall: too far to close. It is read as an open perimeter.",
+    )  # fmt: skip
+
+
+def _inside_note(rest: WallGraph, origin: Point) -> list[Finding]:
+    found = []
+    for way in find_open(rest):
+        length = _length(way)
+        if length >= LEAST_OPEN:
+            x, y = way.points.mean(axis=0) + origin
+            found.append(Finding(
+                id="", code="wall-inside-pit", severity="check", where=f"({x:.2f}, {y:.2f})",
+                text=f"A retaining wall of {length:.1f} m stands inside a pit without closing a ring. "
+                     "It is not part of the perimeter and was not assessed.",
+            ))  # fmt: skip
+    return found
+
+
+def _shallow_note(site: Site, lines: Sequence[WallLine], shallow: Bools, origin: Point) -> list[Finding]:
+    if not shallow.any():
+        return []
+    toe = min(line.toe for line, is_shallow in zip(lines, shallow, strict=True) if is_shallow and line.toe is not None)
+    x, y = lines[int(np.flatnonzero(shallow)[0])].points[0] + origin
+    return [Finding(
+        id="", code="wall-above-formation", severity="note", where=f"({x:.2f}, {y:.2f})",
+        text=f"{int(shallow.sum())} wall lines end above half the depth of the dig (lowest toe {toe:.2f} m, formation "
+             f"{site.formation:.2f} m) and were not taken as retaining.",
+    )]  # fmt: skip

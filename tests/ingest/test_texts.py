@@ -1,0 +1,123 @@
+"""Notes on drawings: the numbers they hold, and the members they speak of."""
+
+from __future__ import annotations
+
+from typing import Any
+
+import pytest
+
+from ingest.brief import Brief
+from ingest.model import FileParts, Part, Point3, Site
+from ingest.site import site_of
+from ingest.texts import Note, read_note
+from ingest.trail import Source
+
+
+# Ways of writing of the trade in several languages (common practice, no source).
+@pytest.mark.parametrize(
+    ("text", "note"),
+    [
+        ("10no. 600 dia @ 750 c/c", Note(count=10, diameter=0.6, spacing=0.75)),
+        ("CONTIGUOUS BORED PILES 750 DIA @ 1000 C/C", Note(diameter=0.75, spacing=1.0)),
+        ("pieux D 600 entraxe 750", Note(diameter=0.6, spacing=0.75)),
+        ("8 Stk. Anker a = 2,40 m", Note(count=8, spacing=2.4)),
+        ("10x Ø600", Note(count=10, diameter=0.6)),
+        ("⌀880", Note(diameter=0.88)),
+        ("D=0.75 s=1.20", Note(diameter=0.75, spacing=1.2)),
+        ("-1,50", Note(level=-1.5)),
+        ("±0.00", Note(level=0.0)),
+        ("+4.250 m", Note(level=4.25)),
+        ("−3.20", Note(level=-3.2)),
+        ("FFL 12.345", Note(level=12.345)),
+        ("Kote 45,20", Note(level=45.2)),
+        ("Level +125", Note(level=125.0)),
+        ("LEVEL -6000", Note(level=-6.0)),
+        ("-6000", Note(level=-6.0)),
+        ("TOE LEVEL -12.00", Note(toe=-12.0)),
+        ("UK -12,50 / OK +0.35", Note(toe=-12.5, top=0.35)),
+        ("TOP OF WALL +2.00\nTOE -14.00", Note(top=2.0, toe=-14.0)),
+    ],
+)
+def test_a_note_tells_its_numbers(text: str, note: Note) -> None:
+    assert read_note(text) == note
+
+
+@pytest.mark.parametrize(
+    "text",
+    [
+        "12",
+        "2F",
+        "BH01",
+        "A-12",
+        "1:100",
+        "12-05-2020",
+        "SECTION A-A",
+        "LEVEL 2 PLAN",
+        "Rev -1",
+        "CHS 508x16",
+        "-3.2.1",
+    ],
+)
+def test_what_is_no_level_is_none(text: str) -> None:
+    assert read_note(text) == Note()
+
+
+def part(form: str, *points: Point3, item: str, **more: Any) -> Part:
+    return Part(source=Source(file="a.dxf", item=item), form=form, points=points, **more)  # type: ignore[arg-type]
+
+
+def text_at(x: float, y: float, words: str, item: str, layer: str = "TEXT", **tags: str) -> Part:
+    return part("text", (x, y, 0.0), item=item, layer=layer, text=words, tags={"height": "0.25", **tags})
+
+
+def site_from(*parts: Part) -> Site:
+    file = FileParts(
+        file="a.dxf", sha256="0" * 64, kind="dxf", schema_or_version="x", length_unit="m", unit_scale=1.0,
+        entities=len(parts), parts=parts,
+    )  # fmt: skip
+    return site_of([file], Brief())
+
+
+STRUTS = tuple(part("path", (5.0 * n, 0.0, 0.0), (5.0 * n, 20.0, 0.0), item=f"s{n}", layer="STRUTS") for n in range(4))
+PILES = tuple(part("circle", (float(n), 0.0, 0.0), item=f"p{n}", layer="WALL PILES", radius=0.375) for n in range(12))
+
+
+def test_a_level_on_the_layer_of_the_struts_is_theirs() -> None:
+    site = site_from(*STRUTS, text_at(5.3, 10.0, "-1.50", "t", layer="STRUTS"))
+    assert [(s.head[2], s.level_given) for s in site.supports] == [(-1.5, True)] * 4
+    assert [a.code for a in site.assumptions] == ["text-level"]
+    assert site.ledger["a.dxf"].used == 5
+
+
+def test_a_level_beside_a_strut_on_another_layer_may_be_the_ground_and_is_left_alone() -> None:
+    site = site_from(*STRUTS, text_at(5.3, 10.0, "+4.20", "t", layer="SPOT LEVELS"))
+    assert not any(s.level_given for s in site.supports)
+    assert site.ledger["a.dxf"].reasons == {"text that names no member": 1}
+
+
+def test_a_leader_names_its_member_wherever_the_text_stands() -> None:
+    site = site_from(*STRUTS, text_at(100.0, 100.0, "-2.50", "t", leader="10.0 3.0"))
+    assert {s.head[2] for s in site.supports} == {-2.5}
+
+
+def test_levels_that_differ_hold_for_their_own_member_only() -> None:
+    notes = [text_at(0.3, 10.0, "STRUT -1.50", "a"), text_at(5.3, 10.0, "STRUT -4.00", "b")]
+    site = site_from(*STRUTS, *notes)
+    by_x = {s.head[0]: (s.head[2] if s.level_given else None) for s in site.supports}
+    assert by_x == {0.0: -1.5, 5.0: -4.0, 10.0: None, 15.0: None}
+    assert "text-levels-differ" in {finding.code for finding in site.findings}
+
+
+def test_toe_and_top_are_read_from_a_note_beside_the_wall() -> None:
+    site = site_from(*PILES, text_at(3.0, 0.8, "TOP +1.00 TOE -12.00", "t"))
+    assert {(pile.top, pile.toe) for pile in site.piles} == {(1.0, -12.0)}
+
+
+@pytest.mark.parametrize(("words", "code"), [("600 DIA", "diameter-differs"), ("750 DIA @ 900 C/C", "spacing-differs")])
+def test_a_note_that_the_drawing_contradicts_is_a_finding(words: str, code: str) -> None:
+    site = site_from(*PILES, text_at(3.0, 0.8, words, "t"))
+    assert code in {finding.code for finding in site.findings}
+
+
+def test_a_note_that_the_drawing_bears_out_is_none() -> None:
+    assert not site_from(*PILES, text_at(3.0, 0.8, "750 DIA @ 1000 C/C", "t")).findings
