@@ -8,6 +8,7 @@ from dataclasses import replace
 import numpy as np
 
 from ingest.brief import Brief
+from ingest.matching import match_line
 from ingest.model import Evidence, FileParts, Part
 from ingest.notes import Notes, label
 from ingest.roles import RoleGiven
@@ -64,11 +65,10 @@ def _ask_plain(walls: Sequence[RoleGiven], notes: Notes) -> None:
     for item in walls:
         if item.evidence.confidence >= 1:
             continue
-        key = "layer" if item.part.layer else "name"
-        quoted = label(item).replace("\\", "\\\\").replace('"', '\\"')
+        match = match_line(item.part.layer, item.part.name, item.part.cls)
         notes.ask(
             f"{label(item)}: do these walls hold the ground?",
-            f'[[roles]]\nmatch = {{ {key} = "{quoted}" }}\nrole = "wall"\nwall_kind = "concrete"',
+            f'[[roles]]\n{match}\nrole = "wall"\nwall_kind = "concrete"',
             (
                 ("they are walls of a building", "the name says wall and nothing of ground", 0.5),
                 ("they retain", "they are the only walls, or drawn beside others", 0.4),
@@ -94,7 +94,7 @@ def _ground(files: Sequence[FileParts], given: Sequence[RoleGiven], notes: Notes
     level = round(level, 3)
     notes.assume("ground-level", "", f"ground at {level:g} m", basis, sources)
     readings = ((f"{level:g} m", basis, 0.5),)
-    notes.ask("ground level behind the wall is not given", f"[site]\nground_level = {level:g}", readings)
+    notes.ask("ground level behind the wall is not given", f"[site]\nground_level = {level!r}", readings)
     return level
 
 

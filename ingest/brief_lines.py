@@ -5,6 +5,8 @@ from __future__ import annotations
 import re
 import tomllib
 
+from ingest.receive import shown
+
 KeyPath = tuple[str | int, ...]
 
 _KEY = re.compile(r"""\s*(?:(?P<bare>[A-Za-z0-9_-]+)|(?P<quoted>"(?:[^"\\\n]|\\.)*")|'(?P<literal>[^'\n]*)')\s*""")
@@ -115,3 +117,15 @@ def _string_end(text: str, at: int, mark: str) -> int:
     while len(mark) == 3 and text.startswith(mark[0], at):  # up to two quotes may stand before the closing three
         at += 1
     return at
+
+
+def quoted(text: str) -> str:
+    """A TOML basic string of any text."""
+    escapes = {"\\": "\\\\", '"': '\\"', "\n": "\\n", "\r": "\\r", "\t": "\\t"}
+    safe = (escapes.get(c) or (f"\\u{ord(c):04x}" if ord(c) < 32 or ord(c) == 127 else c) for c in text)
+    return '"' + "".join(safe) + '"'
+
+
+def one_line(text: str) -> str:
+    """A text that cannot leave its comment line."""
+    return shown(text.replace("\n", " "))

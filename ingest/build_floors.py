@@ -6,7 +6,7 @@ from collections.abc import Sequence
 
 from ingest.brief_tables import FloorTable
 from ingest.figures import centroid, extent, outline_of, plan
-from ingest.matching import find_entry
+from ingest.matching import find_entry, match_line
 from ingest.model import Column, Floor, Part, Plate, Point
 from ingest.notes import Notes, label
 from ingest.roles import RoleGiven
@@ -132,5 +132,4 @@ def _drawn(part: Part) -> float | None:
 
 
 def _floor_line(part: Part) -> str:
-    key, value = ("layer", part.layer) if part.layer else ("id", part.source.item)
-    return f'[[floors]]\nmatch = {{ {key} = "{value}" }}\nlevel = 0.0'
+    return f"[[floors]]\n{match_line(part.layer, '', '', part.source.item)}\nlevel = nan"

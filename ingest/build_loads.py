@@ -6,7 +6,7 @@ from collections.abc import Sequence
 
 from ingest.brief_tables import LoadTable, ReceptorTable
 from ingest.figures import centroid, outline_of, plan
-from ingest.matching import find_entry
+from ingest.matching import find_entry, match_line
 from ingest.model import Evidence, Load, LoadKind, Part, Point, Receptor
 from ingest.notes import Notes, label
 from ingest.register import Moved
@@ -36,7 +36,8 @@ def build_loads(given: Sequence[RoleGiven], moved: Moved, notes: Notes) -> tuple
             continue
         if entry.value is None:
             about = f"{label(item)}: how large is this load ({UNITS[kind]})?"
-            notes.ask(about, f'[[loads]]\nmatch = {{ layer = "{item.part.layer}" }}\nkind = "{kind}"\nvalue = 0.0')
+            match = match_line(item.part.layer, item.part.name, item.part.cls)
+            notes.ask(about, f'[[loads]]\n{match}\nkind = "{kind}"\nvalue = nan')
         loads.append(
             Load(
                 id="",

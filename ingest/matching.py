@@ -7,6 +7,7 @@ from fnmatch import fnmatchcase
 from functools import lru_cache
 from typing import Protocol, TypeVar
 
+from ingest.brief_lines import quoted
 from ingest.brief_tables import Match
 from ingest.model import Part
 
@@ -42,6 +43,13 @@ def find_entry(entries: Sequence[Entry], part: Part) -> tuple[int, Entry] | None
     return next(
         ((n, entry) for n, entry in enumerate(entries) if entry.match is not None and fits(entry.match, part)), None
     )
+
+
+def match_line(layer: str, name: str, cls: str, item: str = "") -> str:
+    """The line of a brief that means all parts like one: by its layer, else name, else class, else id."""
+    pairs = (("layer", layer), ("name", name), ("class", cls), ("id", item))
+    key, value = next(((key, value) for key, value in pairs if value), ("id", item))
+    return f"match = {{ {key} = {quoted(value)} }}"
 
 
 @lru_cache(maxsize=65536)

@@ -2,6 +2,7 @@
 
 from __future__ import annotations
 
+from ingest.matching import match_line
 from ingest.model import Site
 from ingest.notes import Notes
 
@@ -19,22 +20,22 @@ def note_missing(site: Site, notes: Notes) -> None:
 
 def _ask_levels(site: Site, notes: Notes) -> None:
     if site.ground_level is None:
-        notes.ask("ground level behind the wall is not given", "[site]\nground_level = 0.0")
+        notes.ask("ground level behind the wall is not given", "[site]\nground_level = nan")
     if site.formation is None and not site.floors:
-        notes.ask("formation level is not given", "[levels]\nformation = 0.0")
+        notes.ask("formation level is not given", "[levels]\nformation = nan")
     held = [pile for pile in site.piles if not pile.bearing]
     toes = [wall.toe for wall in site.walls] + [pile.toe for pile in held]
     if None in toes:
-        notes.ask("toe level of the wall is not given", "[[walls]]\ntoe = 0.0")
+        notes.ask("toe level of the wall is not given", "[[walls]]\ntoe = nan")
 
 
 def _ask_supports(site: Site, notes: Notes) -> None:
     for group in sorted({support.group for support in site.supports}):
         same = [support for support in site.supports if support.group == group]
-        line = f'[[supports]]\nmatch = {{ layer = "{group}" }}\n'
+        line = f"[[supports]]\n{match_line(same[0].layer, same[0].name, group)}\n"
         if any(not support.level_given for support in same):
-            notes.ask(f"{group}: level of the supports is not given", f"{line}level = 0.0")
+            notes.ask(f"{group}: level of the supports is not given", f"{line}level = nan")
         if any(not support.inclination_given for support in same):
-            notes.ask(f"{group}: inclination is not given", f"{line}inclination = 0.0")
+            notes.ask(f"{group}: inclination is not given", f"{line}inclination = nan")
         if any(support.EA is None for support in same):
-            notes.ask(f"{group}: section of the supports is not given", f'{line}section = "CHS 508x16"')
+            notes.ask(f"{group}: section of the supports is not given", f'{line}section = ""')

@@ -9,8 +9,11 @@ from dataclasses import dataclass, replace
 import numpy as np
 
 from ingest.brief import Brief
+from ingest.brief_lines import one_line, quoted
 from ingest.model import Borehole, FileParts, Frame, Part, Point, Point3, Registered
 from ingest.notes import Notes
+from ingest.outlines import FITS, SLIPS, Placement, distance_between, find_placements, outline_points
+from ingest.roles import RoleGiven
 from ingest.trail import Source
 
 NEAR_ORIGIN = 10_000.0
@@ -31,13 +34,12 @@ class Moved:
         return point[0] - self.frame.offset[0], point[1] - self.frame.offset[1]
 
 
-def lay_files(files: Sequence[FileParts], brief: Brief, notes: Notes) -> Moved:
-    """Turn and shift each file as the brief says, check that the files meet, and move all into the local frame.
+def lay_files(files: Sequence[FileParts], brief: Brief) -> Moved:
+    """Turn and shift each file as the brief says, and move all into the local frame.
 
     Args:
         files: Files as read, metres, each in its own coordinates.
         brief: Shift and rotation by file name.
-        notes: Takes the finding that two files do not meet.
     """
     registered = {}
     laid = []
@@ -47,7 +49,6 @@ def lay_files(files: Sequence[FileParts], brief: Brief, notes: Notes) -> Moved:
         turn = (entry.rotation_deg if entry else None) or 0.0
         registered[file.file] = Registered(shift=shift, rotation_deg=turn)
         laid.append(_move(file, shift, turn))
-    _check_overlap(laid, notes)
     offset = _offset(laid)
     if offset != (0.0, 0.0):
         laid = [_move(file, (-offset[0], -offset[1]), 0.0) for file in laid]
@@ -67,14 +68,65 @@ def box_of(file: FileParts) -> tuple[float, float, float, float] | None:
     return float(low[0]), float(low[1]), float(high[0]), float(high[1])
 
 
-def _check_overlap(files: Sequence[FileParts], notes: Notes) -> None:
-    boxes = [(file.file, box) for file in files if (box := box_of(file)) is not None]
-    for n, (name, a) in enumerate(boxes):
+def check_registration(moved: Moved, given: Sequence[RoleGiven], notes: Notes) -> None:
+    """Ask where a file lies that does not meet another one, or whose walls lie beside those of the other.
+
+    Nothing is moved: a placement that was worked out becomes a question with its residual and the lines that apply it.
+
+    Args:
+        moved: The files in the local frame.
+        given: Roles of all their parts.
+        notes: Takes findings and questions.
+    """
+    boxes = [(file, box) for file in moved.files if (box := box_of(file)) is not None]
+    walls = {file.file: outline_points([g for g in given if g.part.source.file == file.file]) for file, _ in boxes}
+    for n, (one, a) in enumerate(boxes):
         for other, b in boxes[n + 1 :]:
             gap = math.hypot(max(a[0] - b[2], b[0] - a[2], 0.0), max(a[1] - b[3], b[1] - a[3], 0.0))
-            reach = max(a[2] - a[0], a[3] - a[1], b[2] - b[0], b[3] - b[1], 50.0)
-            if gap > reach:
-                _ask_shift(name, other, a, b, gap, notes)
+            apart = gap > max(a[2] - a[0], a[3] - a[1], b[2] - b[0], b[3] - b[1], 50.0)
+            outlines = walls[one.file], walls[other.file]
+            drawn_twice = all(len(points) > 3 for points in outlines)
+            if not apart and not (drawn_twice and distance_between(*outlines) > FITS):
+                continue
+            placements = find_placements(*outlines) if drawn_twice else ()
+            if placements:
+                _ask_placement(one.file, other.file, placements, moved, notes)
+            elif apart:
+                _ask_shift(one.file, other.file, a, b, gap, notes)
+
+
+def _ask_placement(one: str, other: str, placements: Sequence[Placement], moved: Moved, notes: Notes) -> None:
+    best = placements[0]
+    sources = (Source(file=one, item=""), Source(file=other, item=""))
+    slip = SLIPS[min(SLIPS, key=lambda factor: abs(factor * best.scale - 1))]
+    odd = ", ".join(word for word in ("mirrored" if best.mirrored else "", slip and f"drawn in {slip}") if word)
+    more = f"; {len(placements)} placements fit alike" if len(placements) > 1 else ""
+    text = (
+        f"the walls of {other} do not lie on those of {one}; turned by {best.turn:.2f} degrees and shifted they do, "
+        f"within {best.residual:.3f} m in the mean{f' ({odd})' if odd else ''}{more}; nothing has been moved"
+    )
+    notes.see("files-apart", "check", f"{one}, {other}", text, sources)
+    lines = [_placing_lines(other, placement, moved) for placement in placements]
+    readings = [
+        (line.replace("\n", ", "), f"outlines agree within {p.residual:.3f} m", round(0.8 / len(placements), 2))
+        for line, p in zip(lines, placements, strict=True)
+    ]
+    notes.ask(f"where does {other} lie on {one}?", lines[0], readings)
+
+
+def _placing_lines(file: str, p: Placement, moved: Moved) -> str:
+    """Lines of the brief for a placement found in the local frame, on top of what the brief has done already."""
+    if p.mirrored:
+        return f"# {one_line(file)} is mirrored, which no brief can undo: mirror the drawing"
+    done, (ox, oy, _) = moved.registered[file], moved.frame.offset
+    c, s = math.cos(math.radians(p.turn)), math.sin(math.radians(p.turn))
+    x, y = p.scale * (done.shift[0] - ox), p.scale * (done.shift[1] - oy)
+    shift = (c * x - s * y + p.shift[0] + ox, s * x + c * y + p.shift[1] + oy)
+    turn = (done.rotation_deg + p.turn + 180) % 360 - 180
+    unit = SLIPS[min(SLIPS, key=lambda factor: abs(factor * p.scale - 1))]
+    lines = [f"[files.{quoted(file)}]", f'length_unit = "{unit}"' if unit else ""]
+    lines += [f"shift = [{shift[0]:.4f}, {shift[1]:.4f}]", f"rotation_deg = {turn:.5f}"]
+    return "\n".join(line for line in lines if line)
 
 
 def _ask_shift(name: str, other: str, a: tuple[float, ...], b: tuple[float, ...], gap: float, notes: Notes) -> None:
@@ -85,7 +137,7 @@ def _ask_shift(name: str, other: str, a: tuple[float, ...], b: tuple[float, ...]
     middle = f"their middles would meet at this shift ({shift[0]:g}, {shift[1]:g}); only a guess"
     notes.ask(
         f"where does {other} lie on {name}?",
-        f'[files."{other}"]\nshift = [{shift[0]}, {shift[1]}]',
+        f"[files.{quoted(other)}]\nshift = [{shift[0]}, {shift[1]}]",
         (
             (f"{other} has its own origin", middle, 0.4),
             ("the coordinates are true", "they are as the file has them", 0.4),

@@ -10,7 +10,7 @@ from importlib.resources import files
 from typing import Any, get_args
 
 from ingest.brief import Brief
-from ingest.matching import find_entry
+from ingest.matching import find_entry, match_line
 from ingest.model import Evidence, Part, Role, WallKind
 from ingest.record import record
 from ingest.surroundings import WALL_ROW, Place, find_places, straight, upright
@@ -246,15 +246,15 @@ def _rank(clues: Sequence[Clue]) -> list[Clue]:
 
 
 def _ask(part: Part, first: Clue, second: Clue) -> Question:
-    key, value = ("layer", part.layer) if part.layer else ("name", part.name) if part.name else ("id", part.source.item)
-    quoted = value.replace("\\", "\\\\").replace('"', '\\"')
+    match = match_line(part.layer, part.name, "", part.source.item)
+    name = part.layer or part.name or part.source.item
     return Question(
         id="",
-        about=f'{part.source.file}, {key} "{value}": {first.role} or {second.role}?',
+        about=f"{part.source.file}, {name}: {first.role} or {second.role}?",
         readings=tuple(
             Reading(reading=clue.role, evidence=clue.why, confidence=clue.confidence) for clue in (first, second)
         ),
-        brief_line=f'[[roles]]\nmatch = {{ {key} = "{quoted}" }}\nrole = "{first.role}"',
+        brief_line=f'[[roles]]\n{match}\nrole = "{first.role}"',
     )
 
 

@@ -21,7 +21,7 @@ from ingest.ledger import make_ledger
 from ingest.missing import note_missing
 from ingest.model import FileParts, InputFile, Role, Site
 from ingest.notes import Notes
-from ingest.register import Moved, lay_files
+from ingest.register import Moved, check_registration, lay_files
 from ingest.roles import RoleGiven, find_roles
 from ingest.starting_brief import write_starting_brief
 from ingest.tie_texts import tie_texts
@@ -87,9 +87,10 @@ def site_of(files: Sequence[FileParts], brief: Brief, notes: Notes | None = None
         notes.questions += file.questions
         notes.assumptions += file.assumptions
         notes.findings += file.findings
-    moved = lay_files(files, brief, notes)
+    moved = lay_files(files, brief)
     given = find_roles([part for file in moved.files for part in file.parts], brief)
     given, ground = sort_building(given, moved.files, notes)
+    check_registration(moved, given, notes)
     notes.questions += [item.question for item in given if item.question is not None]
     site = _records(given, moved, ground, notes)
     note_missing(site, notes)

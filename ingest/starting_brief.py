@@ -5,8 +5,8 @@ from __future__ import annotations
 from collections.abc import Iterator
 from pathlib import Path
 
+from ingest.brief_lines import one_line, quoted
 from ingest.model import NOTICE, Column, Load, Pile, Plate, Receptor, Site, Support, Waler, WallPiece
-from ingest.receive import shown
 
 Recorded = WallPiece | Pile | Support | Waler | Plate | Column | Load | Receptor
 Roled = tuple[str, str, str, str, float]
@@ -49,7 +49,7 @@ def _lines(site: Site) -> Iterator[str]:
 
 
 def _given_or_asked(key: str, value: float | None) -> Iterator[str]:
-    yield f"# {key} = 0.0    # m, not given" if value is None else f"{key} = {value!r}"
+    yield f"# {key} = nan    # m, not given" if value is None else f"{key} = {value!r}"
 
 
 def _files(site: Site) -> Iterator[str]:
@@ -123,15 +123,3 @@ def _assumptions(site: Site) -> Iterator[str]:
         yield "# [[decisions.confirm]]"
         yield f"# assumption = {quoted(assumption.id)}"
         yield '# by = ""'
-
-
-def quoted(text: str) -> str:
-    """A TOML basic string of any text."""
-    escapes = {"\\": "\\\\", '"': '\\"', "\n": "\\n", "\r": "\\r", "\t": "\\t"}
-    safe = (escapes.get(c) or (f"\\u{ord(c):04x}" if ord(c) < 32 or ord(c) == 127 else c) for c in text)
-    return '"' + "".join(safe) + '"'
-
-
-def one_line(text: str) -> str:
-    """A text that cannot leave its comment line."""
-    return shown(text.replace("\n", " "))

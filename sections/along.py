@@ -4,6 +4,7 @@ from __future__ import annotations
 
 from dataclasses import dataclass
 from itertools import chain
+from typing import NamedTuple
 
 import numpy as np
 from numpy.typing import NDArray
@@ -193,12 +194,23 @@ def changes_of(found: FoundPit) -> Floats:
     return np.array(sorted(run.start for before, run in pairs if construction_of(before) != construction_of(run)))
 
 
-def construction_of(run: Run) -> tuple[object, ...]:
-    """What makes one run of wall like another: kind, size, levels, continuity, and the piles that bend."""
+class Construction(NamedTuple):
+    """What makes one run of wall like another: numbers that have a tolerance, levels, and all that must be the same."""
+
+    size: tuple[float | None, ...]
+    levels: tuple[float | None, float | None]
+    labels: tuple[object, ...]
+
+
+def construction_of(run: Run) -> Construction:
+    """Construction of a run: thickness, diameter, pile centres and factor on EI; top and toe; kind and the rest."""
     wall = run.wall
-    bending = None if wall.structural is None else (wall.structural.which, wall.structural.spacing)
-    size = (wall.thickness, wall.diameter, wall.centres, wall.post, wall.EI_factor)
-    return (wall.kind, *size, wall.top, wall.toe, wall.continuity, wall.material, bending)
+    bending = (None, None) if wall.structural is None else (wall.structural.which, wall.structural.spacing)
+    return Construction(
+        size=(wall.thickness, wall.diameter, wall.centres, wall.EI_factor, bending[1]),
+        levels=(wall.top, wall.toe),
+        labels=(wall.kind, wall.continuity, wall.material, wall.post, wall.capping_beam, bending[0]),
+    )
 
 
 def kinds_at(found: FoundPit) -> NDArray[np.str_]:

@@ -81,7 +81,7 @@ def candidates(faces: Faces, within: bool) -> Ints:
         faces: The faces.
         within: True to look only at faces of one body (which is longer than it is thick), False to look at all.
     """
-    lines = shapely.linestrings(np.stack((faces.p, faces.q), axis=1))
+    lines = list(shapely.linestrings(np.stack((faces.p, faces.q), axis=1)))
     a, b = shapely.STRtree(lines).query(lines, predicate="dwithin", distance=THICKEST)
     ok = a < b
     if within:
@@ -141,7 +141,7 @@ def pair_faces(faces: Faces, pairs: Ints, capped: set[tuple[int, int]]) -> tuple
         The pairs chosen, and pairs for which another choice is about as good.
     """
     atoms = _atoms(faces, pairs)
-    graph: nx.Graph = nx.Graph()
+    graph: nx.Graph[Node] = nx.Graph()
     for a, b in pairs.tolist():
         for k, (low, high) in enumerate(atoms[a]):
             middle = 0.5 * (low + high)
@@ -200,7 +200,7 @@ def _atom_at(
 Node = tuple[int, int]
 
 
-def _match(graph: nx.Graph) -> tuple[list[tuple[Node, Node]], list[tuple[int, int]]]:
+def _match(graph: nx.Graph[Node]) -> tuple[list[tuple[Node, Node]], list[tuple[int, int]]]:
     """Greatest matching of a component, and the pairs that could as well be otherwise."""
     if graph.number_of_nodes() == 2:
         a, b = sorted(graph.nodes)
@@ -219,8 +219,8 @@ def _match(graph: nx.Graph) -> tuple[list[tuple[Node, Node]], list[tuple[int, in
     return best, unsure
 
 
-def _sorted_matching(graph: nx.Graph) -> list[tuple[Node, Node]]:
-    ordered: nx.Graph = nx.Graph()
+def _sorted_matching(graph: nx.Graph[Node]) -> list[tuple[Node, Node]]:
+    ordered: nx.Graph[Node] = nx.Graph()
     ordered.add_nodes_from(sorted(graph.nodes))
     ordered.add_weighted_edges_from(sorted((min(a, b), max(a, b), d["weight"]) for a, b, d in graph.edges(data=True)))
     found = nx.max_weight_matching(ordered, maxcardinality=True)

@@ -18,6 +18,8 @@ RULES_WITHIN = 1.5
 """A pit or cap deeper by D rules the dig level of the wall within this many D of it (judgement)."""
 FACE = 0.05
 """How far in front of the wall the floor is looked up, m."""
+SLIVER = 0.005
+"""Half the width of what is taken as a sliver between two outlines, m."""
 SMALL = 0.25
 """A deeper place smaller than this, m2, is a drawing slip and no floor."""
 
@@ -114,10 +116,10 @@ def _area(floor: Floor, pit: shapely.Polygon) -> BaseGeometry:
 
 
 def _polygons(geometry: BaseGeometry) -> BaseGeometry:
-    """Only the areas of a geometry: an overlay may leave lines and points where outlines touch."""
-    parts = [part for part in shapely.get_parts(geometry) if part.geom_type == "Polygon"]
-    inner = [p for part in shapely.get_parts(geometry) if part.geom_type == "MultiPolygon" for p in part.geoms]
-    return shapely.union_all([*parts, *inner]) if parts or inner else shapely.Polygon()
+    """Only the areas of a geometry, without the slivers an overlay leaves where two outlines all but coincide."""
+    opened = geometry.buffer(-SLIVER, join_style="mitre").buffer(SLIVER, join_style="mitre")
+    parts = [part for part in shapely.get_parts(opened) if part.geom_type == "Polygon" and part.area > SMALL]
+    return shapely.union_all(parts) if parts else shapely.Polygon()
 
 
 def _joined(floors: list[Floor], areas: list[BaseGeometry]) -> tuple[list[Floor], list[BaseGeometry]]:
@@ -207,10 +209,7 @@ def find_steps(plan: FloorPlan, shape: PitShape, limits: Limits) -> tuple[Step, 
 
 
 def _shared_lines(upper: BaseGeometry, lower: BaseGeometry, gap: float) -> Sequence[shapely.LineString]:
-    """Common edge of two floors; where they were drawn with a gap, the lower one's edge along the other."""
-    lines = _lines(shapely.intersection(lower.boundary, upper.boundary))
-    if sum(line.length for line in lines) > 4.0 * gap:
-        return lines
+    """Edge of the lower of two floors along the other, which may be drawn a little apart from it."""
     loose = _lines(shapely.intersection(lower.boundary, upper.buffer(gap, quad_segs=2)))
     # the buffer reaches round the ends of the common edge by its own width
     trimmed = [line if line.is_closed else substring(line, gap, line.length - gap) for line in loose]

@@ -1,18 +1,19 @@
 """Which stations are so alike that one section may stand for another place.
 
-Wall, supports and strata must be alike within tolerance; dig depth, surcharge, outside water and toe may be no worse than
-where the section is cut. Stiffness is never "not worse": a stiffer wall or support moves less and takes more.
+Wall, supports and strata must be alike within tolerance; dig depth, surcharge, outside water and toe may be no worse
+than where the section is cut. Stiffness is never "not worse": a stiffer wall or support moves less and takes more.
 """
 
 from __future__ import annotations
 
 from collections.abc import Sequence
 from dataclasses import dataclass
+from typing import NamedTuple
 
 import numpy as np
 
 from ingest.model import Limits, Load, Site
-from sections.along import construction_of, cover_of
+from sections.along import Construction, construction_of, cover_of
 from sections.ground import layers_along, water_along
 from sections.model import Bools, Floats, FoundPit, Ints, SupportRow
 from sections.signature import STRATA
@@ -54,7 +55,7 @@ class Likeness:
 
 def find_likeness(site: Site, founds: Sequence[FoundPit], limits: Limits) -> Likeness:
     """Gather what must be alike at every station of every pit."""
-    types: list[tuple[object, ...]] = []
+    types: dict[_Type, int] = {}
     kinds = [_types_of(site, found, types) for found in founds]
     sizes = np.array([len(kind) for kind in kinds], dtype=np.int64)
     ties = [tied_to(found) for found in founds]
@@ -134,7 +135,17 @@ def _reaches(row: SupportRow) -> bool:
     return bool(np.any(~np.isnan(row.head_at) & ~np.isnan(row.far_at)))
 
 
-def _types_of(site: Site, found: FoundPit, types: list[tuple[object, ...]]) -> Ints:
+class _Held(NamedTuple):
+    """One row of supports: what must be the same, and numbers with a tolerance, level first."""
+
+    labels: tuple[object, ...]
+    numbers: tuple[float | None, ...]
+
+
+_Type = tuple[Construction | None, tuple[_Held, ...]]
+
+
+def _types_of(site: Site, found: FoundPit, types: dict[_Type, int]) -> Ints:
     """Index into `types` of every station; new kinds of wall and supports are added to it."""
     stations = found.stations
     known: dict[tuple[int, tuple[int, ...]], int] = {}
@@ -142,15 +153,14 @@ def _types_of(site: Site, found: FoundPit, types: list[tuple[object, ...]]) -> I
     for i, key in enumerate(zip(stations.run.tolist(), stations.supports, strict=True)):
         if key not in known:
             run = None if key[0] < 0 else found.shape.runs[key[0]]
-            made = (None if run is None else construction_of(run), tuple(_support(site, found, j) for j in sorted(key[1])))
-            types.append(made)
-            known[key] = len(types) - 1
+            rows = tuple(sorted((_held(site, found, j) for j in key[1]), key=_by_level))
+            made: _Type = (None if run is None else construction_of(run), rows)
+            known[key] = types.setdefault(made, len(types))
         index[i] = known[key]
     return index
 
 
-def _support(site: Site, found: FoundPit, j: int) -> tuple[object, ...]:
-    """What makes one row of supports like another: labels, then numbers with level first."""
+def _held(site: Site, found: FoundPit, j: int) -> _Held:
     row = found.rows[j]
     member = row.member
     first = site.supports[row.supports[0]]
@@ -158,44 +168,40 @@ def _support(site: Site, found: FoundPit, j: int) -> tuple[object, ...]:
     length = float(np.hypot(*np.subtract(first.far, first.head)[:2])) if member.role in ("anchor", "raker") else None
     labels = (member.role, section, first.material, row.waler)
     numbers = (member.level, member.spacing, first.EA, member.free_length, length, member.inclination, member.skew)
-    return labels, numbers
+    return _Held(labels=labels, numbers=numbers)
 
 
-def _alike(a: tuple[object, ...], b: tuple[object, ...], limits: Limits) -> bool:
-    return _same_wall(a[0], b[0], limits) and _same_supports(a[1], b[1], limits)  # type: ignore[arg-type]
+def _alike(a: _Type, b: _Type, limits: Limits) -> bool:
+    return _same_wall(a[0], b[0]) and _same_supports(a[1], b[1], limits)
 
 
-def _same_wall(a: tuple[object, ...] | None, b: tuple[object, ...] | None, limits: Limits) -> bool:
+def _same_wall(a: Construction | None, b: Construction | None) -> bool:
     """Like construction; its levels are compared apart, as a deeper toe may be better."""
-    if a is None or b is None:
+    if a is None or b is None or a.labels[0] in ("none", "unknown"):
         return False
-    kind_a, size_a, rest_a = a[0], a[1:6], a[8:]
-    kind_b, size_b, rest_b = b[0], b[1:6], b[8:]
-    sizes = all(_same(x, y, SIZE, 0.0) for x, y in zip(size_a, size_b, strict=True))
-    return kind_a == kind_b and kind_a not in ("none", "unknown") and sizes and rest_a == rest_b
+    return a.labels == b.labels and all(_same(x, y, SIZE, 0.0) for x, y in zip(a.size, b.size, strict=True))
 
 
-def _same_supports(a: Sequence[tuple[object, ...]], b: Sequence[tuple[object, ...]], limits: Limits) -> bool:
-    if len(a) != len(b):
-        return False
-    ratios = (0.0, limits.spacing_ratio, limits.stiffness_ratio, limits.stiffness_ratio, limits.stiffness_ratio, 0.0, 0.0)
+def _same_supports(a: Sequence[_Held], b: Sequence[_Held], limits: Limits) -> bool:
+    """Like rows level by level, the columns being those of `_held`."""
+    stiff = limits.stiffness_ratio
+    ratios = (0.0, limits.spacing_ratio, stiff, stiff, stiff, 0.0, 0.0)
     slack = (limits.level, 0.0, 0.0, 0.0, 0.0, limits.direction, limits.direction)
-    for one, other in zip(sorted(a, key=_by_level), sorted(b, key=_by_level), strict=True):
-        numbers = zip(one[1], other[1], ratios, slack, strict=True)  # type: ignore[call-overload]
-        if one[0] != other[0] or not all(_same(*pair) for pair in numbers):
-            return False
-    return True
+    return len(a) == len(b) and all(
+        one.labels == other.labels and all(map(_same, one.numbers, other.numbers, ratios, slack))
+        for one, other in zip(a, b, strict=True)
+    )
 
 
-def _by_level(support: tuple[object, ...]) -> tuple[float, str]:
-    level = support[1][0]  # type: ignore[index]
-    return (np.inf if level is None else -level, str(support[0]))
+def _by_level(support: _Held) -> tuple[float, str]:
+    level = support.numbers[0]
+    return (np.inf if level is None else -level, str(support.labels))
 
 
-def _same(a: object, b: object, ratio: float, slack: float) -> bool:
-    if isinstance(a, float | int) and isinstance(b, float | int):
-        return abs(a - b) <= ratio * max(abs(a), abs(b)) + slack + 1e-9
-    return a == b
+def _same(a: float | None, b: float | None, ratio: float, slack: float) -> bool:
+    if a is None or b is None:
+        return a is b
+    return abs(a - b) <= ratio * max(abs(a), abs(b)) + slack + 1e-9
 
 
 def _like_facing(like: Likeness, i: int) -> Bools:

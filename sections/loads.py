@@ -224,8 +224,10 @@ def _strip_resultant(x1: float, x2: float, H: float) -> float:
 
 
 def _strip_moment(x1: float, x2: float, H: float) -> float:
-    def primitive(x: float) -> float:
-        turn = pi / 2 if x == 0 else atan(H / x)
-        return H * x - (x**2 * turn + H * (x - H * atan(x / H))) / 2
+    return _moment_from_wall(x2, H) - _moment_from_wall(x1, H)
 
-    return (primitive(x2) - primitive(x1)) / pi
+
+def _moment_from_wall(x: float, H: float) -> float:
+    """Integral of `line_moment` from the wall to x."""
+    turn = pi / 2 if x == 0 else atan(H / x)
+    return (H * x - (x**2 * turn + H * (x - H * atan(x / H))) / 2) / pi

@@ -76,9 +76,11 @@ def _votes(points: Floats, witnesses: Sequence[Witness]) -> tuple[float, list[st
     if not witnesses:
         return 0.0, []
     at = np.array([w.at for w in witnesses])
-    segments = shapely.linestrings(np.stack((points[:-1], points[1:]), axis=1))
-    near = np.array([int(np.argmin(shapely.distance(segments, p))) for p in shapely.points(at)])
-    away = shapely.distance(segments[near], shapely.points(at))
+    apart = shapely.distance(
+        np.asarray(shapely.linestrings(np.stack((points[:-1], points[1:]), axis=1)))[:, None],
+        np.asarray(shapely.points(at))[None, :],
+    )
+    near, away = apart.argmin(axis=0), apart.min(axis=0)
     along = points[near + 1] - points[near]
     s = ((at - points[near]) * along).sum(axis=1) / (along**2).sum(axis=1)
     side = np.sign(cross(along, at - points[near]))

@@ -8,6 +8,7 @@ from dataclasses import dataclass, replace
 import numpy as np
 import shapely
 
+from sections.joints import meet
 from sections.model import Bools, Floats, Ints
 from sections.sides import Samples, Side, fit_side
 from sections.wall_graph import cross
@@ -20,8 +21,6 @@ LONE = 0.1
 """A lone point this close to the corner of its neighbours belongs to it, m."""
 SAME_TURN = 6.0
 """And turn less than this, degrees."""
-TANGENT = 3.0
-"""An arc that runs into its neighbour within this is tangent to it, degrees."""
 
 
 @dataclass(frozen=True, kw_only=True, eq=False)
@@ -155,7 +154,7 @@ def _drop_cuts(samples: Samples, sides: list[Side], short: float) -> list[Side]:
         side, a, b = kept[k], kept[k - 1], kept[(k + 1) % len(kept)]
         if side.form == "point" or (side.form == "line" and np.hypot(*(side.last - side.first)) <= short):
             gap = float(np.hypot(*(b.first - a.last)))
-            point = _meet(a, b, 1.5 * gap + 0.1)
+            point = meet(a, b, 1.5 * gap + 0.1)
             middle = 0.5 * (side.first + side.last)
             if point is not None and (side.form == "line" or _beside((a.last, point, b.first), middle) <= LONE):
                 del kept[k]
@@ -176,53 +175,6 @@ def _straight(first: Floats, last: Floats, block: tuple[int, int]) -> Side:
                 block=block)  # fmt: skip
 
 
-def _meet(a: Side, b: Side, near: float) -> Floats | None:
-    """Point where two sides meet, None where they do not within `near` of their ends."""
-    points = _meetings(a, b)
-    middle = 0.5 * (a.last + b.first)
-    points.sort(key=lambda p: float(np.hypot(*(p - middle))))
-    if points and np.hypot(*(points[0] - a.last)) <= near and np.hypot(*(points[0] - b.first)) <= near:
-        return points[0]
-    return None
-
-
-def _meetings(a: Side, b: Side) -> list[Floats]:
-    if a.form == "line" and b.form == "line":
-        det = float(cross(a.ahead, b.ahead))
-        if abs(det) < np.sin(np.radians(0.5)):
-            return []
-        return [a.last + float(cross(b.first - a.last, b.ahead)) / det * a.ahead]
-    if a.form == "arc" and b.form == "arc":
-        return _arc_arc(a, b)
-    if "point" in (a.form, b.form):
-        return []
-    return _line_arc(a, b) if a.form == "line" else _line_arc(b, a)
-
-
-def _line_arc(line: Side, arc: Side) -> list[Floats]:
-    """Tangent point where the line all but touches the arc, else both crossings."""
-    foot = line.first + float((arc.centre - line.first) @ line.ahead) * line.ahead
-    away = float(np.hypot(*(arc.centre - foot)))
-    if away >= arc.radius * np.cos(np.radians(TANGENT)):
-        return [foot]
-    half = float(np.sqrt(arc.radius**2 - away**2))
-    return [foot + half * line.ahead, foot - half * line.ahead]
-
-
-def _arc_arc(a: Side, b: Side) -> list[Floats]:
-    between = b.centre - a.centre
-    span = float(np.hypot(*between))
-    if span < 1e-6:
-        return []
-    unit = between / span
-    x = (span**2 + a.radius**2 - b.radius**2) / (2 * span)
-    half = float(np.sqrt(max(a.radius**2 - x**2, 0.0)))
-    if half < a.radius * np.sin(np.radians(TANGENT)):
-        return [a.centre + np.sign(x) * a.radius * unit]
-    side = half * np.array([-unit[1], unit[0]])
-    return [a.centre + x * unit + side, a.centre + x * unit - side]
-
-
 def _assemble(samples: Samples, sides: list[Side]) -> Outline:
     """Vertices at the joints, arcs listed by chords."""
     count = len(sides)
@@ -240,7 +192,7 @@ def _joint(samples: Samples, a: Side, b: Side) -> Floats | None:
     lines = a.form == b.form == "line"
     turn = float(np.arcsin(min(abs(float(cross(a.ahead, b.ahead))), 1.0))) if lines else np.pi / 2
     blurred = max((np.sqrt(0.1 * side.radius) for side in (a, b) if side.form == "arc"), default=0.0)
-    point = _meet(a, b, 1.2 * gap / max(np.sin(turn), 0.05) + 0.3 + blurred)
+    point = meet(a, b, 1.2 * gap / max(np.sin(turn), 0.05) + 0.3 + blurred)
     if point is None:
         return 0.5 * (a.last + b.first) if gap <= 2 * SAME_LINE else None
     pace = max(_pace(samples, a), _pace(samples, b))

@@ -35,12 +35,16 @@ class PileRow:
         piles: Indices into the piles given, in order along the row.
         closed: True for a ring of piles.
         spacing: Median distance between neighbours, m.
+        kinds: Kind of each pile, as said or as its neighbours show.
+        ends: Distance between neighbours at the two ends of the row, m.
         sure: False where only the place of the piles says that they are a wall.
     """
 
     piles: tuple[int, ...]
     closed: bool
     spacing: float
+    kinds: tuple[WallKind, ...]
+    ends: tuple[float, float]
     sure: bool
 
 
@@ -101,21 +105,26 @@ def find_pile_rows(piles: Sequence[Pile]) -> tuple[PileRow, ...]:
     rank, span = _ranked(tree, xy, edges)
     links = _link(edges, xy, rank, span)
     _link_single(edges, links, rank, span)
-    rows = (_row(chain, closed, xy, index, named) for chain, closed in _chains(links))
+    rows = (_row(piles, chain, closed, xy, index, named) for chain, closed in _chains(links))
     return tuple(row for row in rows if len(row.piles) >= (2 if row.sure else 3))
 
 
 def _reach(tree: cKDTree, xy: Floats, named: Bools, size: Floats, post: Bools) -> Floats:
     """How far each pile may look for its neighbour, m: over one or two missing piles where it is surely a wall."""
-    nearest = tree.query(xy, k=2)[0][:, 1]
+    nearest = _nearest(tree, xy)
     close = named | (nearest <= CLOSE_ROW * np.nan_to_num(size, nan=0.0))
     factor = np.where(post, 2.3, np.where(close, 3.2, 1.5))
     return np.minimum(factor * nearest, np.where(post | ~close, 1.5 * WIDEST, WIDEST))
 
 
+def _nearest(tree: cKDTree, xy: Floats) -> Floats:
+    """Distance from each pile to its nearest neighbour, m."""
+    return np.asarray(tree.query(xy, k=2)[0], dtype=float)[:, 1]
+
+
 def _neighbours(tree: cKDTree, xy: Floats, reach: Floats) -> Ints:
     k = min(NEIGHBOURS + 1, len(xy))
-    distance, other = tree.query(xy, k=k)
+    distance, other = (np.asarray(found) for found in tree.query(xy, k=k))
     first = np.repeat(np.arange(len(xy)), k - 1)
     second, span = other[:, 1:].ravel(), distance[:, 1:].ravel()
     ok = span <= np.maximum(reach[first], reach[second])
@@ -157,7 +166,7 @@ def _ranked(tree: cKDTree, xy: Floats, edges: Ints) -> tuple[Ints, Floats]:
     p, q = xy[edges[:, 0]], xy[edges[:, 1]]
     span = np.hypot(*(q - p).T)
     alone = (tree.query(2 * p - q)[0] > 0.35 * span).astype(np.int64) + (tree.query(2 * q - p)[0] > 0.35 * span)
-    nearest = tree.query(xy, k=2)[0][:, 1]
+    nearest = _nearest(tree, xy)
     over_gap = span > 1.6 * np.maximum(nearest[edges[:, 0]], nearest[edges[:, 1]])
     return np.asarray(alone + OVER_GAP * over_gap, dtype=np.int64), span
 
@@ -216,28 +225,60 @@ def _chains(links: list[list[int]]) -> list[tuple[list[int], bool]]:
     return chains
 
 
-def _row(chain: list[int], closed: bool, xy: Floats, index: Ints, named: Bools) -> PileRow:
+def _row(
+    piles: Sequence[Pile], chain: list[int], closed: bool, xy: Floats, index: Ints, named: Bools
+) -> PileRow:  # fmt: skip
     along = xy[[*chain, chain[0]] if closed else chain]
     spans = np.hypot(*np.diff(along, axis=0).T)
+    members = [piles[i] for i in index[chain]]
     return PileRow(
         piles=tuple(int(i) for i in index[chain]),
         closed=closed,
-        spacing=float(np.median(spans)),
+        spacing=float(np.median(spans)) if len(spans) else 0.0,
+        kinds=kinds_of(members, spans, closed),
+        ends=(float(spans[:3].max(initial=0.0)), float(spans[-3:].max(initial=0.0))),
         sure=bool(named[chain].mean() > 0.5),
     )
 
 
-def row_kind(kinds: Sequence[WallKind | None], spacing: float, size: float | None) -> WallKind:
-    """Kind of a row: what most of its piles are said to be, else what spacing and size tell.
+def kinds_of(piles: Sequence[Pile], spans: Floats, closed: bool) -> tuple[WallKind, ...]:
+    """Kind of each pile of a row: what it is said to be, else what spacing and size of its neighbours tell.
 
-    Piles that cut into each other are secant, piles up to `CLOSE_ROW` diameters apart contiguous, wider ones posts
-    (common practice, no source).
+    Piles that cut into each other are secant, piles up to `CLOSE_ROW` diameters apart contiguous, steel posts and
+    wider piles king posts (common practice, no source).
     """
-    said = [kind for kind in kinds if kind is not None and kind != "unknown"]
-    if said:
-        return max(sorted(set(said)), key=said.count)
-    if size is None:
+    size = np.array([pile_size(pile) or np.nan for pile in piles])
+    bays = spans if closed else np.append(spans, spans[-1:])
+    after = bays / (0.5 * (size + np.roll(size, -1)))
+    if not closed:
+        after[-1:] = after[-2:-1]
+    around = np.stack([np.roll(after, k) for k in (-1, 0, 1, 2)])
+    if not closed and len(piles) > 3:
+        around[0, -1], around[2, 0], around[3, :2] = after[-1], after[0], after[0]
+    ratio = np.median(around, axis=0)
+    kinds = [_pile_kind(pile, float(r)) for pile, r in zip(piles, ratio, strict=True)]
+    return _without_specks(kinds, [pile.kind in EMBEDDED for pile in piles], np.nan_to_num(size))
+
+
+def _without_specks(kinds: list[WallKind], said: Sequence[bool], size: Floats) -> tuple[WallKind, ...]:
+    """One or two unnamed piles that differ from both sides only stand where two spacings meet: they go to one side."""
+    starts = [k for k in range(len(kinds)) if k == 0 or kinds[k] != kinds[k - 1]]
+    for a, b in zip(starts, [*starts[1:], len(kinds)], strict=True):
+        if b - a > 2 or any(said[a:b]) or len(starts) == 1:
+            continue
+        sides = [k for k in (a - 1, b) if 0 <= k < len(kinds)]
+        like = min(sides, key=lambda k: (abs(float(size[k] - size[a])), not said[k], k))
+        kinds[a:b] = [kinds[like]] * (b - a)
+    return tuple(kinds)
+
+
+def _pile_kind(pile: Pile, ratio: float) -> WallKind:
+    if pile.kind in EMBEDDED:
+        return pile.kind
+    if pile.diameter is None and pile.section is not None:
+        return "king_post"
+    if not np.isfinite(ratio):
         return "unknown"
-    if spacing < 0.98 * size:
+    if ratio < 0.98:
         return "secant"
-    return "contiguous" if spacing <= CLOSE_ROW * size else "king_post"
+    return "contiguous" if ratio <= CLOSE_ROW else "king_post"

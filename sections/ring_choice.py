@@ -199,7 +199,7 @@ def _building_rings(site: Site, lines: Sequence[WallLine], origin: Point) -> Cho
 def _outermost(rings: Sequence[Trace], lines: Sequence[WallLine], origin: Point) -> Choice:
     areas = [shapely.Polygon(ring.points) for ring in rings]
     kept: list[int] = []
-    questions = []
+    questions: list[Question] = []
     for k, area in enumerate(areas):
         outer = next((j for j in kept if areas[j].contains(area.representative_point())), None)
         if outer is None and area.area >= LEAST_SHARE * areas[0].area:

@@ -29,7 +29,7 @@ class Trace:
         """Nodes in order; an open way has one more than edges."""
         start = np.where(self.forward, self.graph.ends[self.edges, 0], self.graph.ends[self.edges, 1])
         if self.closed:
-            return start.astype(np.int64)
+            return np.asarray(start, dtype=np.int64)
         last = self.graph.ends[self.edges[-1], 1 if self.forward[-1] else 0]
         return np.append(start, last).astype(np.int64)
 
@@ -68,8 +68,8 @@ def trace_faces(graph: WallGraph) -> Faces:
     after = order[first[head] + (place[twin] - 1) % degree[head]]
     links = coo_array((np.ones(2 * count), (np.arange(2 * count), after)), shape=(2 * count, 2 * count))
     total, face = connected_components(links, directed=False)
-    area = 0.5 * np.bincount(face, cross(graph.xy[tail], graph.xy[head]), minlength=total)
-    length = np.bincount(face, np.hypot(*way.T), minlength=total)
+    area = np.asarray(0.5 * np.bincount(face, cross(graph.xy[tail], graph.xy[head]), minlength=total), dtype=float)
+    length = np.asarray(np.bincount(face, np.hypot(*way.T), minlength=total), dtype=float)
     return Faces(after=after.astype(np.int64), face=face.astype(np.int64), area=area, length=length)
 
 
@@ -105,10 +105,10 @@ def find_rings(graph: WallGraph, parting: Bools) -> tuple[Trace, ...]:
     total = len(faces.area)
     joined = coo_array((np.ones(open_between.sum()), (left[open_between], right[open_between])), shape=(total, total))
     _, region = connected_components(joined, directed=False)
-    region = np.where(pit, region, -1)
+    region = np.where(pit, region, -1).astype(np.int64)
     outline = inner.pick(region[left] != region[right])
     again = trace_faces(outline)
-    return tuple(_ring(outline, again, k) for k in np.flatnonzero(_is_pit(outline, again, inner, faces, region)))
+    return tuple(_ring(outline, again, int(k)) for k in np.flatnonzero(_is_pit(outline, again, inner, faces, region)))
 
 
 def _with_sides(graph: WallGraph) -> Bools:

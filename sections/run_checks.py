@@ -1,4 +1,4 @@
-"""What the runs of a perimeter show that an engineer should look at: gaps in rows, secant rows that nothing explains."""
+"""What the runs of a perimeter show that an engineer should look at: gaps in rows, unexplained secant rows."""
 
 from __future__ import annotations
 
@@ -33,7 +33,8 @@ def _gaps(shape: PitShape, run: Run, piles: Sequence[Pile]) -> list[Finding]:
         return []
     return [
         Finding(
-            id="", code="pile-gap", severity="check", where=f"{shape.id}, between {_name(piles[k])} and {_name(piles[k + 1])}",
+            id="", code="pile-gap", severity="check",
+            where=f"{shape.id}, between {_name(piles[k])} and {_name(piles[k + 1])}",
             text=f"{span[k]:.2f} m between two piles where {usual:.2f} m is usual: a pile may be missing.",
             sources=(*piles[k].sources, *piles[k + 1].sources),
         )
@@ -51,7 +52,7 @@ def _secant(shape: PitShape, run: Run, piles: Sequence[Pile]) -> list[Finding]:
     text = (
         "Nothing tells the males of this secant wall from its females: every second pile is taken as a male."
         if is_cut(piles)
-        else "The piles of this secant wall do not cut into each other: they are taken as the males, the females not drawn."
+        else "The piles of this secant wall do not cut into each other: they are taken as its males; no females are drawn."
     )
-    return [Finding(id="", code="secant-males", severity="check", where=f"{shape.id}, ch {run.start:.2f} to {run.to:.2f}",
-                    text=text)]  # fmt: skip
+    where = f"{shape.id}, ch {run.start:.2f} to {run.to:.2f}"
+    return [Finding(id="", code="secant-males", severity="check", where=where, text=text)]

@@ -9,11 +9,10 @@ from itertools import pairwise
 import numpy as np
 import shapely
 
-from ingest.model import Limits, Pile, Site, WallKind, WallPiece
+from ingest.model import Limits, Site, WallKind, WallPiece
 from ingest.trail import Source
 from sections.model import Floats, Run, Wall
 from sections.outline import Outline
-from sections.pile_rows import EMBEDDED
 from sections.pile_walls import SAME_SIZE, near, pile_wall, split_row
 from sections.rings import Trace
 from sections.wall_lines import WallLine
@@ -45,15 +44,21 @@ def locate(outline: Outline, points: Floats) -> Floats:
     return np.asarray(at)
 
 
-def stretches_along(site: Site, outline: Outline, trace: Trace, lines: Sequence[WallLine]) -> list[Stretch]:
-    """Piles and drawn stretches of a way, in order of chainage."""
+def stretches_along(outline: Outline, trace: Trace, lines: Sequence[WallLine]) -> list[Stretch]:
+    """Piles and drawn stretches of a way, in order of chainage; a pile of a wall that only ends there is left out."""
     graph = trace.graph
     nodes = trace.nodes
     piles = graph.pile[nodes]
-    kind_of = {int(p): _kind(site.piles[p], line) for line in lines for p in line.piles.tolist()}
-    found = {int(p): float(c) for p, c in zip(piles, locate(outline, graph.xy[nodes]), strict=True) if p >= 0}
-    bits = [Stretch(start=c, stop=c, kind=kind_of[p], pile=p) for p, c in found.items()]
     line, part = graph.line[trace.edges], graph.part[trace.edges]
+    kind_of = {int(p): (kind, k) for k, one in enumerate(lines) for p, kind in zip(one.piles, one.kinds, strict=True)}
+    beside = np.where(part >= 0, line, -1)
+    before, after = (np.roll(beside, 1), beside) if trace.closed else (np.append(-1, beside), np.append(beside, -1))
+    found = {
+        int(p): float(c)
+        for p, c, *near in zip(piles, locate(outline, graph.xy[nodes]), before, after, strict=True)
+        if p >= 0 and (-1 in near or kind_of[int(p)][1] in near)
+    }
+    bits = [Stretch(start=c, stop=c, kind=kind_of[p][0], pile=p) for p, c in found.items()]
     plain = (part >= 0) & np.array([not len(one.piles) for one in lines])[line]
     ends = graph.xy[graph.ends[trace.edges]]
     ends = np.where(trace.forward[:, None, None], ends, ends[:, ::-1])
@@ -64,11 +69,6 @@ def stretches_along(site: Site, outline: Outline, trace: Trace, lines: Sequence[
         bits.append(Stretch(start=float(start[k]), stop=float(stop[k]), kind=one.kind, piece=one.piece,
                             thickness=one.thickness))  # fmt: skip
     return sorted(bits, key=lambda bit: (bit.start, bit.stop, bit.pile))
-
-
-def _kind(pile: Pile, line: WallLine) -> WallKind:
-    """What a pile is said to be, else what its row is."""
-    return pile.kind if pile.kind in EMBEDDED else line.kind
 
 
 def find_runs(

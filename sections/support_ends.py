@@ -185,31 +185,37 @@ def _meet(site: Site, shape: PitShape, head: Floats, far: Floats, anchor: Bools)
 
 
 def _bear(shape: PitShape, sides: Sides, end: Floats, other: Floats, reach: Floats) -> Located:
-    """Lay ends on the wall; near a corner the wall that the member runs against, not merely the nearest one."""
+    """Lay ends on the wall the member runs against; an end that merely passes near a wall bears on none.
+
+    The foot of a raker beside a side wall is near that wall and has nothing to do with it.
+    """
     located = locate(shape, end[:, :2])
-    side, local = side_of(sides, located.at)
-    to_corner = np.minimum(local, sides.length[side] - local)
-    near = np.flatnonzero((located.distance <= reach) & (to_corner < 2.0 * reach) & (not sides.loop))
-    if len(near) == 0:
-        return located
+    near = np.flatnonzero(located.distance <= reach)
+    away = np.full(len(end), np.inf)
     along = end[near, :2] - other[near, :2]
     along /= np.maximum(np.hypot(along[:, 0], along[:, 1]), 1e-12)[:, None]
     back = reach[near]
     hit, met = cast(shape, end[near, :2] - back[:, None] * along, along)
-    good = hit <= 2.5 * back
+    good = hit <= 3.0 * back
     near, met = near[good], met[good]
+    away[near] = located.distance[near]
+    side, local = side_of(sides, located.at[near])
+    corner = (np.minimum(local, sides.length[side] - local) < 2.0 * reach[near]) & (not sides.loop)
+    at, distance = _foot_on(shape, end[near[corner], :2], met[corner])
+    fits = distance <= reach[near[corner]]
+    chosen = near[corner][fits]
+    located.at[chosen] = at[fits]
+    away[chosen] = distance[fits]
+    return Located(at=located.at, distance=away, offset=located.offset)
+
+
+def _foot_on(shape: PitShape, points: Floats, met: Floats) -> tuple[Floats, Floats]:
+    """Chainage and distance of the foot of each point on the straight piece of wall at chainage `met`."""
     piece = segment_at(shape, met)
     start, vector, length = segments_of(shape)
     unit = vector[piece] / length[piece][:, None]
-    run = np.clip(np.einsum("ij,ij->i", end[near, :2] - start[piece], unit), 0.0, length[piece] - 1e-6)
-    foot = start[piece] + run[:, None] * unit
-    distance = _apart(end[near, :2], foot)
-    at, away, offset = located.at.copy(), located.distance.copy(), located.offset.copy()
-    fits = distance <= reach[near]
-    at[near[fits]] = (shape.at[piece] + run)[fits]
-    away[near[fits]] = distance[fits]
-    offset[near[fits]] = np.sign(offset[near[fits]]) * distance[fits]
-    return Located(at=at, distance=away, offset=offset)
+    run = np.clip(np.einsum("ij,ij->i", points - start[piece], unit), 0.0, length[piece] - 1e-6)
+    return shape.at[piece] + run, _apart(points, start[piece] + run[:, None] * unit)
 
 
 def _select(

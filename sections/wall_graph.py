@@ -63,10 +63,10 @@ def build_graph(lines: Sequence[WallLine], tolerance: float) -> WallGraph:
         tolerance: Gap or overlap that still closes a wall line, m.
     """
     graph = _cluster(_segments(lines), tolerance)
-    graph = _cut(graph, *_crossings(graph, tolerance))
-    graph = _cut(graph, *_tees(graph, tolerance))
-    graph = _unique(graph, lines)
-    return graph
+    edge, node, graph = _crossings(graph, tolerance)
+    graph = cut(graph, edge, node)
+    graph = cut(graph, *_tees(graph, tolerance))
+    return _unique(graph, lines)
 
 
 def _segments(lines: Sequence[WallLine]) -> WallGraph:
@@ -116,13 +116,14 @@ def _merge(graph: WallGraph, pairs: Ints) -> WallGraph:
     return merged.pick(ends[:, 0] != ends[:, 1])
 
 
-def _tree(graph: WallGraph) -> shapely.STRtree:
-    return shapely.STRtree(shapely.linestrings(graph.xy[graph.ends]))
+def edge_tree(graph: WallGraph) -> shapely.STRtree:
+    """Search tree of the edges."""
+    return shapely.STRtree(list(shapely.linestrings(graph.xy[graph.ends])))
 
 
 def _crossings(graph: WallGraph, tolerance: float) -> tuple[Ints, Ints, WallGraph]:
     """Where two edges cross away from their ends: the edges to cut, the node to cut each at."""
-    tree = _tree(graph)
+    tree = edge_tree(graph)
     first, second = tree.query(tree.geometries, predicate="crosses")
     once = first < second
     first, second = first[once], second[once]
@@ -148,9 +149,9 @@ def add_nodes(graph: WallGraph, points: Floats) -> tuple[WallGraph, Ints]:
     return replace(graph, xy=np.vstack((graph.xy, points.reshape(-1, 2))), pile=pile), nodes
 
 
-def _tees(graph: WallGraph, tolerance: float) -> tuple[Ints, Ints, WallGraph]:
+def _tees(graph: WallGraph, tolerance: float) -> tuple[Ints, Ints]:
     """Nodes that lie on another edge away from its ends."""
-    node, edge = _tree(graph).query(shapely.points(graph.xy), predicate="dwithin", distance=tolerance)
+    node, edge = edge_tree(graph).query(shapely.points(graph.xy), predicate="dwithin", distance=tolerance)
     a, b = graph.ends[edge].T
     other = (a != node) & (b != node)
     node, edge, a, b = node[other], edge[other], a[other], b[other]
@@ -159,11 +160,7 @@ def _tees(graph: WallGraph, tolerance: float) -> tuple[Ints, Ints, WallGraph]:
     along = graph.xy[b] - graph.xy[a]
     t = ((point - graph.xy[a]) * along).sum(axis=1) / np.maximum((along**2).sum(axis=1), 1e-12)
     inside = (beside > 0.5 * tolerance) & (t > 0) & (t < 1)
-    return edge[inside].astype(np.int64), node[inside].astype(np.int64), graph
-
-
-def _cut(graph: WallGraph, edge: Ints, node: Ints, grown: WallGraph) -> WallGraph:
-    return cut(grown, edge, node)
+    return edge[inside].astype(np.int64), node[inside].astype(np.int64)
 
 
 def cut(graph: WallGraph, edge: Ints, node: Ints) -> WallGraph:

@@ -10,7 +10,7 @@ import shapely
 from scipy.spatial import cKDTree
 
 from sections.model import Floats, Ints
-from sections.wall_graph import WallGraph, add_nodes, cross, cut, stub_length
+from sections.wall_graph import WallGraph, add_nodes, cross, cut, edge_tree, stub_length
 from sections.wall_lines import WallLine
 
 NEXT_PILE = 1.25
@@ -23,7 +23,7 @@ FACING = 25.0
 
 @dataclass(frozen=True, kw_only=True, eq=False)
 class LooseEnds:
-    """Nodes with one edge: node, its edge, the direction in which the wall would go on, how far it may, pile spacing (0: none)."""
+    """Nodes with one edge: node, edge, direction in which the wall would go on, how far it may, pile spacing or 0."""
 
     node: Ints
     edge: Ints
@@ -82,8 +82,11 @@ def loose_ends(graph: WallGraph, lines: Sequence[WallLine]) -> LooseEnds:
     mine = edge[node]
     drawn = np.array([_direction(graph, lines, int(e)) for e in mine]).reshape(-1, 2)
     outward = graph.ends[mine, 1] == node
-    reach = np.array([lines[i].reach for i in graph.line[mine]])
-    pace = np.array([lines[i].pace for i in graph.line[mine]])
+    owner = [lines[i] for i in graph.line[mine].tolist()]
+    late = [int(2 * part >= len(one.points) - 1 and len(one.points) > 2)
+            for part, one in zip(graph.part[mine].tolist(), owner, strict=True)]  # fmt: skip
+    reach = np.array([one.reach[k] for one, k in zip(owner, late, strict=True)])
+    pace = np.array([one.pace[k] for one, k in zip(owner, late, strict=True)])
     return LooseEnds(
         node=node.astype(np.int64),
         edge=mine,
@@ -136,8 +139,7 @@ def _end_to_end(ends: LooseEnds, tolerance: float) -> list[Join]:
 
 def _end_to_edge(graph: WallGraph, ends: LooseEnds, tolerance: float) -> list[Join]:
     rays = shapely.linestrings(np.stack((ends.at, ends.at + ends.ahead * ends.reach[:, None]), axis=1))
-    tree = shapely.STRtree(shapely.linestrings(graph.xy[graph.ends]))
-    end, edge = tree.query(rays, predicate="intersects")
+    end, edge = edge_tree(graph).query(rays, predicate="dwithin", distance=0.5 * tolerance)
     a, b = graph.ends[edge].T
     other = (a != ends.node[end]) & (b != ends.node[end])
     end, edge, a, b = end[other], edge[other], a[other], b[other]
@@ -148,12 +150,14 @@ def _end_to_edge(graph: WallGraph, ends: LooseEnds, tolerance: float) -> list[Jo
     meet = ends.at[end] + s[:, None] * ends.ahead[end]
     to_a, to_b = np.hypot(*(meet - graph.xy[a]).T), np.hypot(*(meet - graph.xy[b]).T)
     is_bay = (graph.pile[a] >= 0) & (graph.pile[b] >= 0)
-    at_node = np.minimum(to_a, to_b) <= np.where(is_bay, NEAR_PILE * np.hypot(*along.T), tolerance)
+    span = np.hypot(*along.T)
+    t = ((meet - graph.xy[a]) * along).sum(axis=1) / span
+    at_node = np.minimum(to_a, to_b) <= np.where(is_bay, NEAR_PILE * span, tolerance)
     nearer = np.where(to_a < to_b, a, b)
     return [
         Join(cost=float(s[k]), end=int(end[k]), node=int(nearer[k])) if at_node[k] else
         Join(cost=float(s[k]), end=int(end[k]), edge=int(edge[k]), point=(float(meet[k, 0]), float(meet[k, 1])))
-        for k in np.flatnonzero(ok & (s >= 0))
+        for k in np.flatnonzero(ok & (s >= 0) & (t >= -tolerance) & (t <= span + tolerance))
     ]  # fmt: skip
 
 

@@ -11,7 +11,7 @@ from ingest.model import Point, Site, WallKind, WallPiece
 from ingest.trail import Question
 from sections.double_lines import centre_lines
 from sections.model import Floats, Ints
-from sections.pile_rows import EMBEDDED, PileRow, find_pile_rows, pile_size, row_kind
+from sections.pile_rows import EMBEDDED, PileRow, find_pile_rows, pile_size
 
 PLAIN_REACH = 0.6
 """How far the end of a line of unknown thickness is extended to meet another, m (judgement)."""
@@ -24,24 +24,26 @@ class WallLine:
 
     Attributes:
         points: (m, 2) vertices; a closed line ends on its first point.
-        kind: Kind of wall, as given or as the row of piles shows.
+        kind: Kind of wall, as given; of a row of piles what most of them are.
         thickness: Thickness or pile diameter, m; None when not given.
-        reach: How far either end may be extended to meet another wall, m.
+        reach: How far the first and the last end may be extended to meet another wall, m.
         piles: (m,) index into `Site.piles` of each vertex; empty for a wall that is not a row of piles.
         piece: Index into `Site.walls`; -1 for a row of piles.
         toe: Deepest toe along the line; None when not given.
-        pace: Spacing of a row of piles, m; 0 for other walls.
+        pace: Spacing of a row of piles at the first and the last end, m; 0 for other walls.
+        kinds: Kind of the pile at each vertex; empty for a wall that is not a row of piles.
         paired: True where the line is the middle of two faces.
     """
 
     points: Floats
     kind: WallKind
     thickness: float | None
-    reach: float
+    reach: tuple[float, float]
     piles: Ints
     piece: int
     toe: float | None
-    pace: float = 0.0
+    pace: tuple[float, float] = (0.0, 0.0)
+    kinds: tuple[WallKind, ...] = ()
     paired: bool = False
 
     @property
@@ -73,10 +75,11 @@ def _row_line(site: Site, row: PileRow, origin: Point) -> WallLine:
     index = np.array(row.piles, dtype=np.int64)
     return WallLine(
         points=np.vstack((points, points[:1])) if row.closed else points,
-        kind=row_kind([pile.kind for pile in piles], row.spacing, size),
+        kind=max(sorted(set(row.kinds)), key=row.kinds.count),
         thickness=size,
-        reach=1.3 * row.spacing + 0.1,
-        pace=row.spacing,
+        reach=(1.3 * row.ends[0] + 0.1, 1.3 * row.ends[1] + 0.1),
+        pace=row.ends,
+        kinds=(*row.kinds, row.kinds[0]) if row.closed else row.kinds,
         piles=np.append(index, index[:1]) if row.closed else index,
         piece=-1,
         toe=lowest(pile.toe for pile in piles),
@@ -91,11 +94,12 @@ def lowest(levels: Iterable[float | None]) -> float | None:
 def _drawn_line(piece: WallPiece, index: int, points: Floats, thickness: float | None) -> WallLine:
     step = np.hypot(*np.diff(points, axis=0).T) > 1e-6
     thick = thickness if thickness is not None else piece.thickness
+    reach = PLAIN_REACH if thick is None else max(1.3 * thick, 0.3)
     return WallLine(
         points=points[np.append(True, step)],
         kind=piece.kind,
         thickness=thick,
-        reach=PLAIN_REACH if thick is None else max(1.3 * thick, 0.3),
+        reach=(reach, reach),
         piles=NO_PILES,
         piece=index,
         toe=piece.toe,

@@ -49,7 +49,7 @@ def post(
     spacing: float,
     width: float | None = None,
 ) -> RealMember:
-    """One real king post: modulus (kPa), area (m2), second moment across the wall (m4), spacing and flange width (m)."""
+    """One real king post: modulus (kPa), area (m2), second moment across the wall (m4), spacing, flange width (m)."""
     require_positive(E, "modulus E", "kPa")
     area = require_positive(A, "area A", "m2")
     return RealMember(

@@ -20,7 +20,7 @@ TURNS = ("left", "right", "up", "down")
 def spatial_figure(definition: SectionDefinition, proposal: Proposal, site: Site) -> Html:
     """Real and implied side by side, with what was counted in each."""
     both = scenes(definition, proposal, site)
-    if not both.real or not both.implied:
+    if not both.walls:
         return tag("p", "No three-dimensional view: the section has no wall that could be drawn.", class_="none")
     scale = common_scale((*both.real, *both.implied))
     pictures = (

@@ -55,14 +55,7 @@ def report_page(proposal: Proposal, definitions: Sequence[SectionDefinition], si
         _asset("sheet.js") + _asset("spatial.js"),
         _asset("drawing.css") + _asset("sheet.css") + output_rules(proposal),
     )
-    head = tag(
-        "head",
-        tag("meta", charset="utf-8"),
-        tag("meta", name="viewport", content="width=device-width, initial-scale=1"),
-        tag("meta", http_equiv="Content-Security-Policy", content=_policy(script)),
-        tag("title", f"{name}: sections proposed"),
-        Html(f"<style>\n{css}</style>"),
-    )
+    head = _head(name, script, css)
     body = tag(
         "body",
         tag("a", "Skip to the decision", href="#decision", class_="skip"),
@@ -74,6 +67,17 @@ def report_page(proposal: Proposal, definitions: Sequence[SectionDefinition], si
         Html(f"<script>{script}</script>"),
     )
     return f'<!DOCTYPE html>\n<html lang="en">\n{head}\n{body}\n</html>\n'
+
+
+def _head(name: str, script: str, css: str) -> Html:
+    return tag(
+        "head",
+        tag("meta", charset="utf-8"),
+        tag("meta", name="viewport", content="width=device-width, initial-scale=1"),
+        tag("meta", http_equiv="Content-Security-Policy", content=_policy(script)),
+        tag("title", f"{name}: sections proposed"),
+        Html(f"<style>\n{css}</style>"),
+    )
 
 
 def _sheets(

@@ -1,7 +1,7 @@
-"""The two scenes of a section: what is really there around the cut, and what the section implies, over the same length.
+"""The two scenes of a section: what is really there around the cut, and what the section implies, at like length.
 
-Coordinates of a scene: x along the cut as in the section, y level and square to it, z = level, m; for a ring x and y are
-taken from its axis.
+Coordinates of a scene: x along the cut as in the section, y level and square to it, z = level, m; for a ring x and
+y are taken from its axis.
 """
 
 from __future__ import annotations
@@ -30,6 +30,11 @@ class Scenes:
     implied: tuple[Solid, ...]
     half: float
     counts: tuple[tuple[str, int, int], ...]
+
+    @property
+    def walls(self) -> bool:
+        """Whether a wall stands in both."""
+        return all(any(solid.kind == "wall" for solid in scene) for scene in (self.real, self.implied))
 
 
 @dataclass(frozen=True, kw_only=True)

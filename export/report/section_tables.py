@@ -58,7 +58,7 @@ def smear_table(definition: SectionDefinition) -> Html:
                 ]
             )
     heads = ["Member", "Quantity", "#One real member", "#Factor", "#Section", "Factor is the product of", "Source"]
-    return table("Real member to section", heads, rows)
+    return table(f"{definition.id}: real member to section", heads, rows)
 
 
 def _factor_parts(parts: SmearParts) -> str:
@@ -92,7 +92,7 @@ def back_table(definition: SectionDefinition) -> Html:
                 ]
             )
     heads = ["Member", "Analysis result", "#Times", "Gives", "Also gives", "Valid if"]
-    return table("Section back to real member", heads, rows)
+    return table(f"{definition.id}: section back to real member", heads, rows)
 
 
 def load_table(definition: SectionDefinition) -> Html:
@@ -113,7 +113,7 @@ def load_table(definition: SectionDefinition) -> Html:
                 source_list(load.sources, 2),
             ]
         )
-    return table("Loads", ["Load", "Kind", "#Real", "#Section", "Alternatives", "Source"], rows)
+    return table(f"{definition.id}: loads", ["Load", "Kind", "#Real", "#Section", "Alternatives", "Source"], rows)
 
 
 def stage_table(definition: SectionDefinition) -> Html:
@@ -140,7 +140,9 @@ def stage_table(definition: SectionDefinition) -> Html:
             ]
         )
     return table(
-        "Construction stages", ["Stage", "What", "#Dig level", "Members and loads", "Drainage", "Standing"], rows
+        f"{definition.id}: construction stages",
+        ["Stage", "What", "#Dig level", "Members and loads", "Drainage", "Standing"],
+        rows,
     )
 
 
@@ -151,7 +153,7 @@ def material_table(definition: SectionDefinition) -> Html:
         given = [_field(material, key) for key in SYMBOLS if getattr(material, key) is not None]
         missing = [SYMBOLS.get(key, (key, ""))[0] for key, how in material.standing.items() if how == "missing"]
         rows.append([name, material.kind, "; ".join(given) or "no value", ", ".join(missing) or "none named"])
-    return table("Materials: value and standing", ["Material", "Kind", "Values", "Missing"], rows)
+    return table(f"{definition.id}: materials: value and standing", ["Material", "Kind", "Values", "Missing"], rows)
 
 
 def _field(material: SectionMaterial, key: str) -> str:
@@ -184,7 +186,7 @@ def criteria_table(definition: SectionDefinition) -> Html:
             ]
         )
     heads = ["Criterion", "Output and wall", "Mechanism", "Band", "In words", "Inputs", "Basis, reference"]
-    return table("Criteria", heads, rows, "criteria")
+    return table(f"{definition.id}: criteria", heads, rows, "criteria")
 
 
 def _input(value: str | float | None) -> str:
@@ -194,8 +196,8 @@ def _input(value: str | float | None) -> str:
 def balance_tables(definition: SectionDefinition) -> Html:
     """Horizontal and vertical balance."""
     sides = (
-        ("Horizontal balance, positive with x", definition.balance.horizontal),
-        ("Vertical balance, positive down", definition.balance.vertical),
+        (f"{definition.id}: horizontal balance, positive with x", definition.balance.horizontal),
+        (f"{definition.id}: vertical balance, positive down", definition.balance.vertical),
     )
     return join(
         table(caption, ["Force", "#Value"], [[line.text, figure(line.value, line.unit)] for line in lines])
@@ -228,7 +230,7 @@ def implied_table(definition: SectionDefinition) -> Html:
         "In the inputs",
         "Reading the outputs",
     ]
-    return table("Real and implied", heads, rows)
+    return table(f"{definition.id}: real and implied", heads, rows)
 
 
 def actions_table(definition: SectionDefinition) -> Html:
@@ -237,4 +239,4 @@ def actions_table(definition: SectionDefinition) -> Html:
         [one.name, figure(one.size, one.unit) if one.size is not None else "size not worked out", one.at]
         for one in definition.actions_without_twin
     ]
-    return table("Actions with no 2D twin", ["Action", "#Size", "Where"], rows)
+    return table(f"{definition.id}: actions with no 2D twin", ["Action", "#Size", "Where"], rows)

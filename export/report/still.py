@@ -23,6 +23,7 @@ LIFT = 0.08
 PAPER, INK = (253, 252, 247), (27, 38, 49)
 ACCENT = (11, 90, 104)
 TONES = 8
+COLUMNS, ROWS = np.arange(WIDTH) + 0.5, (np.arange(HEIGHT) + 0.5)[:, None]
 PAPER_INDEX, INK_INDEX, FIRST_PLAIN, FIRST_MARKED = 0, 1, 2, 2 + TONES
 
 
@@ -65,24 +66,22 @@ class Sheet:
         self.index = np.full((HEIGHT, WIDTH), PAPER_INDEX, dtype=np.uint8)
         self.depth = np.full((HEIGHT, WIDTH), -np.inf)
 
-    def face(self, ring: Floats, index: int) -> None:
+    def face(self, ring: list[list[float]], index: int) -> None:
         """Fill a convex ring given in pixels and depth."""
-        low = np.maximum(np.floor(ring[:, :2].min(axis=0)).astype(int), 0)
-        high = np.minimum(np.ceil(ring[:, :2].max(axis=0)).astype(int) + 1, (WIDTH, HEIGHT))
-        plane = _plane(ring)
-        if plane is None or (high <= low).any():
+        xs, ys = [p[0] for p in ring], [p[1] for p in ring]
+        left, right = max(int(min(xs)), 0), min(int(max(xs)) + 2, WIDTH)
+        top, foot = max(int(min(ys)), 0), min(int(max(ys)) + 2, HEIGHT)
+        plane, turn = _plane(ring)
+        if turn == 0 or right <= left or foot <= top:
             return
-        x = np.arange(low[0], high[0]) + 0.5
-        y = (np.arange(low[1], high[1]) + 0.5)[:, None]
-        inside = np.ones((high[1] - low[1], high[0] - low[0]), dtype=bool)
-        turn = np.sign(_area(ring))
-        for (ax, ay, _), (bx, by, _) in zip(ring, np.roll(ring, -1, axis=0), strict=True):
-            inside &= turn * ((bx - ax) * (y - ay) - (by - ay) * (x - ax)) >= 0
-        z = plane[0] * x + plane[1] * y + plane[2]
-        area = (slice(low[1], high[1]), slice(low[0], high[0]))
-        seen = inside & (z > self.depth[area])
-        self.depth[area][seen] = z[seen]
-        self.index[area][seen] = index
+        x, y = COLUMNS[left:right], ROWS[top:foot]
+        area = (slice(top, foot), slice(left, right))
+        seen = plane[0] * x + plane[1] * y + plane[2]
+        hit = seen > self.depth[area]
+        for a, b in zip(ring, ring[1:] + ring[:1], strict=True):
+            hit &= turn * ((b[0] - a[0]) * (y - a[1]) - (b[1] - a[1]) * (x - a[0])) >= 0
+        np.copyto(self.depth[area], seen, where=hit)
+        self.index[area][hit] = index
 
     def edge(self, a: Floats, b: Floats) -> None:
         """Draw a line two pixels wide where nothing stands before it."""
@@ -90,23 +89,22 @@ class Sheet:
         line = a + np.linspace(0.0, 1.0, n)[:, None] * (b - a)
         xs, ys = np.floor(line[:, 0]).astype(int), np.floor(line[:, 1]).astype(int)
         for dx, dy in ((0, 0), (1, 0), (0, 1)):
-            x, y = np.clip(xs + dx, 0, WIDTH - 1), np.clip(ys + dy, 0, HEIGHT - 1)
+            x = np.minimum(np.maximum(xs + dx, 0), WIDTH - 1)
+            y = np.minimum(np.maximum(ys + dy, 0), HEIGHT - 1)
             seen = line[:, 2] + LIFT >= self.depth[y, x]
             self.index[y[seen], x[seen]] = INK_INDEX
 
 
-def _area(ring: Floats) -> float:
-    x, y = ring[:, 0], ring[:, 1]
-    return float(x @ np.roll(y, -1) - y @ np.roll(x, -1))
-
-
-def _plane(ring: Floats) -> Floats | None:
-    """Depth over the sheet as a x + b y + c; None for a face seen edge-on."""
-    for n in range(2, len(ring)):
-        matrix = np.column_stack((ring[[0, n - 1, n], :2], np.ones(3)))
-        if abs(np.linalg.det(matrix)) > 1e-3:
-            return np.asarray(np.linalg.solve(matrix, ring[[0, n - 1, n], 2]))
-    return None
+def _plane(ring: list[list[float]]) -> tuple[tuple[float, float, float], float]:
+    """Depth over the sheet as a x + b y + c, and the sense of the ring; the sense is 0 for a face seen edge-on."""
+    (ax, ay, az), *rest = ring
+    for (bx, by, bz), (cx, cy, cz) in zip(rest, rest[1:], strict=False):
+        ux, uy, uz, vx, vy, vz = bx - ax, by - ay, bz - az, cx - ax, cy - ay, cz - az
+        area = ux * vy - uy * vx
+        if abs(area) > 1e-3:
+            a, b = (uz * vy - uy * vz) / area, (ux * vz - uz * vx) / area
+            return (a, b, az - a * ax - b * ay), 1.0 if area > 0 else -1.0
+    return (0.0, 0.0, 0.0), 0.0
 
 
 def still_picture(solids: Sequence[Solid], scale: Scale) -> str:
@@ -116,21 +114,24 @@ def still_picture(solids: Sequence[Solid], scale: Scale) -> str:
     pixels = [scale.pixels(points) for points in seen]
     for solid, points, dots in zip(solids, seen, pixels, strict=True):
         first = FIRST_MARKED if solid.marked else FIRST_PLAIN
+        near, plain = points.tolist(), dots.tolist()
         for face in solid.faces:
-            tone = _tone(points[list(face)])
+            tone = _tone([near[n] for n in face[:3]])
             if tone is not None:
-                sheet.face(dots[list(face)], first + tone)
+                sheet.face([plain[n] for n in face], first + tone)
     for solid, dots in zip(solids, pixels, strict=True):
         for a, b in solid.edges:
             sheet.edge(dots[a], dots[b])
     return "data:image/png;base64," + base64.b64encode(_png(sheet.index)).decode()
 
 
-def _tone(ring: Floats) -> int | None:
+def _tone(corner: list[list[float]]) -> int | None:
     """Lightest where a face looks at the eye; None for a face without area."""
-    normal = np.cross(ring[1] - ring[0], ring[2] - ring[0])
-    size = float(np.linalg.norm(normal))
-    return None if size < 1e-9 else min(int(abs(float(normal[2])) / size * TONES), TONES - 1)
+    (ax, ay, az), (bx, by, bz), (cx, cy, cz) = corner
+    ux, uy, uz, vx, vy, vz = bx - ax, by - ay, bz - az, cx - ax, cy - ay, cz - az
+    nx, ny, nz = uy * vz - uz * vy, uz * vx - ux * vz, ux * vy - uy * vx
+    size = (nx * nx + ny * ny + nz * nz) ** 0.5
+    return None if size < 1e-9 else min(int(abs(nz) / size * TONES), TONES - 1)
 
 
 def _palette() -> bytes:
@@ -154,6 +155,6 @@ def _png(index: NDArray[np.uint8]) -> bytes:
         b"\x89PNG\r\n\x1a\n"
         + chunk(b"IHDR", head)
         + chunk(b"PLTE", _palette())
-        + chunk(b"IDAT", zlib.compress(rows, 9))
+        + chunk(b"IDAT", zlib.compress(rows, 6))
         + chunk(b"IEND", b"")
     )

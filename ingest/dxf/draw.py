@@ -94,14 +94,14 @@ class Drawer:
             left = self._one(item, entity, chunk)
             if left is not None:
                 chunk.why[item] = left
-        parts: dict[str, list[Part]] = {item: [] for item, _ in entities}
-        for part in self._place_all(chunk):
-            parts[part.source.item].append(part)
+        parts = list(self._place_all(chunk))
         for item, (outline, hidden_inside) in chunk.clipped.items():
-            parts[item] = clip_parts(parts[item], outline, hidden_inside)
-        for item, own in parts.items():
-            self.drawn.parts += own
-            if not own:
+            shown = clip_parts((part for part in parts if part.source.item == item), outline, hidden_inside)
+            parts = [part for part in parts if part.source.item != item] + shown
+        self.drawn.parts += parts
+        made = {part.source.item for part in parts}
+        for item, _ in entities:
+            if item not in made:
                 kind, reason = chunk.why.get(item, DRAWS_NOTHING)
                 self.drawn.aside[kind][reason] += 1
                 self.drawn.examples.setdefault(reason, item)

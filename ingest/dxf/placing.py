@@ -4,13 +4,14 @@ from __future__ import annotations
 
 import math
 from collections.abc import Sequence
-from typing import Literal, NamedTuple
+from itertools import accumulate, pairwise
+from typing import Any, Literal, NamedTuple
 
 import numpy as np
 
 from ingest.dxf.curves import SAGITTA, Floats, flatten_conic
 from ingest.dxf.sketch import OUT_OF_REACH, Batch, Sketch
-from ingest.model import Part, Point3
+from ingest.model import Form, Part, Point3
 from ingest.trail import Source
 
 FARTHEST = 1e8
@@ -97,6 +98,7 @@ class _Mover:
 
     def __init__(self, at: Placing, file: str) -> None:
         self.at, self.file = at, file
+        self.source = Source(file=file, item=at.item) if at.item else None
         (a, b, _), (c, d, _), (_, _, self.rise_scale) = at.matrix
         self.plan_scale = math.sqrt(abs(a * d - b * c))
 
@@ -114,18 +116,19 @@ class _Mover:
         return self._make(sketch, "point", points[:1])
 
     def _line(self, sketch: Sketch, form: Literal["path", "outline"], points: tuple[Point3, ...]) -> Part | str:
+        more: dict[str, Any] = {}
+        if len(sketch.rings) > 1:
+            bounds = list(accumulate(sketch.rings))
+            more["holes"] = tuple(points[a:b] for a, b in pairwise(bounds))
+            points = points[: bounds[0]]
         closed = sketch.closed
-        outer = sketch.rings[0] if sketch.rings else len(points)
-        ring, rest = points[:outer], points[outer:]
-        if len(ring) > 2 and ring[0] == ring[-1]:
-            ring, closed = ring[:-1], True
-        if len(ring) < 2 or (len(ring) == 2 and ring[0] == ring[1]):
+        if len(points) > 2 and points[0] == points[-1]:
+            points, closed = points[:-1], True
+        if len(points) < 2 or (len(points) == 2 and points[0] == points[1]):
             return "zero length"
-        holes: list[tuple[Point3, ...]] = []
-        for count in sketch.rings[1:]:
-            holes.append(rest[:count])
-            rest = rest[count:]
-        return self._make(sketch, form, ring, closed=closed and len(ring) > 2, holes=tuple(holes))
+        if closed and len(points) > 2:
+            more["closed"] = True
+        return self._make(sketch, form, points, **more)
 
     def _conic(self, sketch: Sketch, points: tuple[Point3, ...]) -> Part | str:
         centre, a, b = points
@@ -143,7 +146,7 @@ class _Mover:
         span = sketch.span or (0.0, math.tau)
         chords = flatten_conic(np.array(centre), np.array(along), np.array(across), span, SAGITTA)
         path = tuple((x, y, z) for x, y, z in chords.tolist())
-        tags = {"arc_centre": f"{centre[0]!r} {centre[1]!r}", "arc_radius": repr(radius)} if round_ else None
+        tags = {"arc_centre": f"{centre[0]!r} {centre[1]!r}", "arc_radius": repr(radius)} if round_ else {}
         return self._make(sketch, "path", path[:-1] if whole else path, closed=whole, tags=tags)
 
     def _text(self, sketch: Sketch, points: tuple[Point3, ...]) -> Part | str:
@@ -156,39 +159,25 @@ class _Mover:
             tags["measured"] = f"{sketch.measure * self.plan_scale:.9g}"
         return self._make(sketch, "text", points[:1], tags=tags)
 
-    def _make(
-        self,
-        sketch: Sketch,
-        form: Literal["path", "outline", "point", "circle", "text"],
-        points: tuple[Point3, ...],
-        *,
-        closed: bool = False,
-        holes: tuple[tuple[Point3, ...], ...] = (),
-        radius: float | None = None,
-        tags: dict[str, str] | None = None,
-    ) -> Part:
+    def _make(self, sketch: Sketch, form: Form, points: tuple[Point3, ...], **more: Any) -> Part:
+        """A part with what differs from a plain line only: most figures are plain, and there are many of them."""
         at = self.at
-        bottom = top = None
+        layer = at.layer if at.item and sketch.layer == "0" else sketch.layer
         if sketch.rise:
-            edges = sorted((points[0][2], points[0][2] + sketch.rise * self.rise_scale))
-            bottom, top = edges[0], edges[1]
-        return Part(
-            source=Source(file=self.file, item=at.item or sketch.item),
-            form=form,
-            points=points,
-            layer=at.layer if at.item and sketch.layer == "0" else sketch.layer,
-            cls=sketch.cls,
-            name=sketch.name,
-            closed=closed,
-            holes=holes,
-            radius=radius,
-            thickness=sketch.width * self.plan_scale if sketch.width else None,
-            z_bottom=bottom,
-            z_top=top,
-            text=sketch.text,
-            tags={**(at.tags or {}), **(sketch.tags or {}), **(tags or {})},
-            evidence=at.evidence or sketch.evidence,
-        )
+            ends = points[0][2], points[0][2] + sketch.rise * self.rise_scale
+            more["z_bottom"], more["z_top"] = min(ends), max(ends)
+        if sketch.width:
+            more["thickness"] = sketch.width * self.plan_scale
+        if at.tags or sketch.tags:
+            more["tags"] = {**(at.tags or {}), **(sketch.tags or {}), **more.get("tags", {})}
+        if sketch.name:
+            more["name"] = sketch.name
+        if sketch.text:
+            more["text"] = sketch.text
+        if at.evidence or sketch.evidence:
+            more["evidence"] = at.evidence or sketch.evidence
+        source = self.source or Source(file=self.file, item=sketch.item)
+        return Part(source=source, form=form, points=points, layer=layer, cls=sketch.cls, **more)
 
 
 def _arm(centre: Point3, end: Point3) -> Point3:

@@ -46,27 +46,33 @@ def read_dxf(
     Raises:
         InputError: When the file cannot be read, is cut short or damaged, or holds more than memory can.
     """
+    with quiet():
+        return _read(path, length_unit, ignore_layers, progress)
+
+
+def _read(
+    path: Path, length_unit: str | None, ignore_layers: tuple[str, ...], progress: Callable[[int], None] | None
+) -> FileParts:
     data = read_bytes(path)
     tags = check_bytes(data, path.name)
     raw, header = list_raw(tags), _Header(tags)
     sha256 = hashlib.sha256(data).hexdigest()
     del data, tags
-    with quiet():
-        loaded = load_document(path)
-        account = open_account(loaded.document, raw)
-        entities = account.entities
-        unit = find_unit(
-            path.name,
-            header.units,
-            length_unit,
-            header.shown_as,
-            take_measures(loaded.document, [entity for _, entity in account.named]),
-        )
-        layers = LayerTable(loaded.document, ignore_layers)
-        drawer = Drawer(path.name, unit.metres, loaded.document, layers)
-        # from here on only the account holds the figures, so that memory shrinks while they are drawn
-        loaded.document.modelspace().entity_space.clear()
-        drawn = drawer.draw(account.named, progress)
+    loaded = load_document(path)
+    account = open_account(loaded.document, raw)
+    entities = account.entities
+    unit = find_unit(
+        path.name,
+        header.units,
+        length_unit,
+        header.shown_as,
+        take_measures(loaded.document, [entity for _, entity in account.named]),
+    )
+    layers = LayerTable(loaded.document, ignore_layers)
+    drawer = Drawer(path.name, unit.metres, loaded.document, layers)
+    # from here on only the account holds the figures, so that memory shrinks while they are drawn
+    loaded.document.modelspace().entity_space.clear()
+    drawn = drawer.draw(account.named, progress)
     drawn.aside["ignored"].update(account.aside)
     losses = report_losses(account, loaded, drawn, drawer.book)
     findings = report_findings(path.name, account, raw, loaded, drawn, drawer)

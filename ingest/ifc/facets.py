@@ -16,7 +16,7 @@ Floats = NDArray[np.float64]
 Face = tuple[int, ...]
 
 
-@dataclass(frozen=True, slots=True)
+@dataclass(slots=True)
 class Facets:
     """Points (n, 3) and faces as rings of point numbers; holes in faces are left out."""
 

@@ -19,6 +19,8 @@ Entity = Any
 Floats = NDArray[np.float64]
 Triple = tuple[float, float, float]
 
+_UP: Triple = (0.0, 0.0, 1.0)
+_EAST: Triple = (1.0, 0.0, 0.0)
 NO_FRAME = 0
 """Row of the identity, for an omitted placement."""
 
@@ -33,8 +35,8 @@ class FrameTable:
         self._rows: dict[int, int] = {}
         self._directions: dict[int, Triple] = {}
         self._origins: list[Triple] = [(0.0, 0.0, 0.0)]
-        self._ups: list[Triple] = [(0.0, 0.0, 1.0)]
-        self._firsts: list[Triple] = [(1.0, 0.0, 0.0)]
+        self._ups: list[Triple] = [_UP]
+        self._firsts: list[Triple] = [_EAST]
 
     def row(self, frame: Entity | None) -> int:
         """Row of an IfcAxis2Placement2D, 3D or IfcAxis1Placement; `NO_FRAME` for None."""
@@ -42,23 +44,24 @@ class FrameTable:
             return NO_FRAME
         key = frame.id()
         known = self._rows.get(key)
-        if known is not None:
-            return known
+        if known is None:
+            known = self._rows[key] = self.append(frame)
+        return known
+
+    def append(self, frame: Entity) -> int:
+        """Row of a frame that is not shared, so not looked up."""
         kind = frame.is_a()
-        flat = kind == "IfcAxis2Placement2D"
-        up = None if flat else frame.get_argument(AXIS)
-        first = (
-            None
-            if kind == "IfcAxis1Placement"
-            else frame.get_argument(REF_DIRECTION_2D if flat else REF_DIRECTION)
-        )
-        row = self.add(
-            triple(frame.get_argument(LOCATION).get_argument(COORDINATES)),
-            (0.0, 0.0, 1.0) if up is None else self.direction(up),
-            (1.0, 0.0, 0.0) if first is None else self.direction(first),
-        )
-        self._rows[key] = row
-        return row
+        up = first = None
+        if kind == "IfcAxis2Placement2D":
+            first = frame.get_argument(REF_DIRECTION_2D)
+        else:
+            up = frame.get_argument(AXIS)
+            if kind != "IfcAxis1Placement":
+                first = frame.get_argument(REF_DIRECTION)
+        self._origins.append(triple(frame.get_argument(LOCATION).get_argument(COORDINATES)))
+        self._ups.append(_UP if up is None else self.direction(up))
+        self._firsts.append(_EAST if first is None else self.direction(first))
+        return len(self._firsts) - 1
 
     def add(self, origin: Triple, up: Triple, first: Triple) -> int:
         """Append a frame given by its numbers."""
@@ -77,11 +80,7 @@ class FrameTable:
 
     def is_plain(self, row: int) -> bool:
         """True for a frame at the origin that is not turned."""
-        return (self._origins[row], self._ups[row], self._firsts[row]) == (
-            (0.0, 0.0, 0.0),
-            (0.0, 0.0, 1.0),
-            (1.0, 0.0, 0.0),
-        )
+        return (self._origins[row], self._ups[row], self._firsts[row]) == ((0.0, 0.0, 0.0), _UP, _EAST)
 
     def matrix(self, row: int) -> Floats:
         """One frame as (4, 4); `matrices` for many."""
@@ -100,7 +99,7 @@ def triple(numbers: tuple[float, ...]) -> Triple:
         ValueError: If there are fewer than two.
     """
     if len(numbers) == 3:
-        return numbers  # type: ignore[return-value]
+        return numbers
     x, y = numbers
     return (x, y, 0.0)
 

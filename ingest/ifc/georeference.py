@@ -10,7 +10,7 @@ import numpy as np
 from numpy.typing import NDArray
 
 from ingest.ifc.frames import FrameTable
-from ingest.ifc.properties import UNREADABLE
+from ingest.ifc.unreadable import UNREADABLE
 from ingest.ifc.relations import of_type
 from ingest.ifc.units import ProjectUnits, unit_factor, unit_name
 

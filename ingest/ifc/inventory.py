@@ -14,11 +14,12 @@ from ingest.ifc.elements import Element
 from ingest.ifc.frames import FrameTable
 from ingest.ifc.loads import items_of_actions, load_tags
 from ingest.ifc.placement import PlacementTable
-from ingest.ifc.properties import UNREADABLE, PropertyTable
+from ingest.ifc.properties import PropertyTable
 from ingest.ifc.relations import MaterialUse, Relations
 from ingest.ifc.representations import choose
 from ingest.ifc.solids import ItemReader
 from ingest.ifc.units import read_units
+from ingest.ifc.unreadable import UNREADABLE
 from ingest.trail import Source
 
 Entity: TypeAlias = Any
@@ -132,15 +133,17 @@ class Inventory:
         if product.group == "load" and (item := self._loads.get(product.key)) is not None:
             shape = shape or item.get_argument(REPRESENTATION)
             placement = placement or item.get_argument(PLACEMENT)
-        product.placement = placement_row = self.placements.row(placement)
+        product.placement = row = self.placements.row(placement)
         chosen = choose(shape, self.items, product.group != "plate")
-        first = len(self.bodies)
-        ends = [self.bodies.add(d, placement_row) for d in (chosen.bodies, chosen.axes, chosen.footprints)]
-        product.rows = (first, ends[0], ends[1], ends[2])
+        bodies = self.bodies
+        first, end = len(bodies), bodies.add(chosen.bodies, row)
+        axes_end = bodies.add(chosen.axes, row) if chosen.axes else end
+        product.rows = (first, end, axes_end, bodies.add(chosen.footprints, row) if chosen.footprints else axes_end)
         product.reason, product.fault = chosen.reason, chosen.fault
-        for opening in self.openings_of(product):
-            if opening.rows is None:
-                self.describe(opening)
+        if product.group == "plate":
+            for opening in self.openings_of(product):
+                if opening.rows is None:
+                    self.describe(opening)
 
     def element(self, product: Product) -> Element:
         """The element of a product, with its attributes and properties; bodies are added by the caller."""
@@ -165,7 +168,7 @@ class Inventory:
             value = entity.get_argument(position)
             if value:
                 tags[name] = str(value)
-        self._add_kind(entity, own_type, tags)
+        self._add_kind(product, own_type, tags)
         place = relations.place(key)
         if place is not None:
             tags["Storey" if place[1] else "ContainedIn"] = place[0]
@@ -180,22 +183,21 @@ class Inventory:
         self.properties.add_tags(key, tags)
         return tags
 
-    def _add_kind(self, entity: Entity, own_type: Entity | None, tags: dict[str, str]) -> None:
+    def _add_kind(self, product: Product, own_type: Entity | None, tags: dict[str, str]) -> None:
         """Predefined type of the occurrence, else of its type, and the type's name."""
-        kind = self._predefined(entity)
+        kind = self._predefined(product.entity, product.cls)
         if own_type is not None:
             name = own_type.get_argument(NAME)
             if name:
                 tags["TypeName"] = str(name)
             if kind in (None, "NOTDEFINED"):
-                kind = self._predefined(own_type) or kind
+                kind = self._predefined(own_type, own_type.is_a()) or kind
             if kind == "USERDEFINED":
                 tags.setdefault("ElementType", str(getattr(own_type, "ElementType", None) or ""))
         if kind:
             tags["PredefinedType"] = kind
 
-    def _predefined(self, entity: Entity) -> str | None:
-        name = entity.is_a()
+    def _predefined(self, entity: Entity, name: str) -> str | None:
         if name not in self._kind_positions:
             names = list(entity.get_attribute_names())
             self._kind_positions[name] = next((i for i, n in enumerate(names) if n in _KIND_ATTRIBUTES), None)

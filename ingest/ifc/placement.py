@@ -2,7 +2,7 @@
 
 from __future__ import annotations
 
-from typing import Any
+from typing import Any, TypeAlias
 
 import numpy as np
 from numpy.typing import NDArray
@@ -10,9 +10,10 @@ from numpy.typing import NDArray
 from ingest.ifc.attributes import RELATIVE_PLACEMENT, RELATIVE_TO
 from ingest.ifc.frames import NO_FRAME, FrameTable
 from ingest.ifc.grids import grid_frame
+from ingest.ifc.unreadable import UNREADABLE
 
-Entity = Any
-Floats = NDArray[np.float64]
+Entity: TypeAlias = Any
+Floats: TypeAlias = NDArray[np.float64]
 
 
 class PlacementTable:
@@ -52,39 +53,27 @@ class PlacementTable:
         self._parents.append(0)
         self._frame_rows.append(NO_FRAME)
         try:
-            self._frame_rows[row] = self._own_frame(placement)
-            parent = self._parent(placement)
+            if placement.is_a() == "IfcLocalPlacement":
+                self._frame_rows[row] = self._frames.append(placement.get_argument(RELATIVE_PLACEMENT))
+                parent = placement.get_argument(RELATIVE_TO)
+            else:
+                self._frame_rows[row], parent = self._other(placement)
             if parent is not None:
                 parent.id()
             return row, parent
-        except (AttributeError, TypeError, ValueError, RuntimeError, IndexError, KeyError) as error:
+        except UNREADABLE as error:
             self.unread[row] = str(error)[:80] or type(error).__name__
         return row, None
 
-    def _own_frame(self, placement: Entity) -> int:
+    def _other(self, placement: Entity) -> tuple[int, Entity | None]:
         kind = placement.is_a()
-        if kind == "IfcLocalPlacement":
-            return self._frames.row(placement.get_argument(RELATIVE_PLACEMENT))
+        parent = getattr(placement, "PlacementRelTo", None)
         if kind == "IfcGridPlacement":
-            return self._frames.add(*grid_frame(placement))
+            return self._frames.add(*grid_frame(placement)), parent or _placement_of_grid(placement)
         spare = getattr(placement, "CartesianPosition", None)
         if spare is None:
             raise ValueError(f"{kind} without a Cartesian position")
-        return self._frames.row(spare)
-
-    @staticmethod
-    def _parent(placement: Entity) -> Entity | None:
-        kind = placement.is_a()
-        if kind == "IfcLocalPlacement":
-            return placement.get_argument(RELATIVE_TO)
-        if kind == "IfcGridPlacement":
-            own = getattr(placement, "PlacementRelTo", None)
-            if own is not None:
-                return own
-            axis = placement.PlacementLocation.IntersectingAxes[0]
-            grids = [*axis.PartOfU, *axis.PartOfV, *axis.PartOfW]
-            return grids[0].ObjectPlacement if grids else None
-        return None
+        return self._frames.append(spare), parent
 
     def solve(self) -> tuple[Floats, NDArray[np.bool_]]:
         """World matrices (n, 4, 4) in file units, and which rows cannot be placed (a cycle, or an unread link).
@@ -106,3 +95,9 @@ class PlacementTable:
                 bad[live] |= bad[ahead]
                 up[live] = up[ahead]
         return world, bad | (up != 0)
+
+
+def _placement_of_grid(placement: Entity) -> Entity | None:
+    axis = placement.PlacementLocation.IntersectingAxes[0]
+    grids = [*axis.PartOfU, *axis.PartOfV, *axis.PartOfW]
+    return grids[0].ObjectPlacement if grids else None

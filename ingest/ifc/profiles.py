@@ -4,8 +4,8 @@ from __future__ import annotations
 
 from collections.abc import Callable
 from dataclasses import dataclass
-from math import atan2, hypot, pi
-from typing import Any
+from math import atan2, hypot, inf, pi
+from typing import Any, TypeAlias
 
 import numpy as np
 from numpy.typing import NDArray
@@ -24,13 +24,13 @@ from ingest.ifc.section_shapes import (
     zed,
 )
 
-Entity = Any
-Floats = NDArray[np.float64]
-Ring = tuple[tuple[float, float], ...]
+Entity: TypeAlias = Any
+Floats: TypeAlias = NDArray[np.float64]
+Ring: TypeAlias = tuple[tuple[float, float], ...]
 DEEPEST = 8
 
 
-@dataclass(frozen=True, slots=True)
+@dataclass(slots=True)
 class Profile:
     """A cross-section in the coordinates of its sweep, lengths in the file's units.
 
@@ -163,9 +163,10 @@ class ProfileReader:
     def _read(self, profile: Entity, depth: int) -> Profile:
         kind = profile.is_a()
         name = profile.get_argument(PROFILE_NAME) or ""
-        if kind in ("IfcCircleProfileDef", "IfcRectangleProfileDef"):
-            sizes = [profile.get_argument(i) for i in range(3, 4 if kind == "IfcCircleProfileDef" else 5)]
-            return self._simple(profile, name, tuple(map(float, sizes)))
+        if kind == "IfcCircleProfileDef":
+            return self._simple("circle", profile, name, (profile.get_argument(3),))
+        if kind == "IfcRectangleProfileDef":
+            return self._simple("rectangle", profile, name, (profile.get_argument(3), profile.get_argument(4)))
         if kind == "IfcCircleHollowProfileDef":
             return self._hollow_circle(profile, name)
         if kind in ("IfcArbitraryClosedProfileDef", "IfcArbitraryProfileDefWithVoids"):
@@ -179,11 +180,11 @@ class ProfileReader:
             raise ValueError(f"{kind} is not read")
         return self._shaped(profile, name, *shaper)
 
-    def _simple(self, profile: Entity, name: str, size: tuple[float, ...]) -> Profile:
-        if not all(0 < s < float("inf") for s in size):
+    def _simple(self, kind: str, profile: Entity, name: str, size: tuple[float, ...]) -> Profile:
+        if not (0 < size[0] < inf and 0 < size[-1] < inf):
             raise ValueError(f"profile #{profile.id()} has size {size}")
         x, y, u, v = self._position(profile)
-        return Profile("circle" if len(size) == 1 else "rectangle", name, (x, y), (u, v), size)
+        return Profile(kind, name, (x, y), (u, v), size)
 
     def _position(self, profile: Entity) -> tuple[float, float, float, float]:
         place = profile.get_argument(PROFILE_POSITION)

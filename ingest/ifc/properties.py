@@ -8,6 +8,7 @@ from typing import Any, TypeAlias
 
 from ingest.ifc.attributes import NAME, RELATED_OBJECTS, RELATING
 from ingest.ifc.units import ProjectUnits, unit_factor
+from ingest.ifc.unreadable import UNREADABLE
 
 Entity: TypeAlias = Any
 Tags: TypeAlias = dict[str, str]
@@ -30,8 +31,6 @@ _KIND_MEASURES = {
     "LINEARFORCEUNIT": "IfcLinearForceMeasure",
     "PLANARFORCEUNIT": "IfcPlanarForceMeasure",
 }
-UNREADABLE = (AttributeError, TypeError, ValueError, RuntimeError, IndexError, KeyError)
-"""What damaged attributes raise: missing, of the wrong kind, or no longer there."""
 
 
 class PropertyTable:
@@ -129,21 +128,33 @@ class PropertyTable:
 
     def _properties(self, properties: Iterable[Entity], found: Tags, prefix: str = "") -> None:
         for one in properties:
-            kind = one.is_a()
-            name = intern(prefix + (one.get_argument(0) or ""))
-            if kind == "IfcPropertySingleValue":
-                value = one.get_argument(2)
-                if value is not None:
-                    found[name] = self._text(value, one.get_argument(3))
-            elif kind == "IfcPropertyEnumeratedValue":
-                found[name] = ", ".join(self._text(v, None) for v in one.EnumerationValues or ())
-            elif kind == "IfcPropertyListValue":
-                found[name] = ", ".join(self._text(v, one.Unit) for v in one.ListValues or ())
-            elif kind == "IfcPropertyBoundedValue":
-                ends = (one.LowerBoundValue, one.UpperBoundValue)
-                found[name] = " to ".join("" if v is None else self._text(v, one.Unit) for v in ends)
-            elif kind == "IfcComplexProperty" and prefix.count(".") < 4:
-                self._properties(one.HasProperties, found, f"{name}.")
+            name = one.get_argument(0) or ""
+            if one.is_a() != "IfcPropertySingleValue":
+                self._other_property(one, prefix + name, found)
+                continue
+            value = one.get_argument(2)
+            if value is None:
+                continue
+            bare = value.get_argument(0)
+            if isinstance(bare, str):
+                text = bare
+            elif isinstance(bare, float):
+                text = self._number(bare, value.is_a(), one.get_argument(3))
+            else:
+                text = str(bare).lower()
+            found[intern(prefix + name)] = text
+
+    def _other_property(self, one: Entity, name: str, found: Tags) -> None:
+        kind = one.is_a()
+        if kind == "IfcPropertyEnumeratedValue":
+            found[name] = ", ".join(self._text(v, None) for v in one.EnumerationValues or ())
+        elif kind == "IfcPropertyListValue":
+            found[name] = ", ".join(self._text(v, one.Unit) for v in one.ListValues or ())
+        elif kind == "IfcPropertyBoundedValue":
+            ends = (one.LowerBoundValue, one.UpperBoundValue)
+            found[name] = " to ".join("" if v is None else self._text(v, one.Unit) for v in ends)
+        elif kind == "IfcComplexProperty" and name.count(".") < 4:
+            self._properties(one.HasProperties, found, f"{name}.")
 
     def _quantities(self, quantities: Iterable[Entity], found: Tags) -> None:
         for one in quantities:
@@ -159,15 +170,16 @@ class PropertyTable:
     def _text(self, value: Entity, unit: Entity | None) -> str:
         bare = value.get_argument(0)
         if isinstance(bare, float):
-            factor = self._factor(value.is_a(), unit)
-            number = bare if factor is None else bare * factor
-            known = self._texts.get(number)
-            if known is None:
-                known = self._texts[number] = number_text(number)
-            return known
-        if isinstance(bare, bool):
-            return "true" if bare else "false"
-        return bare if isinstance(bare, str) else str(bare)
+            return self._number(bare, value.is_a(), unit)
+        return bare if isinstance(bare, str) else str(bare).lower()
+
+    def _number(self, bare: float, measure: str, unit: Entity | None) -> str:
+        factor = self._factor(measure, unit)
+        number = bare if factor is None else bare * factor
+        known = self._texts.get(number)
+        if known is None:
+            known = self._texts[number] = number_text(number)
+        return known
 
     def _factor(self, measure: str, unit: Entity | None) -> float | None:
         if unit is None:

@@ -15,7 +15,8 @@ from ingest.ifc.attributes import (
     RELATING_STRUCTURE,
     WHOLE,
 )
-from ingest.ifc.properties import UNREADABLE, number_text
+from ingest.ifc.properties import number_text
+from ingest.ifc.unreadable import UNREADABLE
 
 Entity = Any
 

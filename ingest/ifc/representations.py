@@ -6,7 +6,7 @@ from dataclasses import dataclass
 from typing import Any, TypeAlias
 
 from ingest.ifc.attributes import IDENTIFIER, REPRESENTATION_TYPE, REPRESENTATIONS
-from ingest.ifc.properties import UNREADABLE
+from ingest.ifc.unreadable import UNREADABLE
 from ingest.ifc.solids import Described, ItemReader, Line
 
 Entity: TypeAlias = Any

@@ -33,7 +33,7 @@ DEEPEST = 32
 """Items nested deeper than this are refused: they may go in a circle."""
 
 
-@dataclass(frozen=True, slots=True)
+@dataclass(slots=True)
 class HalfSpace:
     """A plane that cuts a body: what lies on the side of its normal stays when `keep_above`.
 
@@ -46,7 +46,7 @@ class HalfSpace:
     boundary_frame: int = NO_FRAME
 
 
-@dataclass(frozen=True, slots=True)
+@dataclass(slots=True)
 class Extrusion:
     """A profile moved along a vector, both in the coordinates of `frame`; cuts as in the coordinates of the item."""
 
@@ -57,7 +57,7 @@ class Extrusion:
     notes: tuple[str, ...] = ()
 
 
-@dataclass(frozen=True, slots=True)
+@dataclass(slots=True)
 class Sweep:
     """A profile or a disc moved along a curve (n, 3)."""
 
@@ -66,7 +66,7 @@ class Sweep:
     notes: tuple[str, ...] = ()
 
 
-@dataclass(frozen=True, slots=True)
+@dataclass(slots=True)
 class Line:
     """A bare curve (n, 3) or a single point (1, 3); `way` runs from the first to the second of two points."""
 

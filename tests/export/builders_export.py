@@ -1,7 +1,7 @@
 """Example objects for the export tests, written by hand: the rectangular first pit, and a pit that shows every mark.
 
-first pit: wall axis (100, 200) to (130, 220), 100 contiguous piles D 0.75 m at 1.00 m, one level of struts at -1.50, footing
-3.0 x 2.0 m behind the north wall. Figures: A = pi D^2/4 = 0.441786 m2, I = pi D^4/64 = 0.0155316 m4 (geometry);
+first pit: wall axis (100, 200) to (130, 220), 100 contiguous piles D 0.75 m at 1.00 m, one level of struts at -1.50,
+footing 3.0 x 2.0 m behind the north wall. Figures: A = pi D^2/4 = 0.441786 m2, I = pi D^4/64 = 0.0155316 m4 (geometry);
 E = 33e6 kPa (C30/37, EN 1992-1-1 table 3.1, recalled); CHS 508x16 A = pi (0.508^2 - 0.476^2)/4 = 0.0247306 m2,
 E = 210e6 kPa (EN 1993-1-1 cl. 3.2.6, recalled), so EA = 5193429.65 kN and at 5 m EA' = 1038685.93 kN/m.
 """
@@ -192,12 +192,11 @@ def wall() -> m.Wall:
 
 
 def member(kind: str, n: int, count: int, along: tuple[m.Along, ...], **more: object) -> m.Member:
-    given: dict[str, object] = dict(
-        spacing=5.0, spacing_range=None, inclination=0.0, skew=0.0, level=-1.5, free_length=None, bond_length=None,
-        sources=(source("201"),),
-    )  # fmt: skip
-    given.update(more)
-    return m.Member(id=f"P1-{kind}-{n}", role=kind, count=count, along=along, **given)  # type: ignore[arg-type]
+    given = {
+        "spacing": 5.0, "spacing_range": None, "inclination": 0.0, "skew": 0.0, "level": -1.5, "free_length": None,
+        "bond_length": None, "sources": (source("201"),),
+    }  # fmt: skip
+    return m.Member(id=f"P1-{kind}-{n}", role=kind, count=count, along=along, **{**given, **more})  # type: ignore[arg-type]
 
 
 def pit() -> m.Pit:
@@ -275,8 +274,8 @@ def chosen(definition: d.SectionDefinition) -> m.ChosenSection:
 
 
 def trail() -> dict[str, object]:
-    return dict(
-        questions=(
+    return {
+        "questions": (
             Question(
                 id="Q1",
                 about="continuity of the wall along its length",
@@ -287,7 +286,7 @@ def trail() -> dict[str, object]:
                 brief_line='[[walls]] match = {layer = "WALL-PILES-CONTIGUOUS"}, continuity = "jointed"',
             ),
         ),
-        assumptions=(
+        "assumptions": (
             Assumption(
                 id="A1", code="dig-allowance", about="dig level under the slab", text="No dig allowance was added.",
                 basis="the brief gives none", sources=(source("levels.dig_allowance", "assumed", BRIEF),),
@@ -297,13 +296,13 @@ def trail() -> dict[str, object]:
                 basis="no [[stages]] in the brief", confirm_by="contractor",
             ),
         ),
-        findings=(
+        "findings": (
             Finding(
                 id="F1", code="water-missing", severity="check", where="P1", text="No water level was given.",
                 sources=(),
             ),
         ),
-        not_assessed=(
+        "not_assessed": (
             NotAssessed(
                 what="overall and deep stability", why="outside the ratio of demands",
                 what_to_do="check by a method of its own",
@@ -313,7 +312,7 @@ def trail() -> dict[str, object]:
                 what_to_do="estimate from experience on like ground",
             ),
         ),
-    )  # fmt: skip
+    }  # fmt: skip
 
 
 # --- section definitions -------------------------------------------------------------------------------------------

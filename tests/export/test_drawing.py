@@ -8,6 +8,7 @@ from pathlib import Path
 import ezdxf
 import pytest
 from builders_export import CORNERS, HOSTILE, Job
+
 from export.drawing import write_drawings
 from export.drawing_style import LAYERS
 
@@ -38,7 +39,9 @@ def test_layer_names_have_the_fields_of_iso_13567() -> None:
 
 def test_the_cuts_of_the_plan_are_the_lines_of_the_sections(drawn: Path, first_pit: Job) -> None:
     space = ezdxf.readfile(drawn / "plan.dxf").modelspace()
-    lines = [((e.dxf.start.x, e.dxf.start.y), (e.dxf.end.x, e.dxf.end.y)) for e in space.query('LINE[layer=="G-CUTS--E-"]')]
+    lines = [
+        ((e.dxf.start.x, e.dxf.start.y), (e.dxf.end.x, e.dxf.end.y)) for e in space.query('LINE[layer=="G-CUTS--E-"]')
+    ]
     for section in first_pit.proposal.sections:
         assert section.line in lines
 

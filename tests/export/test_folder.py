@@ -6,6 +6,7 @@ import json
 from pathlib import Path
 
 import pytest
+
 from export.folder import check_folder, fresh_folder
 from ingest.errors import InputError
 
@@ -61,9 +62,14 @@ def test_an_empty_folder_is_taken(tmp_path: Path) -> None:
 
 def test_a_file_added_while_writing_stops_the_swap(tmp_path: Path) -> None:
     write_run(tmp_path / "out", S1="old")
-    with pytest.raises(InputError, match=r"late\.txt"), fresh_folder(tmp_path / "out") as aside:
-        (aside / "S1").write_text("new")
-        (tmp_path / "out" / "late.txt").write_text("mine")
+
+    def write_while_a_file_is_added() -> None:
+        with fresh_folder(tmp_path / "out") as aside:
+            (aside / "S1").write_text("new")
+            (tmp_path / "out" / "late.txt").write_text("mine")
+
+    with pytest.raises(InputError, match=r"late\.txt"):
+        write_while_a_file_is_added()
     assert (tmp_path / "out" / "S1").read_text() == "old"
     assert names(tmp_path) == {"out"}
 
@@ -71,9 +77,14 @@ def test_a_file_added_while_writing_stops_the_swap(tmp_path: Path) -> None:
 @pytest.mark.parametrize("fault", [KeyboardInterrupt, ValueError])
 def test_an_interrupt_leaves_the_earlier_run_and_nothing_partial(tmp_path: Path, fault: type[BaseException]) -> None:
     write_run(tmp_path / "out", S1="old")
-    with pytest.raises(fault), fresh_folder(tmp_path / "out") as aside:
-        (aside / "S1").write_text("half")
-        raise fault
+
+    def write_until_stopped() -> None:
+        with fresh_folder(tmp_path / "out") as aside:
+            (aside / "S1").write_text("half")
+            raise fault
+
+    with pytest.raises(fault):
+        write_until_stopped()
     assert names(tmp_path) == {"out"}
     assert (tmp_path / "out" / "S1").read_text() == "old"
 

@@ -13,13 +13,26 @@ from sections.members import Governing, MemberForce
 
 def force(**more: object) -> MemberForce:
     row = ResultRow(
-        line=2, section="S1", stage="4", member="P1-strut-1", quantity="N", value=-100.0, unit="kN/m",
+        line=2,
+        section="S1",
+        stage="4",
+        member="P1-strut-1",
+        quantity="N",
+        value=-100.0,
+        unit="kN/m",
         extra={"note": "=HYPERLINK(1)", "factor": "mine"},
-    )  # fmt: skip
+    )
     given: dict[str, object] = {
-        "row": row, "factor": 5.0, "value": -500.0, "unit": "kN", "gives": "axial force of one strut", "ratio_low": None,
-        "ratio_high": None, "verdict": "not_assessed", "caution": NOTICE,
-    }  # fmt: skip
+        "row": row,
+        "factor": 5.0,
+        "value": -500.0,
+        "unit": "kN",
+        "gives": "axial force of one strut",
+        "ratio_low": None,
+        "ratio_high": None,
+        "verdict": "not_assessed",
+        "caution": NOTICE,
+    }
     return MemberForce(**{**given, **more})  # type: ignore[arg-type]
 
 
@@ -47,9 +60,17 @@ def test_further_columns_survive_without_becoming_formulas() -> None:
 
 def test_governing_values_repeat_the_notice() -> None:
     one = Governing(
-        member="P1-strut-1", gives="axial force", sign="-", value=-500.0, unit="kN", section="S1", stage="4", ratio_low=0.9,
-        ratio_high=1.05, verdict="holds",
-    )  # fmt: skip
+        member="P1-strut-1",
+        gives="axial force",
+        sign="-",
+        value=-500.0,
+        unit="kN",
+        section="S1",
+        stage="4",
+        ratio_low=0.9,
+        ratio_high=1.05,
+        verdict="holds",
+    )
     (row,) = read(write_governing([one]))
     assert (row["member_value"], row["stage"], row["ratio_high"], row["caution"]) == ("-500.0", "4", "1.05", NOTICE)
 

@@ -7,9 +7,10 @@ import json
 
 import pytest
 from builders_export import Job
+from jsonschema import Draft202012Validator
+
 from export.schema import SCHEMAS, make_schema, published, read_schema
 from export.section_json import proposal_text, section_text
-from jsonschema import Draft202012Validator
 
 
 @pytest.mark.parametrize("name", SCHEMAS)

@@ -9,6 +9,9 @@ from pathlib import Path
 
 import pytest
 from builders_export import CENTRES, STRUT_EA, Job, first_pit_job
+from hypothesis import given
+from hypothesis import strategies as st
+
 from export.canonical import canonical_text
 from export.section_json import (
     NOT_INCLUDED,
@@ -19,8 +22,6 @@ from export.section_json import (
     write_proposal,
     write_section,
 )
-from hypothesis import given
-from hypothesis import strategies as st
 from ingest.errors import InputError
 from ingest.model import NOTICE
 
@@ -42,9 +43,20 @@ def test_every_key_is_written_and_null_means_not_given(first_pit: Job) -> None:
     member = json.loads(section_text(first_pit.definitions[0], None))["members"][2]
     assert member["real"]["preload_kN"] is None
     assert set(member["section"]) == {
-        "EA_kN_per_m", "EI_kNm2_per_m", "weight_kN_per_m2", "net_of_soil", "plane_strain_factor_included", "thickness",
-        "E_kPa", "preload_kN_per_m", "resists", "limit_kN_per_m", "contact_kPa", "k_effective_kN_per_m_per_m", "free_strain",
-    }  # fmt: skip
+        "EA_kN_per_m",
+        "EI_kNm2_per_m",
+        "weight_kN_per_m2",
+        "net_of_soil",
+        "plane_strain_factor_included",
+        "thickness",
+        "E_kPa",
+        "preload_kN_per_m",
+        "resists",
+        "limit_kN_per_m",
+        "contact_kPa",
+        "k_effective_kN_per_m_per_m",
+        "free_strain",
+    }
 
 
 def test_stretches_are_written_with_from_and_to(first_pit: Job) -> None:
@@ -55,7 +67,9 @@ def test_stretches_are_written_with_from_and_to(first_pit: Job) -> None:
 
 
 def test_numbers_have_nine_digits_and_world_coordinates_a_tenth_of_a_millimetre(first_pit: Job) -> None:
-    pit = replace(first_pit.proposal.pits[0], length=100.00000123456, perimeter=((500000.12345678, 180000.98765432),) * 3)
+    pit = replace(
+        first_pit.proposal.pits[0], length=100.00000123456, perimeter=((500000.12345678, 180000.98765432),) * 3
+    )
     tree = json.loads(proposal_of(replace(first_pit, proposal=replace(first_pit.proposal, pits=(pit,)))))
     assert tree["pits"][0]["length"] == 100.000001
     assert tree["pits"][0]["perimeter"][0] == [500000.1235, 180000.9877]
@@ -151,15 +165,24 @@ def test_a_changed_section_is_refused_with_file_and_key_path(first_pit: Job, tmp
 
 @pytest.mark.parametrize(
     ("text", "said"),
-    [("", "no JSON"), ("{", "no JSON"), ('{"a": NaN}', "NaN"), ("[]", "schema"), ("[" * 100_000, "nested"), ("\ud800", "text")],
-)  # fmt: skip
+    [
+        ("", "no JSON"),
+        ("{", "no JSON"),
+        ('{"a": NaN}', "NaN"),
+        ("[]", "schema"),
+        ("[" * 100_000, "nested"),
+        ("\ud800", "text"),
+    ],
+)
 def test_what_is_no_json_of_ours_is_refused_in_words(tmp_path: Path, text: str, said: str) -> None:
     (tmp_path / "x.json").write_bytes(text.encode("utf-8", "surrogatepass"))
     with pytest.raises(InputError, match=said):
         read_proposal(tmp_path / "x.json")
 
 
-@given(st.dictionaries(st.text(), st.lists(FINITE | st.integers(-(10**12), 10**12) | st.text() | st.none()), max_size=6))
+@given(
+    st.dictionaries(st.text(), st.lists(FINITE | st.integers(-(10**12), 10**12) | st.text() | st.none()), max_size=6)
+)
 def test_canonical_text_is_json_and_rounds_once_for_all(tree: dict[str, list[object]]) -> None:
     text = canonical_text(tree)
     again = json.loads(text)

@@ -11,10 +11,11 @@ from pathlib import Path
 import openpyxl
 import pytest
 from builders_export import HOSTILE, STRUT_EA, Job
-from export.table_files import FORMULA_STARTS, Sheet, csv_text, is_number
-from export.tables import write_tables
 from hypothesis import given
 from hypothesis import strategies as st
+
+from export.table_files import FORMULA_STARTS, Sheet, csv_text, is_number
+from export.tables import write_tables
 from ingest.model import NOTICE
 
 
@@ -41,7 +42,12 @@ def test_members_list_the_strut_there_and_back(first_pit: Job, tmp_path: Path) -
     assert (float(there["from_value"]), float(there["factor"]), float(there["to_value"])) == pytest.approx(
         (STRUT_EA, 0.2, STRUT_EA / 5), rel=1e-8
     )
-    assert (there["spacing_m"], there["way"], back["way"], back["factor"]) == ("5.0", "real to section", "section to real", "5.0")
+    assert (there["spacing_m"], there["way"], back["way"], back["factor"]) == (
+        "5.0",
+        "real to section",
+        "section to real",
+        "5.0",
+    )
 
 
 def test_every_row_carries_the_notice(first_pit: Job, tmp_path: Path) -> None:
@@ -55,7 +61,12 @@ def test_every_row_carries_the_notice(first_pit: Job, tmp_path: Path) -> None:
 def test_loads_list_every_alternative(first_pit: Job, tmp_path: Path) -> None:
     write_tables(first_pit.proposal, first_pit.definitions, tmp_path)
     given = [(row["handed_over_as"], row["value"]) for row in rows_of(tmp_path / "loads.csv")]
-    assert given == [("used in the section", "78.3"), ("pressure_kept", "150.0"), ("equal_effect", "78.3"), ("absent", "0.0")]
+    assert given == [
+        ("used in the section", "78.3"),
+        ("pressure_kept", "150.0"),
+        ("equal_effect", "78.3"),
+        ("absent", "0.0"),
+    ]
 
 
 def test_criteria_that_could_not_be_evaluated_have_no_band(first_pit: Job, tmp_path: Path) -> None:
@@ -67,7 +78,10 @@ def test_criteria_that_could_not_be_evaluated_have_no_band(first_pit: Job, tmp_p
 
 def test_an_assumption_shared_by_sections_is_listed_once_with_both(first_pit: Job, tmp_path: Path) -> None:
     write_tables(first_pit.proposal, first_pit.definitions, tmp_path)
-    assert [(row["id"], row["sections"]) for row in rows_of(tmp_path / "assumptions.csv")] == [("A1", "S1, S2"), ("A2", "S1, S2")]
+    assert [(row["id"], row["sections"]) for row in rows_of(tmp_path / "assumptions.csv")] == [
+        ("A1", "S1, S2"),
+        ("A2", "S1, S2"),
+    ]
 
 
 def test_the_workbook_holds_the_same_sheets_as_text_and_numbers(showcase: Job, tmp_path: Path) -> None:

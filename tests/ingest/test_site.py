@@ -162,7 +162,7 @@ def test_a_starting_brief_reads_back_and_its_lines_do_too_when_taken_up(tmp_path
     assert '# role = "strut"' in text
     assert "STRUTS: level of the supports is not given" in text
     line = next(question.brief_line for question in site.questions if "level of the supports" in question.about)
-    (tmp_path / "taken.toml").write_text(line.replace("0.0", "-1.5"))
+    (tmp_path / "taken.toml").write_text(line.replace("nan", "-1.5"))
     taken = read_site([tmp_path / "pit.dxf"], tmp_path / "taken.toml")
     assert {support.head[2] for support in taken.supports} == {-1.5}
     with pytest.raises(FileExistsError):

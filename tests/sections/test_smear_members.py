@@ -27,10 +27,8 @@ CHS_EA, CHS_EI = 5193429.648, 157308.984
 
 
 def full_member(skew, inclination, spacing, **more) -> RealMember:
-    given_ = dict(
-        EA_kN=CHS_EA, EI_kNm2=CHS_EI, weight_kN_per_m=1.9, preload_kN=-500.0, limit_kN=3000.0, free_strain=2e-4
-    )
-    return RealMember(skew=skew, inclination=inclination, spacing=spacing, **(given_ | more))
+    rest = {"EA_kN": CHS_EA, "EI_kNm2": CHS_EI, "weight_kN_per_m": 1.9, "preload_kN": -500.0, "limit_kN": 3000.0}
+    return RealMember(skew=skew, inclination=inclination, spacing=spacing, **({"free_strain": 2e-4} | rest | more))
 
 
 def unit_vector(skew, inclination) -> np.ndarray:

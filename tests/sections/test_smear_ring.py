@@ -167,7 +167,7 @@ def test_a_polygon_is_in_balance_and_nears_the_circle(n, R, p):
     assert pi * found.equal_area_radius**2 == pytest.approx(n * found.side * found.apothem / 2)
     area, around = n * found.side * found.apothem / 2, n * found.side
     assert found.quotient == pytest.approx(4 * pi * area / around**2)
-    assert found.N == pytest.approx(p * found.side / (2 * tan(pi / n)))
+    assert pytest.approx(p * found.side / (2 * tan(pi / n))) == found.N
     assert found.eccentricity == pytest.approx(found.M_corner / found.N)
 
 

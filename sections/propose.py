@@ -1,0 +1,182 @@
+"""The main job in one call: pits found, judged, cuts chosen, sections defined."""
+
+from __future__ import annotations
+
+from collections.abc import Callable, Sequence
+from typing import TypeVar
+
+import numpy as np
+
+from ingest.model import Site
+from ingest.trail import Assumption, Finding, NotAssessed, Question
+from sections.candidates import cut_of
+from sections.choice import Choice, Chosen, choose
+from sections.define import Judged, define_section, wall_names
+from sections.definition import SectionDefinition
+from sections.find import find_pits
+from sections.judged import JudgedPit, judge_stations
+from sections.model import (
+    ChosenSection,
+    Floats,
+    FoundPit,
+    Proposal,
+    ProposalFrame,
+    SectionWall,
+    StationTable,
+)
+from sections.severity import find_severity, severity_at
+from sections.verdict import worst_first
+
+Tell = Callable[[str, int, int], None]
+Row = TypeVar("Row", Assumption, Finding, Question)
+
+
+def _silent(stage: str, done: int, total: int) -> None:
+    """Say nothing."""
+
+
+def propose(site: Site, progress: Tell = _silent) -> tuple[Proposal, tuple[SectionDefinition, ...]]:
+    """Propose the sections of a site.
+
+    Args:
+        site: As `read_site` gives it.
+        progress: Called with stage, done, total.
+
+    Returns:
+        The proposal and one definition per chosen section, in the same order. Without a pit both are empty of sections
+        and the findings say why.
+    """
+    progress("find the perimeter", 0, 4)
+    founds = find_pits(site)
+    progress("judge every metre", 1, 4)
+    plane = tuple(judge_stations(site, found) for found in founds)
+    rings = {i: judge_stations(site, found, axisymmetric=True) for i, found in enumerate(founds) if found.stations.ring}
+    progress("choose the cuts", 2, 4)
+    choice = choose(site, plane, rings=rings) if founds else None
+    rows, definitions = [], []
+    for number, one in enumerate(choice.chosen if choice else (), start=1):
+        progress("define sections", number, len(choice.chosen if choice else ()))
+        judged = rings[one.candidate.pit] if one.candidate.kind == "axisymmetric" else plane[one.candidate.pit]
+        row, definition = define_chosen(site, founds, judged, one, f"S{number}")
+        rows.append(row)
+        definitions.append(definition)
+    proposal = Proposal(
+        limits=site.limits,
+        frame=ProposalFrame(offset=site.frame.offset, rotation_deg=site.frame.rotation_deg, crs=site.frame.crs),
+        pits=tuple(found.pit for found in founds),
+        sections=tuple(rows),
+        unrepresented=choice.unrepresented if choice else (),
+        stations={one.found.pit.id: _table(one, choice, i) for i, one in enumerate(plane)},
+        ledger=site.ledger,
+        questions=_by_id((*site.questions, *(q for found in founds for q in found.questions))),
+        assumptions=_by_id(
+            (
+                *site.assumptions,
+                *(a for found in founds for a in found.assumptions),
+                *(a for d in definitions for a in d.assumptions),
+            )
+        ),
+        findings=_by_id(
+            (
+                *site.findings,
+                *(f for found in founds for f in found.findings),
+                *(f for d in definitions for f in d.findings),
+            )
+        ),
+        not_assessed=_not_assessed(site, choice),
+    )
+    return proposal, tuple(definitions)
+
+
+def define_chosen(
+    site: Site, founds: Sequence[FoundPit], judged: JudgedPit, chosen: Chosen, name: str
+) -> tuple[ChosenSection, SectionDefinition]:
+    """Define one chosen cut and list it as the proposal does."""
+    cut = cut_of(chosen.candidate, founds)
+    members = wall_names(cut)
+    walls = tuple(
+        SectionWall(
+            pit=judged.found.pit.id,
+            at=wall.at,
+            side=wall.side,  # type: ignore[arg-type]
+            member=members[wall.side],
+            verdicts=judged.verdicts_at(wall.station),
+        )
+        for wall in cut.walls
+    )
+    scores = [judged.score_at(wall.station) for wall in cut.walls]
+    score = None if any(value is None for value in scores) else min(value for value in scores if value is not None)
+    verdicts = worst_first(wall.verdicts for wall in walls)
+    stands_for = sum(_length(judged.found, stretch.start, stretch.to) for stretch in chosen.represents)
+    definition = define_section(
+        site,
+        cut,
+        Judged(
+            id=name,
+            walls=walls,
+            criteria=tuple(row for wall in cut.walls for row in judged.rows_at(wall.station, members[wall.side])),
+            verdicts=verdicts,
+            represents=chosen.represents,
+            score=score,
+            stands_for=stands_for or None,
+        ),
+    )
+    row = ChosenSection(
+        id=name,
+        file=f"sections/{name}.json",
+        kind=chosen.candidate.kind,
+        line=definition.line,
+        score=score,
+        severity=severity_at(find_severity(site, judged.found), cut.walls[0].station),
+        walls=walls,
+        verdicts=verdicts,
+        represents=chosen.represents,
+    )
+    return row, definition
+
+
+def _length(found: FoundPit, start: float, to: float) -> float:
+    return to - start if to >= start else to - start + found.shape.length
+
+
+def _table(judged: JudgedPit, choice: Choice | None, pit: int) -> StationTable:
+    stations = judged.found.stations
+    owner = choice.section[pit] if choice else np.full(len(stations.chainage), -1)
+    return StationTable(
+        chainage=tuple(float(value) for value in stations.chainage),
+        floor=_listed(stations.floor),
+        retained=_listed(stations.ground),
+        section=tuple(f"S{index + 1}" if index >= 0 else None for index in owner.tolist()),
+        outputs=judged.station_outputs(),
+    )
+
+
+def _listed(values: Floats) -> tuple[float | None, ...]:
+    return tuple(None if np.isnan(value) else float(value) for value in values)
+
+
+def _by_id(rows: Sequence[Row]) -> tuple[Row, ...]:
+    """Rows once each, the first of an id kept; rows without an id are all kept."""
+    seen: dict[str, Row] = {}
+    for number, row in enumerate(rows):
+        seen.setdefault(row.id or f"row-{number}", row)
+    return tuple(seen.values())
+
+
+def _not_assessed(site: Site, choice: Choice | None) -> tuple[NotAssessed, ...]:
+    rows = [
+        NotAssessed(
+            what="installation, dewatering, overall stability, services, obstructions, neighbouring works",
+            why="no criterion of this tool looks at them",
+            what_to_do="check them apart from these sections",
+        )
+    ]
+    if choice and choice.gap > 0:
+        rows.append(
+            NotAssessed(
+                what="whether fewer sections would do",
+                why=f"the integer programme was stopped with a gap of {choice.gap:.1%}",
+                what_to_do="run again, or pin the sections wanted",
+            )
+        )
+    return (*site.not_assessed, *rows)
