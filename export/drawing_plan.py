@@ -6,7 +6,7 @@ from math import atan2, degrees, hypot
 from typing import Any
 
 from export.drawing_style import LETTERS, layer, polyline, words
-from export.report.along import Perimeter, stretches, worst_words
+from export.report.along import Perimeter, stations_of, stretches, worst_words
 from export.report.plan_site import load_words, member_words, to_world
 from export.report.words import fixed
 from ingest.model import NOTICE, Point, Site
@@ -32,9 +32,7 @@ def draw_plan(drawing: Any, proposal: Proposal, site: Site | None) -> None:
 
 
 def _verdicts(space: Any, pit: Pit, proposal: Proposal) -> None:
-    table = proposal.stations.get(pit.id)
-    if table is None or not table.chainage:
-        return
+    table = stations_of(proposal, pit)
     line = Perimeter.of(pit)
     for part in stretches(table.chainage, worst_words(table, proposal.limits.governing), pit.length):
         polyline(space, line.part(part.start, part.to, VERDICT_OFF), part.value or "not_assessed")

@@ -2,6 +2,7 @@
 
 from __future__ import annotations
 
+import math
 from collections.abc import Sequence
 
 from ingest.brief_tables import LoadTable, ReceptorTable
@@ -14,6 +15,9 @@ from ingest.roles import RoleGiven
 from ingest.trail import Source
 
 UNITS = {"point": "kN", "line": "kN/m", "area": "kPa", "footing": "kPa"}
+
+
+_KINDS: dict[str, LoadKind] = {"point": "point", "line": "line", "area": "area"}
 
 
 def build_loads(given: Sequence[RoleGiven], moved: Moved, notes: Notes) -> tuple[Load, ...]:
@@ -29,12 +33,14 @@ def build_loads(given: Sequence[RoleGiven], moved: Moved, notes: Notes) -> tuple
     for item in given:
         found = find_entry(brief.loads, item.part)
         entry = found[1] if found else LoadTable.model_construct()
-        kind = entry.kind or _kind(item.part)
+        modelled = item.part.tags.get("load_kind", "")
+        kind = entry.kind or _KINDS.get(modelled) or _kind(item.part)
+        value = entry.value if entry.value is not None or kind != modelled else _modelled_value(item.part)
         points = _load_points(item.part, kind)
         if points is None:
             notes.refuse(item.part, f"{kind} load without a fitting shape on plan")
             continue
-        if entry.value is None:
+        if value is None:
             about = f"{label(item)}: how large is this load ({UNITS[kind]})?"
             match = match_line(item.part.layer, item.part.name, item.part.cls)
             notes.ask(about, f'[[loads]]\n{match}\nkind = "{kind}"\nvalue = nan')
@@ -42,7 +48,7 @@ def build_loads(given: Sequence[RoleGiven], moved: Moved, notes: Notes) -> tuple
             Load(
                 id="",
                 kind=kind,
-                value=entry.value,
+                value=value,
                 points=points,
                 level=entry.level if entry.level is not None else item.part.z_bottom,
                 stage=entry.stage,
@@ -113,6 +119,15 @@ def build_receptors(given: Sequence[RoleGiven], moved: Moved, notes: Notes) -> t
                 )
             )
     return tuple(receptors)
+
+
+def _modelled_value(part: Part) -> float | None:
+    """Value of a structural action of the model, in kN, kN/m or kPa, positive downwards; None when it acts upwards."""
+    try:
+        value = float(part.tags.get("load_value", ""))
+    except ValueError:
+        return None
+    return value if math.isfinite(value) and value >= 0 else None
 
 
 def _kind(part: Part) -> LoadKind:

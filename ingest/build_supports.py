@@ -9,6 +9,7 @@ from typing import Any, Literal, cast
 from ingest.brief_tables import SupportTable
 from ingest.figures import ends_of, plan
 from ingest.matching import fits
+from ingest.member_properties import read_property
 from ingest.model import BarSection, Material, Part, Pile, Point3, Support, Waler, WallPiece
 from ingest.notes import Notes, label
 from ingest.rigidity import find_rigidity
@@ -126,6 +127,8 @@ def _support(
     role = cast(SupportRole, item.role)
     part = item.part
     _check_preload(role, entry["preload"], numbers, notes)
+    if role == "anchor":
+        entry = _with_properties(item, entry, notes)
     head, far, level_given, inclination_given = _placed(item, ends, entry, tied, notes)
     section, EA, EI, weight = find_rigidity(label(item), part, entry, numbers, materials, notes)
     return Support(
@@ -139,8 +142,8 @@ def _support(
         EI=EI,
         weight=weight,
         material=entry["material"],
-        free_length=entry["free_length"] or _tag(part, "free_length"),
-        bond_length=entry["bond_length"] or _tag(part, "bond_length"),
+        free_length=entry["free_length"],
+        bond_length=entry["bond_length"],
         bond_diameter=entry["bond_diameter"],
         preload=entry["preload"],
         thermal_range=entry["thermal_range"],
@@ -155,6 +158,16 @@ def _support(
         evidence=item.evidence,
         sources=(part.source,),
     )
+
+
+def _with_properties(item: RoleGiven, entry: dict[str, Any], notes: Notes) -> dict[str, Any]:
+    """What the brief leaves open, from the properties of the model; a bar in space shows its inclination itself."""
+    fields = ["free_length", "bond_length", "bond_diameter", "preload"]
+    if _drawn_level(item.part) is None:
+        fields.append("inclination")
+    about = label(item)
+    found = {name: read_property(item.part, name, about, notes) for name in fields if entry[name] is None}
+    return {**entry, **found}
 
 
 def _check_preload(role: SupportRole, preload: float | None, numbers: list[int], notes: Notes) -> None:
@@ -214,14 +227,6 @@ def _drawn_level(part: Part) -> float | None:
     if part.form in ("bar", "prism") or any(point[2] for point in part.points):
         return part.points[0][2]
     return None
-
-
-def _tag(part: Part, name: str) -> float | None:
-    try:
-        value = float(part.tags.get(name, ""))
-    except ValueError:
-        return None
-    return value if math.isfinite(value) and value > 0 else None
 
 
 class _WallDistance:

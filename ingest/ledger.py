@@ -10,6 +10,8 @@ from ingest.notes import Notes
 from ingest.roles import RoleGiven
 from ingest.trail import LedgerEntry
 
+BORED = ("borehole", "stratum of a borehole")
+"""What the IFC reader counts as context because it became a borehole."""
 APART = ("superstructure", "wall of the building")
 """Reasons the ledger gives by name."""
 
@@ -46,13 +48,17 @@ def _entry(file: FileParts, given: Sequence[RoleGiven], notes: Notes) -> LedgerE
     reasons = Counter(reason for _, _, reason in fate.values() if reason)
     reasons.update(file.context)
     reasons.update(file.ignored)
+    bored = sum(file.context.get(reason, 0) for reason in BORED)  # boreholes come as records, not as parts
+    if bored:
+        roles["stratum"] += bored
+    reasons.update({reason: -count for reason, count in file.context.items() if reason in BORED})
     entry = LedgerEntry(
         entities=file.entities,
-        used=kinds[0],
-        context=kinds[1] + sum(file.context.values()),
+        used=kinds[0] + bored,
+        context=kinds[1] + sum(file.context.values()) - bored,
         ignored=kinds[2] + sum(file.ignored.values()),
         roles=dict(sorted(roles.items())),
-        reasons=dict(sorted(reasons.items())),
+        reasons={reason: count for reason, count in sorted(reasons.items()) if count > 0},
         losses=file.losses,
     )
     if entry.entities != entry.used + entry.context + entry.ignored:

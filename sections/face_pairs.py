@@ -20,6 +20,8 @@ THICKEST, THINNEST = 2.0, 0.05
 """Thickness of wall looked for between two faces, m (common practice, no source)."""
 PARALLEL = 4.0
 """Faces of one wall are parallel within this (chords of two arcs may differ a little), degrees."""
+STRAIGHT = 0.3
+"""Faces this parallel are no chords of arcs: a short stretch beside each other will do, degrees."""
 SLIVER = 0.03
 MUCH_THICKER = 1.3
 SURE_MARGIN = 0.2
@@ -93,7 +95,8 @@ def candidates(faces: Faces, within: bool) -> Ints:
     low, high = _overlap(faces, a, b)
     offset = _offset(faces, a, b, 0.5 * (low + high))
     shorter = np.minimum(faces.length[a], faces.length[b])
-    ok = (high - low >= np.maximum(0.2 * shorter, SLIVER)) & (offset >= THINNEST) & (offset <= THICKEST)
+    bent = np.abs((u[a] * u[b]).sum(axis=1)) < np.cos(np.radians(STRAIGHT))
+    ok = (high - low >= np.where(bent, np.maximum(0.2 * shorter, SLIVER), 2 * SLIVER)) & (offset >= THINNEST) & (offset <= THICKEST)
     for side in (a, b):
         said = faces.thickness[side]
         ok &= np.isnan(said) | (np.abs(offset - said) <= 0.03)

@@ -262,7 +262,7 @@ def kinds_of(piles: Sequence[Pile], spans: Floats, closed: bool) -> tuple[WallKi
 
 def _without_specks(kinds: list[WallKind], said: Sequence[bool], size: Floats) -> tuple[WallKind, ...]:
     """One or two unnamed piles that differ from both sides only stand where two spacings meet: they go to one side."""
-    starts = [k for k in range(len(kinds)) if k == 0 or kinds[k] != kinds[k - 1]]
+    starts = [k for k in range(len(kinds)) if k == 0 or (kinds[k], said[k]) != (kinds[k - 1], said[k - 1])]
     for a, b in zip(starts, [*starts[1:], len(kinds)], strict=True):
         if b - a > 2 or any(said[a:b]) or len(starts) == 1:
             continue

@@ -34,7 +34,9 @@ def find_verdicts(cut: Cut, judged: Mapping[str, JudgedPit], names: Mapping[str,
     Returns:
         Walls in the order of the cut. The score is the least of the walls, None when one of them has none.
     """
-    walls, rows, scores = [], [], []
+    walls: list[SectionWall] = []
+    rows: list[Band] = []
+    scores: list[float] = []
     for wall in cut.walls:
         one = judged[wall.found.pit.id]
         name = names[wall.side]

@@ -7,19 +7,19 @@ from dataclasses import dataclass, replace
 
 import numpy as np
 import shapely
-from scipy.sparse import coo_array
-from scipy.sparse.csgraph import connected_components
-from scipy.spatial import cKDTree
 
-from ingest.model import Limits, Site, Support
+from ingest.model import Site
 from ingest.trail import Source
 from sections.chainage import Located, Sides, area_of, cast, find_sides, locate, segment_at, segments_of, side_of
 from sections.model import Bools, Floats, Ints, PitShape
+from sections.support_copies import apart, drop_copies, ends_of
 
 REACH = 1.5
 """A support end this near the wall axis bears on the wall, m (judgement: half a thick wall, a waler, a packer)."""
 SLOPE = 5.0
 """A member steeper than this is inclined on purpose, degrees (judgement)."""
+STEEP = 30.0
+"""A member steeper than this stands on the floor, however near a wall its foot is, degrees (judgement)."""
 SHARP = 45.0
 """Across an inside corner sharper than this a strut is a cross strut, nearly square to both walls, degrees."""
 
@@ -80,49 +80,6 @@ class _Meeting:
     cost: Floats
 
 
-def drop_copies(supports: Sequence[Support], limits: Limits) -> tuple[Ints, dict[int, tuple[Source, ...]]]:
-    """Indices of the supports without duplicates, and the sources of the duplicates of each one kept.
-
-    Two members of one role whose ends fall on each other, either way round, are one member drawn twice.
-    """
-    if not supports:
-        return np.zeros(0, dtype=np.int64), {}
-    head, far = _ends(supports)
-    scale = np.array([1.0, 1.0, limits.plan / limits.level])
-    head, far = head * scale, far * scale
-    pairs = cKDTree(0.5 * (head + far)).query_pairs(limits.plan, output_type="ndarray")
-    one, two = pairs[:, 0], pairs[:, 1]
-    straight = np.maximum(_apart(head[one], head[two]), _apart(far[one], far[two]))
-    crossed = np.maximum(_apart(head[one], far[two]), _apart(far[one], head[two]))
-    role = np.array([support.role for support in supports])
-    same = (np.minimum(straight, crossed) <= limits.plan) & (role[one] == role[two])
-    # which of two copies is kept must not hang on the order of the input
-    order = np.array(sorted(range(len(supports)), key=lambda i: _identity(supports[i])))
-    links = coo_array((np.ones(int(np.sum(same))), (one[same], two[same])), shape=(len(supports), len(supports)))
-    group = connected_components(links, directed=False)[1]
-    _, first = np.unique(group[order], return_index=True)
-    kept = np.sort(order[first])
-    keeper = dict(zip(group[kept].tolist(), kept.tolist(), strict=True))
-    copies: dict[int, tuple[Source, ...]] = {}
-    for lost in sorted(set(range(len(supports))) - set(kept.tolist())):
-        copies[keeper[int(group[lost])]] = (*copies.get(keeper[int(group[lost])], ()), *supports[lost].sources)
-    return kept.astype(np.int64), copies
-
-
-def _identity(support: Support) -> tuple[object, ...]:
-    return tuple((source.file, source.item) for source in support.sources), support.head, support.far, support.id
-
-
-def _apart(a: Floats, b: Floats) -> Floats:
-    return np.asarray(np.linalg.norm(a - b, axis=1))
-
-
-def _ends(supports: Sequence[Support]) -> tuple[Floats, Floats]:
-    head = np.array([support.head for support in supports], dtype=np.float64).reshape(-1, 3)
-    far = np.array([support.far for support in supports], dtype=np.float64).reshape(-1, 3)
-    return head, far
-
-
 def meet_supports(site: Site, shapes: Sequence[PitShape]) -> tuple[tuple[SupportEnds, ...], Ints]:
     """Give every support to the pit whose wall it bears on.
 
@@ -134,7 +91,7 @@ def meet_supports(site: Site, shapes: Sequence[PitShape]) -> tuple[tuple[Support
     if not members or not shapes:
         none = np.zeros(0, dtype=np.int64)
         return tuple(_select(site, shape, none, None, copies) for shape in shapes), kept
-    head, far = _ends(members)
+    head, far = ends_of(members)
     anchor = np.array([member.role == "anchor" for member in members])
     meetings = [_meet(site, shape, head, far, anchor) for shape in shapes]
     cost = np.vstack([meeting.cost for meeting in meetings])
@@ -163,7 +120,7 @@ def _reach_beyond(ends: SupportEnds, chosen: Ints, others: Sequence[tuple[PitSha
 
 def _meet(site: Site, shape: PitShape, head: Floats, far: Floats, anchor: Bools) -> _Meeting:
     thickest = max((run.wall.thickness or run.wall.diameter or 0.0 for run in shape.runs), default=0.0)
-    plan = _apart(head[:, :2], far[:, :2])
+    plan = apart(head[:, :2], far[:, :2])
     reach = np.minimum(max(REACH, thickest + 0.5), 0.45 * np.maximum(plan, 0.1))
     sides = find_sides(shape)
     first = _bear(shape, sides, head, far, reach)
@@ -215,7 +172,7 @@ def _foot_on(shape: PitShape, points: Floats, met: Floats) -> tuple[Floats, Floa
     start, vector, length = segments_of(shape)
     unit = vector[piece] / length[piece][:, None]
     run = np.clip(np.einsum("ij,ij->i", points - start[piece], unit), 0.0, length[piece] - 1e-6)
-    return shape.at[piece] + run, _apart(points, start[piece] + run[:, None] * unit)
+    return shape.at[piece] + run, apart(points, start[piece] + run[:, None] * unit)
 
 
 def _select(
@@ -249,7 +206,7 @@ def _select(
     head, far = head[chosen], far[chosen]
     head, far = np.where(turned[:, None], far, head), np.where(turned[:, None], head, far)
     head_at, far_at = np.where(turned, far_at, head_at), np.where(turned, head_at, far_at)
-    far_at = np.where(one_ended, np.nan, far_at)
+    far_at = np.where(one_ended | (slope_of(head, far) > STEEP), np.nan, far_at)
     head_side, far_side = _sides_of(sides, head_at), _sides_of(sides, far_at)
     role = _roles(sides, drawn, head, far, far_side, head_side, meeting.inside[chosen])
     return SupportEnds(
@@ -268,7 +225,7 @@ def _sides_of(sides: Sides, at: Floats) -> Ints:
 def slope_of(head: Floats, far: Floats) -> Floats:
     """Inclination below the horizontal from head to far end, degrees; nan without levels."""
     drop = head[:, 2] - far[:, 2]
-    return np.asarray(np.degrees(np.arctan2(drop, _apart(head[:, :2], far[:, :2]))))
+    return np.asarray(np.degrees(np.arctan2(drop, apart(head[:, :2], far[:, :2]))))
 
 
 def _roles(

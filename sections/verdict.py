@@ -185,7 +185,8 @@ def combine_results(results: Sequence[CriterionResult], margins: StationMargins,
         limits: Limits of the verdict.
 
     A gap that bears on an output lets no relief stand: `holds` and `over_states` become `not_assessed` and lose their
-    band. A warning stays, with the band of what could be assessed: a gap must never hide it.
+    band. A warning that the bands give before any margin stays, with the band of what could be assessed: a gap must
+    never hide it.
     """
     low, high, missing = hulls(results)
     missing = missing | margins.not_measured
@@ -197,7 +198,8 @@ def combine_results(results: Sequence[CriterionResult], margins: StationMargins,
     word = words_of(with_low, with_high, limits)
     by_class = np.any([result.assessed & result.by_class_only for result in results], axis=0)
     word = np.where(by_class & (word == HOLDS), UNDECIDED, word)
-    word = np.where(missing & (word >= OVER), NOT_ASSESSED, word)
+    warns = np.nan_to_num(bare_high, nan=0.0) > limits.ratio_high + TOLERANCE
+    word = np.where(missing & ~((word < NOT_ASSESSED) & warns), NOT_ASSESSED, word)
     gate = np.any([result.gate for result in results], axis=0)
     word = np.where(gate, NOT_2D, word)
     hide = (word == NOT_ASSESSED) | gate

@@ -13,6 +13,7 @@ from sections.model import Floats, Ints
 from sections.wall_graph import WallGraph, add_nodes, cross, cut, edge_tree, stub_length
 from sections.wall_lines import WallLine
 
+ROUNDS = 3
 NEXT_PILE = 1.25
 """The end of a row of piles joins another end within this many spacings, whatever the direction."""
 NEAR_PILE = 0.4
@@ -46,28 +47,35 @@ class Join:
 
 
 def close_joins(graph: WallGraph, lines: Sequence[WallLine], tolerance: float) -> WallGraph:
-    """Extend loose ends to where the walls obviously meet, shortest way first, then drop overshoots.
+    """Extend loose ends to where the walls obviously meet, shortest way first, and drop overshoots.
 
     Two ends meet where their lines intersect, within the reach of both (about a wall thickness, or a pile spacing; more
-    in acute corners, where two walls of one thickness meet farther away); ends that look at each other are joined.
+    in acute corners, where two walls of one thickness meet farther away); ends that look at each other are joined. A
+    third wall may then meet what was made.
     """
     graph = drop_stubs(graph, lines)
-    ends = loose_ends(graph, lines)
-    if not len(ends.node):
-        return graph
-    joins = sorted(
-        [*_end_to_end(ends, tolerance), *_end_to_edge(graph, ends, tolerance)],
-        key=lambda j: (round(j.cost, 6), *np.round(ends.at[j.end], 3)),
-    )
+    for _ in range(ROUNDS):
+        ends = loose_ends(graph, lines)
+        if not len(ends.node):
+            break
+        joins = _choose([*_end_to_end(ends, tolerance), *_end_to_edge(graph, ends, tolerance)], ends)
+        if not joins:
+            break
+        graph = drop_stubs(_apply(graph, ends, joins), lines)
+    return graph
+
+
+def _choose(joins: Sequence[Join], ends: LooseEnds) -> list[Join]:
+    """Cheapest first, each end once."""
     free = [True] * len(ends.node)
     taken = []
-    for join in joins:
+    for join in sorted(joins, key=lambda j: (round(j.cost, 6), *np.round(ends.at[j.end], 3))):
         if free[join.end] and (join.other is None or free[join.other]):
             taken.append(join)
             free[join.end] = False
             if join.other is not None:
                 free[join.other] = False
-    return drop_stubs(_apply(graph, ends, taken), lines)
+    return taken
 
 
 def loose_ends(graph: WallGraph, lines: Sequence[WallLine]) -> LooseEnds:

@@ -11,7 +11,7 @@ from typing import TypeVar
 import numpy as np
 
 from ingest.model import Point
-from sections.model import WORST_FIRST, Floats, Pit, StationTable, VerdictWord
+from sections.model import WORST_FIRST, Floats, Pit, Proposal, StationOutput, StationTable, VerdictWord
 
 T = TypeVar("T")
 LONGEST_MITRE = 2.0
@@ -117,6 +117,20 @@ def stretches(chainage: Sequence[float], values: Sequence[str | None], length: f
         found.append(Stretch(start, to, first, last, value))
         n += size
     return found
+
+
+def blank_stations(outputs: Sequence[str]) -> StationTable:
+    """Stations of a pit that has none: one at the start, where nothing is assessed."""
+    blank = StationOutput(low=(None,), high=(None,), verdict=("not_assessed",), dominant=(None,))
+    return StationTable(
+        chainage=(0.0,), floor=(None,), retained=(None,), section=(None,), outputs=dict.fromkeys(outputs, blank)
+    )
+
+
+def stations_of(proposal: Proposal, pit: Pit) -> StationTable:
+    """The stations of a pit; where there are none, everything is not assessed."""
+    table = proposal.stations.get(pit.id)
+    return table if table is not None and table.chainage else blank_stations(proposal.limits.governing)
 
 
 def worst_words(table: StationTable, outputs: Sequence[str]) -> tuple[VerdictWord, ...]:

@@ -4,18 +4,19 @@ from __future__ import annotations
 
 from collections.abc import Sequence
 from importlib import resources
-from math import cos, hypot, radians, sin
+from math import cos, radians, sin
 
 from export.report import plan_site as on_site
-from export.report.along import Perimeter, stretches, worst_words
+from export.report.along import Perimeter, stations_of, stretches, worst_words
 from export.report.markup import Html, tag
+from export.report.plan_cuts import cuts, legend_of_cuts
 from export.report.plan_site import ToWorld, named
-from export.report.scale import LETTERS, WIDTH, View, clip, fit, multiples, round_step
+from export.report.scale import WIDTH, View, clip, fit, multiples, round_step
 from export.report.sheet_marks import SMALL, drawing, grid, letters, north, scale_bar
 from export.report.verdict_marks import area_patterns, legend, verdict_line
-from export.report.words import KIND_NAMES, VERDICT_NAMES, band, fixed, output_name, stretch
+from export.report.words import VERDICT_NAMES, band, fixed, output_name, stretch
 from ingest.model import NOTICE, Point, Site
-from sections.model import ChosenSection, Pit, Proposal, Represents, StationTable, Unrepresented
+from sections.model import Pit, Proposal, Represents, StationTable, Unrepresented
 
 HEIGHT = 860.0
 FOOT = 122.0
@@ -36,7 +37,7 @@ def plan_drawing(proposal: Proposal, site: Site | None) -> Html:
     body = [
         grid(view),
         tag("g", *(mark for pit in proposal.pits for mark in _symmetry(pit, view)), class_="layer-symmetry"),
-        _cuts(proposal.sections, view),
+        cuts(proposal.sections, view),
         *(_pit(pit, site, view, world) for pit in proposal.pits),
         tag("g", on_site.corners(proposal.pits, view), class_="layer-corners"),
         on_site.boreholes(site, view, world),
@@ -47,7 +48,7 @@ def plan_drawing(proposal: Proposal, site: Site | None) -> Html:
         letters((28, view.height + 110), NOTICE, SMALL, class_="soft"),
         scale_bar((28, view.height + 50), view),
         legend((28, view.height + 80), 158.0),
-        _legend_of_cuts((430, view.height + 50)),
+        legend_of_cuts((430, view.height + 50)),
     ]
     place: dict[str, str | float] = {
         "x0": f"{view.x0:.4f}",
@@ -169,9 +170,7 @@ def _zones(pit: Pit, view: View) -> Html:
 
 
 def _verdicts(pit: Pit, proposal: Proposal, view: View) -> Html:
-    table = proposal.stations.get(pit.id)
-    if table is None or not table.chainage:
-        return Html("")
+    table = stations_of(proposal, pit)
     governing = proposal.limits.governing
     bands = [_verdict_band(pit, table, GOVERNING_KEY, worst_words(table, governing), view)]
     bands += [_verdict_band(pit, table, name, one.verdict, view) for name, one in table.outputs.items()]
@@ -217,56 +216,3 @@ def _stand(section: str, one: Represents | Unrepresented, kind: str, line: Perim
         about = f"{where}: {section} stands for it, {'provisionally' if one.provisional else 'shown'}"
     data = view.path(line.part(one.start, one.to, STANDS_OFF / view.k))
     return named(about, tag("path", d=data, class_=f"stands-{kind}"), class_=f"stands for-{section or 'none'}")
-
-
-def _cuts(sections: Sequence[ChosenSection], view: View) -> Html:
-    marks = []
-    for section in sections:
-        inside = clip(*section.line, view)
-        if inside is None:
-            continue
-        a, b = view.at(inside[0]), view.at(inside[1])
-        size = hypot(b[0] - a[0], b[1] - a[1]) or 1.0
-        ux, uy = (b[0] - a[0]) / size, (b[1] - a[1]) / size
-        ends = [_cut_end((a[0] + 6 * ux, a[1] + 6 * uy), (ux, uy), section.id)]
-        ends.append(_cut_end((b[0] - 6 * ux, b[1] - 6 * uy), (-ux, -uy), section.id, -1))
-        line = tag("path", d=f"M{a[0]:.2f} {a[1]:.2f}L{b[0]:.2f} {b[1]:.2f}", class_="cut")
-        walls = ", ".join(f"{wall.pit} ch {fixed(wall.at, 1)}" for wall in section.walls)
-        about = f"Section {section.id}, {KIND_NAMES[section.kind]}, cuts the wall at {walls}"
-        marks.append(
-            tag("a", named(about, line, *ends), href=f"#section-{section.id}", class_="cut-link", aria_label=about)
-        )
-    return tag("g", *marks, class_="layer-cuts")
-
-
-def _legend_of_cuts(at: Point) -> Html:
-    x, y = at
-    rows = (
-        ("cut", "section cut", 0),
-        ("stands-shown", "stands for: shown", 125),
-        ("stands-provisional", "provisional", 285),
-        ("stands-none", "own analysis", 405),
-    )
-    return tag(
-        "g",
-        *(tag("path", d=f"M{x + off} {y + 3}h36", class_=class_) for class_, _, off in rows),
-        *(letters((x + off + 42, y + 7), words, SMALL) for _, words, off in rows),
-    )
-
-
-def _cut_end(at: Point, inward: Point, name: str, turn: int = 1) -> Html:
-    """Section mark of the trade: a heavy end, and an arrow towards what is seen."""
-    (x, y), (ux, uy) = at, inward
-    sx, sy = uy * turn, -ux * turn
-    tip = (x + 17 * sx, y + 17 * sy)
-    base = (x + 7 * sx, y + 7 * sy)
-    corners = (tip, (base[0] + 5 * ux, base[1] + 5 * uy), (base[0] - 5 * ux, base[1] - 5 * uy))
-    head = " ".join(f"{px:.2f},{py:.2f}" for px, py in corners)
-    label = (x + 30 * sx + 12 * ux, y + 30 * sy + 12 * uy + 5)
-    return tag(
-        "g",
-        tag("path", d=f"M{x:.2f} {y:.2f}l{26 * ux:.2f} {26 * uy:.2f}", class_="cut-end"),
-        tag("path", d=f"M{x:.2f} {y:.2f}L{base[0]:.2f} {base[1]:.2f}", class_="cut-end"),
-        tag("polygon", points=head, class_="accent-fill"),
-        letters(label, name, LETTERS + 2, "middle", "accent halo"),
-    )

@@ -4,7 +4,7 @@ from __future__ import annotations
 
 from collections.abc import Sequence
 
-from export.report.along import Stretch, stretches
+from export.report.along import Stretch, stations_of, stretches
 from export.report.markup import Html, tag
 from export.report.plan_site import member_words, named
 from export.report.scale import LETTERS, WIDTH, multiples, path_data, round_step
@@ -52,19 +52,16 @@ def ribbon_drawing(pit: Pit, proposal: Proposal) -> Html:
         proposal: The proposal it belongs to; a pit without stations gives lanes without bands.
     """
     pen = Unrolled(pit.length)
-    table = proposal.stations.get(pit.id)
-    stations = table if table is not None and table.chainage else None
+    stations = stations_of(proposal, pit)
     _chainages(pen, pit)
     _zones(pen, pit)
     _stands(pen, pit, proposal)
-    if stations is not None:
-        _levels(pen, stations)
+    _levels(pen, stations)
     for row in pit.members:
         if row.along:
             _members(pen, pit, row)
-    if stations is not None:
-        for name, output in stations.outputs.items():
-            _output(pen, pit, stations, name, output, proposal.limits)
+    for name, output in stations.outputs.items():
+        _output(pen, pit, stations, name, output, proposal.limits)
     foot = pen.y + 8
     lines = "".join(f"M{pen.x(corner.at):.2f} {44}V{foot:.2f}" for corner in pit.corners)
     pin = tag("path", d=f"M0 30V{foot:.2f}", class_="marker")
@@ -79,9 +76,7 @@ def ribbon_drawing(pit: Pit, proposal: Proposal) -> Html:
     return drawing("ribbon", f"ribbon-{pit.id}", title, about, foot + 40, body, left=GUTTER, k=pen.k)
 
 
-def _description(pit: Pit, table: StationTable | None) -> str:
-    if table is None or not table.chainage:
-        return f"No stations along {pit.id}."
+def _description(pit: Pit, table: StationTable) -> str:
     said = []
     for name, output in table.outputs.items():
         parts = stretches(table.chainage, output.verdict, pit.length)

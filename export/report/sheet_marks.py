@@ -46,7 +46,11 @@ def grid(view: View) -> Html:
         "g",
         tag("rect", x=left, y=view.top, width=view.width, height=view.height, class_="frame"),
         tag("path", d=arms, class_="hair") if arms else None,
-        *(letters((view.x(e), bottom + 15), f"E {fixed(e, places)}", SMALL, "middle", "soft") for e in easts),
+        *(
+            letters((view.x(e), bottom + 15), f"E {fixed(e, places)}", SMALL, "middle", "soft")
+            for e in easts
+            if view.x(e) < WIDTH - 44
+        ),
         *(letters((left - 6, view.y(n)), f"N {fixed(n, places)}", SMALL, "middle", "soft", -90.0) for n in norths),
         class_="layer-grid",
     )

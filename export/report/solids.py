@@ -11,7 +11,7 @@ import numpy as np
 from ingest.model import Point, Point3
 from sections.model import Floats
 
-ROUND_SIDES = 10
+ROUND_SIDES = 8
 
 
 @dataclass(frozen=True, kw_only=True)
@@ -26,6 +26,7 @@ class Solid:
     faces: tuple[tuple[int, ...], ...]
     edges: tuple[tuple[int, int], ...]
     marked: bool = False
+    convex: bool = True
 
 
 def prism(
@@ -91,7 +92,7 @@ def revolved(kind: str, ring: Sequence[Point], turns: int = 36, marked: bool = F
             j = (i + 1) % n
             faces.append((a + i, a + j, b + j, b + i))
             edges.append((a + i, b + i))
-    return Solid(kind=kind, points=points, faces=tuple(faces), edges=tuple(edges), marked=marked)
+    return Solid(kind=kind, points=points, faces=tuple(faces), edges=tuple(edges), marked=marked, convex=False)
 
 
 def thick_line(a: Point, b: Point, thickness: float) -> list[Point]:

@@ -16,7 +16,7 @@ from export.report.solids import Solid
 from sections.model import Floats
 
 YAW, PITCH = 38.0, 24.0
-WIDTH, HEIGHT = 1000, 720
+WIDTH, HEIGHT = 900, 648
 MARGIN = 24
 LIFT = 0.08
 """An edge counts as seen when it lies at most this far behind the nearest face, m."""
@@ -115,8 +115,9 @@ def still_picture(solids: Sequence[Solid], scale: Scale) -> str:
     for solid, points, dots in zip(solids, seen, pixels, strict=True):
         first = FIRST_MARKED if solid.marked else FIRST_PLAIN
         near, plain = points.tolist(), dots.tolist()
+        middle = points.mean(axis=0).tolist() if solid.convex else None
         for face in solid.faces:
-            tone = _tone([near[n] for n in face[:3]])
+            tone = _tone([near[n] for n in face[:3]], middle)
             if tone is not None:
                 sheet.face([plain[n] for n in face], first + tone)
     for solid, dots in zip(solids, pixels, strict=True):
@@ -125,12 +126,14 @@ def still_picture(solids: Sequence[Solid], scale: Scale) -> str:
     return "data:image/png;base64," + base64.b64encode(_png(sheet.index)).decode()
 
 
-def _tone(corner: list[list[float]]) -> int | None:
-    """Lightest where a face looks at the eye; None for a face without area."""
+def _tone(corner: list[list[float]], middle: list[float] | None) -> int | None:
+    """Lightest where a face looks at the eye; None for one without area, or on the far side of a convex body."""
     (ax, ay, az), (bx, by, bz), (cx, cy, cz) = corner
     ux, uy, uz, vx, vy, vz = bx - ax, by - ay, bz - az, cx - ax, cy - ay, cz - az
     nx, ny, nz = uy * vz - uz * vy, uz * vx - ux * vz, ux * vy - uy * vx
     size = (nx * nx + ny * ny + nz * nz) ** 0.5
+    if middle is not None and nz * (nx * (ax - middle[0]) + ny * (ay - middle[1]) + nz * (az - middle[2])) < 0:
+        return None
     return None if size < 1e-9 else min(int(abs(nz) / size * TONES), TONES - 1)
 
 

@@ -33,11 +33,11 @@ def volume(solid: Solid) -> float:
 
 
 def test_bodies_have_the_volume_of_what_they_stand_for() -> None:
-    # width x depth x length; regular ten-sided outline 10/2 r^2 sin(36 deg); thickness x height x length (geometry)
+    # width x depth x length; regular eight-sided outline 8/2 r^2 sin(45 deg); thickness x height x length (geometry)
     beam = bar("strut", (0.0, 0.0, 0.0), (3.0, 4.0, 0.0), 0.4, 0.6)
     assert beam is not None
     assert volume(beam) == pytest.approx(0.4 * 0.6 * 5.0)
-    assert volume(pile("wall", (2.0, 3.0), 1.0, -10.0, 0.0)) == pytest.approx(10 * 5 * 0.25 * np.sin(pi / 5))
+    assert volume(pile("wall", (2.0, 3.0), 1.0, -10.0, 0.0)) == pytest.approx(10 * 4 * 0.25 * np.sin(pi / 4))
     assert volume(extruded("wall", thick_line((0.0, 0.0), (0.0, -12.0), 0.8), 7.5)) == pytest.approx(0.8 * 12 * 15)
     assert volume(prism("load", [(0, 0), (3, 0), (3, 2), (0, 2)], 0.0, 0.5)) == pytest.approx(3.0)
 
@@ -151,7 +151,7 @@ def test_the_pair_has_words_data_and_equal_bytes(first_pit: Job) -> None:
     assert "wall 30 and 2; strut 8 and 1" in figure
     tree = json.loads(re.search(r'class="scene">(.*?)</script>', figure)[1])  # type: ignore[index]
     assert len(tree["real"]) == 41
-    assert {len(tree["builds"][body["b"]]["f"]) for body in tree["real"]} == {12, 6}
+    assert {len(tree["builds"][body["b"]]["f"]) for body in tree["real"]} == {10, 6}
 
 
 def test_a_section_without_a_wall_says_so(first_pit: Job) -> None:

@@ -70,12 +70,17 @@ class Draughtsman:
         lengths = np.diff(ends)
         while np.ptp(lengths / np.maximum(np.round(lengths / run.spacing), 1)) > 0.08 * run.spacing:
             run.spacing *= 1.02 if run.kind == "contiguous" else 0.95
+            if run.kind == "contiguous" and run.spacing > 1.5 * run.size:
+                run.spacing, lengths = 1.2 * run.size, np.array([run.stop - run.start])
+                ends = [run.start, run.stop]
         places = []
         for a, b in zip(ends, ends[1:], strict=False):
             n = max(round((b - a) / run.spacing), 1)
             places += [a + (b - a) * k / n for k in range(n)]
         if not pit.closed and abs(run.stop - pit.length) < 1e-6:
             places.append(run.stop)
+        if pit.shares is not None and run.start == 0.0:
+            places = places[1:]  # the other pit's wall stands there
         run.spacings = (float(np.diff(places).min()), float(np.diff(places).max()))
         run.spacing = float(np.median(np.diff(places)))
         run.count = len(places)

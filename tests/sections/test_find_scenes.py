@@ -168,12 +168,12 @@ SEEDS = range(100)
 
 def test_members_of_a_hundred_scenes():
     wrong = [seed for seed in SEEDS if not members_right(seed)]
-    assert len(wrong) <= 2, wrong
+    assert wrong == []
 
 
 def test_zones_of_a_hundred_scenes():
     wrong = [seed for seed in SEEDS if not zones_right(seed)]
-    assert len(wrong) <= 2, wrong
+    assert wrong == []
 
 
 @pytest.mark.parametrize("drop", [0.5, 2.0])

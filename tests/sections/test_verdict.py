@@ -173,6 +173,8 @@ def test_an_unevaluated_gap_never_hides_a_warning() -> None:
     gap = result(None, None, "supports", missing=True)
     assert verdict_of(result(1.2, 1.4, "floor_step"), gap)[2] == "under_states"
     assert verdict_of(result(0.9, 1.4, "floor_step"), gap)[2] == "undecided"
+    # a margin alone is no warning: without it the band does not pass the limit
+    assert verdict_of(result(0.9, 1.0, "floor_step"), gap, margins=margin(0.1, 0.37))[2] == "not_assessed"
 
 
 def test_the_retained_face_of_a_row_without_a_measured_margin_is_not_assessed() -> None:
