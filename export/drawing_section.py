@@ -65,7 +65,7 @@ def _ground(space: Any, definition: SectionDefinition) -> None:
                 hatch.paths.add_polyline_path([(float(x), float(z)) for x, z in ring], is_closed=True)
         if rings:
             x, z = min(x for ring in rings for x, _ in ring), max(z for ring in rings for _, z in ring)
-            words(space, (x + 0.4, z - 0.6), one.id, "ground_text")
+            words(space, (x + 0.4, z - 0.6), one.material or one.id, "ground_text")
     for water in definition.ground.water:
         if len(water.line) > 1:
             polyline(space, water.line, "water")

@@ -10,8 +10,8 @@ from ingest.ags_rows import Row, Rows, each, read_rows
 from ingest.model import Borehole, FileParts, Layer, Part, Point3
 from ingest.trail import Finding, Source
 
-WATER_DEPTH = {"WSTG": "WSTG_DPTH", "WSTK": "WSTK_DEP", "WETH": "WETH_TOP"}
-"""Groups that tell where water was met, and the depth heading of each."""
+WATER_DEPTH = {"WSTG": "WSTG_DPTH", "WSTD": "WSTD_POST"}
+"""Groups of the AGS4 dictionary that tell where water was struck and how far it rose, and the depth heading of each."""
 NO_PLACE, NO_LEVEL, TWICE = "hole without coordinates", "hole without ground level", "hole named twice"
 
 
@@ -22,7 +22,8 @@ def read_ags(path: Path) -> FileParts:
         path: The file.
 
     Returns:
-        Boreholes with strata and water; every DATA row is one entity. Holes without place or level are left out, with
+        Boreholes with strata and the highest level water was struck at or rose to; every DATA row is one entity. Holes
+        without place or level are left out, with
         the reason.
 
     Raises:

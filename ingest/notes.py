@@ -20,6 +20,7 @@ class Notes:
     brief: Brief
     questions: list[Question] = field(default_factory=list)
     assumptions: list[Assumption] = field(default_factory=list)
+    _assumed: set[str] = field(default_factory=set)
     findings: list[Finding] = field(default_factory=list)
     not_assessed: list[NotAssessed] = field(default_factory=list)
     refused: dict[int, str] = field(default_factory=dict)
@@ -37,7 +38,8 @@ class Notes:
     def assume(self, code: str, about: str, text: str, basis: str, sources: Iterable[Source] = ()) -> None:
         """Write down what is taken as so; once for each code and subject."""
         id_ = f"{code}:{slug(about)}" if about else code
-        if all(known.id != id_ for known in self.assumptions):
+        if id_ not in self._assumed:
+            self._assumed.add(id_)
             self.assumptions.append(
                 Assumption(id=id_, code=code, about=about, text=text, basis=basis, sources=tuple(sources))
             )

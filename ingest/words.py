@@ -6,12 +6,14 @@ import re
 import tomllib
 import unicodedata
 from fnmatch import fnmatchcase
-from functools import cache
+from functools import cache, lru_cache
 from importlib.resources import files
 from typing import Any, cast
 
 from ingest.model import Role, WallKind
 from ingest.record import record
+
+Phrase = tuple[str, ...]
 
 _LANGUAGES = ("en", "de", "fr", "es", "it", "nl", "pt", "pl", "sv")
 _NOT_DECOMPOSED = str.maketrans({"ł": "l", "ø": "o", "đ": "d", "æ": "ae", "œ": "oe"})
@@ -54,13 +56,16 @@ def layer_name(layer: str) -> str:
     return split_xref(layer)[1] if fields is None else f"{fields.element} {fields.user}".replace("-", " ")
 
 
-@cache
 def find_meanings(name: str) -> tuple[Meaning, ...]:
     """Find what a layer or object name means, best first.
 
     A longer phrase wins over a shorter one that stands inside it: "pile cap" is no pile.
     """
-    words = split_words(name)
+    return _meanings(tuple("0" if word.isdigit() else word for word in split_words(name)))
+
+
+@lru_cache(maxsize=65536)
+def _meanings(words: tuple[str, ...]) -> tuple[Meaning, ...]:
     hits = [hit for spelling in _spellings(words) for hit in _hits(spelling)]
     kept = [
         hit
@@ -84,49 +89,57 @@ def _spellings(words: tuple[str, ...]) -> tuple[tuple[str, ...], ...]:
 
 def _hits(words: tuple[str, ...]) -> list[tuple[tuple[int, int], Meaning]]:
     found = []
-    for entry, phrases, unless in _vocabulary():
-        if any(_find(phrase, words) for phrase in unless):
-            continue
-        for language, phrase in phrases:
-            span = _find(phrase, words)
-            if span:
-                role = None if entry["role"] == "pile" else cast(Role, entry["role"])
-                meaning = Meaning(
-                    role=role,
-                    word=" ".join(words[span[0] : span[1]]),
-                    language=language,
-                    confidence=entry["confidence"],
-                    wall_kind=entry.get("wall_kind"),
-                    use=entry.get("use", ""),
-                )
-                found.append((span, meaning))
+    for start, word in enumerate(words):
+        for number, language, phrase in _beginning(word):
+            joined = len(phrase) > 1 and fnmatchcase(word, "".join(phrase))
+            if not joined and not _continues(phrase, words, start):
+                continue
+            span = (start, start + 1 if joined else start + len(phrase))
+            entry, unless = _vocabulary()[number]
+            if any(_continues(bar, words, at) for bar in unless for at in range(len(words))):
+                continue
+            found.append((span, _meaning(entry, words[span[0] : span[1]], language)))
     return found
 
 
-def _find(phrase: tuple[str, ...], words: tuple[str, ...]) -> tuple[int, int] | None:
-    for start in range(len(words) - len(phrase) + 1):
-        if all(fnmatchcase(words[start + n], piece) for n, piece in enumerate(phrase)):
-            return start, start + len(phrase)
-    if len(phrase) > 1:
-        joined = "".join(phrase)
-        return next(((n, n + 1) for n, word in enumerate(words) if fnmatchcase(word, joined)), None)
-    return None
+def _meaning(entry: dict[str, Any], words: tuple[str, ...], language: str) -> Meaning:
+    return Meaning(
+        role=None if entry["role"] == "pile" else cast(Role, entry["role"]),
+        word=" ".join(words),
+        language=language,
+        confidence=entry["confidence"],
+        wall_kind=entry.get("wall_kind"),
+        use=entry.get("use", ""),
+    )
+
+
+def _continues(phrase: Phrase, words: tuple[str, ...], start: int) -> bool:
+    pairs = zip(phrase, words[start : start + len(phrase)], strict=False)
+    return start + len(phrase) <= len(words) and all(fnmatchcase(word, piece) for piece, word in pairs)
+
+
+@lru_cache(maxsize=65536)
+def _beginning(word: str) -> tuple[tuple[int, str, Phrase], ...]:
+    """Phrases that a word begins, or that it is when written as one."""
+    return tuple(
+        (number, language, phrase)
+        for number, (entry, _) in enumerate(_vocabulary())
+        for language in _LANGUAGES
+        for phrase in map(_phrase, entry.get(language, ()))
+        if fnmatchcase(word, phrase[0]) or (len(phrase) > 1 and fnmatchcase(word, "".join(phrase)))
+    )
+
+
+@cache
+def _phrase(text: str) -> Phrase:
+    return tuple(text.split())
 
 
 def _inside(small: tuple[int, int], large: tuple[int, int]) -> bool:
     return large[0] <= small[0] and small[1] <= large[1]
 
 
-Phrase = tuple[str, ...]
-
-
 @cache
-def _vocabulary() -> tuple[tuple[dict[str, Any], tuple[tuple[str, Phrase], ...], tuple[Phrase, ...]], ...]:
+def _vocabulary() -> tuple[tuple[dict[str, Any], tuple[Phrase, ...]], ...]:
     data = tomllib.loads(files("ingest").joinpath("roles_layers.toml").read_text(encoding="utf-8"))
-    entries = []
-    for entry in data["meaning"]:
-        phrases = tuple(
-            (language, tuple(phrase.split())) for language in _LANGUAGES for phrase in entry.get(language, ())
-        )
-        entries.append((entry, phrases, tuple(tuple(phrase.split()) for phrase in entry.get("unless", ()))))
-    return tuple(entries)
+    return tuple((entry, tuple(map(_phrase, entry.get("unless", ())))) for entry in data["meaning"])

@@ -12,7 +12,7 @@ from ingest.model import Limits, LineDecision, Point, Site
 from sections.along import changes_of, steps_of
 from sections.chainage import cast, line_of, locate
 from sections.cut import Cut, CutWall
-from sections.likeness import nearest_station, tied_to
+from sections.likeness import nearest_station, station_under, tied_to
 from sections.model import Floats, FoundPit, Ints
 from sections.opposite_wall import ONE_CUT_LIMIT
 from sections.world import to_local
@@ -186,7 +186,7 @@ def _cut_at(found: FoundPit, pit: int, station: int, why: tuple[str, ...], tied:
     serves = 1
     inside = INSIDE * He if not np.isfinite(width) else min(INSIDE * He, 0.5 * width)
     if whole:
-        opposite = int(nearest_station(found, np.array([stations.facing_chainage[station]]))[0])
+        opposite = int(station_under(found, np.array([stations.facing_chainage[station]]))[0])
         judged, at = [station, opposite], [BEHIND * He, BEHIND * He + width]
         serves = 2 if abs(float(stations.facing_skew[station])) <= ONE_CUT_LIMIT + 1e-6 else 1
         inside = width + BEHIND * _depth(found, opposite)

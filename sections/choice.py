@@ -20,6 +20,7 @@ from sections.likeness import Likeness, find_likeness, fits, misfit
 from sections.model import Bools, Floats, Ints, Represents, Unrepresented
 from sections.standing import Standing, find_reasons, find_standing, open_outputs
 from sections.stretches import cell_lengths, find_stretches
+from sections.verdict import NOT_2D
 
 NOBODY = -1
 
@@ -128,8 +129,7 @@ def tabulate(
             covers[c] |= alike
             mis[c] = np.where(alike, np.minimum(mis[c], over), mis[c])
     weight = np.concatenate([cell_lengths(one.found) for one in judged["plane_strain"].values()])
-    scores = {kind: {p: one.scores for p, one in pits.items()} for kind, pits in judged.items()}
-    worth = [_worth(cut, judged, standings, scores) for cut in cuts]
+    worth = [_worth(cut, judged, standings) for cut in cuts]
     order = sorted(range(len(cuts)), key=lambda c: (not cuts[c].pinned, worth[c], c))
     rank = np.empty(len(cuts), dtype=np.int64)
     rank[order] = np.arange(len(cuts))
@@ -165,34 +165,33 @@ def _worth(
     cut: Candidate,
     judged: Mapping[str, Mapping[int, JudgedPit]],
     standings: Mapping[str, Mapping[int, Standing]],
-    scores: Mapping[str, Mapping[int, Floats]],
 ) -> tuple[float, ...]:
-    """Sort key, best first: fit to stand for others, worst word, outputs open, score, place in its zone."""
+    """Sort key, best first: fit to stand for others, not shut by a gate, kind, place in its zone.
+
+    A cut is not preferred for a kinder verdict: near a corner 2D over-states, and such a cut would show the stretch it
+    stands for as better than it is.
+    """
     one, standing = judged[cut.kind].get(cut.pit), standings[cut.kind].get(cut.pit)
     if one is None or standing is None:
         return (9.0,)
     i = cut.stations[0]
-    words = one.combined.word[i][one.governing[i]]
-    worst = float(words.min()) if len(words) else 0.0
-    score = scores[cut.kind][cut.pit][i]
+    shut = bool(np.any(one.combined.word[i][one.governing[i]] == NOT_2D))
     return (
         0.0 if standing.shown[i] else 1.0 if standing.provisional[i] else 2.0,
-        -worst,
-        float(standing.open[i].sum()),
-        0.0 if np.isnan(score) else -round(float(score), 6),
+        float(shut),
         0.0 if cut.kind == "axisymmetric" else 1.0,
-        _off_middle(one, i),
+        *_place_in_zone(one, i),
     )
 
 
-def _off_middle(judged: JudgedPit, station: int) -> float:
-    """Distance of a station from the middle of its zone, m."""
+def _place_in_zone(judged: JudgedPit, station: int) -> tuple[float, float]:
+    """Sort key: the longer zone first, then the smaller distance from its middle, m."""
     found = judged.found
     zone = found.pit.zones[int(found.stations.zone[station])]
     length = found.shape.length
     span = zone.to - zone.start if zone.to >= zone.start else zone.to - zone.start + length
     into = (float(found.stations.chainage[station]) - zone.start) % length
-    return round(abs(into - 0.5 * span), 6)
+    return -round(span, 6), round(abs(into - 0.5 * span), 6)
 
 
 def _needed(
@@ -207,7 +206,9 @@ def _needed(
             inside = stations.zone == z
             depth = stations.depth[inside & ~np.isnan(stations.depth)]
             least = float(np.max(depth)) if len(depth) else 0.0
-            lies = np.array([cut.pit == p and inside[cut.stations[0]] for cut in cuts], dtype=bool)
+            lies = np.array(
+                [cut.pit == p and any(inside[list(cut.stations[: cut.serves])]) for cut in cuts], dtype=bool
+            )
             if bare[inside].sum() > 0.0 and bare[inside].sum() >= least - 1e-9 and np.any(lies):
                 rows.append(lies)
     return np.array(rows, dtype=bool).reshape(len(rows), len(cuts))
@@ -229,7 +230,7 @@ def _choice(
     for p, one in judged["plane_strain"].items():
         own = owner[likeness.pit == p]
         section = np.array([place.get(c, NOBODY) for c in own.tolist()], dtype=np.int64)
-        kinds = np.array([cuts[c].kind == "axisymmetric" for c in own.tolist()]) & (own >= 0)
+        kinds = np.array([*(cut.kind == "axisymmetric" for cut in cuts), False])[own]
         made, rest, counted = _stretches(one, judged["axisymmetric"].get(p), section, kinds, standings, p)
         for k, stretch in made:
             represents[k].append(stretch)

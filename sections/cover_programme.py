@@ -16,6 +16,7 @@ if TYPE_CHECKING:
     from scipy.optimize import LinearConstraint
 
 SECONDS, NODES = 20.0, 20_000
+NO_GAP = 1e-9
 TIE, SCALE = 1e-6, 1e3
 """Cost of one place in the order of preference, which only decides between equals; scale above the solver's slack."""
 
@@ -135,7 +136,8 @@ def _solve(
     )
     if solved.x is None:
         return None, 1.0
-    return np.asarray(solved.x), float(solved.mip_gap or 0.0)
+    gap = float(solved.mip_gap or 0.0)
+    return np.asarray(solved.x), gap if gap > NO_GAP else 0.0
 
 
 def _place(rank: Ints) -> Floats:

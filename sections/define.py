@@ -113,7 +113,7 @@ def define_section(site: Site, cut: Cut, judged: Judged) -> SectionDefinition:
         loads=parts.loads,
         stages=stages,
         criteria=judged.criteria,
-        balance=balance_section(cut, parts.members, columns, materials, site.water_retained),
+        balance=balance_section(cut, parts.members, columns, materials, parts.loads, site.water_retained),
         implied=parts.implied,
         actions_without_twin=list_actions(cut, parts.members),
         receptors=receptors_met(site, cut),

@@ -71,7 +71,7 @@ def drop_doubles(faces: Faces) -> Faces:
     ends = np.where(swap[:, None], np.hstack((faces.q, faces.p)), np.hstack((faces.p, faces.q)))
     keep = np.ones(len(ends), dtype=bool)
     for a, b in sorted(cKDTree(ends).query_pairs(0.02)):
-        if keep[a] and faces.body[a] == faces.body[b]:
+        if keep[a]:
             keep[b] = False
     return faces.pick(keep)
 

@@ -21,18 +21,7 @@ from sections.pit_notes import note_levels, note_supports
 from sections.stations import stand
 from sections.support_ends import SupportEnds, meet_supports
 from sections.support_rows import find_rows
-from sections.world import (
-    to_world,
-    world_arcs,
-    world_axes,
-    world_circle,
-    world_circles,
-    world_corners,
-    world_floors,
-    world_loads,
-    world_receptors,
-    world_steps,
-)
+from sections.world import world_pit
 
 
 def find_pits(site: Site) -> tuple[FoundPit, ...]:
@@ -104,37 +93,42 @@ def _describe(
     rows = replace(rows, rows=carry_by_walers(site, shape, rows.rows))
     extra = np.array([at for step in steps for at in step.at])
     stations, zones = stand(site, shape, sides, plan, rows, loads, extra, around)
-    members = (*(row.member for row in rows.rows), *find_members(site, shape, wall_piles))
     near = tuple(load.load for load in loads)
-    level_findings, assumptions = note_levels(site, shape, plan, around is not None)
-    frame = site.frame
-    pit = Pit(
-        id=shape.id,
-        closed=shape.closed,
-        length=shape.length,
-        perimeter=to_world(frame, shape.axis),
-        ground_level=_retained_level(stations.ground),
-        arcs=world_arcs(frame, shape.arcs),
-        corners=world_corners(frame, shape.corners),
-        runs=shape.runs,
+    found, assumptions = note_levels(site, shape, plan, around is not None)
+    pit = replace(
+        _outline(shape, _retained_level(stations.ground)),
         zones=zones,
-        circle=world_circle(frame, shape.circle),
-        circles=world_circles(frame, shape.circles),
-        symmetry=world_axes(frame, find_axes(site, shape, stations, rows.rows, near)),
-        floors=world_floors(frame, floor_records(plan)),
-        steps=world_steps(frame, steps),
-        members=members,
-        loads=world_loads(frame, near),
-        receptors=world_receptors(frame, find_receptors(site, shape)),
+        symmetry=find_axes(site, shape, stations, rows.rows, near),
+        floors=floor_records(plan),
+        steps=steps,
+        members=(*(row.member for row in rows.rows), *find_members(site, shape, wall_piles)),
+        loads=near,
+        receptors=find_receptors(site, shape),
         neighbours=neighbours,
     )
     return FoundPit(
-        pit=pit,
+        pit=world_pit(site.frame, pit),
         shape=shape,
         stations=stations,
         rows=rows.rows,
-        findings=(*level_findings, *notes[0]),
+        findings=(*found, *notes[0]),
         questions=notes[1],
         assumptions=assumptions,
         loads={load.load.id: load.index for load in loads},
+    )
+
+
+def _outline(shape: PitShape, ground_level: float | None) -> Pit:
+    """The record of a pit as far as its perimeter goes, local coordinates."""
+    return Pit(
+        id=shape.id,
+        closed=shape.closed,
+        length=shape.length,
+        perimeter=tuple((float(x), float(y)) for x, y in shape.axis),
+        ground_level=ground_level,
+        arcs=shape.arcs,
+        corners=shape.corners,
+        runs=shape.runs,
+        circle=shape.circle,
+        circles=shape.circles,
     )

@@ -34,8 +34,9 @@ from sections.verdict import (
     settle,
 )
 
+RETAINED = "wall_moment_retained_face"
 STAGE = "final dig"
-"""The stage every criterion of this table speaks of, until a computation takes the stages one by one."""
+"""The stage every criterion of this table speaks of, unless a computation takes the stages one by one."""
 
 
 @dataclass(frozen=True, kw_only=True)
@@ -126,7 +127,7 @@ class JudgedPit:
     def _criterion_sentence(self, result: CriterionResult, i: int, o: int) -> str:
         """The criterion's sentence, or why it leaves out this output while it speaks of others."""
         name = self.outputs[o]
-        silent = not result.assessed[i, o] and not result.gate[i, o] and bool(np.any(result.assessed[i]))
+        silent = np.isnan(result.low[i, o]) and not result.gate[i, o] and not bool(np.all(np.isnan(result.low[i])))
         if silent and name in result.silence:
             words = result.silence[name]
             return f"{words[:1].upper()}{words[1:]}."
@@ -143,6 +144,7 @@ class JudgedPit:
             for result in self.results
             if result is not chief and _missing(result)[i, o]
         ]
+        unmeasured = word == "not_assessed" and self.outputs[o] == RETAINED and bool(self.found.stations.rows[i])
         bare = _finite(c.bare_low[i, o]), _finite(c.bare_high[i, o])
         said = Said(
             output=self.outputs[o],
@@ -150,8 +152,8 @@ class JudgedPit:
             low=low,
             high=high,
             bare=None if bare[0] is None or bare[1] is None else (bare[0], bare[1]),
-            stage=STAGE,
-            decides=self._unspoken(i, o) if chief is None else self._criterion_sentence(chief, i, o),
+            stage=self._stage(i, o),
+            decides=self._unspoken(i, o) if chief is None or unmeasured else self._criterion_sentence(chief, i, o),
             gaps=gaps,
             settled_by="" if chief is None else chief.settled_by,
             by_class=any(r.by_class_only and r.assessed[i, o] for r in self.results),
@@ -163,9 +165,17 @@ class JudgedPit:
             verdict=word,
             provisional=bool(self.provisional[i, o]),
             dominant=None if chief is None else chief.code,
-            stage=None if word in ("not_assessed", "not_two_dimensional") else STAGE,
+            stage=None if word in ("not_assessed", "not_two_dimensional") else self._stage(i, o),
             sentence=build_sentence(said, self.limits),
+            margin=None if low is None else (float(c.e_low[i, o]), float(c.e_high[i, o])),
         )
+
+    def _stage(self, i: int, o: int) -> str:
+        """Stage that governs: that of the computation which takes them one by one, else the final dig."""
+        for result in self.results:
+            if result.stages is not None and result.assessed[i, o] and result.stages[1][i, o] >= 0:
+                return result.stages[0][int(result.stages[1][i, o])]
+        return STAGE
 
     def _why_provisional(self, i: int, o: int) -> tuple[str, ...]:
         if not self.provisional[i, o]:
@@ -174,7 +184,7 @@ class JudgedPit:
         return (*self.reasons[int(self.unconfirmed[i])], *recalled)
 
     def _unspoken(self, i: int, o: int) -> str:
-        if self.outputs[o] == "wall_moment_retained_face" and self.found.stations.rows[i]:
+        if self.outputs[o] == RETAINED and self.found.stations.rows[i]:
             return "No margin has been measured for the retained face of rows of piles."
         name = self.outputs[o]
         if name == "settlement":

@@ -14,6 +14,7 @@ import numpy as np
 
 from ingest.model import Limits, Load, Site
 from sections.along import Construction, construction_of, cover_of
+from sections.chainage import ON
 from sections.ground import layers_along, water_along
 from sections.model import Bools, Floats, FoundPit, Ints, SupportRow
 from sections.signature import STRATA
@@ -113,9 +114,18 @@ def tied_to(found: FoundPit) -> Ints:
     across = np.array([row.member.role == "strut" and _reaches(row) for row in found.rows], dtype=bool)
     cover = cover_of(stations, len(found.rows)) & across
     met = ~np.isnan(stations.facing_chainage)
-    opposite = nearest_station(found, np.where(met, stations.facing_chainage, 0.0))
+    opposite = station_under(found, np.where(met, stations.facing_chainage, 0.0))
     shared = (cover & cover[opposite]).any(axis=1) if n else np.zeros(0, dtype=bool)
     return np.where(met & shared, opposite, -1).astype(np.int64)
+
+
+def station_under(found: FoundPit, chainages: Floats) -> Ints:
+    """Index of the station that stands for each chainage (m,): the last one at or before it.
+
+    At a corner a station belongs to the wall that begins there, so the nearest one may stand on the wrong wall.
+    """
+    index = np.searchsorted(found.stations.chainage, chainages + ON, side="right") - 1
+    return np.where(index < 0, len(found.stations.chainage) - 1, index).astype(np.int64)
 
 
 def nearest_station(found: FoundPit, chainages: Floats) -> Ints:

@@ -161,7 +161,7 @@ def area_ratios(x1: float, x2: float, H: float, b1: float, b2: float) -> tuple[f
     _height(H)
     force = float(np.sum(w * (_finite_resultant(x, H, b1) + _finite_resultant(x, H, b2)))) / 2
     moment = float(np.sum(w * (_finite_moment(x, H, b1) + _finite_moment(x, H, b2)))) / 2
-    return force / _strip_resultant(x1, x2, H), moment / _strip_moment(x1, x2, H)
+    return force / strip_resultant(x1, x2, H), moment / _strip_moment(x1, x2, H)
 
 
 def perpendicular_widths(x1: float, x2: float, H: float) -> tuple[float, float]:
@@ -173,7 +173,7 @@ def perpendicular_widths(x1: float, x2: float, H: float) -> tuple[float, float]:
     require(x2, "far end", "m", above=x1)
     cubed = log(x2 / x1) - (asinh(x2 / _height(H)) - asinh(x1 / H)) + x2 / hypot(x2, H) - x1 / hypot(x1, H)
     heeled = log(x2 / x1) - (asinh(x2 / H) - asinh(x1 / H))
-    return _strip_resultant(x1, x2, H) / (cubed / (2 * pi)), _strip_moment(x1, x2, H) / (H * heeled / (2 * pi))
+    return strip_resultant(x1, x2, H) / (cubed / (2 * pi)), _strip_moment(x1, x2, H) / (H * heeled / (2 * pi))
 
 
 def decay_along_wall(x: float, y: float) -> float:
@@ -219,7 +219,8 @@ def _finite_moment(x: Number, H: float, b: float) -> Number:
     return (H * b / np.sqrt(x**2 + b**2) - x * np.arctan(b * H / (x * np.sqrt(u + b**2)))) / pi
 
 
-def _strip_resultant(x1: float, x2: float, H: float) -> float:
+def strip_resultant(x1: float, x2: float, H: float) -> float:
+    """Resultant down to H of an endless strip of 1 kPa from x1 to x2, (H/pi)(atan(x2/H) - atan(x1/H)), kN/m."""
     return H / pi * (atan(x2 / H) - atan(x1 / H))
 
 

@@ -248,6 +248,8 @@ class Verdict:
     dominant: str | None
     stage: str | None
     sentence: str
+    margin: tuple[float, float] | None = None
+    """Margin of the model's error that is in the band: low x (1 - first), high x (1 + second)."""
 
 
 @record
@@ -485,6 +487,8 @@ class CriterionResult:
     settled_by: str = ""
     speaks_of: tuple[str, ...] = ()
     silence: dict[str, str] = field(default_factory=dict)
+    stages: tuple[tuple[str, ...], Ints] | None = None
+    """Stages by name, and which of them governs the real demand, (n, o) indices; -1 where not known."""
 
 
 @dataclass(frozen=True, kw_only=True)

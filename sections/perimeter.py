@@ -106,7 +106,7 @@ def _shape(site: Site, way: Way, lines: Sequence[WallLine], origin: Point, start
     corners = find_corners(outline, direction)
     circle = find_circle(outline, way.samples, direction)
     parts = find_parts(outline, way.samples, direction) if circle is None else ()
-    runs, piles = find_runs(site, outline, stretches_along(outline, way.trace, lines), [c.at for c in corners])
+    runs, piles = find_runs(site, outline, stretches_along(site, outline, way.trace, lines), [c.at for c in corners])
     return PitShape(
         id="",
         closed=outline.closed,

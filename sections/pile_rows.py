@@ -86,7 +86,8 @@ def find_pile_rows(piles: Sequence[Pile]) -> tuple[PileRow, ...]:
     """Chain wall piles into rows; piles said to be bearing piles, and grids of unnamed piles, are left out.
 
     Returns:
-        Rows of at least three piles (two where the piles are said to be a wall), each pile in one row at most.
+        Rows of at least three piles (two where the piles are said to be a wall, or stand too close for anything else),
+        each pile in one row at most.
     """
     chosen = [i for i in single_piles(piles) if piles[i].bearing is not True]
     if len(chosen) < 2:
@@ -106,7 +107,7 @@ def find_pile_rows(piles: Sequence[Pile]) -> tuple[PileRow, ...]:
     links = _link(edges, xy, rank, span)
     _link_single(edges, links, rank, span)
     rows = (_row(piles, chain, closed, xy, index, named) for chain, closed in _chains(links))
-    return tuple(row for row in rows if len(row.piles) >= (2 if row.sure else 3))
+    return tuple(row for row in rows if len(row.piles) >= (1 if row.sure else 3) and row.spacing > 0.0)
 
 
 def _reach(tree: cKDTree, xy: Floats, named: Bools, size: Floats, post: Bools) -> Floats:
@@ -237,8 +238,14 @@ def _row(
         spacing=float(np.median(spans)) if len(spans) else 0.0,
         kinds=kinds_of(members, spans, closed),
         ends=(float(spans[:3].max(initial=0.0)), float(spans[-3:].max(initial=0.0))),
-        sure=bool(named[chain].mean() > 0.5),
+        sure=bool(named[chain].mean() > 0.5) or _is_close(members, spans),
     )
+
+
+def _is_close(members: Sequence[Pile], spans: Floats) -> bool:
+    """True where the piles stand too close to be anything but a wall."""
+    sizes = [size for size in map(pile_size, members) if size is not None]
+    return bool(sizes and len(spans) and np.median(spans) <= CLOSE_ROW * np.median(sizes))
 
 
 def kinds_of(piles: Sequence[Pile], spans: Floats, closed: bool) -> tuple[WallKind, ...]:
@@ -256,20 +263,25 @@ def kinds_of(piles: Sequence[Pile], spans: Floats, closed: bool) -> tuple[WallKi
     if not closed and len(piles) > 3:
         around[0, -1], around[2, 0], around[3, :2] = after[-1], after[0], after[0]
     ratio = np.median(around, axis=0)
-    kinds = [_pile_kind(pile, float(r)) for pile, r in zip(piles, ratio, strict=True)]
-    return _without_specks(kinds, [pile.kind in EMBEDDED for pile in piles], np.nan_to_num(size))
+    return tuple(_pile_kind(pile, float(r)) for pile, r in zip(piles, ratio, strict=True))
 
 
-def _without_specks(kinds: list[WallKind], said: Sequence[bool], size: Floats) -> tuple[WallKind, ...]:
-    """One or two unnamed piles that differ from both sides only stand where two spacings meet: they go to one side."""
+def without_specks(piles: Sequence[Pile], given: Sequence[WallKind]) -> list[WallKind]:
+    """Kinds along a wall with one or two unnamed piles that differ from both sides given to the side of their size.
+
+    They only stand where two spacings meet.
+    """
+    kinds = list(given)
+    said = [pile.kind in EMBEDDED for pile in piles]
+    size = [pile_size(pile) or 0.0 for pile in piles]
     starts = [k for k in range(len(kinds)) if k == 0 or (kinds[k], said[k]) != (kinds[k - 1], said[k - 1])]
     for a, b in zip(starts, [*starts[1:], len(kinds)], strict=True):
         if b - a > 2 or any(said[a:b]) or len(starts) == 1:
             continue
         sides = [k for k in (a - 1, b) if 0 <= k < len(kinds)]
-        like = min(sides, key=lambda k: (abs(float(size[k] - size[a])), not said[k], k))
+        like = min(sides, key=lambda k: (abs(size[k] - size[a]), not said[k], k))
         kinds[a:b] = [kinds[like]] * (b - a)
-    return tuple(kinds)
+    return kinds
 
 
 def _pile_kind(pile: Pile, ratio: float) -> WallKind:

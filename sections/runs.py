@@ -3,7 +3,7 @@
 from __future__ import annotations
 
 from collections.abc import Sequence
-from dataclasses import dataclass
+from dataclasses import dataclass, replace
 from itertools import pairwise
 
 import numpy as np
@@ -13,6 +13,7 @@ from ingest.model import Limits, Site, WallKind, WallPiece
 from ingest.trail import Source
 from sections.model import Floats, Run, Wall
 from sections.outline import Outline
+from sections.pile_rows import without_specks
 from sections.pile_walls import SAME_SIZE, near, pile_wall, split_row
 from sections.rings import Trace
 from sections.wall_lines import WallLine
@@ -44,7 +45,7 @@ def locate(outline: Outline, points: Floats) -> Floats:
     return np.asarray(at)
 
 
-def stretches_along(outline: Outline, trace: Trace, lines: Sequence[WallLine]) -> list[Stretch]:
+def stretches_along(site: Site, outline: Outline, trace: Trace, lines: Sequence[WallLine]) -> list[Stretch]:
     """Piles and drawn stretches of a way, in order of chainage; a pile of a wall that only ends there is left out."""
     graph = trace.graph
     nodes = trace.nodes
@@ -68,7 +69,21 @@ def stretches_along(outline: Outline, trace: Trace, lines: Sequence[WallLine]) -
         one = lines[line[k]]
         bits.append(Stretch(start=float(start[k]), stop=float(stop[k]), kind=one.kind, piece=one.piece,
                             thickness=one.thickness))  # fmt: skip
-    return sorted(bits, key=lambda bit: (bit.start, bit.stop, bit.pile))
+    return _settled(site, sorted(bits, key=lambda bit: (bit.start, bit.stop, bit.pile)))
+
+
+def _settled(site: Site, bits: list[Stretch]) -> list[Stretch]:
+    """Kinds of unnamed piles settled by their neighbours along the wall, across the start of a ring too."""
+    index = [k for k, bit in enumerate(bits) if bit.pile >= 0]
+    if not index:
+        return bits
+    around = [*index[-3:], *index, *index[:3]]
+    lead = len(index[-3:])
+    kinds = without_specks([site.piles[bits[k].pile] for k in around], [bits[k].kind for k in around])
+    settled = list(bits)
+    for k, kind in zip(index, kinds[lead : lead + len(index)], strict=True):
+        settled[k] = replace(bits[k], kind=kind)
+    return settled
 
 
 def find_runs(
@@ -154,9 +169,11 @@ def _boundary(before: Sequence[Stretch], after: Sequence[Stretch], outline: Outl
     length = outline.length
     if b < a - 0.5 * length:
         b += length
+    low = a + (AT_CORNER if before[-1].pile >= 0 else -_slack(before[-1]))
+    high = b + (AT_CORNER if after[0].pile >= 0 else _slack(after[0]))
     for corner in corners:
         for at in (corner, corner + length):
-            if a + (AT_CORNER if before[-1].pile >= 0 else -AT_CORNER) < at <= b + AT_CORNER:
+            if low < at <= high:
                 return _on_ring(min(at, b) if after[0].pile >= 0 else at, outline)
     if before[-1].pile < 0 and after[0].pile < 0:
         return _on_ring(0.5 * (a + b), outline)
@@ -165,6 +182,11 @@ def _boundary(before: Sequence[Stretch], after: Sequence[Stretch], outline: Outl
     if after[0].pile < 0:
         return _on_ring(max(b, a + AT_CORNER), outline)
     return _on_ring(b - 0.25 * (b - a), outline)
+
+
+def _slack(bit: Stretch) -> float:
+    """How far past or short of a corner a drawn stretch may end and still end in it, m."""
+    return AT_CORNER + 0.6 * (bit.thickness or 0.0)
 
 
 def _on_ring(at: float, outline: Outline) -> float:

@@ -8,7 +8,8 @@ from math import cos, radians, sin
 import numpy as np
 
 from sections.cut import Cut, CutWall
-from sections.definition import Action, Balance, BalanceLine, PerMetre, SectionMaterial, SectionMember
+from sections.definition import Action, Balance, BalanceLine, PerMetre, SectionLoad, SectionMaterial, SectionMember
+from sections.loads import line_resultant, strip_resultant
 
 WATER = 9.81
 """Unit weight of water, kN/m3."""
@@ -19,6 +20,7 @@ def balance_section(
     members: Sequence[SectionMember],
     columns: Mapping[str, Sequence[tuple[float, str]]],
     materials: Mapping[str, SectionMaterial],
+    loads: Sequence[SectionLoad],
     water: float | None,
 ) -> Balance:
     """Work out the forces the section must close with, kN per m run of wall.
@@ -28,9 +30,11 @@ def balance_section(
         members: Members of the section, smeared.
         columns: Per wall side ("left", "right") the layer tops behind it, highest first: (level, material id).
         materials: Materials of the section.
+        loads: Loads as handed over.
         water: Retained water level, None when not given.
     """
     horizontal = [_thrust(wall, columns.get(wall.side, ()), materials, water) for wall in cut.walls]
+    horizontal += [_load_thrust(cut, load) for load in loads]
     horizontal += _horizontal_preloads(members)
     known = [line.value for line in horizontal]
     if len(cut.walls) == 2 and all(value is not None for value in known[:2]):
@@ -44,6 +48,23 @@ def balance_section(
         )
         horizontal.append(BalanceLine(text=text, value=None, unit="kN/m"))
     return Balance(horizontal=tuple(horizontal), vertical=tuple(_vertical(members)))
+
+
+def _load_thrust(cut: Cut, load: SectionLoad) -> BalanceLine:
+    """Thrust on the nearest wall, down to its dig level, of a load as handed over (endless along the wall, elastic)."""
+    text = f"thrust of {load.id} as handed over, down to the dig level"
+    wall = min(cut.walls, key=lambda w: abs(w.x - load.at[0][0]))
+    floor = wall.level["floor"]
+    back = sorted(wall.x - x if wall.side == "left" else x - wall.x for x, _ in load.at)
+    value = load.section.value
+    if value is None or floor is None or back[0] < 0 or load.at[0][1] <= floor:
+        return BalanceLine(text=f"{text}: not assessed", value=None, unit="kN/m")
+    H = load.at[0][1] - floor
+    if load.section.unit == "kPa":
+        thrust = value * strip_resultant(back[0], back[-1], H)
+    else:
+        thrust = value * line_resultant(max(back[0], 1e-3), H)
+    return BalanceLine(text=text, value=thrust if wall.side == "left" else -thrust, unit="kN/m")
 
 
 def _thrust(

@@ -48,7 +48,7 @@ def stand(
     """
     depth = _largest_depth(site, plan)
     covers = find_covers(rows, sides, site.limits, single=depth if np.isfinite(depth) else np.inf)
-    events = [_ends_of_runs(shape), *_support_places(rows.rows), extra]
+    events = [_ends_of_curves(shape), *_support_places(rows.rows), extra]
     events += [sides.start[c.side] + np.array([c.start, c.to]) for c in covers]
     events += [load_ends(shape, near.load, depth) for near in loads]
     steps = walk(site, shape, sides, plan, events, around)
@@ -71,9 +71,8 @@ def _largest_depth(site: Site, plan: FloorPlan) -> float:
     return float(site.ground_level - np.min(plan.levels))
 
 
-def _ends_of_runs(shape: PitShape) -> Floats:
-    ends = [(run.start, run.to) for run in shape.runs]
-    ends += [(arc.start, arc.to) for arc in shape.arcs] + [(part.start, part.to) for part in shape.circles]
+def _ends_of_curves(shape: PitShape) -> Floats:
+    ends = [(arc.start, arc.to) for arc in shape.arcs] + [(part.start, part.to) for part in shape.circles]
     return np.array(ends, dtype=np.float64).reshape(-1)
 
 

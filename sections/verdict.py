@@ -47,6 +47,9 @@ class Combined:
     bare_high: Floats
     word: Ints
     missing: Bools
+    e_low: Floats
+    e_high: Floats
+    """Margin that was applied."""
 
 
 def share_weighted(ratio: float, share: float | None) -> tuple[float, float]:
@@ -117,10 +120,19 @@ def words_of(low: Floats, high: Floats, limits: Limits) -> Ints:
 
 
 def settle(results: Sequence[CriterionResult]) -> tuple[CriterionResult, ...]:
-    """Let a cross-check count only where another criterion of its mechanism speaks: it never stands alone."""
+    """Settle what criteria may say beside each other.
+
+    A cross-check counts only where another criterion of its mechanism speaks: it never stands alone. A band by class of
+    wall alone is for want of better: it stands aside wherever a computation that carries its mechanism speaks.
+    """
     settled = []
     for result in results:
-        if result.cross_check:
+        if result.by_class_only:
+            computed = [one.assessed for one in results if one.carries and _covers(one, result.mechanism)]
+            better = np.any(computed, axis=0) if computed else np.zeros_like(result.assessed)
+            missing = None if result.missing is None else result.missing & ~better
+            settled.append(replace(result, assessed=result.assessed & ~better, missing=missing))
+        elif result.cross_check:
             spoken = [one.assessed for one in results if not one.cross_check and _covers(one, result.mechanism)]
             backed = np.any(spoken, axis=0) if spoken else np.zeros_like(result.assessed)
             settled.append(replace(result, assessed=result.assessed & backed))
@@ -210,6 +222,8 @@ def combine_results(results: Sequence[CriterionResult], margins: StationMargins,
         bare_high=np.where(hide, np.nan, bare_high),
         word=word.astype(np.int64),
         missing=missing,
+        e_low=e_low,
+        e_high=e_high,
     )
 
 

@@ -53,13 +53,14 @@ def walk(
         events: Chainages to stand at (corners, ends of runs, supports, ends of loads); of two that are the same
             place the one listed first is kept.
     """
-    chainage = _stand_at(shape, [sides.start, *events])
+    edges = run_edges(shape, site.limits)
+    chainage = _stand_at(shape, [sides.start, edges.reshape(-1), *events])
     probe = wrapped(shape, chainage + JUST_BEYOND)
     if not shape.closed:
         probe = np.minimum(probe, shape.length - JUST_BEYOND)
     side, _ = side_of(sides, probe)
     place = np.mod(chainage - sides.start[side], shape.length) if shape.closed else chainage - sides.start[side]
-    run = run_at(shape, probe)
+    run = run_at(shape, probe, edges)
     half = 0.5 * np.nan_to_num(thickness_of(shape, run))
     floor = floor_at_wall(plan, shape, probe, half)
     return Walk(
@@ -114,11 +115,36 @@ def _nearest(points: Floats, kept: Floats) -> Floats:
     return np.asarray(np.minimum(below, np.abs(points - kept[np.clip(index, 0, len(kept) - 1)])))
 
 
-def run_at(shape: PitShape, chainage: Floats) -> Ints:
-    """Index of the run at each chainage; -1 where no run was found."""
+def run_edges(shape: PitShape, limits: Limits) -> Floats:
+    """Chainages (runs, 2) at which each run begins and ends, moved to a corner or the end of a curve close by.
+
+    A run of piles ends half way to the next pile; where a corner lies within half a spacing, the corner is meant.
+    """
+    edges = np.array([(run.start, run.to) for run in shape.runs], dtype=np.float64).reshape(-1, 2)
+    curves = [(arc.start, arc.to) for arc in shape.arcs] + [(part.start, part.to) for part in shape.circles]
+    marks = np.array([corner.at for corner in shape.corners] + [end for ends in curves for end in ends])
+    if len(marks) == 0 or len(edges) == 0:
+        return edges
+    widest = max((run.wall.centres or 0.0 for run in shape.runs), default=0.0)
+    gap = marks[None, None, :] - edges[:, :, None]
+    if shape.closed:
+        gap = np.mod(gap + 0.5 * shape.length, shape.length) - 0.5 * shape.length
+    nearest = np.take_along_axis(gap, np.argmin(np.abs(gap), axis=2)[:, :, None], axis=2)[:, :, 0]
+    moved = edges + np.where(np.abs(nearest) <= max(limits.plan, 0.5 * widest), nearest, 0.0)
+    whole = edges[:, 1] - edges[:, 0] >= shape.length - ON
+    if shape.closed:
+        to_end = (np.abs(moved[:, 1]) < ON) & (moved[:, 0] > ON)
+        moved[to_end, 1] = shape.length
+    # a run must not lose its length by the move
+    kept = whole | (np.abs(moved[:, 1] - moved[:, 0]) < ON)
+    return np.where(kept[:, None], edges, moved)
+
+
+def run_at(shape: PitShape, chainage: Floats, edges: Floats) -> Ints:
+    """Index of the run at each chainage, by the edges (runs, 2) of the runs; -1 where no run was found."""
     run = np.full(len(chainage), -1, dtype=np.int64)
-    for i, stretch in enumerate(shape.runs):
-        run[within(chainage, stretch.start, stretch.to, shape.length)] = i
+    for i, (start, to) in enumerate(edges):
+        run[within(chainage, float(start), float(to), shape.length)] = i
     return run
 
 

@@ -136,7 +136,7 @@ def _end_to_end(ends: LooseEnds, tolerance: float) -> list[Join]:
     facing = ((di * gap).sum(axis=1) >= look) & (-(dj * gap).sum(axis=1) >= look)
     facing &= span <= np.maximum(ends.reach[i], ends.reach[j])
     meet = ends.at[i] + s[:, None] * di
-    cost = np.where(facing, span, np.where(corner, np.maximum(s, 0.0) + np.maximum(t, 0.0), 1.5 * span))
+    cost = np.where(facing, span, np.where(corner, np.maximum(s, 0.0) + np.maximum(t, 0.0), 1.2 * span))
     straight = facing | beside | (np.minimum(np.abs(s), np.abs(t)) <= tolerance)
     return [
         Join(cost=float(cost[k]), end=int(i[k]), other=int(j[k]), node=int(ends.node[j[k]]) if straight[k] else None,
@@ -198,9 +198,10 @@ def _apply(graph: WallGraph, ends: LooseEnds, joins: Sequence[Join]) -> WallGrap
 
 
 def drop_stubs(graph: WallGraph, lines: Sequence[WallLine]) -> WallGraph:
-    """Leave out single edges that stick out past a junction by no more than an overshoot."""
+    """Leave out single edges that stick out past a junction by no more than an overshoot, unless a pile ends them."""
     limit = np.array([stub_length(line) for line in lines])[graph.line]
     degree = graph.degree[graph.ends]
     span = np.hypot(*(graph.xy[graph.ends[:, 1]] - graph.xy[graph.ends[:, 0]]).T)
-    stub = (degree.min(axis=1) == 1) & (degree.max(axis=1) >= 3) & (span <= limit)
+    loose = graph.ends[np.arange(len(degree)), degree.argmin(axis=1)]
+    stub = (degree.min(axis=1) == 1) & (degree.max(axis=1) >= 3) & (span <= limit) & (graph.pile[loose] < 0)
     return graph.pick(~stub)

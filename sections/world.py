@@ -8,18 +8,7 @@ from dataclasses import replace
 import numpy as np
 
 from ingest.model import Frame, Point
-from sections.model import (
-    Arc,
-    Axis,
-    Circle,
-    CirclePart,
-    Corner,
-    Floats,
-    PitFloor,
-    PitLoad,
-    PitReceptor,
-    Step,
-)
+from sections.model import Floats, Pit, Zone
 
 
 def to_world(frame: Frame, points: Sequence[Point] | Floats) -> tuple[Point, ...]:
@@ -40,49 +29,34 @@ def _rotation(frame: Frame) -> Floats:
     return np.array([[np.cos(angle), -np.sin(angle)], [np.sin(angle), np.cos(angle)]])
 
 
-def world_arcs(frame: Frame, arcs: Sequence[Arc]) -> tuple[Arc, ...]:
-    """Arcs with their centres in the world."""
-    return tuple(replace(arc, centre=to_world(frame, [arc.centre])[0]) for arc in arcs)
+def world_pit(frame: Frame, pit: Pit) -> Pit:
+    """A pit found in local coordinates, with every point and direction in the world."""
 
+    def _point(local: Point) -> Point:
+        return to_world(frame, [local])[0]
 
-def world_corners(frame: Frame, corners: Sequence[Corner]) -> tuple[Corner, ...]:
-    """Corners with their points in the world."""
-    return tuple(replace(corner, point=to_world(frame, [corner.point])[0]) for corner in corners)
-
-
-def world_circle(frame: Frame, circle: Circle | None) -> Circle | None:
-    """A circle with its centre in the world."""
-    return None if circle is None else replace(circle, centre=to_world(frame, [circle.centre])[0])
-
-
-def world_circles(frame: Frame, circles: Sequence[CirclePart]) -> tuple[CirclePart, ...]:
-    """Circle parts with their centres in the world."""
-    return tuple(replace(part, centre=to_world(frame, [part.centre])[0]) for part in circles)
-
-
-def world_floors(frame: Frame, floors: Sequence[PitFloor]) -> tuple[PitFloor, ...]:
-    """Floors with their outlines in the world."""
-    return tuple(replace(floor, outline=to_world(frame, floor.outline)) for floor in floors)
-
-
-def world_steps(frame: Frame, steps: Sequence[Step]) -> tuple[Step, ...]:
-    """Steps with their lines in the world."""
-    return tuple(replace(step, line=to_world(frame, step.line)) for step in steps)
-
-
-def world_loads(frame: Frame, loads: Sequence[PitLoad]) -> tuple[PitLoad, ...]:
-    """Loads with their points in the world."""
-    return tuple(replace(load, points=to_world(frame, load.points)) for load in loads)
-
-
-def world_receptors(frame: Frame, receptors: Sequence[PitReceptor]) -> tuple[PitReceptor, ...]:
-    """Receptors with their points in the world."""
-    return tuple(replace(receptor, points=to_world(frame, receptor.points)) for receptor in receptors)
-
-
-def world_axes(frame: Frame, axes: Sequence[Axis]) -> tuple[Axis, ...]:
-    """Mirror axes in the world."""
-    return tuple(
-        replace(axis, point=to_world(frame, [axis.point])[0], direction=(axis.direction + frame.rotation_deg) % 180.0)
-        for axis in axes
+    return replace(
+        pit,
+        perimeter=to_world(frame, pit.perimeter),
+        arcs=tuple(replace(arc, centre=_point(arc.centre)) for arc in pit.arcs),
+        corners=tuple(replace(corner, point=_point(corner.point)) for corner in pit.corners),
+        zones=tuple(_turned(frame, zone) for zone in pit.zones),
+        circle=None if pit.circle is None else replace(pit.circle, centre=_point(pit.circle.centre)),
+        circles=tuple(replace(part, centre=_point(part.centre)) for part in pit.circles),
+        symmetry=tuple(
+            replace(axis, point=_point(axis.point), direction=(axis.direction + frame.rotation_deg) % 180.0)
+            for axis in pit.symmetry
+        ),
+        floors=tuple(replace(floor, outline=to_world(frame, floor.outline)) for floor in pit.floors),
+        steps=tuple(replace(step, line=to_world(frame, step.line)) for step in pit.steps),
+        loads=tuple(replace(load, points=to_world(frame, load.points)) for load in pit.loads),
+        receptors=tuple(replace(receptor, points=to_world(frame, receptor.points)) for receptor in pit.receptors),
     )
+
+
+def _turned(frame: Frame, zone: Zone) -> Zone:
+    """A zone whose direction of wall is that in the world."""
+    direction = zone.signature.get("direction")
+    if not isinstance(direction, float):
+        return zone
+    return replace(zone, signature={**zone.signature, "direction": (direction + frame.rotation_deg) % 360.0})

@@ -62,21 +62,21 @@ def _short(value: float) -> str:
 def level_words(what: str) -> Callable[[float, float], str]:
     """Words for a level that rises or drops."""
 
-    def say(before: float, after: float) -> str:
+    def _say(before: float, after: float) -> str:
         if np.isnan(before) or np.isnan(after):
             return f"{what} is {'not given' if np.isnan(after) else 'given'} from here"
         return f"{what} {'rises' if after > before else 'drops'} {_short(abs(after - before))} m"
 
-    return say
+    return _say
 
 
 def amount_words(what: str, unit: str) -> Callable[[float, float], str]:
     """Words for an amount that changes."""
 
-    def say(before: float, after: float) -> str:
+    def _say(before: float, after: float) -> str:
         return f"{what} changes from {before:.3g} to {after:.3g} {unit}"
 
-    return say
+    return _say
 
 
 def radius_words(before: float, after: float) -> str:

@@ -7,7 +7,7 @@ from __future__ import annotations
 
 import csv
 import json
-from math import pi, sqrt
+from math import atan, pi, sqrt
 from pathlib import Path
 from typing import Any
 
@@ -192,6 +192,9 @@ def test_the_balance_closes(section: dict[str, Any]) -> None:
     # At rest to -6: 0.5 * 18 * 9/2 = 40.5 and (54 + 54 + 60)/2 * 3 * 1.0 = 252: 292.5 kN/m each side.
     thrusts = [line["value"] for line in section["balance"]["horizontal"]]
     assert thrusts[:2] == pytest.approx([292.5, -292.5])
+    # Footing, 2 to 4 m behind the north wall, 5 m above the dig level: p H/pi (atan(4/5) - atan(2/5)), Flamant 1892.
+    footing = section["loads"][0]["section"]["value"] * 5 / pi * (atan(0.8) - atan(0.4))
+    assert thrusts[2:] == pytest.approx([-footing, -footing])  # the load's line, and the residual
     weights = [line["value"] for line in section["balance"]["vertical"]]
     assert weights == pytest.approx([25 * pi * 0.75**2 / 4 * 12] * 2)
 
@@ -230,7 +233,7 @@ def test_results_come_back_to_members(out: Path, tmp_path: Path) -> None:
     target = tmp_path / "members.csv"
     sections = [str(out / "sections" / f"{name}.json") for name in ("S1", "S2")]
     assert main(["members", *sections, str(PIT / "results.csv"), "--out", str(target), "--quiet"]) == 0
-    rows = list(csv.DictReader(target.open(encoding="utf-8")))
+    rows = list(csv.DictReader(target.read_text(encoding="utf-8").splitlines()))
     found = [
         (r["member"], r["value"], float(r["factor"]), float(r["member_value"]), r["member_unit"], r["run"])
         for r in rows
@@ -244,8 +247,8 @@ def test_results_come_back_to_members(out: Path, tmp_path: Path) -> None:
         ("P1-strut-1", "-250.0", 5.0, -1250.0, "kN", "made-up"),
         ("P1-strut-2", "-235.0", 5.0, -1175.0, "kN", "made-up"),
     ]
-    governing = list(csv.DictReader((tmp_path / "members.csv.governing.csv").open(encoding="utf-8")))
-    struts = {r["member"]: float(r["value"]) for r in governing if r["member"].startswith("P1-strut")}
+    governing = list(csv.DictReader((tmp_path / "members.csv.governing.csv").read_text(encoding="utf-8").splitlines()))
+    struts = {r["member"]: float(r["member_value"]) for r in governing if r["member"].startswith("P1-strut")}
     assert struts == {"P1-strut-1": -1250.0, "P1-strut-2": -1175.0}
 
 

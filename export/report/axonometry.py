@@ -37,7 +37,7 @@ def _caption(both: Scenes, ring: bool) -> str:
     counted = "; ".join(f"{kind} {real} and {implied}" for kind, real, implied in both.counts)
     return (
         f"Shown: {shown}. Bodies really there and implied: {counted}. "
-        "Bodies in colour differ in a way that wants care or is serious; the table below says how."
+        "Bodies in colour are those for which the difference is serious; the table below has the numbers."
     )
 
 

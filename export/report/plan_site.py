@@ -9,7 +9,7 @@ from export.report.along import Perimeter
 from export.report.markup import Html, join, tag
 from export.report.scale import LETTERS, View
 from export.report.sheet_marks import SMALL, letters, readable_turn
-from export.report.words import KIND_OF_WALL, ROLE_NAMES, count, figure, fixed, level
+from export.report.words import KIND_OF_WALL, ROLE_NAMES, count, figure, fixed, level, source_tail
 from ingest.model import Point, Site, Support
 from sections.model import Member, Pit, PitLoad, ProposalFrame, Run
 
@@ -61,7 +61,7 @@ def wall_words(run: Run) -> str:
     if wall.centres is not None:
         parts.append(f"at {fixed(wall.centres, 2, 'm')} centres")
     parts.append(f"top {level(wall.top)}, toe {level(wall.toe)}, {wall.continuity} along its length")
-    return ", ".join(parts)
+    return ", ".join(parts) + source_tail(wall.sources)
 
 
 def _run_body(run: Run, line: Perimeter, view: View) -> Html:
@@ -88,7 +88,8 @@ def supports(pit: Pit, site: Site | None, view: View, world: ToWorld) -> Html:
 def _support_line(one: Support, view: View, world: ToWorld) -> Html:
     head, far = view.at(world(one.head)), view.at(world(one.far))
     size = one.section.designation if one.section else "section not given"
-    about = f"{one.id}: {one.role.replace('_', ' ')}, {size}, level {level(one.head[2] if one.level_given else None)}"
+    at = level(one.head[2] if one.level_given else None)
+    about = f"{one.id}: {one.role.replace('_', ' ')}, {size}, level {at}" + source_tail(one.sources)
     data = f"M{head[0]:.2f} {head[1]:.2f}L{far[0]:.2f} {far[1]:.2f}"
     parts = [tag("path", d=data, class_="support"), tag("path", d=data, class_="support-core")]
     if one.role == "anchor" and one.free_length:
@@ -114,7 +115,7 @@ def member_words(row: Member) -> str:
         parts.append(f"{fixed(row.inclination, 1)}° below horizontal")
     if row.skew:
         parts.append(f"{fixed(row.skew, 1)}° off the wall normal")
-    return ", ".join(parts)
+    return ", ".join(parts) + source_tail(row.sources)
 
 
 def _row_label(row: Member, line: Perimeter, view: View) -> Html:
@@ -149,7 +150,9 @@ def loads(pit: Pit, view: View) -> Html:
 def load_words(load: PitLoad) -> str:
     """One load in words."""
     value = figure(load.value, LOAD_UNITS[load.kind]) if load.value is not None else "value not given"
-    return f"{load.id}: {load.kind}, {value}" + (", inside the pit" if load.within_pit else "")
+    return (
+        f"{load.id}: {load.kind}, {value}" + (", inside the pit" if load.within_pit else "") + source_tail(load.sources)
+    )
 
 
 def _load(load: PitLoad, view: View) -> Html:

@@ -128,14 +128,16 @@ def _stands(pen: Unrolled, pit: Pit, proposal: Proposal) -> None:
     rows: list[tuple[str, str, Represents | Unrepresented]] = []
     for section in proposal.sections:
         rows += [(section.id, "provisional" if one.provisional else "shown", one) for one in section.represents]
-    rows += [("own", "none", one) for one in proposal.unrepresented]
+    rows += [("", "none", one) for one in proposal.unrepresented]
     marks = []
     for name, kind, one in rows:
         if one.pit != pit.id:
             continue
         for start, to in pen.pieces(one.start, one.to):
             a, b = pen.x(start), pen.x(to)
-            label = letters(((a + b) / 2, y - 5), name, SMALL, "middle", "accent") if b - a > 40 else None
+            label = (
+                letters(((a + b) / 2, y - 5), name or "own analysis", SMALL, "middle", "accent") if b - a > 40 else None
+            )
             words = f"{stretch(pit.id, one.start, one.to)}: " + (
                 f"needs its own analysis, {one.reason}" if isinstance(one, Unrepresented) else f"{name}, {kind}"
             )

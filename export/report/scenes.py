@@ -13,7 +13,7 @@ from export.report.along import Perimeter
 from export.report.plan_site import to_world
 from export.report.section_members import THIN, thickness
 from export.report.solids import Solid, bar, extruded, pile, prism, revolved, thick_line
-from ingest.model import Pile, Point, Point3, Site, Support
+from ingest.model import Pile, Point, Point3, Role, Site, Support
 from sections.definition import SectionDefinition, SectionMember
 from sections.model import Pit, Proposal, Run
 
@@ -60,11 +60,12 @@ class Cut:
 def scenes(definition: SectionDefinition, proposal: Proposal, site: Site) -> Scenes:
     """Build both scenes of one section."""
     cut = _cut(definition)
-    marked = {one.about for one in definition.implied if one.grade != "fair"}
+    marked = {one.about for one in definition.implied if one.grade == "serious"}
+    roles = {one.role for one in definition.members if one.id in marked}
     real = [
         *_walls(cut, proposal, site, definition),
-        *_supports(cut, proposal, site),
-        *_loads(cut, proposal, definition),
+        *_supports(cut, proposal, site, roles),
+        *_loads(cut, proposal, definition, marked),
     ]
     implied = _implied(definition, cut, marked)
     kinds = list(dict.fromkeys(solid.kind for solid in (*real, *implied)))
@@ -150,13 +151,16 @@ def _clip(a: Point, b: Point, cut: Cut) -> tuple[Point, Point] | None:
     return tuple((a[0] + t * (b[0] - a[0]), a[1] + t * (b[1] - a[1])) for t in (first, last))  # type: ignore[return-value]
 
 
-def _supports(cut: Cut, proposal: Proposal, site: Site) -> list[Solid]:
+def _supports(cut: Cut, proposal: Proposal, site: Site, marked: set[Role]) -> list[Solid]:
     world = to_world(proposal.frame)
     found: list[Solid | None] = []
     for one in site.supports:
         ends = _between(cut, cut.at(world(one.head)), one.head[2], cut.at(world(one.far)), one.far[2])
         if ends is not None:
-            found.append(bar(one.role.replace("_", " "), *ends, *_bar_size(one)))
+            runs_with_it = abs(ends[1][0] - ends[0][0]) >= abs(ends[1][1] - ends[0][1])
+            found.append(
+                bar(one.role.replace("_", " "), *ends, *_bar_size(one), marked=one.role in marked and runs_with_it)
+            )
     for waler in site.walers:
         points = [cut.at(world(point)) for point in waler.points]
         for a, b in zip(points, points[1:], strict=False):
@@ -182,14 +186,14 @@ def _between(cut: Cut, a: Point, za: float, b: Point, zb: float) -> tuple[Point3
     return (*inside[0], zs[0]), (*inside[1], zs[1])
 
 
-def _loads(cut: Cut, proposal: Proposal, definition: SectionDefinition) -> list[Solid]:
+def _loads(cut: Cut, proposal: Proposal, definition: SectionDefinition, marked: set[str]) -> list[Solid]:
     levels = {load.id: max((z for _, z in load.at), default=0.0) for load in definition.loads}
     found = []
     for pit in proposal.pits:
         for load in pit.loads:
             points = [cut.at(point) for point in load.points]
             if load.id in levels and len(points) > 2 and any(cut.holds(point) for point in points):
-                found.append(prism("load", points, levels[load.id], levels[load.id] + PLATE, True))
+                found.append(prism("load", points, levels[load.id], levels[load.id] + PLATE, load.id in marked))
     return found
 
 

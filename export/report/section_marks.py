@@ -69,7 +69,7 @@ def dimensions(definition: SectionDefinition, view: View) -> Html:
     dig = _dig_level(definition)
     if dig is not None:
         wall = walls[0]
-        x = view.x(wall.points[0][0]) + 0.16 * min(view.width, 200.0)
+        x = view.x(wall.points[0][0]) + (-32.0 if wall.side == "right" else 32.0)
         highest, toe = max(z for _, z in wall.points), min(z for _, z in wall.points)
         for a, b in ((highest, dig), (dig, toe)):
             if (a - b) * view.k > 24:

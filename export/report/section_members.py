@@ -8,7 +8,7 @@ from export.report.markup import Html, tag
 from export.report.plan_site import named
 from export.report.scale import View, path_data
 from export.report.sheet_marks import SMALL, letters, readable_turn
-from export.report.words import fixed, level
+from export.report.words import fixed, level, source_tail
 from ingest.model import Point
 from sections.definition import PerMetre, SectionMember
 
@@ -46,7 +46,7 @@ def member_about(one: SectionMember) -> str:
         parts.append(f"{fixed(one.real.skew, 1)}° off the section on plan")
     top, foot = max(z for _, z in one.points), min(z for _, z in one.points)
     parts.append(f"level {level(top)}" if top == foot else f"{level(top)} to {level(foot)}")
-    return ", ".join(parts)
+    return ", ".join(parts) + source_tail(one.sources)
 
 
 def thickness(one: SectionMember) -> float | None:

@@ -16,7 +16,7 @@ from export.report.section_tables import (
     stage_table,
 )
 from export.report.section_view import section_drawing
-from export.report.tables import table
+from export.report.tables import listing, table
 from export.report.verdict_marks import named_swatch
 from export.report.words import KIND_NAMES, band, criterion_name, fixed, output_name, provisional_mark, stretch
 from export.section_json import NOT_INCLUDED
@@ -38,7 +38,9 @@ def section_body(definition: SectionDefinition, proposal: Proposal, site: Site) 
     )
     return join(
         [
-            tag("p", _standing(definition), class_="lead"),
+            tag("h3", "What it stands for"),
+            listing(_standing(definition)),
+            tag("p", _worth(definition), class_="lead"),
             _figure(definition),
             _verdicts(definition),
             tag("h3", f"Discrete to section and back ({per})"),
@@ -63,18 +65,23 @@ def section_body(definition: SectionDefinition, proposal: Proposal, site: Site) 
     )
 
 
-def _standing(definition: SectionDefinition) -> str:
-    said = []
+def _standing(definition: SectionDefinition) -> list[str]:
+    groups: dict[tuple[str, ...], list[str]] = {}
     for one in definition.represents:
-        where = stretch(one.pit, one.start, one.to)
-        open_ = ", ".join(output_name(o).lower() for o in one.provisional)
-        said.append(f"{where} provisionally (open: {open_})" if one.provisional else f"{where} shown")
+        groups.setdefault(one.provisional, []).append(stretch(one.pit, one.start, one.to))
+    said = []
+    for provisional, where in groups.items():
+        open_ = ", ".join(output_name(o).lower() for o in provisional)
+        said.append(", ".join(where) + (f": provisionally, open are {open_}" if provisional else ": shown"))
+    return said or ["no stretch is represented; the section is the best cut of its zone"]
+
+
+def _worth(definition: SectionDefinition) -> str:
     score = "none, a governing output is not assessed" if definition.score is None else f"{definition.score:.0f}"
-    stands = "; ".join(said) or "no stretch"
     half = f"May be halved at x = {fixed(definition.half.at_x)} m: " if definition.half.is_half else "Not halved: "
     return (
-        f"Stands for {stands}. Representativeness score: {score} (geometric; not a factor of safety). "
-        f"{half}{definition.half.basis}. Extent: {definition.extent.basis}. {NOT_INCLUDED}."
+        f"Representativeness score: {score} (geometric; not a factor of safety). {half}{definition.half.basis}. "
+        f"Extent: {definition.extent.basis}. {NOT_INCLUDED}."
     )
 
 

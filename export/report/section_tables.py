@@ -8,6 +8,7 @@ from export.report.markup import Html, join, tag
 from export.report.tables import key_words, listing, source_list, table
 from export.report.words import NOT_GIVEN, band, criterion_name, figure, fixed, level, output_name
 from sections.definition import SectionDefinition, SectionMaterial, SmearParts
+from sections.model import Band
 
 PART_NAMES = {
     "per_spacing": "1 / spacing",
@@ -170,23 +171,32 @@ def _field(material: SectionMaterial, key: str) -> str:
 
 
 def criteria_table(definition: SectionDefinition) -> Html:
-    """Each criterion's band at each wall, with its sentence, inputs, basis and reference."""
-    rows = []
+    """Each criterion once per wall with its bands, its sentence, inputs, basis; below them those that stayed silent."""
+    groups: dict[tuple[str, str, str], list[Band]] = {}
     for one in definition.criteria:
-        inputs = ", ".join(f"{key} {_input(value)}" for key, value in one.inputs.items())
-        rows.append(
-            [
-                criterion_name(one.code),
-                f"{output_name(one.output)}, {one.wall}",
-                one.mechanism.replace("_", " "),
-                band(one.low, one.high) if one.assessed else "not assessed",
-                one.sentence,
-                inputs or "none",
-                "; ".join(part for part in (one.basis, one.reference) if part),
-            ]
-        )
-    heads = ["Criterion", "Output and wall", "Mechanism", "Band", "In words", "Inputs", "Basis, reference"]
-    return table(f"{definition.id}: criteria", heads, rows, "criteria")
+        groups.setdefault((one.code, one.wall, one.sentence), []).append(one)
+    speaking = [rows for rows in groups.values() if any(one.assessed for one in rows)]
+    silent = [rows for rows in groups.values() if not any(one.assessed for one in rows)]
+    heads = ["Criterion", "Wall", "Mechanism", "Bands, real over 2D", "In words", "Inputs", "Basis, reference"]
+    silent_heads = ["Criterion", "Wall", "Mechanism", "Outputs", "Why not"]
+    return table(
+        f"{definition.id}: criteria that could be evaluated", heads, map(_speaking, speaking), "criteria"
+    ) + table(f"{definition.id}: criteria that say nothing here", silent_heads, map(_silent, silent))
+
+
+def _speaking(rows: list[Band]) -> list[Html | str]:
+    first = rows[0]
+    bands = [tag("span", f"{output_name(one.output)}: {band(one.low, one.high)}") for one in rows if one.assessed]
+    inputs = ", ".join(f"{key.replace('_', ' ')} {_input(value)}" for key, value in first.inputs.items())
+    basis = "; ".join(part for part in (first.basis, first.reference) if part)
+    head = [criterion_name(first.code), first.wall, first.mechanism.replace("_", " ")]
+    return [*head, listing(bands, "tight"), first.sentence, inputs or "none", basis]
+
+
+def _silent(rows: list[Band]) -> list[Html | str]:
+    first = rows[0]
+    outputs = ", ".join(output_name(one.output).lower() for one in rows)
+    return [criterion_name(first.code), first.wall, first.mechanism.replace("_", " "), outputs, first.sentence]
 
 
 def _input(value: str | float | None) -> str:

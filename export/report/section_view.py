@@ -14,6 +14,7 @@ from sections.definition import Curve, GroundLayer, SectionDefinition
 
 LEFT, TOP = 96.0, 112.0
 MOST_HEIGHT = 760.0
+Spans = list[tuple[float, float]]
 
 
 def section_drawing(definition: SectionDefinition) -> Html:
@@ -27,12 +28,14 @@ def section_drawing(definition: SectionDefinition) -> Html:
     view = fit([(x0, z0), (x1, high)], WIDTH - LEFT - 24, MOST_HEIGHT, left=LEFT, top=TOP)
     ids = f"drawing-{definition.id}"
     bottom = view.top + view.height
+    rings = [ring for stage in definition.stages for ring in stage.dig if ring]
+    dug = [(min(x for x, _ in ring), max(x for x, _ in ring)) for ring in rings]
     body = [
         tag("clipPath", tag("rect", **_box(view)), id=f"{ids}-clip"),
         tag("g", *(_layer(layer, view) for layer in definition.ground.layers), class_="section-ground"),
         tag("g", *_dug(definition, view), class_="section-dug"),
         tag("path", d=view.path(definition.ground.surface), class_="ground-line", clip_path=f"url(#{ids}-clip)"),
-        *(_layer_name(layer, view) for layer in definition.ground.layers),
+        *(_layer_name(layer, view, dug) for layer in definition.ground.layers),
         water_marks(definition, view),
         tag("g", *(member_mark(one, view) for one in definition.members), class_="section-members"),
         load_marks(definition, view),
@@ -70,16 +73,19 @@ def _layer(layer: GroundLayer, view: View) -> Html:
     data = _rings((*layer.outlines, *layer.holes), view)
     kind = hatch_of(layer.material) or hatch_of(layer.id)
     filling = tag("path", d=data, fill_rule="evenodd", class_=f"ground-{kind}") if kind else None
-    about = f"{layer.id}" + ("" if kind else " (no sign: its name says no kind of ground)")
+    about = f"{layer.id}: {layer.material}" + ("" if kind else " (no sign: its name says no kind of ground)")
     return named(about, filling, tag("path", d=data, class_="layer-edge", fill_rule="evenodd"))
 
 
-def _layer_name(layer: GroundLayer, view: View) -> Html:
+def _layer_name(layer: GroundLayer, view: View, dug: Spans) -> Html:
+    """The name at the left end of a layer, at the right end where the left one is dug away."""
     points = [point for ring in layer.outlines for point in ring]
     if not points:
         return Html("")
-    top = max(z for _, z in points)
-    return letters((view.x(min(x for x, _ in points)) + 8, view.y(top) + 18), layer.id, LETTERS, class_="halo")
+    at = view.y(max(z for _, z in points)) + 18
+    if any(x0 < min(x for x, _ in points) + 1.0 < x1 for x0, x1 in dug):
+        return letters((view.x(max(x for x, _ in points)) - 8, at), layer.material or layer.id, LETTERS, "end", "halo")
+    return letters((view.x(min(x for x, _ in points)) + 8, at), layer.material or layer.id, LETTERS, class_="halo")
 
 
 def _dug(definition: SectionDefinition, view: View) -> list[Html]:

@@ -23,7 +23,7 @@ LIFT = 0.08
 PAPER, INK = (253, 252, 247), (27, 38, 49)
 ACCENT = (11, 90, 104)
 TONES = 8
-COLUMNS, ROWS = np.arange(WIDTH) + 0.5, (np.arange(HEIGHT) + 0.5)[:, None]
+ROWS: Floats = np.arange(HEIGHT) + np.float64(0.5)
 PAPER_INDEX, INK_INDEX, FIRST_PLAIN, FIRST_MARKED = 0, 1, 2, 2 + TONES
 
 
@@ -67,21 +67,22 @@ class Sheet:
         self.depth = np.full((HEIGHT, WIDTH), -np.inf)
 
     def face(self, ring: list[list[float]], index: int) -> None:
-        """Fill a convex ring given in pixels and depth."""
-        xs, ys = [p[0] for p in ring], [p[1] for p in ring]
-        left, right = max(int(min(xs)), 0), min(int(max(xs)) + 2, WIDTH)
-        top, foot = max(int(min(ys)), 0), min(int(max(ys)) + 2, HEIGHT)
-        plane, turn = _plane(ring)
-        if turn == 0 or right <= left or foot <= top:
+        """Fill a convex ring given in pixels and depth, row by row between its left and right side."""
+        plane = _plane(ring)
+        ys = [p[1] for p in ring]
+        top, foot = max(int(min(ys)), 0), min(int(max(ys)) + 1, HEIGHT)
+        if plane is None or foot <= top:
             return
-        x, y = COLUMNS[left:right], ROWS[top:foot]
-        area = (slice(top, foot), slice(left, right))
-        seen = plane[0] * x + plane[1] * y + plane[2]
-        hit = seen > self.depth[area]
-        for a, b in zip(ring, ring[1:] + ring[:1], strict=True):
-            hit &= turn * ((b[0] - a[0]) * (y - a[1]) - (b[1] - a[1]) * (x - a[0])) >= 0
-        np.copyto(self.depth[area], seen, where=hit)
-        self.index[area][hit] = index
+        first, last = _sides(ring, ROWS[top:foot])
+        count = np.maximum(last - first + 1, 0)
+        total = int(count.sum())
+        rows = np.repeat(np.arange(top, foot), count)
+        columns = np.arange(total) - np.repeat(np.cumsum(count) - count - first, count)
+        place = rows * WIDTH + columns
+        z = plane[0] * (columns + 0.5) + plane[1] * (rows + 0.5) + plane[2]
+        seen = z > self.depth.ravel()[place]
+        self.depth.ravel()[place[seen]] = z[seen]
+        self.index.ravel()[place[seen]] = index
 
     def edge(self, a: Floats, b: Floats) -> None:
         """Draw a line two pixels wide where nothing stands before it."""
@@ -95,16 +96,29 @@ class Sheet:
             self.index[y[seen], x[seen]] = INK_INDEX
 
 
-def _plane(ring: list[list[float]]) -> tuple[tuple[float, float, float], float]:
-    """Depth over the sheet as a x + b y + c, and the sense of the ring; the sense is 0 for a face seen edge-on."""
+def _sides(ring: list[list[float]], rows: Floats) -> tuple[NDArray[np.int64], NDArray[np.int64]]:
+    """First and last pixel of each row whose middle lies in a convex ring; last before first where there is none."""
+    left, right = np.full(len(rows), np.inf), np.full(len(rows), -np.inf)
+    for (ax, ay, _), (bx, by, _) in zip(ring, ring[1:] + ring[:1], strict=True):
+        if ay == by:
+            continue
+        part = (rows >= min(ay, by)) & (rows <= max(ay, by))
+        x = ax + (rows[part] - ay) * ((bx - ax) / (by - ay))
+        left[part], right[part] = np.minimum(left[part], x), np.maximum(right[part], x)
+    first = np.ceil(np.clip(left - 0.5, 0, WIDTH)).astype(np.int64)
+    return first, np.floor(np.clip(right - 0.5, -1, WIDTH - 1)).astype(np.int64)
+
+
+def _plane(ring: list[list[float]]) -> tuple[float, float, float] | None:
+    """Depth over the sheet as a x + b y + c; None for a face seen edge-on."""
     (ax, ay, az), *rest = ring
     for (bx, by, bz), (cx, cy, cz) in zip(rest, rest[1:], strict=False):
         ux, uy, uz, vx, vy, vz = bx - ax, by - ay, bz - az, cx - ax, cy - ay, cz - az
         area = ux * vy - uy * vx
         if abs(area) > 1e-3:
             a, b = (uz * vy - uy * vz) / area, (ux * vz - uz * vx) / area
-            return (a, b, az - a * ax - b * ay), 1.0 if area > 0 else -1.0
-    return (0.0, 0.0, 0.0), 0.0
+            return a, b, az - a * ax - b * ay
+    return None
 
 
 def still_picture(solids: Sequence[Solid], scale: Scale) -> str:

@@ -8,7 +8,7 @@ from collections.abc import Iterable, Sequence
 from export.report.markup import Child, Html, join, tag
 from ingest.trail import Source
 
-LONGEST_WORD = 24
+LONGEST_WORD, LONGEST_ID = 24, 16
 MARKS = re.compile(r"<[^>]*>")
 UNIT_STARTS = frozenset({"kN", "kNm2", "kPa", "K"})
 
@@ -39,6 +39,8 @@ def table(
         for place, (cell, n) in enumerate(zip(row, right, strict=True)):
             mark = " ".join(word for word, on in (("n", n), ("long", _has_long_word(cell))) if on) or None
             first = place == 0 and named
+            if first and isinstance(cell, str) and not isinstance(cell, Html) and len(cell) <= LONGEST_ID:
+                mark = f"{mark or ''} id".strip()
             cells.append(tag("th", cell, scope="row", class_=mark) if first else tag("td", cell, class_=mark))
         body.append(tag("tr", *cells))
     if not body:

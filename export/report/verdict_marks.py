@@ -10,13 +10,14 @@ from export.report.sheet_marks import SMALL, letters
 from export.report.words import VERDICT_NAMES
 from ingest.model import Point
 
+TWO_STROKES = ("under_states", "not_two_dimensional")
 BEST_FIRST = ("holds", "over_states", "undecided", "not_assessed", "under_states", "not_two_dimensional")
 
 
 def verdict_line(points: Sequence[Point], word: str, **marks: str) -> Html:
     """A verdict drawn along a line given in units; two strokes for the patterns that need them."""
     data = path_data(points)
-    inner = tag("path", d=data, class_="v-core") if word == "under_states" else None
+    inner = tag("path", d=data, class_="v-core") if word in TWO_STROKES else None
     return tag("g", tag("path", d=data, class_="v-line"), inner, class_=f"verdict v-{word}", **marks)
 
 

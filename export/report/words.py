@@ -2,9 +2,10 @@
 
 from __future__ import annotations
 
-from collections.abc import Iterable
+from collections.abc import Iterable, Sequence
 from math import floor, log10
 
+from ingest.trail import Source
 from sections.model import Represents, Unrepresented, Verdict
 
 NARROW = "\u202f"
@@ -13,8 +14,8 @@ NOT_GIVEN = "not given"
 
 OUTPUT_NAMES = {
     "wall_deflection": "Wall deflection",
-    "wall_moment_excavated_face": "Wall moment, excavated face",
-    "wall_moment_retained_face": "Wall moment, retained face",
+    "wall_moment_excavated_face": "Wall moment (excavated face)",
+    "wall_moment_retained_face": "Wall moment (retained face)",
     "support_force": "Support force",
     "settlement": "Settlement",
     "heave_utilisation": "Heave utilisation",
@@ -162,9 +163,18 @@ def provisional_mark(verdict: Verdict) -> str:
     return " (provisional)" if verdict.provisional and verdict.verdict != "not_assessed" else ""
 
 
+def source_tail(sources: Sequence[Source], most: int = 2) -> str:
+    """Sources behind a tooltip's words, none when there are none."""
+    if not sources:
+        return ""
+    shown = ", ".join(f"{one.file} {one.item} ({one.how})" for one in sources[:most])
+    more = f" and {len(sources) - most} more" if len(sources) > most else ""
+    return f"; from {shown}{more}"
+
+
 def stretch(pit: str, start: float, to: float) -> str:
     """A stretch of perimeter by its chainages."""
-    return f"{pit} ch {fixed(start, 1)} to {fixed(to, 1)}"
+    return f"{pit} ch {fixed(start)} to {fixed(to)}"
 
 
 def run_length(start: float, to: float, length: float) -> float:

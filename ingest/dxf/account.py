@@ -94,9 +94,11 @@ def _list_blocks(tags: Tags, raw: RawFigures) -> None:
 
 @dataclass(slots=True)
 class Account:
-    """Every entity to be accounted for: those of the modelspace by name, the others by number and reason."""
+    """Every entity to be accounted for: those of the modelspace one by one, the others by number and reason."""
 
-    named: list[tuple[str, Any]]
+    items: list[str]
+    """Name of each entity of the modelspace, in step with `space`."""
+    space: list[Any]
     aside: Counter[str]
     lost: Counter[str]
     """Entities the bytes hold and the loaded drawing does not, by type; those inside inserted blocks too."""
@@ -105,7 +107,7 @@ class Account:
     @property
     def entities(self) -> int:
         """The file's own count."""
-        return len(self.named) + sum(self.aside.values())
+        return len(self.items) + sum(self.aside.values())
 
 
 def open_account(document: Any, raw: RawFigures) -> Account:
@@ -120,7 +122,6 @@ def open_account(document: Any, raw: RawFigures) -> Account:
     """
     space = list(document.modelspace())
     kinds = [e.dxftype() for e in space]
-    named = list(zip(_names(space, kinds, raw), space, strict=True))
     sheets = [layout for layout in document.layouts if layout.name != "Model"]
     in_layouts = Counter(kinds) + Counter(e.dxftype() for sheet in sheets for e in sheet)
     expected = raw.space.copy()
@@ -137,17 +138,20 @@ def open_account(document: Any, raw: RawFigures) -> Account:
     unused = [block for block in blocks if block.name.lower() in own - reached and len(block)]
     aside["block never inserted"] = sum(len(block) for block in unused)
     loaded = in_layouts + Counter(e.dxftype() for block in blocks for e in block)
-    return Account(named, +aside, raw.total() - loaded, tuple(sorted(block.name for block in unused)))
+    return Account(
+        _names(space, kinds, raw), space, +aside, raw.total() - loaded, tuple(sorted(block.name for block in unused))
+    )
 
 
 def _names(space: list[Any], kinds: list[str], raw: RawFigures) -> list[str]:
     """Names of the loaded entities; the raw ones where both lists agree, else handles made unique."""
+    handles = [str(entity.dxf.handle) for entity in space]
     if kinds == raw.kinds:
-        return raw.items
+        # one string for both where they are equal: half the memory
+        return [own if own == name else name for own, name in zip(handles, raw.items, strict=True)]
     seen: Counter[str] = Counter()
     names = []
-    for entity in space:
-        handle = str(vars(entity.dxf).get("handle", "?"))
+    for handle in handles:
         seen[handle] += 1
         names.append(handle if seen[handle] == 1 else f"{handle} no. {seen[handle]}")
     return names

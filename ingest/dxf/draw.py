@@ -9,6 +9,7 @@ from typing import Any
 
 import numpy as np
 
+from ingest.dxf.account import Account
 from ingest.dxf.annotation import Leader, read_leader
 from ingest.dxf.blocks import (
     MOST_FIGURES,
@@ -24,7 +25,6 @@ from ingest.dxf.clip import clip_parts, clipping_outline
 from ingest.dxf.curves import SAGITTA, Floats
 from ingest.dxf.figures import sketch
 from ingest.dxf.layers import LayerTable, LayerUse
-from ingest.dxf.linework import layer_of
 from ingest.dxf.placing import IDENTITY, Placing, place
 from ingest.dxf.sketch import Batch, Left, Sketch, settle
 from ingest.dxf.text import decode
@@ -71,21 +71,28 @@ class Drawer:
         self.file, self.scale, self.layers = file, scale, layers
         self.book = BlockBook(document, SAGITTA / scale, layers.ignored)
         self.drawn = Drawn()
+        self._database = document.entitydb
         self._world = Placing(scaled(IDENTITY, scale), (0.0, 0.0, 0.0))
 
-    def draw(self, named: list[tuple[str, Any]], progress: Callable[[int], None] | None = None) -> Drawn:
-        """Draw all entities; the list is emptied on the way so that their memory is given back."""
-        named.reverse()
-        done = 0
-        while named:
-            chunk = [named.pop() for _ in range(min(CHUNK, len(named)))]
+    def draw(self, account: Account, progress: Callable[[int], None] | None = None) -> Drawn:
+        """Draw all entities of the modelspace.
+
+        The account's list of them is emptied on the way, and each is taken out of the drawing, so that memory is given
+        back while the parts take it.
+        """
+        account.space.reverse()
+        for first in range(0, len(account.items), CHUNK):
+            items = account.items[first : first + CHUNK]
+            chunk = [(item, account.space.pop()) for item in items]
             self._draw_chunk(chunk)
-            done += len(chunk)
+            for _, entity in chunk:
+                self._database.discard(entity)
+                entity.destroy()
             if progress is not None:
-                progress(done)
+                progress(first + len(items))
             if len(self.drawn.parts) > MOST_PARTS:
                 words = f"its inserts give more than {MOST_PARTS} figures"
-                raise InputError(self.file, chunk[-1][0], words, "send less of the drawing")
+                raise InputError(self.file, items[-1], words, "send less of the drawing")
         return self.drawn
 
     def _draw_chunk(self, entities: list[tuple[str, Any]]) -> None:
@@ -105,8 +112,6 @@ class Drawer:
                 kind, reason = chunk.why.get(item, DRAWS_NOTHING)
                 self.drawn.aside[kind][reason] += 1
                 self.drawn.examples.setdefault(reason, item)
-        for _, entity in entities:
-            entity.destroy()
 
     def _place_all(self, chunk: _Chunk) -> Iterator[Part]:
         plain = settle(chunk.plain, self.book.sagitta)
@@ -121,9 +126,12 @@ class Drawer:
                     yield part
 
     def _one(self, item: str, entity: Any, chunk: _Chunk) -> Left | None:
-        layer = self.layers.use(layer_of(vars(entity.dxf)))
+        known = vars(entity.dxf)
+        layer = self.layers.use(known.get("layer", "0"))
         if layer.left_out:
             return BRIEF_SAYS_NO
+        if known.get("invisible", 0):
+            return HIDDEN
         kind = entity.dxftype()
         if kind in ("INSERT", "ACAD_TABLE"):
             return self._insert(item, entity, layer, chunk)
@@ -175,8 +183,6 @@ class Drawer:
         return None
 
     def _refuse_insert(self, name: str, known: dict[str, Any]) -> Left | None:
-        if known.get("invisible", 0):
-            return HIDDEN
         block = self.book.block(name)
         if block is None:
             return Left("ignored", "insert of a block that is not in the file")

@@ -14,6 +14,9 @@ from ingest.dxf.damage import SEND_AGAIN, find_bad_number
 from ingest.dxf.tagscan import scan_tags
 from ingest.errors import InputError
 
+MANY_OBJECTS = 1_000_000
+"""More new objects than this are set aside from the collector: it would walk through all of them to find nothing."""
+
 
 @dataclass(slots=True)
 class Loaded:
@@ -36,6 +39,8 @@ def quiet() -> Iterator[None]:
         yield
     finally:
         log.disabled = was_off
+        if gc.get_count()[0] > MANY_OBJECTS:
+            gc.freeze()
         if was_collecting:
             gc.enable()
 
@@ -66,6 +71,13 @@ def load_document(path: Path) -> Loaded:
         raise InputError(path.name, place or "whole file", words, SEND_AGAIN) from None
     repairs = tuple(str(entry.message) for entry in auditor.errors)
     return Loaded(document, first, repairs)
+
+
+def let_go(document: Any) -> None:
+    """Take a drawing apart, so that its memory comes back at once and not when the collector finds its circles."""
+    for entity in list(document.entitydb.values()):
+        entity.destroy()
+    vars(document).clear()
 
 
 def describe_fault(fault: Exception) -> str:

@@ -12,7 +12,7 @@ from ingest.dxf.draw import Drawer
 from ingest.dxf.drawing_unit import find_unit
 from ingest.dxf.layers import LayerTable
 from ingest.dxf.leaders import tie_leaders
-from ingest.dxf.loading import load_document, quiet
+from ingest.dxf.loading import let_go, load_document, quiet
 from ingest.dxf.measures import take_measures
 from ingest.dxf.report import report_findings, report_losses
 from ingest.dxf.tagscan import Tags
@@ -59,23 +59,19 @@ def _read(
     sha256 = hashlib.sha256(data).hexdigest()
     del data, tags
     loaded = load_document(path)
-    account = open_account(loaded.document, raw)
-    entities = account.entities
-    unit = find_unit(
-        path.name,
-        header.units,
-        length_unit,
-        header.shown_as,
-        take_measures(loaded.document, [entity for _, entity in account.named]),
-    )
+    account, repeated = open_account(loaded.document, raw), raw.repeated
+    del raw
+    measures = take_measures(loaded.document, account.space)
+    unit = find_unit(path.name, header.units, length_unit, header.shown_as, measures)
     layers = LayerTable(loaded.document, ignore_layers)
     drawer = Drawer(path.name, unit.metres, loaded.document, layers)
     # from here on only the account holds the figures, so that memory shrinks while they are drawn
     loaded.document.modelspace().entity_space.clear()
-    drawn = drawer.draw(account.named, progress)
+    drawn = drawer.draw(account, progress)
     drawn.aside["ignored"].update(account.aside)
+    let_go(loaded.document)
     losses = report_losses(account, loaded, drawn, drawer.book)
-    findings = report_findings(path.name, account, raw, loaded, drawn, drawer)
+    findings = report_findings(path.name, account, repeated, loaded, drawn, drawer)
     return FileParts(
         file=path.name,
         sha256=sha256,
@@ -83,7 +79,7 @@ def _read(
         schema_or_version=header.version,
         length_unit=unit.name,
         unit_scale=unit.metres,
-        entities=entities,
+        entities=account.entities,
         parts=tie_leaders(tuple(drawn.parts), drawn.leaders, unit.metres),
         context=dict(sorted(drawn.aside["context"].items())),
         ignored=dict(sorted(drawn.aside["ignored"].items())),

@@ -4,7 +4,7 @@ from __future__ import annotations
 
 from collections.abc import Callable
 
-from ingest.dxf.account import Account, RawFigures
+from ingest.dxf.account import Account
 from ingest.dxf.blocks import BlockBook
 from ingest.dxf.draw import Drawer, Drawn
 from ingest.dxf.loading import Loaded
@@ -47,7 +47,7 @@ def _serious(book: BlockBook) -> dict[str, int]:
 
 
 def report_findings(
-    file: str, account: Account, raw: RawFigures, loaded: Loaded, drawn: Drawn, drawer: Drawer
+    file: str, account: Account, repeated: tuple[str, ...], loaded: Loaded, drawn: Drawn, drawer: Drawer
 ) -> tuple[Finding, ...]:
     """Findings on one drawing, in a fixed order."""
     found: list[Finding] = []
@@ -61,10 +61,10 @@ def report_findings(
     if account.lost:
         lost = ", ".join(f"{count} {kind}" for kind, count in sorted(account.lost.items()))
         see("lost-in-reading", "check", f"entities that the file holds were not read: {lost}")
-    if raw.repeated:
-        shown = ", ".join(raw.repeated[:3])
-        words = f"{len(raw.repeated)} handles stand at more than one entity ({shown})"
-        see("handle-twice", "check", words, raw.repeated[:3])
+    if repeated:
+        shown = ", ".join(repeated[:3])
+        words = f"{len(repeated)} handles stand at more than one entity ({shown})"
+        see("handle-twice", "check", words, repeated[:3])
     for start, code, words in _UNREAD[:-1]:
         counts = {why: n for kind in drawn.aside.values() for why, n in kind.items() if why.startswith(start)}
         inside = sum(n for why, n in drawer.book.left.items() if why.startswith(start))

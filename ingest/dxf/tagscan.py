@@ -3,6 +3,7 @@
 from __future__ import annotations
 
 import struct
+import sys
 from collections import Counter
 from dataclasses import dataclass, field
 from typing import Any
@@ -94,7 +95,7 @@ def scan_tags(data: bytes) -> Tags:
     tags.zeros = np.flatnonzero(tags.codes == 0)
     if tags.bad_code is not None:
         tags.zeros = tags.zeros[tags.zeros < tags.bad_code]
-    tags.names = [tags.value(z).decode("latin-1") for z in tags.zeros.tolist()]
+    tags.names = [sys.intern(tags.value(z).decode("latin-1")) for z in tags.zeros.tolist()]
     _find_sections(tags)
     return tags
 

@@ -14,7 +14,7 @@ from ingest.ifc.fits import fit_bar, fit_cylinder
 from ingest.ifc.frames import Triple
 from ingest.ifc.plan import is_flat, is_upright, prism
 from ingest.ifc.profiles import Profile
-from ingest.ifc.solids import Extrusion, Line, Sweep
+from ingest.ifc.shapes import Extrusion, Line, Sweep
 from ingest.model import BarSection, Part, Point3
 
 Floats = NDArray[np.float64]
@@ -235,7 +235,10 @@ def line_parts(element: Element) -> tuple[Part, ...]:
         if not isinstance(body.shape, Line):
             continue
         points = body.points()
-        if len(points) == 1:
+        if body.shape.text:
+            x, y, z = points[0].tolist()
+            made.append(element.part("text", ((x, y, z),), ("a text",), text=body.shape.text))
+        elif len(points) == 1:
             made.append(_from_points(element, points, ("a point",), None))
         else:
             made.append(_path(element, points, ("a curve",), None))

@@ -10,7 +10,8 @@ from numpy.typing import NDArray
 
 from ingest.ifc.facets import Facets
 from ingest.ifc.frames import NO_FRAME, Triple
-from ingest.ifc.solids import Described, Extrusion, ItemReader, Line, Shape, Sweep
+from ingest.ifc.items import ItemReader
+from ingest.ifc.shapes import Described, Extrusion, Line, Shape, Sweep
 
 Floats: TypeAlias = NDArray[np.float64]
 

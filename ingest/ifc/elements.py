@@ -14,7 +14,7 @@ from ingest.ifc.bodies import Placed
 from ingest.ifc.classes import Group
 from ingest.ifc.profiles import Moments, Profile, moments
 from ingest.ifc.relations import MaterialUse
-from ingest.ifc.solids import Line
+from ingest.ifc.shapes import Line
 from ingest.model import BarSection, Form, Part, Point3
 from ingest.trail import Source
 

@@ -37,7 +37,7 @@ def _polygonal(item: Entity, _curves: CurveReader) -> Facets:
 
 
 def _numbered(rings: Iterable[tuple[int, ...]], renumber: tuple[int, ...] | None, count: int) -> tuple[Face, ...]:
-    if renumber:
+    if renumber and isinstance(renumber[0], int):  # drafts of IFC4 had numbers of normals in this place
         rings = ([renumber[i - 1] for i in ring] for ring in rings)
     faces = tuple(tuple(i - 1 for i in ring) for ring in rings)
     if any(not 0 <= i < count for face in faces for i in face):
@@ -59,8 +59,7 @@ def _gather(faces: Iterable[Entity], curves: CurveReader) -> Facets:
     rows: dict[Any, int] = {}
     rings: list[Face] = []
     for face in faces:
-        bound = _outer_bound(face.Bounds)
-        ring = [_row(p, rows, points) for p in _loop_points(bound, curves)]
+        ring = [_row(p, rows, points) for p in outer_ring(face, curves)]
         ring = [r for i, r in enumerate(ring) if r != ring[i - 1]]
         if len(ring) >= 3:
             rings.append(tuple(ring))
@@ -77,14 +76,10 @@ def _row(point: tuple[float, ...], rows: dict[Any, int], points: list[Any]) -> i
     return row
 
 
-def _outer_bound(bounds: tuple[Entity, ...]) -> Entity:
-    for bound in bounds:
-        if bound.is_a() == "IfcFaceOuterBound":
-            return bound.Bound
-    return bounds[0].Bound
-
-
-def _loop_points(loop: Entity, curves: CurveReader) -> list[tuple[float, ...]]:
+def outer_ring(face: Entity, curves: CurveReader) -> list[tuple[float, ...]]:
+    """Corners of the outer boundary of a face; the first bound where none is said to be the outer one."""
+    bounds = face.Bounds
+    loop = next((bound for bound in bounds if bound.is_a() == "IfcFaceOuterBound"), bounds[0]).Bound
     if loop.is_a() == "IfcPolyLoop":
         return [p.get_argument(0) for p in loop.get_argument(0)]
     if loop.is_a() == "IfcEdgeLoop":

@@ -5,11 +5,10 @@ from __future__ import annotations
 import numpy as np
 from numpy.typing import NDArray
 
-from ingest.ifc.bodies import Placed
 from ingest.ifc.elements import Element, NoPart, SectionTable
-from ingest.ifc.facets import Facets
+from ingest.ifc.meshes import mesh_parts
 from ingest.ifc.plan import prism
-from ingest.ifc.solids import Line
+from ingest.ifc.shapes import Line
 from ingest.ifc.walls import any_parts
 from ingest.model import Borehole, Layer, Part
 
@@ -18,22 +17,7 @@ Floats = NDArray[np.float64]
 
 def ground_parts(element: Element, sections: SectionTable) -> tuple[Part, ...]:
     """Terrain or a stratum: a 'mesh' with its faces where the file has faces, else by shape."""
-    meshes = [body for body in element.bodies if isinstance(body.shape, Facets)]
-    if not meshes:
-        return any_parts(element, sections)
-    return tuple(_mesh_part(element, body, body.shape) for body in meshes if isinstance(body.shape, Facets))
-
-
-def _mesh_part(element: Element, body: Placed, shape: Facets) -> Part:
-    points = body.points()
-    return element.part(
-        "mesh",
-        [(x, y, z) for x, y, z in points.tolist()],
-        (f"mesh of {len(shape.faces)} faces", *shape.notes),
-        faces=shape.faces,
-        z_top=float(points[:, 2].max()),
-        z_bottom=float(points[:, 2].min()),
-    )
+    return mesh_parts(element) or any_parts(element, sections)
 
 
 def read_borehole(hole: Element, strata: list[Element]) -> Borehole:

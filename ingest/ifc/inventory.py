@@ -17,7 +17,7 @@ from ingest.ifc.placement import PlacementTable
 from ingest.ifc.properties import PropertyTable
 from ingest.ifc.relations import MaterialUse, Relations
 from ingest.ifc.representations import choose
-from ingest.ifc.solids import ItemReader
+from ingest.ifc.items import ItemReader
 from ingest.ifc.units import read_units
 from ingest.ifc.unreadable import UNREADABLE
 from ingest.trail import Source
@@ -134,12 +134,14 @@ class Inventory:
             shape = shape or item.get_argument(REPRESENTATION)
             placement = placement or item.get_argument(PLACEMENT)
         product.placement = row = self.placements.row(placement)
-        chosen = choose(shape, self.items, product.group != "plate")
+        chosen = choose(shape, self.items, product.group)
         bodies = self.bodies
         first, end = len(bodies), bodies.add(chosen.bodies, row)
         axes_end = bodies.add(chosen.axes, row) if chosen.axes else end
         product.rows = (first, end, axes_end, bodies.add(chosen.footprints, row) if chosen.footprints else axes_end)
-        product.reason, product.fault = chosen.reason, chosen.fault
+        product.fault = chosen.fault
+        if product.group != "context":
+            product.reason = chosen.reason
         if product.group == "plate":
             for opening in self.openings_of(product):
                 if opening.rows is None:

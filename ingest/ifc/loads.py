@@ -10,7 +10,7 @@ from numpy.typing import NDArray
 from ingest.ifc.elements import Element, NoPart
 from ingest.ifc.properties import number_text
 from ingest.ifc.relations import of_type
-from ingest.ifc.solids import Line
+from ingest.ifc.shapes import Line
 from ingest.ifc.units import ProjectUnits
 from ingest.model import Form, Part
 

@@ -14,7 +14,7 @@ from ingest.ifc.bodies import Placed
 from ingest.ifc.facets import Facets
 from ingest.ifc.frames import Triple
 from ingest.ifc.profiles import Profile, Ring, holes_of
-from ingest.ifc.solids import Extrusion, HalfSpace, Line, Sweep
+from ingest.ifc.shapes import Extrusion, HalfSpace, Line, Sweep
 
 Floats = NDArray[np.float64]
 

@@ -7,7 +7,9 @@ from typing import Any, TypeAlias
 
 from ingest.ifc.attributes import IDENTIFIER, REPRESENTATION_TYPE, REPRESENTATIONS
 from ingest.ifc.unreadable import UNREADABLE
-from ingest.ifc.solids import Described, ItemReader, Line
+from ingest.ifc.classes import Group
+from ingest.ifc.items import ItemReader
+from ingest.ifc.shapes import Described, Line
 
 Entity: TypeAlias = Any
 
@@ -37,18 +39,21 @@ class Chosen:
     fault: str = ""
 
 
-def choose(shape: Entity | None, items: ItemReader, want_axis: bool) -> Chosen:
+def choose(shape: Entity | None, items: ItemReader, group: Group) -> Chosen:
     """Read the representation of a product.
 
     Args:
         shape: IfcProductDefinitionShape or None.
         items: Reader of items.
-        want_axis: False when a body is enough.
+        group: What it is read as: plates need no axis, annotations are drawn in representations of their own.
     """
     chosen = Chosen()
-    if shape is None:
+    representations = None if shape is None else shape.get_argument(REPRESENTATIONS)
+    if not representations:
         return chosen
-    representations = shape.get_argument(REPRESENTATIONS)
+    if group == "line":
+        chosen.bodies = tuple(found for one in representations for found in _first_read([one], items, chosen))
+        return chosen
     if len(representations) == 1:
         name = representations[0].get_argument(IDENTIFIER)
         if name == "Body":
@@ -56,7 +61,7 @@ def choose(shape: Entity | None, items: ItemReader, want_axis: bool) -> Chosen:
             return chosen
     bodies, axes, footprints, boxes = _sorted(representations)
     chosen.bodies = _first_read(bodies, items, chosen)
-    if axes and (want_axis or not chosen.bodies):
+    if axes and (group != "plate" or not chosen.bodies):
         chosen.axes = _first_read(axes, items, Chosen())
     if not chosen.bodies:
         chosen.footprints = _first_read(footprints, items, Chosen())

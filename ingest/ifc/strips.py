@@ -15,6 +15,8 @@ Points = tuple[tuple[float, float], ...]
 FITS = 0.05
 """Largest share of a strip's area by which the outline may differ (judgement)."""
 SAGITTA = 0.005
+WIDEST_CHORD = 0.55
+"""Chords longer than this many radii are sides of a polygon, not of a chorded arc (32 degrees)."""
 
 
 @dataclass(frozen=True, slots=True)
@@ -46,6 +48,8 @@ def find_strip(area: shapely.Geometry, hint: Floats | None) -> Strip | None:
     ring = _ring_strip(area)
     if ring is not None:
         return ring
+    if hint is not None and len(hint) > 2 and np.hypot(*(hint[0] - hint[-1])) < 1e-6:
+        hint = None  # a closed line is the outline once more, not a line along the wall
     if hint is not None and len(hint) > 2:
         return _arc_strip(outer, hint, area.area) or _bent_strip(area, hint)
     way = _way(area, hint)
@@ -115,16 +119,15 @@ def _arc_strip(outer: Floats, hint: Floats, area: float) -> Strip | None:
     radii = np.hypot(*(outer - centre).T)
     low, high = float(radii.min()), float(radii.max())
     middle = hint[len(hint) // 2] - centre
-    turn = np.unwrap(np.concatenate([[atan2(middle[1], middle[0])], np.arctan2(*(outer - centre).T[::-1])]))
     base = atan2(middle[1], middle[0])
     angles = (np.arctan2(*(outer - centre).T[::-1]) - base + pi) % (2 * pi) - pi
     first, last = float(angles.min()), float(angles.max())
     radius = (low + high) / 2
     strip = (high**2 - low**2) / 2 * (last - first)
-    if strip <= 0 or len(turn) < 4:
+    if strip <= 0:
         return None
-    ends = np.arctan2(*(hint[[0, -1]] - centre).T[::-1]) - base
-    forward = ((ends[1] - ends[0] + pi) % (2 * pi) - pi) >= 0 or abs(ends[1] - ends[0]) > pi
+    start, step = hint[0] - centre, hint[1] - hint[0]
+    forward = start[0] * step[1] - start[1] * step[0] > 0
     t = np.linspace(first, last, arc_steps(radius, last - first) + 1) + base
     line = centre + radius * np.column_stack([np.cos(t), np.sin(t)])
     return Strip(_tuple(line if forward else line[::-1]), high - low, abs(area / strip - 1), "along its curved axis")
@@ -156,6 +159,8 @@ def fit_circle(points: Floats) -> tuple[Floats, float] | None:
         return None
     radius = float(np.sqrt(max(solved[2] + solved[0] ** 2 + solved[1] ** 2, 0.0)))
     off = np.abs(np.hypot(*(at - solved[:2]).T) - radius)
+    if np.hypot(*np.diff(at, axis=0).T).max() > WIDEST_CHORD * radius:
+        return None
     if off.max() > max(1e-3, 1e-3 * radius) or radius > 1e5:
         return None
     return solved[:2] + points.mean(axis=0), radius

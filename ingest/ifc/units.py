@@ -144,12 +144,18 @@ def _assigned(model: Any) -> Iterable[Entity]:
 def _choose_length(lengths: list[tuple[str, float]], doubts: list[str]) -> tuple[str, float]:
     if not lengths:
         return "m", 1.0
-    known = [(name, si) for name, si in lengths if name in METRES and abs(si / METRES[name] - 1) < 1e-3]
-    chosen = (known or lengths)[0]
+    named = [(_known_name(name, si), si) for name, si in lengths]
+    chosen = next(((name, si) for name, si in named if name in METRES), named[0])
     if len({si for _, si in lengths}) > 1:
         listed = ", ".join(f"{name} = {si:.9g}" for name, si in lengths)
         doubts.append(f"several length units are assigned ({listed}); {chosen[0]} was taken")
     return chosen
+
+
+def _known_name(name: str, si: float) -> str:
+    """The common name of a length of so many metres, when the file's own word for it is not known."""
+    same = [known for known, metres in METRES.items() if abs(si / metres - 1) < 1e-7]
+    return name if name in same or not same else same[0]
 
 
 def unit_factor(unit: Entity) -> float:

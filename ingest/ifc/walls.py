@@ -8,13 +8,14 @@ import numpy as np
 import shapely
 from numpy.typing import NDArray
 
-from ingest.ifc.bars import bar_parts, is_pile_shape, round_part
+from ingest.ifc.bars import WIDEST_PILE, bar_parts, is_pile_shape, round_part
 from ingest.ifc.bodies import Placed
 from ingest.ifc.elements import Element, NoPart, SectionTable
 from ingest.ifc.facets import Facets
 from ingest.ifc.fits import fit_cylinder, mesh_volume
+from ingest.ifc.meshes import mesh_parts
 from ingest.ifc.plan import Prism, is_flat, is_upright, join_prisms, prism
-from ingest.ifc.solids import Extrusion, Line, Sweep
+from ingest.ifc.shapes import Extrusion, Line, Sweep
 from ingest.ifc.strips import FITS, Strip, find_strip, length_of_line
 from ingest.model import Part, Point3
 
@@ -22,6 +23,8 @@ Floats = NDArray[np.float64]
 
 LOOSE_FIT = 0.35
 """Misfit above which a wall is kept as its outline and not as a strip (judgement)."""
+HALF_FULL = 0.5
+"""A mesh that fills less of the upright prism about it stays a mesh (judgement)."""
 ALIKE = 0.001
 """Layers and body agree on the thickness within this, m."""
 
@@ -40,7 +43,7 @@ def wall_parts(element: Element, sections: SectionTable) -> tuple[Part, ...]:
     whole = element_prism(element)
     hint = _hint(element)
     strip = find_strip(whole.area, hint)
-    if strip is None or strip.misfit > LOOSE_FIT or _is_plate(strip, whole):
+    if strip is None or strip.misfit > LOOSE_FIT or (element.cls == "IfcPlate" and _is_plate(strip, whole)):
         return (prism_part(element, whole, ()),)
     said = [
         f"centre line {strip.how}",
@@ -52,7 +55,7 @@ def wall_parts(element: Element, sections: SectionTable) -> tuple[Part, ...]:
 
 
 def _is_plate(strip: Strip, whole: Prism) -> bool:
-    """A body lower than it is thick is a slab drawn as a wall."""
+    """A plate lower than it is thick lies flat."""
     return strip.thickness > 1.5 * (whole.top - whole.bottom)
 
 
@@ -77,7 +80,7 @@ def _plain_wall(element: Element) -> Part | None:
     mx, my = ox + cx * a + cy * d, oy + cx * b + cy * e
     dx, dy = first[0] * sx / 2, first[1] * sx / 2
     bottom, top = (oz, oz + rise) if rise > 0 else (oz + rise, oz)
-    if thickness > 1.5 * (top - bottom):
+    if element.cls == "IfcPlate" and thickness > 1.5 * (top - bottom):
         return None
     points = ((mx - dx, my - dy, bottom), (mx + dx, my + dy, bottom))
     said = ("upright extrusion of a rectangle, middle of its thickness", _layer_words(element, thickness), *shape.notes)
@@ -248,31 +251,48 @@ def prism_part(element: Element, whole: Prism, said: tuple[str, ...]) -> Part:
     )
 
 
-def _mesh_words(element: Element, whole: Prism) -> list[str]:
+def _filled(element: Element, whole: Prism) -> float:
+    """Share of the upright prism that the meshes of an element fill; 1 when it has none."""
     meshes = [(b.points(), b.shape) for b in element.bodies if isinstance(b.shape, Facets)]
-    if not meshes:
-        return []
-    volume = sum(mesh_volume(points, shape.faces) for points, shape in meshes)
     upright = whole.area.area * (whole.top - whole.bottom)
-    share = volume / upright if upright > 0 else 0.0
-    return [f"fitted to a mesh: its shadow on plan, an upright prism it fills to {share:.0%}"]
+    if not meshes or upright <= 0:
+        return 1.0 if not meshes else 0.0
+    return sum(mesh_volume(points, shape.faces) for points, shape in meshes) / upright
+
+
+def _mesh_words(element: Element, whole: Prism) -> list[str]:
+    if not any(isinstance(b.shape, Facets) for b in element.bodies):
+        return []
+    return [f"fitted to a mesh: its shadow on plan, an upright prism it fills to {_filled(element, whole):.0%}"]
 
 
 def any_parts(element: Element, sections: SectionTable) -> tuple[Part, ...]:
-    """The part of an element whose class says nothing: pile, wall, bar or prism by its shape alone."""
-    if not element.bodies:
+    """The part of an element whose class says nothing: pile, wall, bar, prism or mesh by its shape alone."""
+    if not element.bodies or all(isinstance(body.shape, Line) for body in element.bodies):
         return bar_parts(element, sections)
-    if len(element.bodies) == 1 and is_pile_shape(element.bodies[0]):
-        return (round_part(element, element.bodies[0], sections),)
-    if all(isinstance(body.shape, Line) for body in element.bodies):
-        return bar_parts(element, sections)
-    if len(element.bodies) == 1 and _is_slender(element.bodies[0]):
-        return bar_parts(element, sections)
-    whole = element_prism(element)
+    if len(element.bodies) == 1:
+        body = element.bodies[0]
+        if is_pile_shape(body) and _diameter(body) <= WIDEST_PILE:
+            return (round_part(element, body, sections),)
+        if not is_pile_shape(body) and _is_slender(body):
+            return bar_parts(element, sections)
+    try:
+        whole = element_prism(element)
+    except NoPart:
+        return _meshes_or_raise(element, "body without plan area")
     strip = find_strip(whole.area, _hint(element))
     if strip is not None and strip.misfit <= FITS and _is_wall(strip, whole):
         return wall_parts(element, sections)
+    if _filled(element, whole) < HALF_FULL:
+        return _meshes_or_raise(element, "body that is no upright prism")
     return (prism_part(element, whole, ()),)
+
+
+def _meshes_or_raise(element: Element, reason: str) -> tuple[Part, ...]:
+    made = mesh_parts(element)
+    if not made:
+        raise NoPart(reason)
+    return made
 
 
 def _is_slender(body: Placed) -> bool:

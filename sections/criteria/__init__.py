@@ -19,6 +19,7 @@ from sections.criteria.opposite_wall import opposite_wall
 from sections.criteria.plane_strain_ratio import plane_strain_ratio
 from sections.criteria.reentrant import reentrant
 from sections.criteria.ring_thrust import ring_thrust
+from sections.criteria.screening import screening
 from sections.criteria.shape import shape
 from sections.criteria.supports_gap import supports_gap
 from sections.criteria.supports_skew import supports_skew
@@ -38,6 +39,7 @@ CRITERIA: tuple[Criterion, ...] = (
     ground,
     loads,
     opposite_wall,
+    screening,
     corner_class,
     plane_strain_ratio,
     corner_shape,

@@ -8,7 +8,7 @@ from typing import TYPE_CHECKING, overload
 import numpy as np
 
 from ingest.model import OUTPUTS
-from sections.model import Bools, CriterionResult, Floats, Mechanism, Stations
+from sections.model import Bools, CriterionResult, Floats, Ints, Mechanism, Stations
 
 if TYPE_CHECKING:
     from numpy.typing import ArrayLike
@@ -102,6 +102,7 @@ class Sheet:
         speaks_of: Iterable[str] = WALL_OUTPUTS,
         silence: dict[str, str] | None = None,
         carries: tuple[Mechanism, ...] = (),
+        stages: tuple[tuple[str, ...], Ints] | None = None,
     ) -> CriterionResult:
         """Hand the sheet in."""
         values = inputs or {}
@@ -125,6 +126,7 @@ class Sheet:
             speaks_of=tuple(speaks_of),
             silence=silence or {},
             carries=carries,
+            stages=stages,
         )
 
     def _columns(self, outputs: Iterable[str]) -> list[int]:

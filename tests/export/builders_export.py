@@ -468,7 +468,7 @@ def section(n: int, line: tuple[m.Point, m.Point], span: float, ats: tuple[float
             vertical=(d.BalanceLine(text="no inclined support: nothing to close", value=0.0, unit="kN/m"),),
         ),
         implied=(
-            d.Implied(about="P1-footing-1", quantity="load", real=900.0, implied=None, ratio=1.92, grade="care",
+            d.Implied(about="P1-footing-1", quantity="load", real=900.0, implied=None, ratio=1.92, grade="serious",
                       do_in_inputs="use equal_effect for the wall", read_outputs="settlement of the footing is high"),
             d.Implied(about=ids[2], quantity="stiffness", real=STRUT_EA, implied=STRUT_EA, ratio=1.0, grade="fair",
                       do_in_inputs="none", read_outputs="multiply the force by 5.0 m"),

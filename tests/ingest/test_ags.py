@@ -86,6 +86,15 @@ def test_holes_have_levels_strata_and_water(tmp_path: Path) -> None:
     assert (parts.schema_or_version, parts.crs) == ("AGS 4.1", "LOCAL")
 
 
+def test_water_that_rose_after_the_strike_stands_at_its_highest_level(tmp_path: Path) -> None:
+    risen = (
+        '\n"GROUP","WSTD"\n"HEADING","LOCA_ID","WSTG_DPTH","WSTD_NMIN","WSTD_POST"\n"UNIT","","m","min","m"\n'
+        '"TYPE","ID","2DP","0DP","2DP"\n"DATA","BH1","3.25","5","2.75"\n"DATA","BH1","3.25","20","2.50"\n'
+    )
+    (first, _) = read_ags(written(tmp_path, HOLES + risen)).boreholes
+    assert first.water == 2.0  # 4.50 - 2.50
+
+
 def test_every_row_is_accounted_for(tmp_path: Path) -> None:
     parts = read_ags(written(tmp_path, HOLES))
     assert parts.entities == HOLES.count('"DATA"') == 14

@@ -65,14 +65,16 @@ class Draughtsman:
         ends = self.bits_of(pit, run)
         if pit.circle is not None and len(ends) > 2:
             run.spacing = min(run.spacing, 0.49 * min(np.diff(ends)))  # fewer piles to a side make no polygon
+        arcs = [bit.length for bit in pit.bits if bit.centre is not None]
+        run.spacing = min([run.spacing, *(0.2 * length for length in arcs)])  # fewer posts make no arc
         if min(np.diff(ends)) > 6 * run.spacing and self.r.random() < 0.3 and len(ends) > 2:
             ends = [run.start, run.stop]
         lengths = np.diff(ends)
         while np.ptp(lengths / np.maximum(np.round(lengths / run.spacing), 1)) > 0.08 * run.spacing:
             run.spacing *= 1.02 if run.kind == "contiguous" else 0.95
-            if run.kind == "contiguous" and run.spacing > 1.5 * run.size:
-                run.spacing, lengths = 1.2 * run.size, np.array([run.stop - run.start])
-                ends = [run.start, run.stop]
+            if run.kind != "king_post" and not 0.6 <= run.spacing / run.size <= 1.5:
+                run.spacing = run.size * (1.2 if run.kind == "contiguous" else 0.8)
+                lengths, ends = np.array([run.stop - run.start]), [run.start, run.stop]
         places = []
         for a, b in zip(ends, ends[1:], strict=False):
             n = max(round((b - a) / run.spacing), 1)

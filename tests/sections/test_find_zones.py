@@ -216,3 +216,11 @@ def test_anchors_that_give_way_to_struts_are_named():
     pit = found(shape_of(rectangle()), supports=(*anchors, *struts))
     # half way between the last anchor at 10.5 and the first strut at 14.0
     assert boundaries(pit)[12.25] == "anchors at -2.00 end; struts at -2.00 begin"
+
+
+def test_a_run_that_ends_within_half_a_spacing_of_a_corner_ends_at_the_corner():
+    pit = found(shape_of(rectangle(), [(0.4, 30.0, PILES), (30.0, 49.7, PANEL), (49.7, 0.4, PILES)]))
+    assert [z.to for z in pit.pit.zones] == [30.0, 50.0, 80.0, 100.0]
+    assert pit.pit.zones[1].ended_by == "inside corner of 90 degrees; wall changes from diaphragm to contiguous"
+    # the record keeps the runs as the piles have them
+    assert [run.start for run in pit.pit.runs] == [0.4, 30.0, 49.7]
