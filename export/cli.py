@@ -33,6 +33,10 @@ EXAMPLES = {
         "cutworthy propose samples/first_pit/first_pit.dxf --brief samples/first_pit/brief.toml --out out/first_pit",
         "cutworthy propose samples/first_pit/first_pit.dxf --brief samples/first_pit/brief.toml --out out/json --json",
     ),
+    "judge": (
+        "cutworthy judge samples/first_pit/first_pit.dxf --brief samples/first_pit/brief.toml --line 115,182,115,210",
+        "cutworthy judge samples/first_pit/first_pit.dxf --line 102,190,103,230 --json",
+    ),
     "members": (
         "cutworthy members out/first_pit/sections/S1.json samples/first_pit/results.csv",
         "cutworthy members out/first_pit/sections/S1.json samples/first_pit/results.csv --out out/members.csv",
@@ -106,6 +110,16 @@ def _add_propose(command: argparse.ArgumentParser) -> None:
     command.add_argument("--out", required=True, metavar="FOLDER", help="folder to write (swapped in when complete)")
 
 
+def _add_judge(command: argparse.ArgumentParser) -> None:
+    _add_files(command)
+    command.add_argument(
+        "--line",
+        required=True,
+        metavar="X1,Y1,X2,Y2",
+        help="world metres, first point on the retained side; a line that meets two walls is judged at both",
+    )
+
+
 def _add_members(command: argparse.ArgumentParser) -> None:
     command.add_argument(
         "sections", nargs="+", metavar="SECTION.json", help="section definitions the results belong to"
@@ -123,6 +137,7 @@ def _add_schema(command: argparse.ArgumentParser) -> None:
 COMMANDS: dict[str, tuple[str, Callable[[argparse.ArgumentParser], None]]] = {
     "inspect": ("what was found in the files, what is missing, what is in doubt", _add_inspect),
     "propose": ("the main job: sections proposed, judged and written", _add_propose),
+    "judge": ("an engineer's own cut line, in the terms of the proposal", _add_judge),
     "members": ("analysis results back to the force of each real member", _add_members),
     "schema": ("the JSON Schema of what is written", _add_schema),
 }

@@ -5,11 +5,12 @@ from __future__ import annotations
 import argparse
 import json
 from contextlib import AbstractContextManager
+from math import isfinite
 from pathlib import Path
 from typing import TYPE_CHECKING
 
 from ingest.errors import InputError
-from ingest.model import Site
+from ingest.model import Point, Site
 
 if TYPE_CHECKING:
     from export.progress import Tell
@@ -34,11 +35,10 @@ def run_inspect(options: argparse.Namespace) -> Answer:
 
 def run_propose(options: argparse.Namespace) -> Answer:
     """Do the main job and write the folder; 1 when no section could be written."""
-    from sections.propose import propose
-
     from export.folder import check_folder
     from export.inventory import summarise, summarise_json
     from export.writer import write_all
+    from sections.propose import propose
 
     folder = Path(options.out)
     check_folder(folder)
@@ -53,12 +53,36 @@ def run_propose(options: argparse.Namespace) -> Answer:
     return code, "" if options.quiet else summarise(proposal, folder)
 
 
+def run_judge(options: argparse.Namespace) -> Answer:
+    """Judge an engineer's own line."""
+    from export.inventory import describe_line, line_json
+    from sections.judge_line import judge_line
+
+    line = _line(options.line)
+    site = _read(options)
+    judged = judge_line(site, line)
+    if options.json:
+        return 0, json.dumps(line_json(judged), indent=2, ensure_ascii=False)
+    return 0, "" if options.quiet else describe_line(judged, site.limits.governing)
+
+
+def _line(text: str) -> tuple[Point, Point]:
+    parts = text.split(",")
+    try:
+        x1, y1, x2, y2 = (float(part) for part in parts)
+    except ValueError:
+        remedy = "give four numbers in world metres: --line x1,y1,x2,y2"
+        raise InputError("", f"--line {text}", "is not four numbers", remedy) from None
+    if not all(isfinite(value) for value in (x1, y1, x2, y2)) or (x1, y1) == (x2, y2):
+        raise InputError("", f"--line {text}", "is no line", "give two different points in world metres")
+    return (x1, y1), (x2, y2)
+
+
 def run_members(options: argparse.Namespace) -> Answer:
     """Turn results of sections back into member forces."""
-    from ingest.results import read_results
-
     from export.member_table import members_json, write_governing, write_members
     from export.section_json import read_section
+    from ingest.results import read_results
     from sections.members import find_governing, member_actions
 
     definitions = [read_section(Path(name)) for name in options.sections]

@@ -2,7 +2,7 @@
 
 from __future__ import annotations
 
-from collections.abc import Iterable, Sequence
+from collections.abc import Iterable, Mapping, Sequence
 from pathlib import Path
 from typing import Any
 
@@ -10,7 +10,8 @@ from pydantic import TypeAdapter
 
 from ingest.model import NOTICE, Site
 from ingest.trail import Finding, Question
-from sections.model import FoundPit, Pit, Proposal, Run
+from sections.judge_line import JudgedLine
+from sections.model import FoundPit, Pit, Proposal, Run, Verdict
 
 
 def describe(site: Site, found: Sequence[FoundPit]) -> str:
@@ -118,9 +119,7 @@ def summarise(proposal: Proposal, folder: Path) -> str:
         )
         where = ", ".join(f"{wall.pit} chainage {wall.at:.2f}" for wall in section.walls)
         lines.append(f"{section.id}  {section.kind} through {where}; {score}")
-        for output in proposal.limits.governing:
-            if output in section.verdicts:
-                lines.append(f"    {output}: {section.verdicts[output].sentence}")
+        lines += verdict_lines(section.verdicts, proposal.limits.governing)
     if not proposal.sections:
         lines.append("No section could be written")
         lines += [f"  {finding.where}: {finding.text}" for finding in proposal.findings if finding.severity != "note"]
@@ -162,3 +161,32 @@ def summarise_json(proposal: Proposal, folder: Path, written: Sequence[str]) -> 
         s.id: {"score": s.score, "verdicts": {o: v.verdict for o, v in s.verdicts.items()}} for s in proposal.sections
     }
     return {"notice": NOTICE, "out": str(folder), "written": list(written), "pits": pits, "sections": sections}
+
+
+def verdict_lines(verdicts: Mapping[str, Verdict], outputs: Sequence[str]) -> list[str]:
+    """One short line per output; the sentences are in the report and the JSON."""
+    lines = []
+    for output in outputs:
+        if output not in verdicts:
+            continue
+        verdict = verdicts[output]
+        band = "" if verdict.low is None or verdict.high is None else f" {verdict.low:.2f} to {verdict.high:.2f}"
+        why = f" ({verdict.dominant})" if verdict.dominant else ""
+        lines.append(f"    {output}: {verdict.verdict}{band}{why}{', provisional' if verdict.provisional else ''}")
+    return lines
+
+
+def describe_line(judged: JudgedLine, governing: Sequence[str]) -> str:
+    """Tell what is said of an engineer's line."""
+    lines = []
+    for wall in judged.walls:
+        lines.append(f"{wall.pit} chainage {wall.at:.2f}, {wall.side} wall of the cut")
+        lines += verdict_lines(wall.verdicts, governing)
+        lines += [f"      {wall.verdicts[o].sentence}" for o in governing if o in wall.verdicts]
+    score = "no score (a governing output is not assessed)" if judged.score is None else f"score {judged.score:.0f}"
+    return "\n".join([*lines, f"{score}; {judged.better}", "", NOTICE])
+
+
+def line_json(judged: JudgedLine) -> dict[str, Any]:
+    """The same as data."""
+    return {"notice": NOTICE, **TypeAdapter(JudgedLine).dump_python(judged, mode="json", by_alias=True)}

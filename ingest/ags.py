@@ -23,8 +23,7 @@ def read_ags(path: Path) -> FileParts:
 
     Returns:
         Boreholes with strata and the highest level water was struck at or rose to; every DATA row is one entity. Holes
-        without place or level are left out, with
-        the reason.
+        without place or level are left out, with the reason.
 
     Raises:
         InputError: No AGS4, cut off in the middle of a row, or a place that is no finite number.

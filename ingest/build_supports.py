@@ -7,7 +7,7 @@ from collections.abc import Sequence
 from typing import Any, Literal, cast
 
 from ingest.brief_tables import SupportTable
-from ingest.figures import ends_of, plan
+from ingest.figures import NearLines, ends_of, plan
 from ingest.matching import fits
 from ingest.member_properties import read_property
 from ingest.model import BarSection, Material, Part, Pile, Point3, Support, Waler, WallPiece
@@ -41,7 +41,7 @@ def build_supports(
     Returns:
         Supports with head at the wall, in the order of `given`.
     """
-    near = _WallDistance(walls, piles)
+    near = _wall_lines(walls, piles)
     known = {material.id: material for material in materials}
     supports = []
     for item in given:
@@ -213,13 +213,13 @@ def _compare_reach(item: RoleGiven, run: float, reach: float, notes: Notes) -> N
         notes.see("anchor-length", "check", label(item), text, (item.part.source,))
 
 
-def _ordered(item: RoleGiven, ends: tuple[Point3, Point3], near: _WallDistance) -> tuple[Point3, Point3]:
+def _ordered(item: RoleGiven, ends: tuple[Point3, Point3], near: NearLines) -> tuple[Point3, Point3]:
     """Head first: the end at the wall, for members from wall to wall the western, else southern one."""
     if item.role in ("strut", "corner_strut"):
         return min(ends), max(ends)
     if item.part.form == "bar" and abs(ends[0][2] - ends[1][2]) > 0.05:
         return ends
-    return (ends[1], ends[0]) if near(ends[1]) < near(ends[0]) else ends
+    return (ends[1], ends[0]) if near.distance(ends[1][:2]) < near.distance(ends[0][:2]) else ends
 
 
 def _drawn_level(part: Part) -> float | None:
@@ -229,17 +229,6 @@ def _drawn_level(part: Part) -> float | None:
     return None
 
 
-class _WallDistance:
-    """Distance of a point from the nearest wall axis or wall pile."""
-
-    def __init__(self, walls: Sequence[WallPiece], piles: Sequence[Pile]) -> None:
-        from shapely import MultiLineString, MultiPoint, prepare, unary_union
-
-        lines = MultiLineString([(*w.axis, w.axis[0]) if w.closed else w.axis for w in walls])
-        self._shape = unary_union([lines, MultiPoint([pile.centre for pile in piles if not pile.bearing])])
-        prepare(self._shape)
-
-    def __call__(self, point: Point3) -> float:
-        from shapely import Point
-
-        return math.inf if self._shape.is_empty else float(self._shape.distance(Point(point[:2])))
+def _wall_lines(walls: Sequence[WallPiece], piles: Sequence[Pile]) -> NearLines:
+    lines = [(*wall.axis, wall.axis[0]) if wall.closed else wall.axis for wall in walls]
+    return NearLines(lines, [pile.centre for pile in piles if not pile.bearing])

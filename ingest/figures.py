@@ -4,8 +4,14 @@ from __future__ import annotations
 
 import math
 from collections.abc import Sequence
+from functools import cached_property
+from typing import TYPE_CHECKING
 
 from ingest.model import Part, Point, Point3
+
+if TYPE_CHECKING:
+    from shapely import STRtree
+    from shapely.geometry.base import BaseGeometry
 
 SLENDER = 2.5
 """Length over width from which an outline has a centre line (judgement)."""
@@ -98,6 +104,39 @@ def extent(ring: Sequence[Point]) -> tuple[float, float]:
     """Size of a ring along x and y, m."""
     xs, ys = [x for x, _ in ring], [y for _, y in ring]
     return max(xs) - min(xs), max(ys) - min(ys)
+
+
+class NearLines:
+    """Lines and points on plan, asked for the distance of a point from the nearest of them."""
+
+    def __init__(self, lines: Sequence[Sequence[Point]], points: Sequence[Point]) -> None:
+        """Args: lines of two vertices or more, single points; m."""
+        self._shapes = [*lines, *((point,) for point in points)]
+        self.empty = not self._shapes
+
+    @cached_property
+    def _tree(self) -> STRtree:
+        from shapely import LineString, STRtree
+        from shapely import Point as At
+
+        return STRtree([LineString(shape) if len(shape) > 1 else At(shape[0]) for shape in self._shapes])
+
+    @cached_property
+    def hull(self) -> BaseGeometry:
+        """Convex hull of everything."""
+        from shapely import MultiPoint
+
+        return MultiPoint([point for shape in self._shapes for point in shape]).convex_hull
+
+    def distance(self, point: Point, within: float = math.inf) -> float:
+        """Distance to the nearest, m; inf when none lies `within`."""
+        from shapely import Point as At
+
+        if self.empty:
+            return math.inf
+        reach = None if math.isinf(within) else within
+        _, found = self._tree.query_nearest(At(point), max_distance=reach, return_distance=True, all_matches=False)
+        return float(found[0]) if len(found) else math.inf
 
 
 def _level(part: Part) -> float:

@@ -2,6 +2,7 @@
 
 from __future__ import annotations
 
+import re
 from collections.abc import Sequence
 from fnmatch import fnmatchcase
 from functools import lru_cache
@@ -45,9 +46,19 @@ def find_entry(entries: Sequence[Entry], part: Part) -> tuple[int, Entry] | None
     )
 
 
+def alike(name: str) -> str:
+    """The pattern of names that differ in their numbers only."""
+    return re.sub(r"\d+", "*", name)
+
+
 def match_line(layer: str, name: str, cls: str, item: str = "") -> str:
-    """The line of a brief that means all parts like one: by its layer, else name, else class, else id."""
-    pairs = (("layer", layer), ("name", name), ("class", cls), ("id", item))
+    """The line of a brief that means all parts like one: by its layer, else name, else class, else id.
+
+    Example:
+        >>> match_line("", "Strut 12", "IfcMember")
+        'match = { name = "Strut *" }'
+    """
+    pairs = (("layer", layer), ("name", alike(name)), ("class", cls), ("id", item))
     key, value = next(((key, value) for key, value in pairs if value), ("id", item))
     return f"match = {{ {key} = {quoted(value)} }}"
 

@@ -8,6 +8,7 @@ from dataclasses import dataclass, field, replace
 
 from ingest.brief import Brief
 from ingest.errors import InputError
+from ingest.matching import alike
 from ingest.model import Part
 from ingest.roles import RoleGiven
 from ingest.trail import Assumption, Finding, NotAssessed, Question, Reading, Severity, Source
@@ -73,6 +74,6 @@ def slug(text: str) -> str:
 
 
 def label(given: RoleGiven) -> str:
-    """How the engineer knows a part: its layer, else its name, else its class."""
+    """How the engineer knows parts of one kind: by layer, else by name but for its numbers, else by class."""
     part = given.part
-    return part.layer or part.name or part.cls
+    return part.layer or alike(part.name) or part.cls

@@ -10,7 +10,7 @@ from importlib.resources import files
 from typing import Any, get_args
 
 from ingest.brief import Brief
-from ingest.matching import find_entry, match_line
+from ingest.matching import alike, find_entry, match_line
 from ingest.model import Evidence, Part, Role, WallKind
 from ingest.record import record
 from ingest.surroundings import WALL_ROW, Place, find_places, straight, upright
@@ -109,7 +109,7 @@ def find_role(part: Part, brief: Brief, place: Place) -> RoleGiven:
 
 def _from_brief(part: Part, brief: Brief, place: Place) -> Clue | None:
     own = brief.files.get(part.source.file)
-    if own is not None and part.layer in own.ignore_layers:
+    if own is not None and part.layer.casefold() in {name.casefold() for name in own.ignore_layers}:
         return Clue(role="ignore", why="layer ignored by the brief", confidence=1.0)
     found = find_entry(brief.roles, part)
     if found is not None:
@@ -247,12 +247,15 @@ def _rank(clues: Sequence[Clue]) -> list[Clue]:
 
 def _ask(part: Part, first: Clue, second: Clue) -> Question:
     match = match_line(part.layer, part.name, "", part.source.item)
-    name = part.layer or part.name or part.source.item
+    name = part.layer or alike(part.name) or part.source.item
     return Question(
         id="",
         about=f"{part.source.file}, {name}: {first.role} or {second.role}?",
         readings=tuple(
-            Reading(reading=clue.role, evidence=clue.why, confidence=clue.confidence) for clue in (first, second)
+            Reading(
+                reading=clue.role, evidence=clue.why.replace(part.name, alike(part.name)), confidence=clue.confidence
+            )
+            for clue in (first, second)
         ),
         brief_line=f'[[roles]]\n{match}\nrole = "{first.role}"',
     )

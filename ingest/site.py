@@ -65,7 +65,7 @@ def read_site(
     for number, path in enumerate(paths):
         tell(f"reading {path.name}", number, len(paths))
         try:
-            read.append(_read_one(path, brief, read_limit))
+            read.append(_read_one(path, notes, read_limit))
         except InputError as error:
             if not skip_unreadable:
                 raise
@@ -190,13 +190,17 @@ def _inputs(moved: Moved, brief: Brief) -> tuple[InputFile, ...]:
     return tuple(rows)
 
 
-def _read_one(path: Path, brief: Brief, read_limit: float | None) -> FileParts:
-    entry = brief.files.get(path.name)
+def _read_one(path: Path, notes: Notes, read_limit: float | None) -> FileParts:
+    entry = notes.brief.files.get(path.name)
+    kind = kind_of(path)
+    if kind == "ags" and entry is not None and entry.length_unit is not None:
+        where = f"{notes.brief.file}, {notes.brief.place('files', path.name, 'length_unit')}"
+        notes.see("length-unit", "note", where, "an AGS4 file states its own units; length_unit changes nothing")
     options = {
         "length_unit": entry.length_unit if entry else None,
         "ignore_layers": entry.ignore_layers if entry else (),
     }
-    return read_guarded(path, kind_of(path), options, read_limit=read_limit)
+    return read_guarded(path, kind, options, read_limit=read_limit)
 
 
 def _check_names(paths: Sequence[Path], brief: Brief) -> None:

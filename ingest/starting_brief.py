@@ -6,10 +6,12 @@ from collections.abc import Iterator
 from pathlib import Path
 
 from ingest.brief_lines import one_line, quoted
+from ingest.errors import InputError
+from ingest.matching import match_line
 from ingest.model import NOTICE, Column, Load, Pile, Plate, Receptor, Site, Support, Waler, WallPiece
+from ingest.receive import shown
 
 Recorded = WallPiece | Pile | Support | Waler | Plate | Column | Load | Receptor
-Roled = tuple[str, str, str, str, float]
 
 
 def write_starting_brief(site: Site, path: str | Path) -> None:
@@ -20,11 +22,19 @@ def write_starting_brief(site: Site, path: str | Path) -> None:
         path: Where to write; an existing file is left alone.
 
     Raises:
-        FileExistsError: The file is there already.
+        InputError: The file is there already, or its folder is not.
     """
     text = "\n".join(_lines(site)) + "\n"
-    with Path(path).open("x", encoding="utf-8", newline="\n") as stream:
-        stream.write(text)
+    path = Path(path)
+    try:
+        with path.open("x", encoding="utf-8", newline="\n") as stream:
+            stream.write(text)
+    except FileExistsError as error:
+        remedy = "choose another name; a brief is never overwritten"
+        raise InputError(shown(path.name), "", "is there already", remedy) from error
+    except OSError as error:
+        problem = f"cannot be written: {error.strerror or error}"
+        raise InputError(shown(path.name), "", problem, "check the folder and its rights") from error
 
 
 def _lines(site: Site) -> Iterator[str]:
@@ -65,20 +75,19 @@ def _files(site: Site) -> Iterator[str]:
 
 
 def _roles(site: Site) -> Iterator[str]:
-    counts: dict[Roled, int] = {}
+    found: dict[tuple[str, str, str], tuple[int, str, float]] = {}
     for item in _records(site):
-        if item.evidence is None or item.evidence.why.startswith("brief"):
+        evidence = item.evidence
+        if evidence is None or evidence.why.startswith("brief") or not (item.layer or item.name):
             continue
-        kind = getattr(item, "kind", None) if item.evidence.role == "wall" else None
-        key, value = ("layer", item.layer) if item.layer else ("name", item.name)
-        if value:
-            line = f"match = {{ {key} = {quoted(value)} }}"
-            roled = (line, item.evidence.role, kind or "", item.evidence.why, item.evidence.confidence)
-            counts[roled] = counts.get(roled, 0) + 1
-    if counts:
+        kind = str(item.kind or "") if isinstance(item, WallPiece | Pile) and evidence.role == "wall" else ""
+        key = (match_line(item.layer, item.name, ""), evidence.role, kind)
+        count, why, confidence = found.get(key, (0, evidence.why, evidence.confidence))
+        found[key] = (count + 1, why, min(confidence, evidence.confidence))
+    if found:
         yield ""
         yield "# Roles as found; state the ones that are wrong."
-    for (line, role, kind, why, confidence), count in sorted(counts.items()):
+    for (line, role, kind), (count, why, confidence) in sorted(found.items()):
         yield ""
         yield f"# {count} found: {one_line(why)} (confidence {confidence:.2f})"
         yield "# [[roles]]"

@@ -9,7 +9,8 @@ from dataclasses import dataclass
 import numpy as np
 from numpy.typing import NDArray
 
-from ingest.model import Part, Point
+from ingest.figures import NearLines, plan
+from ingest.model import Part, Point, Point3
 
 Floats = NDArray[np.float64]
 
@@ -80,7 +81,7 @@ def find_places(parts: Sequence[Part], is_wall: Sequence[bool], is_slab: Sequenc
     return tuple(_place(n, part, rows.get(n), lowest, meets) for n, part in enumerate(parts))
 
 
-def _line(part: Part) -> tuple[tuple[float, float, float], ...]:
+def _line(part: Part) -> tuple[Point3, ...]:
     ring = part.closed or part.form in ("outline", "prism")
     return (*part.points, part.points[0]) if ring else part.points
 
@@ -150,28 +151,18 @@ def _is_row(xy: Floats, spacing: float) -> bool:
 class _Walls:
     """Wall axes and wall piles, asked for distance and side."""
 
-    def __init__(
-        self, axes: Sequence[Sequence[tuple[float, float, float]]], centres: Sequence[Sequence[float]]
-    ) -> None:
-        from shapely import MultiLineString, MultiPoint, prepare, unary_union
-
-        lines = MultiLineString([[point[:2] for point in axis] for axis in axes])
-        dots = MultiPoint([(point[0], point[1]) for point in centres])
-        self._all = unary_union([lines, dots])
-        self._near = self._all.buffer(NEAR_WALL, quad_segs=4)
-        self._hull = self._all.convex_hull
-        prepare(self._near)
-        self.empty = bool(self._all.is_empty)
+    def __init__(self, axes: Sequence[Sequence[Point3]], centres: Sequence[Point3]) -> None:
+        self._lines = NearLines([plan(axis) for axis in axes], plan(centres))
+        self.empty = self._lines.empty
 
     def near(self, point: Point) -> bool:
-        from shapely import intersects_xy
-
-        return bool(intersects_xy(self._near, *point))
+        return self._lines.distance(point, NEAR_WALL) <= NEAR_WALL
 
     def side(self, point: Point) -> str:
         """Behind the walls or between them; only clear where the walls enclose an area."""
         from shapely import intersects_xy
 
-        if self._hull.area < 1.0:
+        hull = self._lines.hull
+        if hull.area < 1.0:
             return ""
-        return "between" if intersects_xy(self._hull, *point) else "behind"
+        return "between" if intersects_xy(hull, *point) else "behind"

@@ -30,6 +30,17 @@ def note_unmatched(parts: Sequence[Part], site: Site, notes: Notes) -> None:
             if not any(fits(match, part) for part in (parts if match.id else kinds)):
                 _see(match, kinds, table, number, notes)
     _check_stages(parts, site, notes)
+    _check_strata(site, notes)
+
+
+def _check_strata(site: Site, notes: Notes) -> None:
+    met = sorted({layer.code for hole in site.boreholes for layer in hole.layers if layer.code})
+    for number, entry in enumerate(notes.brief.strata):
+        if entry.from_boreholes is not None and entry.from_boreholes not in met:
+            near = get_close_matches(entry.from_boreholes, met, 1)
+            hint = f"; the boreholes have {', '.join(near or met[:8]) or 'no strata'}"
+            where = f"{notes.brief.file}, {notes.brief.place('strata', number, 'from_boreholes')}"
+            notes.see("stratum-code", "check", where, f'no borehole meets "{entry.from_boreholes}"{hint}')
 
 
 def _see(match: Match, kinds: Sequence[Part], table: str, number: int, notes: Notes) -> None:

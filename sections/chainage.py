@@ -163,11 +163,6 @@ def within(chainage: Floats, start: float, to: float, length: float) -> Bools:
     return np.asarray((chainage >= start) & (chainage < to))
 
 
-def stretch_length(start: float, to: float, length: float) -> float:
-    """Length of a stretch that may pass the start."""
-    return to - start if to >= start else to - start + length
-
-
 def locate(shape: PitShape, points: Floats) -> Located:
     """Lay points (n, 2) on the wall axis by the shortest way."""
     if len(points) == 0:

@@ -23,6 +23,8 @@ from sections.stretches import cell_lengths, find_stretches
 from sections.verdict import NOT_2D
 
 NOBODY = -1
+DEPTH_UNKNOWN = 5.0
+"""Length of a zone that gets its own section where the excavated depth is not known, m (judgement)."""
 
 
 @dataclass(frozen=True, kw_only=True)
@@ -197,21 +199,32 @@ def _place_in_zone(judged: JudgedPit, station: int) -> tuple[float, float]:
 def _needed(
     cuts: Sequence[Candidate], likeness: Likeness, judged: Mapping[int, JudgedPit], covered: Bools, weight: Floats
 ) -> Bools:
-    """Zones of which at least one excavated depth cannot be represented, and the cuts that lie in them (z, m)."""
+    """Zones of which at least one excavated depth cannot be represented, and the cuts that lie in them (z, m).
+
+    A pit of which nothing can be represented gets a section in its longest zone, however short that is.
+    """
     rows = []
     for p, one in judged.items():
-        stations, here = one.found.stations, likeness.pit == p
+        here = likeness.pit == p
         bare = np.where(covered[here], 0.0, weight[here])
-        for z in range(len(one.found.pit.zones)):
-            inside = stations.zone == z
-            depth = stations.depth[inside & ~np.isnan(stations.depth)]
-            least = float(np.max(depth)) if len(depth) else 0.0
-            lies = np.array(
-                [cut.pit == p and any(inside[list(cut.stations[: cut.serves])]) for cut in cuts], dtype=bool
-            )
-            if bare[inside].sum() > 0.0 and bare[inside].sum() >= least - 1e-9 and np.any(lies):
+        zone = one.found.stations.zone
+        lengths = np.bincount(zone, weights=bare, minlength=len(one.found.pit.zones))
+        wanted = np.flatnonzero((lengths > 0.0) & (lengths >= _least_lengths(one) - 1e-9))
+        if len(wanted) == 0 and len(lengths) and not covered[here].any():
+            wanted = np.array([int(np.argmax(lengths))])
+        for z in wanted:
+            lies = [cut.pit == p and bool(np.any(zone[list(cut.stations[: cut.serves])] == z)) for cut in cuts]
+            if any(lies):
                 rows.append(lies)
     return np.array(rows, dtype=bool).reshape(len(rows), len(cuts))
+
+
+def _least_lengths(judged: JudgedPit) -> Floats:
+    """Excavated depth of each zone, m: what must be left of it to need a section; DEPTH_UNKNOWN where it is not known."""
+    stations = judged.found.stations
+    deepest = np.zeros(len(judged.found.pit.zones))
+    np.maximum.at(deepest, stations.zone, np.nan_to_num(stations.depth))
+    return np.where(deepest > 0.0, deepest, DEPTH_UNKNOWN)
 
 
 def _choice(

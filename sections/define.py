@@ -102,7 +102,7 @@ def define_section(site: Site, cut: Cut, judged: Judged) -> SectionDefinition:
         verdicts=judged.verdicts,
         walls=judged.walls,
         score=judged.score,
-        half=mirrors(cut, parts.members, parts.loads),
+        half=mirrors(site, cut, parts.members, parts.loads),
         axis=RingAxis(point=world_point(site, cut.start), r_of_wall=cut.walls[0].x) if ring else None,
         extent=extent,
         materials=materials,

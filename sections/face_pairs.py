@@ -8,6 +8,7 @@ from __future__ import annotations
 
 from collections.abc import Sequence
 from dataclasses import dataclass
+from functools import cached_property
 
 import networkx as nx
 import numpy as np
@@ -43,13 +44,13 @@ class Faces:
         return Faces(p=self.p[mask], q=self.q[mask], piece=self.piece[mask], body=self.body[mask],
                      thickness=self.thickness[mask])  # fmt: skip
 
-    @property
+    @cached_property
     def along(self) -> Floats:
         """Unit directions."""
         way = self.q - self.p
         return np.asarray(way / np.maximum(np.hypot(*way.T), 1e-12)[:, None])
 
-    @property
+    @cached_property
     def length(self) -> Floats:
         """Lengths, m."""
         return np.asarray(np.hypot(*(self.q - self.p).T))

@@ -9,7 +9,7 @@ import numpy as np
 from numpy.typing import ArrayLike
 
 from ingest.model import Borehole, Site, Stratum
-from sections.model import Floats, Ints
+from sections.model import Floats
 from sections.tin import Surface, level_at, make_surface
 
 
@@ -113,16 +113,6 @@ def nearest_borehole(site: Site, points: ArrayLike) -> Floats:
         return np.full(len(spots), np.inf)
     gap = spots[:, None, :] - holes[None, :, :]
     return np.asarray(np.min(np.hypot(gap[..., 0], gap[..., 1]), axis=1))
-
-
-def nearest_hole(site: Site, points: ArrayLike) -> Ints:
-    """Index of the nearest borehole of each point; -1 without boreholes."""
-    spots = np.asarray(points, dtype=np.float64).reshape(-1, 2)
-    holes = hole_points(site.boreholes)
-    if len(holes) == 0:
-        return np.full(len(spots), -1, dtype=np.int64)
-    gap = spots[:, None, :] - holes[None, :, :]
-    return np.asarray(np.argmin(np.hypot(gap[..., 0], gap[..., 1]), axis=1), dtype=np.int64)
 
 
 def water_along(site: Site, points: ArrayLike) -> Floats:

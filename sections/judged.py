@@ -35,6 +35,7 @@ from sections.verdict import (
 )
 
 RETAINED = "wall_moment_retained_face"
+UNMEASURED = "margins measured with model and block both resolved to single piles"
 STAGE = "final dig"
 """The stage every criterion of this table speaks of, unless a computation takes the stages one by one."""
 
@@ -155,7 +156,7 @@ class JudgedPit:
             stage=self._stage(i, o),
             decides=self._unspoken(i, o) if chief is None or unmeasured else self._criterion_sentence(chief, i, o),
             gaps=gaps,
-            settled_by="" if chief is None else chief.settled_by,
+            settled_by=UNMEASURED if unmeasured else "" if chief is None else chief.settled_by,
             by_class=any(r.by_class_only and r.assessed[i, o] for r in self.results),
             provisional=self._why_provisional(i, o),
         )

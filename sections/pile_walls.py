@@ -140,21 +140,20 @@ def _spacing_changes(piles: Sequence[Pile], limits: Limits, ring: bool) -> list[
     index = np.flatnonzero(straight)
     if len(index) < 2 * LASTING:
         return []
-    smooth = np.array([np.median(span[index[max(k - 1, 0) : k + 2]]) for k in range(len(index))])
+    even = span[index]
+    windows = np.lib.stride_tricks.sliding_window_view(even, LASTING)
+    before, after = np.median(windows, axis=1)[:-LASTING], windows[LASTING:]
+    lasting = np.ptp(after, axis=1) <= limits.spacing_ratio * after.mean(axis=1)
+    changed = (np.abs(after / before[:, None] - 1.0) > limits.spacing_ratio).all(axis=1) & lasting
     found: list[int] = []
     first = 0
-    for k in range(LASTING, len(index) - LASTING + 1):
-        held = float(np.median(smooth[first:k]))
-        ahead = span[index[k : k + LASTING]]
-        if k - first >= LASTING and (np.abs(ahead / held - 1.0) > limits.spacing_ratio).all() and np.ptp(
-            ahead
-        ) <= limits.spacing_ratio * float(ahead.mean()):
+    for k in (np.flatnonzero(changed) + LASTING).tolist():
+        held = float(np.median(even[first:k]))
+        if k - first >= LASTING and (np.abs(even[k : k + LASTING] / held - 1.0) > limits.spacing_ratio).all():
             found.append(int(index[k]))
             first = k
-    if ring and found:
-        last, start = float(np.median(smooth[first:])), float(np.median(smooth[: LASTING]))
-        if abs(last / start - 1.0) > limits.spacing_ratio:
-            found.append(0)
+    if ring and found and abs(np.median(even[first:]) / np.median(even[:LASTING]) - 1.0) > limits.spacing_ratio:
+        found.append(0)
     return found
 
 

@@ -24,6 +24,7 @@ from sections.model import (
     SectionWall,
     StationTable,
 )
+from sections.perimeter import find_shapes
 from sections.severity import find_severity, severity_at
 from sections.verdict import worst_first
 
@@ -48,6 +49,7 @@ def propose(site: Site, progress: Tell = _silent) -> tuple[Proposal, tuple[Secti
     """
     progress("find the perimeter", 0, 4)
     founds = find_pits(site)
+    notes = () if founds else find_shapes(site)[1]
     progress("judge every metre", 1, 4)
     plane = tuple(judge_stations(site, found) for found in founds)
     rings = {i: judge_stations(site, found, axisymmetric=True) for i, found in enumerate(founds) if found.stations.ring}
@@ -79,6 +81,7 @@ def propose(site: Site, progress: Tell = _silent) -> tuple[Proposal, tuple[Secti
         findings=_by_id(
             (
                 *site.findings,
+                *notes,
                 *(f for found in founds for f in found.findings),
                 *(f for d in definitions for f in d.findings),
             )

@@ -28,6 +28,8 @@ SAME_WALL = 1.5
 """Two rings one inside the other at less than this on average are one wall drawn twice or lined, m (judgement)."""
 LEAST_OPEN = 3.0
 """Shorter open walls are no perimeter, m (judgement)."""
+MOST_OF = 0.8
+"""Share of an open wall that a ring closed with other walls must take up (judgement)."""
 LEAST_SHARE = 0.1
 """Rings of building walls smaller than this share of the largest are rooms or shafts of the building (judgement)."""
 
@@ -52,7 +54,7 @@ def choose_rings(site: Site, lines: Sequence[WallLine], origin: Point) -> Choice
     rings, findings = _once(rings, lines, origin)
     rest = _unused(graph, rings)
     loose, inside = _outside(rest, rings)
-    closing = _closing_rings(site, lines, embedded, loose) if loose.any() else []
+    closing = _closing_rings(site, lines, embedded, rest.pick(loose)) if loose.any() else []
     if closing:
         rings, more = _once([*rings, *closing], lines, origin)
         findings += more
@@ -94,8 +96,7 @@ def area_of(points: Floats) -> float:
 
 
 def _length(way: Trace) -> float:
-    points = way.points
-    return float(np.hypot(*np.diff(points, axis=0).T).sum())
+    return float(_spans(way.graph)[way.edges].sum())
 
 
 def _lines_of(ring: Trace) -> Floats:
@@ -161,25 +162,36 @@ def _outside(rest: WallGraph, rings: Sequence[Trace]) -> tuple[Bools, Bools]:
     return ~touches[part] & ~within[part], within[part]
 
 
-def _closing_rings(site: Site, lines: Sequence[WallLine], embedded: Bools, loose: Bools) -> list[Trace]:
-    """Rings that walls of a building, or failing that lines of no known kind, close with what is left open."""
+def _closing_rings(site: Site, lines: Sequence[WallLine], embedded: Bools, loose: WallGraph) -> list[Trace]:
+    """Rings that walls of a building, or failing that lines of no known kind, close with what is left open.
+
+    They must take up nearly all of the open wall, and a good part of them must be that wall: a stray line that happens
+    to cross it closes nothing.
+    """
     kinds = np.array([line.kind for line in lines])
-    for others in (np.isin(kinds, ("concrete", "masonry", "none")), ~embedded):
+    wanted = MOST_OF * float(_spans(loose).sum())
+    for others, least in ((np.isin(kinds, ("concrete", "masonry", "none")), 0.25), (~embedded, 0.5)):
         if not others.any():
             continue
         graph = _network(site, lines, embedded | others)
-        rings = _pits(find_rings(graph, embedded[graph.line]))
-        closed = [ring for ring in rings if 0.25 <= embedded[ring.graph.line[ring.edges]].mean() < 1.0
-                  or _share(ring, embedded) >= 0.25]  # fmt: skip
-        fresh = [ring for ring in closed if not embedded[ring.graph.line[ring.edges]].all()]
-        if fresh:
-            return fresh
+        rings = [ring for ring in _pits(find_rings(graph, embedded[graph.line])) if _uses(ring, loose)]
+        rings = [ring for ring in rings if least <= _share(ring, embedded) < 1.0]
+        if rings and sum(_share(ring, embedded) * _length(ring) for ring in rings) >= wanted:
+            return rings
     return []
+
+
+def _uses(ring: Trace, loose: WallGraph) -> bool:
+    return bool(np.isin(ring.graph.line[ring.edges], loose.line).any())
+
+
+def _spans(graph: WallGraph) -> Floats:
+    return np.asarray(np.hypot(*(graph.xy[graph.ends[:, 1]] - graph.xy[graph.ends[:, 0]]).T))
 
 
 def _share(ring: Trace, embedded: Bools) -> float:
     """Share of the length of a ring that is embedded wall."""
-    span = np.hypot(*(np.roll(ring.points, -1, axis=0) - ring.points).T)
+    span = _spans(ring.graph)[ring.edges]
     return float(span[embedded[ring.graph.line[ring.edges]]].sum() / span.sum())
 
 

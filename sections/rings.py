@@ -151,22 +151,23 @@ def find_open(graph: WallGraph) -> tuple[Trace, ...]:
         coo_array((np.ones(len(graph.ends)), graph.ends.T), shape=(len(graph.xy),) * 2), directed=False
     )
     traces = []
-    for part in np.unique(label[graph.ends[:, 0]]) if len(graph.ends) else ():
-        mine = np.flatnonzero(label[graph.ends[:, 0]] == part)
-        trace = _longest(graph, mine)
+    span = _spans(graph)
+    part = label[graph.ends[:, 0]]
+    order = np.argsort(part, kind="stable")
+    for mine in np.split(order, np.flatnonzero(np.diff(part[order])) + 1):
+        trace = _longest(graph, mine, span) if len(mine) else None
         if trace is not None:
             traces.append(trace)
-    return tuple(sorted(traces, key=lambda t: -float(_spans(t.graph)[t.edges].sum())))
+    return tuple(sorted(traces, key=lambda t: -float(span[t.edges].sum())))
 
 
 def _spans(graph: WallGraph) -> Floats:
     return np.asarray(np.hypot(*(graph.xy[graph.ends[:, 1]] - graph.xy[graph.ends[:, 0]]).T))
 
 
-def _longest(graph: WallGraph, edges: Ints) -> Trace | None:
+def _longest(graph: WallGraph, edges: Ints, span: Floats) -> Trace | None:
     """Longest way through a tree of edges, by two sweeps from the farthest node."""
     near: dict[int, list[tuple[int, int, float]]] = {}
-    span = _spans(graph)
     for e in edges.tolist():
         a, b = graph.ends[e].tolist()
         near.setdefault(a, []).append((b, e, float(span[e])))

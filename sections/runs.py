@@ -54,16 +54,15 @@ def stretches_along(site: Site, outline: Outline, trace: Trace, lines: Sequence[
     kind_of = {int(p): (kind, k) for k, one in enumerate(lines) for p, kind in zip(one.piles, one.kinds, strict=True)}
     beside = np.where(part >= 0, line, -1)
     before, after = (np.roll(beside, 1), beside) if trace.closed else (np.append(-1, beside), np.append(beside, -1))
+    at = locate(outline, graph.xy[nodes])
     found = {
         int(p): float(c)
-        for p, c, *near in zip(piles, locate(outline, graph.xy[nodes]), before, after, strict=True)
+        for p, c, *near in zip(piles, at, before, after, strict=True)
         if p >= 0 and (-1 in near or kind_of[int(p)][1] in near)
     }
     bits = [Stretch(start=c, stop=c, kind=kind_of[p][0], pile=p) for p, c in found.items()]
     plain = (part >= 0) & np.array([not len(one.piles) for one in lines])[line]
-    ends = graph.xy[graph.ends[trace.edges]]
-    ends = np.where(trace.forward[:, None, None], ends, ends[:, ::-1])
-    start, stop = locate(outline, ends[:, 0]), locate(outline, ends[:, 1])
+    start, stop = (at, np.roll(at, -1)) if trace.closed else (at[:-1], at[1:])
     stop = np.where(stop < start - SPECK, stop + outline.length, stop)
     for k in np.flatnonzero(plain & (stop - start > SPECK)).tolist():
         one = lines[line[k]]

@@ -10,8 +10,9 @@ import numpy as np
 from ingest.model import Point, Site
 from ingest.trail import Finding
 from sections.cut import Cut, crossings
-from sections.definition import Extent, Half, SectionMember, SectionReceptor
+from sections.definition import Extent, Half, SectionLoad, SectionMember, SectionReceptor
 from sections.ground import nearest_borehole
+from sections.mirror import cut_mirrors
 from sections.world import to_local, to_world
 
 BELOW_TOE = 2.0
@@ -47,18 +48,19 @@ def model_extent(cut: Cut) -> tuple[Extent, tuple[Finding, ...]]:
     return Extent(x=(0.0, cut.length), z=(base, top), left=left, right="roller", base="fixed", basis=basis), findings
 
 
-def mirrors(cut: Cut, members: Sequence[SectionMember], loads: Sequence[object]) -> Half:
-    """Whether the section mirrors about its middle: walls, levels, supports alike and no load on one side only."""
+def mirrors(site: Site, cut: Cut, members: Sequence[SectionMember], loads: Sequence[SectionLoad]) -> Half:
+    """Whether the section mirrors about its middle, so that half of it may be analysed. It is always written whole."""
     if len(cut.walls) != 2:
         return Half(is_half=False, at_x=None, basis="one wall only")
-    a, b = cut.walls
-    runs = [w.found.pit.runs[int(w.found.stations.run[w.station])].wall for w in (a, b)]
-    levels = all(a.level[name] == b.level[name] for name in a.level)
-    alike = runs[0].kind == runs[1].kind and runs[0].diameter == runs[1].diameter and runs[0].centres == runs[1].centres
+    first, second = cut.walls
+    same, why = cut_mirrors(first.found.stations, first.found.rows, first.station, site.limits)
     one_sided = [member.id for member in members if member.form == "bar" and member.side in ("left", "right")]
-    if levels and alike and not loads and not one_sided:
-        return Half(is_half=False, at_x=(a.x + b.x) / 2, basis="mirrors about its middle: half of it may be analysed")
-    return Half(is_half=False, at_x=None, basis="does not mirror: walls, levels, supports or loads differ")
+    if same and (loads or one_sided):
+        same, why = False, f"one side only has {', '.join([*(load.id for load in loads), *one_sided])}"
+    if not same:
+        return Half(is_half=False, at_x=None, basis=f"does not mirror: {why}")
+    at = (first.x + second.x) / 2
+    return Half(is_half=False, at_x=at, basis=f"mirrors about x = {at:.2f}: half of it may be analysed; {why}")
 
 
 def borehole_distance(site: Site, cut: Cut) -> float | None:

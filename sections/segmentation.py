@@ -91,14 +91,6 @@ def alike_stretches(values: Floats, weights: Floats) -> Ints:
     return np.append(starts, len(table))[blocks].astype(np.int64)
 
 
-def zone_penalty(step: float, length: float) -> float:
-    """Penalty at which a step of `step` (in tolerances) between two stretches of `length` (m) just pays for itself.
-
-    A change of size D between lengths L1 and L2 lowers the cost by D^2 L1 L2 / (L1 + L2); derived by hand.
-    """
-    return step**2 * length / 2.0
-
-
 def group_alike(values: Floats, tolerance: float) -> Ints:
     """Label values so that neighbours in size closer than `tolerance` share a label; -1 for nan."""
     labels = np.full(len(values), -1, dtype=np.int64)

@@ -262,3 +262,29 @@ def test_entities_of_the_drawing_are_all_accounted_for(proposal: dict[str, Any])
     (book,) = proposal["ledger"].values()
     assert book["entities"] == 113 == book["used"] + book["context"] + book["ignored"]
     assert book["roles"] == {"wall": 100, "strut": 10, "waler": 1, "load": 1}
+
+
+APART = ("sources", "inputs", "ledger", "proposal_sha256")
+
+
+def without_sources(tree: Any) -> Any:
+    if isinstance(tree, dict):
+        return {key: without_sources(value) for key, value in tree.items() if key not in APART}
+    return [without_sources(item) for item in tree] if isinstance(tree, list) else tree
+
+
+def test_the_same_pit_as_a_model_gives_the_same_sections(out: Path, tmp_path: Path) -> None:
+    model = PIT.parent / "first_pit_ifc" / "first_pit.ifc"
+    folder = tmp_path / "out"
+    assert main(["propose", str(model), "--brief", str(BRIEF), "--out", str(folder), "--quiet"]) == 0
+    for name in ("proposal.json", "sections/S1.json", "sections/S2.json"):
+        drawn, modelled = (json.loads((place / name).read_text()) for place in (out, folder))
+        assert without_sources(modelled) == without_sources(drawn), name
+
+
+def test_the_same_inputs_give_the_same_bytes(out: Path, tmp_path: Path) -> None:
+    folder = tmp_path / "out"
+    assert main(["propose", str(DRAWING), "--brief", str(BRIEF), "--out", str(folder), "--quiet"]) == 0
+    names = sorted(path.relative_to(out) for path in out.rglob("*") if path.is_file())
+    assert names == sorted(path.relative_to(folder) for path in folder.rglob("*") if path.is_file())
+    assert [name for name in names if (out / name).read_bytes() != (folder / name).read_bytes()] == []

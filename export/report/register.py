@@ -107,7 +107,7 @@ def limits_table(limits: Limits) -> Html:
     rows.append(
         ["governing outputs", ", ".join(output_name(o).lower() for o in limits.governing), "verdicts that decide"]
     )
-    return table("Limits and tolerances of this run", ["Limit", "#Value", "Meaning"], rows)
+    return table("Limits and tolerances of this run", ["Limit", "Value", "Meaning"], rows)
 
 
 def ledger(entries: dict[str, LedgerEntry]) -> Html:

@@ -176,12 +176,19 @@ def criteria_table(definition: SectionDefinition) -> Html:
     for one in definition.criteria:
         groups.setdefault((one.code, one.wall, one.sentence), []).append(one)
     speaking = [rows for rows in groups.values() if any(one.assessed for one in rows)]
-    silent = [rows for rows in groups.values() if not any(one.assessed for one in rows)]
+    silent: dict[tuple[str, ...], list[Band]] = {}
+    for (code, _, sentence), rows in groups.items():
+        if not any(one.assessed for one in rows):
+            silent.setdefault((code, sentence, *(one.output for one in rows)), []).append(rows[0])
     heads = ["Criterion", "Wall", "Mechanism", "Bands, real over 2D", "In words", "Inputs", "Basis, reference"]
-    silent_heads = ["Criterion", "Wall", "Mechanism", "Outputs", "Why not"]
+    silent_heads = ["Criterion", "Walls", "Mechanism", "Outputs", "Why not"]
     return table(
         f"{definition.id}: criteria that could be evaluated", heads, map(_speaking, speaking), "criteria"
-    ) + table(f"{definition.id}: criteria that say nothing here", silent_heads, map(_silent, silent))
+    ) + table(
+        f"{definition.id}: criteria that say nothing here",
+        silent_heads,
+        (_silent(key[2:], rows) for key, rows in silent.items()),
+    )
 
 
 def _speaking(rows: list[Band]) -> list[Html | str]:
@@ -193,10 +200,11 @@ def _speaking(rows: list[Band]) -> list[Html | str]:
     return [*head, listing(bands, "tight"), first.sentence, inputs or "none", basis]
 
 
-def _silent(rows: list[Band]) -> list[Html | str]:
-    first = rows[0]
-    outputs = ", ".join(output_name(one.output).lower() for one in rows)
-    return [criterion_name(first.code), first.wall, first.mechanism.replace("_", " "), outputs, first.sentence]
+def _silent(outputs: tuple[str, ...], walls: list[Band]) -> list[Html | str]:
+    first = walls[0]
+    said = ", ".join(output_name(output).lower() for output in outputs)
+    where = ", ".join(one.wall for one in walls)
+    return [criterion_name(first.code), where, first.mechanism.replace("_", " "), said, first.sentence]
 
 
 def _input(value: str | float | None) -> str:

@@ -2,13 +2,14 @@
 
 from __future__ import annotations
 
+import math
 from collections.abc import Iterable
 from dataclasses import replace
 from typing import Any
 
 import numpy as np
 
-from ingest.dxf.curves import Floats
+from ingest.dxf.curves import SAGITTA, Floats, flatten_conic
 from ingest.model import Part, Point3
 
 _HOW = "cut at the insert's clipping outline"
@@ -50,8 +51,8 @@ def clip_parts(parts: Iterable[Part], outline: Floats, hidden_inside: bool) -> l
         hidden_inside: Whether the inside is hidden instead of the outside.
 
     Returns:
-        Parts inside; lines and outlines that cross the clipping outline are cut there, circles, texts and points go by
-        their centre.
+        Parts inside; lines, circles and outlines that cross the clipping outline are cut there, texts and points go by
+        their place.
     """
     import shapely
 
@@ -62,7 +63,7 @@ def clip_parts(parts: Iterable[Part], outline: Floats, hidden_inside: bool) -> l
         inside = window.covers(shape)
         if inside if not hidden_inside else not window.intersects(shape):
             kept.append(part)
-        elif part.form in ("path", "outline"):
+        elif part.form in ("path", "outline", "circle"):
             rest = shape.difference(window) if hidden_inside else shape.intersection(window)
             kept += [replace(part, **_cut(part, piece), evidence=_HOW) for piece in _pieces(rest)]
     return kept
@@ -72,6 +73,10 @@ def _shape(part: Part) -> Any:
     import shapely
 
     plan = [(x, y) for x, y, _ in part.points]
+    if part.form == "circle" and part.radius:
+        centre, radius = np.array(part.points[0]), part.radius
+        arms = np.array([[radius, 0.0, 0.0], [0.0, radius, 0.0]])
+        return shapely.LineString(flatten_conic(centre, arms[0], arms[1], (0.0, math.tau), SAGITTA)[:, :2])
     if part.form == "outline" and len(plan) > 2:
         return shapely.make_valid(shapely.Polygon(plan, [[(x, y) for x, y, _ in hole] for hole in part.holes]))
     if part.form == "path":
@@ -93,4 +98,4 @@ def _cut(part: Part, piece: Any) -> dict[str, Any]:
     if piece.geom_type == "Polygon":
         holes = tuple(ring(hole.coords[:-1]) for hole in piece.interiors)
         return {"points": ring(piece.exterior.coords[:-1]), "holes": holes, "closed": True}
-    return {"points": ring(piece.coords), "closed": False}
+    return {"points": ring(piece.coords), "closed": False, "form": "path", "radius": None}

@@ -62,6 +62,14 @@ class _Chunk:
     tables: set[str] = field(default_factory=set)
     why: dict[str, Left] = field(default_factory=dict)
 
+    def add(self, figures: list[Sketch], item: str, layer: LayerUse) -> None:
+        """Take in plain figures under the name and the layer of their entity."""
+        for figure in figures:
+            figure.item, figure.layer = item, layer.name
+            if layer.state:
+                figure.tags = {**(figure.tags or {}), "layer_state": layer.state}
+        self.plain += figures
+
 
 class Drawer:
     """Draws the entities of one file."""
@@ -87,7 +95,7 @@ class Drawer:
             self._draw_chunk(chunk)
             for _, entity in chunk:
                 self._database.discard(entity)
-                entity.destroy()
+                vars(entity).clear()
             if progress is not None:
                 progress(first + len(items))
             if len(self.drawn.parts) > MOST_PARTS:
@@ -143,11 +151,7 @@ class Drawer:
         figures = sketch(entity, self.book.sagitta)
         if isinstance(figures, Left):
             return figures
-        for figure in figures:
-            figure.item, figure.layer = item, layer.name
-            if layer.state:
-                figure.tags = {**(figure.tags or {}), "layer_state": layer.state}
-        chunk.plain += figures
+        chunk.add(figures, item, layer)
         return None
 
     def _insert(self, item: str, entity: Any, layer: LayerUse, chunk: _Chunk) -> Left | None:

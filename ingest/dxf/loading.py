@@ -55,12 +55,13 @@ def load_document(path: Path) -> Loaded:
         InputError: When recovery mode fails as well.
     """
     import ezdxf
-    from ezdxf import recover
 
     try:
         return Loaded(ezdxf.readfile(path))
     except Exception as fault:  # the library raises nearly anything on damaged files
         first = describe_fault(fault)
+    from ezdxf import recover
+
     try:
         document, auditor = recover.readfile(path)
     except Exception as fault:
@@ -76,7 +77,7 @@ def load_document(path: Path) -> Loaded:
 def let_go(document: Any) -> None:
     """Take a drawing apart, so that its memory comes back at once and not when the collector finds its circles."""
     for entity in list(document.entitydb.values()):
-        entity.destroy()
+        vars(entity).clear()
     vars(document).clear()
 
 

@@ -12,9 +12,9 @@ from ingest.ifc.elements import Element, NoPart, SectionTable
 from ingest.ifc.facets import Facets
 from ingest.ifc.fits import fit_bar, fit_cylinder
 from ingest.ifc.frames import Triple
-from ingest.ifc.plan import is_flat, is_upright, prism
+from ingest.ifc.plan import is_flat, is_upright, prism, profile_upright
 from ingest.ifc.profiles import Profile
-from ingest.ifc.shapes import Extrusion, Line, Sweep
+from ingest.ifc.shapes import Extrusion, HalfSpace, Line, Sweep
 from ingest.model import BarSection, Part, Point3
 
 Floats = NDArray[np.float64]
@@ -94,16 +94,39 @@ def _extruded(element: Element, body: Placed, shape: Extrusion, sections: Sectio
     (ox, oy, oz), (a, b, c), (d, e, f), (vx, vy, vz) = body.origin, body.x, body.y, body.vector
     start = (ox + m.x * a + m.y * d, oy + m.x * b + m.y * e, oz + m.x * c + m.y * f)
     end = (start[0] + vx, start[1] + vy, start[2] + vz)
+    start, end, cut_words = cut_ends(body, shape, start, end)
     upright = is_upright(body.vector)
     section = sections.section(shape.profile, body.scale, None if upright else level_way(body))
     if upright:
         element.tags.setdefault("DepthDirection", _depth_direction(body, shape.profile))
     said = [f"extrusion of a {_article(shape.profile)} along its centroid", *notes, *shape.notes]
-    if shape.cuts:
-        said.append("ends are cut; its length is that of the uncut body")
+    said += cut_words
     if shape.profile.note:
         said.append(shape.profile.note)
     return _bar(element, start, end, said, section)
+
+
+def cut_ends(body: Placed, shape: Extrusion, start: Triple, end: Triple) -> tuple[Triple, Triple, list[str]]:
+    """Shorten a bar where planes cut its centroid line; other cuts are said to be left out."""
+    low, high, said = 0.0, 1.0, []
+    a, way = np.array(start), np.array(end) - np.array(start)
+    for cut in shape.cuts:
+        if not isinstance(cut, HalfSpace) or cut.boundary is not None:
+            said.append("a cut was left out")
+            continue
+        frame = body.base @ body.frames[cut.frame]
+        keep = frame[:3, 2] if cut.keep_above else -frame[:3, 2]
+        speed, here = float(way @ keep), float((frame[:3, 3] - a) @ keep)
+        if abs(speed) < 1e-9:
+            said.append("a cut along its length was left out")
+        elif speed > 0:
+            low = max(low, here / speed)
+        else:
+            high = min(high, here / speed)
+    if not low < high or (low, high) == (0.0, 1.0):
+        return start, end, list(dict.fromkeys(said if low < high else [*said, "a cut was left out"]))
+    (p, q, r), (s, t, u) = (a + low * way).tolist(), (a + high * way).tolist()
+    return (p, q, r), (s, t, u), list(dict.fromkeys(["ends cut by planes, where these meet its centroid", *said]))
 
 
 def _article(profile: Profile) -> str:
@@ -138,7 +161,8 @@ def _bar(element: Element, start: Point3, end: Point3, said: list[str], section:
 def _swept(element: Element, body: Placed, shape: Sweep, sections: SectionTable, notes: tuple[str, ...]) -> Part:
     points = body.points()
     scale = float(np.linalg.norm(body.base[:3, 0]))
-    section = sections.section(shape.profile, scale, None)
+    turned = np.ptp(profile_upright(body, shape), axis=0) - np.ptp(np.array(shape.profile.outlines[0]) * scale, axis=0)
+    section = sections.section(shape.profile, scale, (0.0, 1.0) if np.abs(turned).max() > 1e-9 else (1.0, 0.0))
     said = (f"{_article(shape.profile)} swept along a curve", *notes, *shape.notes)
     straight = _straight(points)
     if straight is None:

@@ -92,7 +92,7 @@ class CurveReader:
         return np.asarray(c + a * np.cos(t) * x + b * np.sin(t) * y)
 
     def _steps(self, radius: float, sweep: float) -> int:
-        widest = 2 * acos(max(1 - self._sagitta / max(radius, self._sagitta), 0.0))
+        widest = 2 * acos(max(1.0 - self._sagitta / max(radius, self._sagitta), 0.0))
         return max(ceil(sweep / min(widest, 2 * pi / LEAST_STEPS_PER_TURN) - 1e-9), 1)
 
     def _conic(self, curve: Entity, _depth: int) -> Floats:

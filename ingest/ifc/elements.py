@@ -21,7 +21,7 @@ from ingest.trail import Source
 Floats = NDArray[np.float64]
 
 
-class NoPart(Exception):
+class NoPart(Exception):  # noqa: N818  a reason for the ledger, not an error
     """An element that gives no part; the message is the reason the ledger shows."""
 
 

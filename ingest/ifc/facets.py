@@ -2,7 +2,7 @@
 
 from __future__ import annotations
 
-from collections.abc import Callable, Iterable
+from collections.abc import Callable, Iterable, Sequence
 from dataclasses import dataclass
 from typing import Any
 
@@ -36,7 +36,7 @@ def _polygonal(item: Entity, _curves: CurveReader) -> Facets:
     return Facets(points, _numbered(rings, getattr(item, "PnIndex", None), len(points)))
 
 
-def _numbered(rings: Iterable[tuple[int, ...]], renumber: tuple[int, ...] | None, count: int) -> tuple[Face, ...]:
+def _numbered(rings: Iterable[Sequence[int]], renumber: tuple[int, ...] | None, count: int) -> tuple[Face, ...]:
     if renumber and isinstance(renumber[0], int):  # drafts of IFC4 had numbers of normals in this place
         rings = ([renumber[i - 1] for i in ring] for ring in rings)
     faces = tuple(tuple(i - 1 for i in ring) for ring in rings)

@@ -10,9 +10,9 @@ import numpy as np
 from numpy.typing import NDArray
 
 from ingest.ifc.frames import FrameTable
-from ingest.ifc.unreadable import UNREADABLE
 from ingest.ifc.relations import of_type
 from ingest.ifc.units import ProjectUnits, unit_factor, unit_name
+from ingest.ifc.unreadable import UNREADABLE
 
 Entity = Any
 Floats = NDArray[np.float64]
@@ -60,7 +60,7 @@ def read_georeference(model: Any, units: ProjectUnits) -> Georeference:
 
 
 def map_matrix(
-    eastings: float, northings: float, height: float, way: tuple[float, float], length: float, map_unit: float, k: float
+    origin: tuple[float, float, float], way: tuple[float, float], length: float, map_unit: float, k: float
 ) -> Floats:
     """Matrix (4, 4) from project units to world metres.
 
@@ -68,7 +68,7 @@ def map_matrix(
     project unit over map unit, and (c, s) along `way` (IFC4, IfcMapConversion).
 
     Args:
-        eastings, northings, height: In map units.
+        origin: Eastings, northings, height in map units.
         way: XAxisAbscissa and XAxisOrdinate, not normalised.
         length: Metres per project unit.
         map_unit: Metres per map unit.
@@ -78,7 +78,7 @@ def map_matrix(
     c, s = (way[0] / size, way[1] / size) if size else (1.0, 0.0)
     matrix = np.eye(4)
     matrix[:3, :3] = np.array([[c, -s, 0.0], [s, c, 0.0], [0.0, 0.0, 1.0]]) * (k * length)
-    matrix[:3, 3] = np.array([eastings, northings, height]) * map_unit
+    matrix[:3, 3] = np.array(origin) * map_unit
     return matrix
 
 
@@ -101,7 +101,8 @@ def _apply(model: Any, operation: Entity, units: ProjectUnits, into: Georeferenc
     way = (operation.XAxisAbscissa, operation.XAxisOrdinate)
     k = _grid_factor(operation.Scale, units, map_unit, label, into)
     factors = [float(getattr(operation, name, None) or 1.0) for name in ("FactorX", "FactorY", "FactorZ")]
-    matrix = map_matrix(*(float(n or 0.0) for n in numbers), _way(way), units.length, map_unit, k)
+    e, n, h = (float(number or 0.0) for number in numbers)
+    matrix = map_matrix((e, n, h), _way(way), units.length, map_unit, k)
     matrix[:3, :3] = matrix[:3, :3] @ np.diag(factors)
     _set(model, matrix, into)
 
@@ -146,7 +147,7 @@ def _apply_rigid(operation: Entity, units: ProjectUnits, map_unit: float, into: 
         into.checks.append(("map-conversion-unread", "it is given in degrees; model coordinates were kept"))
         return
     numbers = (float(first.wrappedValue), float(second.wrappedValue), float(operation.Height or 0.0))
-    into.matrix = map_matrix(*numbers, (1.0, 0.0), units.length, map_unit, 1.0)
+    into.matrix = map_matrix(numbers, (1.0, 0.0), units.length, map_unit, 1.0)
     into.given = True
 
 
@@ -166,9 +167,9 @@ def _apply_property_set(model: Any, units: ProjectUnits, into: Georeference) -> 
     scale = found.get("Scale")
     k = _grid_factor(None if scale is None else float(scale), units, map_unit, unit.lower(), into)
     way = _way((found.get("XAxisAbscissa"), found.get("XAxisOrdinate")))
-    numbers = (float(found.get(n) or 0.0) for n in ("Eastings", "Northings", "OrthogonalHeight"))
+    e, n, h = (float(found.get(name) or 0.0) for name in ("Eastings", "Northings", "OrthogonalHeight"))
     into.crs = str(found["Name"]) if found.get("Name") else None
-    _set(model, map_matrix(*numbers, way, units.length, map_unit, k), into)
+    _set(model, map_matrix((e, n, h), way, units.length, map_unit, k), into)
 
 
 def _set(model: Any, matrix: Floats, into: Georeference) -> None:

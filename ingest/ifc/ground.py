@@ -5,11 +5,11 @@ from __future__ import annotations
 import numpy as np
 from numpy.typing import NDArray
 
+from ingest.ifc.by_shape import any_parts
 from ingest.ifc.elements import Element, NoPart, SectionTable
 from ingest.ifc.meshes import mesh_parts
 from ingest.ifc.plan import prism
 from ingest.ifc.shapes import Line
-from ingest.ifc.walls import any_parts
 from ingest.model import Borehole, Layer, Part
 
 Floats = NDArray[np.float64]

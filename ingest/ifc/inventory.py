@@ -12,12 +12,12 @@ from ingest.ifc.classes import COUNTED_OUT, WHOLE_FROM_PARTS, Classes, Group
 from ingest.ifc.curves import CurveReader
 from ingest.ifc.elements import Element
 from ingest.ifc.frames import FrameTable
+from ingest.ifc.items import ItemReader
 from ingest.ifc.loads import items_of_actions, load_tags
 from ingest.ifc.placement import PlacementTable
 from ingest.ifc.properties import PropertyTable
 from ingest.ifc.relations import MaterialUse, Relations
 from ingest.ifc.representations import choose
-from ingest.ifc.items import ItemReader
 from ingest.ifc.units import read_units
 from ingest.ifc.unreadable import UNREADABLE
 from ingest.trail import Source
@@ -212,7 +212,7 @@ class Inventory:
         layers = self.relations.layers
         shape = entity.get_argument(REPRESENTATION)
         for one in () if shape is None else shape.get_argument(2):
-            for candidate in (one, *one.get_argument(3)):
+            for candidate in (one, *(one.get_argument(3) or ())):
                 name = layers.get(candidate.id())
                 if name:
                     return name
@@ -223,6 +223,10 @@ class Inventory:
         said = []
         if self.doubles:
             said.append(f"{self.doubles} GlobalIds are used twice; the later ones are named with their instance number")
+        if self.placements.fallbacks:
+            said.append(
+                f"{self.placements.fallbacks} placements along an alignment were read from their fallback position"
+            )
         if self.relations.unread:
             said.append(f"{self.relations.unread} relations or materials are damaged and were left out")
         if self.properties.unread:

@@ -2,6 +2,7 @@
 
 from __future__ import annotations
 
+from collections.abc import Callable
 from dataclasses import replace
 from math import sqrt
 from typing import Any, TypeAlias
@@ -24,7 +25,7 @@ from ingest.ifc.facets import MESHES, outer_ring
 from ingest.ifc.frames import FrameTable, triple
 from ingest.ifc.operators import OperatorTable
 from ingest.ifc.profiles import Profile, ProfileReader
-from ingest.ifc.shapes import Described, Extrusion, HalfSpace, Line, make_line, noted
+from ingest.ifc.shapes import Described, Extrusion, HalfSpace, Line, Shape, make_line, noted
 from ingest.ifc.sweeps import read_disk, read_revolved, read_sectioned, read_swept_area
 
 Entity: TypeAlias = Any
@@ -198,7 +199,7 @@ class ItemReader:
         return ((Line(np.array([at], float), text=str(item.Literal or "")), 0),)
 
 
-_SWEEPS = {
+_SWEEPS: dict[str, Callable[[ItemReader, Entity], Shape]] = {
     "IfcSweptDiskSolid": read_disk,
     "IfcSweptDiskSolidPolygonal": read_disk,
     "IfcFixedReferenceSweptAreaSolid": read_swept_area,
@@ -207,7 +208,7 @@ _SWEEPS = {
     "IfcSectionedSolidHorizontal": read_sectioned,
     "IfcRevolvedAreaSolid": read_revolved,
 }
-_READERS = {
+_READERS: dict[str, Callable[[ItemReader, Entity, int], Described]] = {
     "IfcExtrudedAreaSolidTapered": ItemReader._tapered,
     "IfcCsgSolid": ItemReader._csg,
     "IfcBlock": ItemReader._block,

@@ -5,10 +5,12 @@ from __future__ import annotations
 from collections.abc import Callable
 
 from ingest.ifc.bars import bar_parts, line_parts
+from ingest.ifc.by_shape import any_parts
 from ingest.ifc.elements import Element, NoPart, SectionTable
 from ingest.ifc.ground import ground_parts
 from ingest.ifc.loads import load_part
-from ingest.ifc.walls import any_parts, plate_parts, wall_parts
+from ingest.ifc.plates import plate_parts
+from ingest.ifc.walls import wall_parts
 from ingest.model import Part
 
 Maker = Callable[[Element, SectionTable], tuple[Part, ...]]

@@ -26,6 +26,8 @@ class PlacementTable:
         self._frame_rows: list[int] = [NO_FRAME]
         self.unread: dict[int, str] = {}
         """Rows whose own placement could not be read, and why."""
+        self.fallbacks = 0
+        """Placements along an alignment that were taken from their Cartesian fallback."""
 
     def row(self, placement: Entity | None) -> int:
         """Row of an IfcObjectPlacement; row 0, the world, for None. Walks up the chain once per placement."""
@@ -73,6 +75,7 @@ class PlacementTable:
         spare = getattr(placement, "CartesianPosition", None)
         if spare is None:
             raise ValueError(f"{kind} without a Cartesian position")
+        self.fallbacks += 1
         return self._frames.append(spare), parent
 
     def solve(self) -> tuple[Floats, NDArray[np.bool_]]:

@@ -4,11 +4,12 @@ from __future__ import annotations
 
 from dataclasses import dataclass
 from math import hypot, sqrt
-from typing import Any
+from typing import Any, TypeAlias
 
 import numpy as np
 import shapely
 from numpy.typing import NDArray
+from shapely import MultiPolygon, Polygon
 
 from ingest.ifc.bodies import Placed
 from ingest.ifc.facets import Facets
@@ -16,7 +17,8 @@ from ingest.ifc.frames import Triple
 from ingest.ifc.profiles import Profile, Ring, holes_of
 from ingest.ifc.shapes import Extrusion, HalfSpace, Line, Sweep
 
-Floats = NDArray[np.float64]
+Floats: TypeAlias = NDArray[np.float64]
+Area: TypeAlias = Polygon | MultiPolygon
 
 UPRIGHT = 0.0087
 """Sine of half a degree: bodies leaning less count as upright (judgement; bored piles may lean 0.02 by EN 1536)."""
@@ -28,10 +30,18 @@ SNAP = 1e-7
 class Prism:
     """A body as an upright prism: plan area between two levels, m. `notes` say what that leaves out."""
 
-    area: shapely.Geometry
+    area: Area
     bottom: float
     top: float
     notes: tuple[str, ...] = ()
+
+
+def areal(geometry: object) -> Area:
+    """The polygons of a geometry; lines and points that set operations leave behind are dropped."""
+    if isinstance(geometry, Polygon | MultiPolygon):
+        return geometry
+    pieces = [piece for piece in getattr(geometry, "geoms", ()) if isinstance(piece, Polygon)]
+    return MultiPolygon(pieces)
 
 
 def is_upright(vector: Triple) -> bool:
@@ -87,19 +97,19 @@ def _lying(body: Placed) -> Prism:
     hull = shapely.convex_hull(shapely.multipoints(both[:, :2]))
     level = abs(body.vector[2]) <= UPRIGHT * sqrt(sum(v * v for v in body.vector))
     notes = () if level else ("inclined; outline is its hull on plan",)
-    return Prism(hull, float(both[:, 2].min()), float(both[:, 2].max()), notes)
+    return Prism(areal(hull), float(both[:, 2].min()), float(both[:, 2].max()), notes)
 
 
-def _area(rings: list[list[Any]], holes: list[list[Any]]) -> shapely.Geometry:
-    outer = shapely.union_all([_polygon(ring) for ring in rings])
+def _area(rings: list[list[Any]], holes: list[list[Any]]) -> Area:
+    outer = areal(shapely.union_all([_polygon(ring) for ring in rings]))
     if holes:
-        outer = shapely.difference(outer, shapely.union_all([_polygon(ring) for ring in holes]))
+        outer = areal(shapely.difference(outer, shapely.union_all([_polygon(ring) for ring in holes])))
     return outer
 
 
-def _polygon(ring: list[Any]) -> shapely.Geometry:
-    made = shapely.Polygon(ring)
-    return made if made.is_valid else shapely.make_valid(made, method="structure", keep_collapsed=False)
+def _polygon(ring: list[Any]) -> Area:
+    made = Polygon(ring)
+    return made if made.is_valid else areal(shapely.make_valid(made, method="structure", keep_collapsed=False))
 
 
 def _cut_prism(body: Placed, shape: Extrusion, whole: Prism) -> Prism:
@@ -121,15 +131,15 @@ def _cut_prism(body: Placed, shape: Extrusion, whole: Prism) -> Prism:
 
 
 def _cut_by_plane(
-    body: Placed, cut: HalfSpace, area: shapely.Geometry, bottom: float, top: float
-) -> tuple[shapely.Geometry, float, float, str]:
+    body: Placed, cut: HalfSpace, area: Area, bottom: float, top: float
+) -> tuple[Area, float, float, str]:
     frame = body.base @ body.frames[cut.frame]
     point, normal = frame[:3, 3], frame[:3, 2] / np.linalg.norm(frame[:3, 2])
     keep = normal if cut.keep_above else -normal
     reach = _cut_reach(body, cut, area)
     if abs(keep[2]) < 1e-6:
         gone = shapely.intersection(half_plane(point[:2], -keep[:2], area), reach)
-        left = shapely.difference(area, gone)
+        left = areal(shapely.difference(area, gone))
         return (left, bottom, top, "") if left.area > 0 else (area, bottom, top, "cut away whole; uncut body kept")
     if not shapely.covers(shapely.buffer(reach, 1e-6), area):
         return area, bottom, top, "cut over a part of its length"
@@ -144,9 +154,9 @@ def _cut_by_plane(
     return area, bottom, top, "cut away whole; uncut body kept"
 
 
-def _cut_reach(body: Placed, cut: HalfSpace, area: shapely.Geometry) -> shapely.Geometry:
+def _cut_reach(body: Placed, cut: HalfSpace, area: Area) -> Area:
     if cut.boundary is None:
-        return shapely.buffer(shapely.box(*shapely.bounds(area)), 1.0)
+        return areal(shapely.buffer(shapely.box(*area.bounds), 1.0))
     frame = body.base @ body.frames[cut.boundary_frame]
     ring = np.array([[u, v, 0.0] for u, v in cut.boundary]) @ frame[:3, :3].T + frame[:3, 3]
     if abs(frame[2, 2]) < 0.999 * float(np.linalg.norm(frame[:3, 2])):
@@ -154,23 +164,21 @@ def _cut_reach(body: Placed, cut: HalfSpace, area: shapely.Geometry) -> shapely.
     return _polygon(ring[:, :2].tolist())
 
 
-def half_plane(point: Floats, way: Floats, around: shapely.Geometry) -> shapely.Geometry:
+def half_plane(point: Floats, way: Floats, around: Area) -> Polygon:
     """The part of a large square about `around` that lies on the side of `way` from `point`."""
-    x0, y0, x1, y1 = shapely.bounds(around)
+    x0, y0, x1, y1 = around.bounds
     reach = 2 * (hypot(x1 - x0, y1 - y0) + hypot(point[0] - x0, point[1] - y0)) + 1.0
     along = way / np.hypot(*way) * reach
     side = np.array([-along[1], along[0]])
-    return shapely.Polygon([point + side, point - side, point - side + along, point + side + along])
+    return Polygon([point + side, point - side, point - side + along, point + side + along])
 
 
-def _cut_by_body(
-    body: Placed, cut: Extrusion, area: shapely.Geometry, bottom: float, top: float
-) -> tuple[shapely.Geometry, str]:
+def _cut_by_body(body: Placed, cut: Extrusion, area: Area, bottom: float, top: float) -> tuple[Area, str]:
     other = place_cutter(body, cut)
     gone = prism(other)
     if gone.bottom > bottom + 1e-3 or gone.top < top - 1e-3:
         return area, "a pocket cut out of it was left out"
-    left = shapely.difference(area, gone.area)
+    left = areal(shapely.difference(area, gone.area))
     return (left, "") if left.area > 0 else (area, "cut away whole; uncut body kept")
 
 
@@ -183,25 +191,38 @@ def place_cutter(body: Placed, cut: Extrusion) -> Placed:
     return Placed(cut, origin, x, y, along, body.base, body.frames)  # type: ignore[arg-type]
 
 
+def profile_upright(body: Placed, shape: Sweep) -> Floats:
+    """Corners of a swept profile as (n, 2): metres to the left of the line and metres above it."""
+    ring = np.array([p for one in shape.profile.outlines for p in one]) * float(np.linalg.norm(body.base[:3, 0]))
+    if shape.reference is None or abs((body.base[:3, :3] @ shape.reference)[2]) < 0.7 * np.linalg.norm(
+        body.base[:3, :3] @ shape.reference
+    ):
+        return np.asarray(ring)
+    up = 1.0 if (body.base[:3, :3] @ shape.reference)[2] > 0 else -1.0
+    return np.column_stack([-up * ring[:, 1], up * ring[:, 0]])
+
+
 def _sweep_prism(body: Placed, shape: Sweep) -> Prism:
     points = body.points()
-    scale = float(np.linalg.norm(body.base[:3, 0]))
-    ring = np.array(shape.profile.outlines[0]) * scale
-    half, deep = float(np.abs(ring[:, 0]).max()), float(np.abs(ring[:, 1]).max())
-    line = (
-        shapely.LineString(points[:, :2])
-        if np.ptp(points[:, :2], axis=0).max() > SNAP
-        else shapely.Point(points[0, :2])
-    )
-    area = shapely.buffer(line, half, cap_style="flat" if line.geom_type == "LineString" else "round")
-    return Prism(area, float(points[:, 2].min()) - deep, float(points[:, 2].max()) + deep, shape.notes)
+    corners = profile_upright(body, shape)
+    low, high = corners.min(axis=0), corners.max(axis=0)
+    if np.ptp(points[:, :2], axis=0).max() <= SNAP:
+        reach = float(np.abs(corners).max())
+        area = areal(shapely.buffer(shapely.Point(points[0, :2]), reach))
+        return Prism(area, float(points[:, 2].min()), float(points[:, 2].max()), shape.notes)
+    line: shapely.Geometry = shapely.LineString(points[:, :2])
+    middle = float(low[0] + high[0]) / 2
+    if abs(middle) > SNAP:
+        line = shapely.offset_curve(line, middle, join_style="mitre")
+    area = areal(shapely.buffer(line, float(high[0] - low[0]) / 2, cap_style="flat", join_style="mitre"))
+    return Prism(area, float(points[:, 2].min() + low[1]), float(points[:, 2].max() + high[1]), shape.notes)
 
 
 def mesh_prism(points: Floats, mesh: Facets) -> Prism:
     """The shadow of a mesh on plan: the union of its faces, exact for prisms that stand upright."""
     faces = [points[list(face)][:, :2] for face in mesh.faces]
-    polygons = [shapely.Polygon(face) for face in faces if len(face) >= 3]
-    area = shapely.union_all([p if p.is_valid else shapely.convex_hull(p) for p in polygons if p.area > SNAP])
+    polygons = [Polygon(face) for face in faces if len(face) >= 3]
+    area = areal(shapely.union_all([p if p.is_valid else p.convex_hull for p in polygons if p.area > SNAP]))
     used = sorted({i for face in mesh.faces for i in face})
     if not used or area.area <= 0:
         raise ValueError("a mesh without plan area")
@@ -213,7 +234,7 @@ def join_prisms(prisms: list[Prism]) -> Prism:
     """Several prisms as one: the union of their areas between the lowest and the highest level."""
     if len(prisms) == 1:
         return prisms[0]
-    area = shapely.union_all([p.area for p in prisms])
+    area = areal(shapely.union_all([p.area for p in prisms]))
     notes = tuple(dict.fromkeys(note for p in prisms for note in p.notes))
     return Prism(area, min(p.bottom for p in prisms), max(p.top for p in prisms), notes)
 

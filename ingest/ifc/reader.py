@@ -20,8 +20,8 @@ from ingest.ifc.ground import read_borehole
 from ingest.ifc.inventory import Inventory, Product
 from ingest.ifc.makers import make_parts
 from ingest.ifc.opening import open_model
-from ingest.ifc.unreadable import UNREADABLE
 from ingest.ifc.representations import NO_GEOMETRY
+from ingest.ifc.unreadable import UNREADABLE
 from ingest.model import Borehole, FileParts, Part
 
 Floats: TypeAlias = NDArray[np.float64]

@@ -6,10 +6,10 @@ from dataclasses import dataclass
 from typing import Any, TypeAlias
 
 from ingest.ifc.attributes import IDENTIFIER, REPRESENTATION_TYPE, REPRESENTATIONS
-from ingest.ifc.unreadable import UNREADABLE
 from ingest.ifc.classes import Group
 from ingest.ifc.items import ItemReader
 from ingest.ifc.shapes import Described, Line
+from ingest.ifc.unreadable import UNREADABLE
 
 Entity: TypeAlias = Any
 

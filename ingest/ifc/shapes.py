@@ -41,11 +41,16 @@ class Extrusion:
 
 @dataclass(slots=True)
 class Sweep:
-    """A profile or a disc moved along a curve (n, 3)."""
+    """A profile or a disc moved along a curve (n, 3).
+
+    `reference` is the direction the profile's x axis keeps to, in the coordinates of the item; None when the
+    profile's y axis stays upright.
+    """
 
     points: Floats
     profile: Profile
     notes: tuple[str, ...] = ()
+    reference: Triple | None = None
 
 
 @dataclass(slots=True)

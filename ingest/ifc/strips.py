@@ -4,13 +4,17 @@ from __future__ import annotations
 
 from dataclasses import dataclass
 from math import acos, atan2, ceil, hypot, pi
+from typing import TypeAlias
 
 import numpy as np
 import shapely
 from numpy.typing import NDArray
+from shapely import MultiPolygon, Polygon
 
-Floats = NDArray[np.float64]
-Points = tuple[tuple[float, float], ...]
+from ingest.ifc.plan import Area, areal
+
+Floats: TypeAlias = NDArray[np.float64]
+Points: TypeAlias = tuple[tuple[float, float], ...]
 
 FITS = 0.05
 """Largest share of a strip's area by which the outline may differ (judgement)."""
@@ -30,7 +34,7 @@ class Strip:
     closed: bool = False
 
 
-def find_strip(area: shapely.Geometry, hint: Floats | None) -> Strip | None:
+def find_strip(area: Area, hint: Floats | None) -> Strip | None:
     """Find the centre line and thickness of a wall from its outline on plan.
 
     Args:
@@ -40,11 +44,11 @@ def find_strip(area: shapely.Geometry, hint: Floats | None) -> Strip | None:
     Returns:
         The best strip, or None when the outline is no strip.
     """
-    if area.geom_type == "MultiPolygon":
+    if isinstance(area, MultiPolygon):
         area = _one_piece(area)
-    if area.geom_type != "Polygon":
+    if not isinstance(area, Polygon) or area.is_empty:
         return None
-    outer = shapely.get_coordinates(shapely.get_exterior_ring(area))[:-1]
+    outer = shapely.get_coordinates(area.exterior)[:-1]
     ring = _ring_strip(area)
     if ring is not None:
         return ring
@@ -56,15 +60,13 @@ def find_strip(area: shapely.Geometry, hint: Floats | None) -> Strip | None:
     return _straight_strip(area, outer, way, "along its axis" if hint is not None else "along its longer side")
 
 
-def _one_piece(area: shapely.Geometry) -> shapely.Geometry:
-    """Bridge gaps up to 30 mm between the leaves of a wall; else the largest piece stands alone."""
+def _one_piece(area: MultiPolygon) -> Area:
+    """Bridge gaps up to 30 mm between the leaves of a wall; leaves farther apart are taken as one rectangle."""
     joined = shapely.buffer(shapely.buffer(area, 0.015, join_style="mitre"), -0.015, join_style="mitre")
-    if joined.geom_type == "Polygon":
-        return joined
-    return shapely.minimum_rotated_rectangle(area)
+    return joined if isinstance(joined, Polygon) else areal(shapely.minimum_rotated_rectangle(area))
 
 
-def _way(area: shapely.Geometry, hint: Floats | None) -> Floats:
+def _way(area: Area, hint: Floats | None) -> Floats:
     if hint is not None and len(hint) == 2 and np.ptp(hint, axis=0).max() > 1e-6:
         way = hint[1] - hint[0]
         return np.asarray(way / np.hypot(*way))
@@ -74,7 +76,7 @@ def _way(area: shapely.Geometry, hint: Floats | None) -> Floats:
     return np.asarray(longer / np.hypot(*longer))
 
 
-def _straight_strip(area: shapely.Geometry, outer: Floats, way: Floats, how: str) -> Strip | None:
+def _straight_strip(area: Area, outer: Floats, way: Floats, how: str) -> Strip | None:
     normal = np.array([-way[1], way[0]])
     along, across = outer @ way, outer @ normal
     thickness = float(np.ptp(across))
@@ -93,20 +95,20 @@ def _straight_strip(area: shapely.Geometry, outer: Floats, way: Floats, how: str
     return Strip(_tuple(np.array(ends)), thickness, misfit, how)
 
 
-def _ring_strip(area: shapely.Geometry) -> Strip | None:
+def _ring_strip(area: Polygon) -> Strip | None:
     """A wall that closes on itself: an outline with one hole that runs parallel to it."""
-    holes = shapely.get_num_interior_rings(area)
-    if holes != 1:
+    if len(area.interiors) != 1:
         return None
-    outer = shapely.Polygon(shapely.get_exterior_ring(area))
-    inner = shapely.Polygon(shapely.get_interior_ring(area, 0))
+    outer, inner = Polygon(area.exterior), Polygon(area.interiors[0])
     thickness = 2 * area.area / (outer.length + inner.length)
-    shrunk = shapely.buffer(outer, -thickness, join_style="mitre")
-    misfit = shapely.symmetric_difference(shrunk, inner).area / area.area
+    shrunk = areal(shapely.buffer(outer, -thickness, join_style="mitre"))
+    misfit = areal(shapely.symmetric_difference(shrunk, inner)).area / area.area
     if misfit > FITS or inner.area < 0.25 * outer.area:
         return None
-    middle = shapely.buffer(outer, -thickness / 2, join_style="mitre")
-    line = shapely.get_coordinates(shapely.get_exterior_ring(middle))[:-1]
+    middle = areal(shapely.buffer(outer, -thickness / 2, join_style="mitre"))
+    if not isinstance(middle, Polygon):
+        return None
+    line = shapely.get_coordinates(middle.exterior)[:-1]
     return Strip(_tuple(line), thickness, misfit, "between its outer and inner outline", closed=True)
 
 
@@ -133,7 +135,7 @@ def _arc_strip(outer: Floats, hint: Floats, area: float) -> Strip | None:
     return Strip(_tuple(line if forward else line[::-1]), high - low, abs(area / strip - 1), "along its curved axis")
 
 
-def _bent_strip(area: shapely.Geometry, hint: Floats) -> Strip | None:
+def _bent_strip(area: Area, hint: Floats) -> Strip | None:
     """A wall along a bent line: the line is moved sideways into the middle of the outline."""
     line = shapely.LineString(hint)
     thickness = area.area / line.length
@@ -143,8 +145,8 @@ def _bent_strip(area: shapely.Geometry, hint: Floats) -> Strip | None:
     signed = np.where(shapely.intersects_xy(left, corners[:, 0], corners[:, 1]), distances, -distances)
     offset = (signed.min() + signed.max()) / 2
     thickness = float(np.ptp(signed))
-    moved = line if abs(offset) < 1e-6 else shapely.offset_curve(line, offset, join_style="mitre")
-    if moved.geom_type != "LineString" or thickness <= 0:
+    moved: object = line if abs(offset) < 1e-6 else shapely.offset_curve(line, offset, join_style="mitre")
+    if not isinstance(moved, shapely.LineString) or thickness <= 0:
         return None
     misfit = abs(area.area / (thickness * moved.length) - 1)
     return Strip(_tuple(shapely.get_coordinates(moved)), thickness, misfit, "along its bent axis")

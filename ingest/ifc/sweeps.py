@@ -31,15 +31,27 @@ def read_disk(reader: ItemReader, item: Entity) -> Sweep:
 def read_swept_area(reader: ItemReader, item: Entity) -> Sweep:
     """A profile along a curve, held by a fixed direction or a surface."""
     points = _directrix(reader, item)
-    at = reader.frames.matrix(reader.frames.row(item.Position))
-    return Sweep(points @ at[:3, :3].T + at[:3, 3], reader.profiles.read(item.SweptArea))
+    frames = reader.frames
+    at = frames.matrix(frames.row(item.Position))
+    if item.is_a("IfcSurfaceCurveSweptAreaSolid"):
+        surface = item.ReferenceSurface
+        if not surface.is_a("IfcPlane"):
+            raise ValueError(f"{item.is_a()} on a {surface.is_a()} is not read")
+        way = frames.matrix(frames.row(surface.Position))[:3, 2]
+    else:
+        way = np.array(frames.direction(item.FixedReference))
+    x, y, z = (at[:3, :3] @ way).tolist()
+    profile = reader.profiles.read(item.SweptArea)
+    return Sweep(points @ at[:3, :3].T + at[:3, 3], profile, reference=(x, y, z))
 
 
 def read_sectioned(reader: ItemReader, item: Entity) -> Sweep:
     """Several profiles along a curve; the first stands for all."""
     profile = reader.profiles.read(item.CrossSections[0])
-    notes = () if len({section.id() for section in item.CrossSections}) == 1 else ("several cross-sections; the first",)
-    return Sweep(reader.curves.points(item.Directrix), profile, notes)
+    points = reader.curves.points(item.Directrix)
+    ends = [position.Location.DistanceAlong.wrappedValue for position in item.CrossSectionPositions]
+    along = np.concatenate([[0.0], np.cumsum(np.linalg.norm(np.diff(points, axis=0), axis=1))])
+    return Sweep(_between(points, along, min(ends), max(ends)), profile, ("section of its start",))
 
 
 def read_revolved(reader: ItemReader, item: Entity) -> Facets:
@@ -58,12 +70,18 @@ def _directrix(reader: ItemReader, item: Entity) -> Floats:
     last = float(len(points) - 1)
     if not item.Directrix.is_a("IfcPolyline"):
         return points
+    if (start, end) == (0.0, 1.0):  # some exporters count the whole curve from 0 to 1
+        return points
     first, stop = (float(t) if isinstance(t, float) else spare for t, spare in ((start, 0.0), (end, last)))
     if (first, stop) == (0.0, last) or not 0 <= first < stop <= last:
         return points
-    at = np.arange(len(points))
-    ends = [[np.interp(t, at, points[:, k]) for k in range(3)] for t in (first, stop)]
-    return np.vstack([ends[0], points[(at > first) & (at < stop)], ends[1]])
+    return _between(points, np.arange(len(points), dtype=float), first, stop)
+
+
+def _between(points: Floats, along: Floats, first: float, stop: float) -> Floats:
+    """The stretch of a line between two values of the measure `along` its points."""
+    ends = [[np.interp(t, along, points[:, k]) for k in range(3)] for t in (first, stop)]
+    return np.vstack([ends[0], points[(along > first) & (along < stop)], ends[1]])
 
 
 def revolve(profile: Profile, origin: Floats, axis: Floats, turn: float) -> Facets:

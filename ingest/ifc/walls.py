@@ -8,23 +8,17 @@ import numpy as np
 import shapely
 from numpy.typing import NDArray
 
-from ingest.ifc.bars import WIDEST_PILE, bar_parts, is_pile_shape, round_part
-from ingest.ifc.bodies import Placed
 from ingest.ifc.elements import Element, NoPart, SectionTable
-from ingest.ifc.facets import Facets
-from ingest.ifc.fits import fit_cylinder, mesh_volume
-from ingest.ifc.meshes import mesh_parts
-from ingest.ifc.plan import Prism, is_flat, is_upright, join_prisms, prism
+from ingest.ifc.plan import Prism, is_flat, is_upright, profile_upright
+from ingest.ifc.plates import element_prism, element_prisms, mesh_words, prism_parts
 from ingest.ifc.shapes import Extrusion, Line, Sweep
-from ingest.ifc.strips import FITS, Strip, find_strip, length_of_line
+from ingest.ifc.strips import FITS, Strip, find_strip
 from ingest.model import Part, Point3
 
 Floats = NDArray[np.float64]
 
 LOOSE_FIT = 0.35
 """Misfit above which a wall is kept as its outline and not as a strip (judgement)."""
-HALF_FULL = 0.5
-"""A mesh that fills less of the upright prism about it stays a mesh (judgement)."""
 ALIKE = 0.001
 """Layers and body agree on the thickness within this, m."""
 
@@ -40,18 +34,68 @@ def wall_parts(element: Element, sections: SectionTable) -> tuple[Part, ...]:
     quick = _plain_wall(element)
     if quick is not None:
         return (quick,)
+    swept = _swept_wall(element)
+    if swept is not None:
+        return (swept,)
     whole = element_prism(element)
-    hint = _hint(element)
+    hint = hint_of(element)
     strip = find_strip(whole.area, hint)
     if strip is None or strip.misfit > LOOSE_FIT or (element.cls == "IfcPlate" and _is_plate(strip, whole)):
-        return (prism_part(element, whole, ()),)
+        return tuple(part for one in element_prisms(element) for part in prism_parts(element, one))
     said = [
         f"centre line {strip.how}",
-        *_fit_words(element, strip),
+        *_fit_words(element, strip, whole),
         _layer_words(element, strip.thickness),
         *whole.notes,
     ]
     return (_strip_part(element, strip, whole.bottom, whole.top, said),)
+
+
+def _swept_wall(element: Element) -> Part | None:
+    """A wall that is swept along one level line, for instance a parapet; several layers may share the line."""
+    sweeps = [(body, body.shape) for body in element.bodies if isinstance(body.shape, Sweep)]
+    if not sweeps or len(sweeps) < len(element.bodies):
+        return None
+    points = sweeps[0][0].points()
+    others = [body.points() for body, _ in sweeps[1:]]
+    if len(points) < 2 or float(np.ptp(points[:, 2])) > ALIKE:
+        return None
+    if any(len(at) != len(points) or not np.allclose(at, points, atol=ALIKE) for at in others):
+        return None
+    corners = np.concatenate([profile_upright(body, shape) for body, shape in sweeps])
+    low, high = corners.min(axis=0), corners.max(axis=0)
+    closed = bool(np.linalg.norm(points[0] - points[-1]) < 1e-6)
+    line = _moved(points[:, :2], float(low[0] + high[0]) / 2)
+    if line is None:
+        return None
+    z = float(points[0, 2])
+    return element.part(
+        "path",
+        [(x, y, z + float(low[1])) for x, y in (line[:-1] if closed else line).tolist()],
+        ("profile swept along a line, middle of its width", *sweeps[0][1].notes),
+        closed=closed,
+        thickness=float(high[0] - low[0]),
+        z_bottom=z + float(low[1]),
+        z_top=z + float(high[1]),
+    )
+
+
+def _moved(line: Floats, left: float) -> Floats | None:
+    """A line moved to its left, corners mitred; None when it falls apart."""
+    if abs(left) < 1e-9:
+        return line
+    closed = bool(np.linalg.norm(line[0] - line[-1]) < 1e-6)
+    if closed:
+        ring = shapely.orient_polygons(shapely.Polygon(line))
+        turned = shapely.LinearRing(line).is_ccw
+        grown = shapely.buffer(ring, -left if turned else left, join_style="mitre")
+        if grown.geom_type != "Polygon":
+            return None
+        moved = shapely.get_coordinates(shapely.get_exterior_ring(shapely.orient_polygons(grown)))
+        return np.asarray(moved if turned else moved[::-1])
+    curve = shapely.offset_curve(shapely.LineString(line), left, join_style="mitre")
+    at = shapely.get_coordinates(curve)
+    return np.asarray(at) if curve.geom_type == "LineString" and len(at) >= 2 else None
 
 
 def _is_plate(strip: Strip, whole: Prism) -> bool:
@@ -101,37 +145,14 @@ def _along_first(
     return sx >= sy
 
 
-def element_prism(element: Element) -> Prism:
-    """The upright prism round all bodies of an element.
-
-    Raises:
-        NoPart: If none of them has a plan area.
-    """
-    made = []
-    for body in element.bodies:
-        if isinstance(body.shape, Line):
-            continue
-        try:
-            made.append(prism(body))
-        except (ValueError, shapely.errors.GEOSException):
-            continue
-    if not made:
-        raise NoPart("body without plan area")
-    whole = join_prisms(made)
-    if whole.area.is_empty or whole.area.area <= 0:
-        raise NoPart("body without plan area")
-    return whole
-
-
-def _hint(element: Element) -> Floats | None:
+def hint_of(element: Element) -> Floats | None:
+    """The line the file draws along an element, on plan."""
     line = element.axis_line()
     return None if line is None else line[:, :2]
 
 
-def _fit_words(element: Element, strip: Strip) -> list[str]:
-    said = []
-    if any(isinstance(body.shape, Facets) for body in element.bodies):
-        said.append("fitted to a mesh")
+def _fit_words(element: Element, strip: Strip, whole: Prism) -> list[str]:
+    said = mesh_words(element, whole)
     if strip.misfit > FITS or said:
         said.append(f"area differs from the strip's by {strip.misfit:.1%}")
     return said
@@ -182,134 +203,5 @@ def _beside(element: Element, line: Floats, offset: float) -> Floats | None:
     side = offset if normal @ up[:2] >= 0 else -offset
     if abs(side) < 1e-9:
         return line
-    moved = shapely.offset_curve(shapely.LineString(line[:, :2]), side, join_style="mitre")
-    at = shapely.get_coordinates(moved)
-    return np.column_stack([at, np.full(len(at), line[0, 2])]) if len(at) >= 2 else None
-
-
-def plate_parts(element: Element, sections: SectionTable) -> tuple[Part, ...]:
-    """The part of a slab, raft, footing, course or cut: outline with holes between two levels."""
-    if not element.bodies:
-        return (_from_footprint(element),)
-    if len(element.bodies) == 1 and is_pile_shape(element.bodies[0]):
-        body = element.bodies[0]
-        if abs(body.vector[2]) > 2 * _diameter(body):
-            return (round_part(element, body, sections),)
-    whole = element_prism(element)
-    return (prism_part(element, _open_up(element, whole), ()),)
-
-
-def _diameter(body: Placed) -> float:
-    assert isinstance(body.shape, Extrusion)
-    return 2 * body.shape.profile.size[0] * body.scale
-
-
-def _open_up(element: Element, whole: Prism) -> Prism:
-    """Take openings that go right through out of the outline."""
-    area, notes = whole.area, list(whole.notes)
-    for opening in element.openings:
-        try:
-            gap = prism(opening)
-        except (ValueError, shapely.errors.GEOSException):
-            continue
-        if gap.bottom <= whole.bottom + ALIKE and gap.top >= whole.top - ALIKE:
-            area = shapely.difference(area, gap.area)
-        else:
-            notes.append("an opening that does not go through was left out")
-    if area.is_empty or area.area <= 0:
-        return whole
-    return Prism(area, whole.bottom, whole.top, tuple(dict.fromkeys(notes)))
-
-
-def _from_footprint(element: Element) -> Part:
-    for body in element.footprints:
-        if isinstance(body.shape, Line) and len(body.shape.points) > 3:
-            at = body.points()
-            if np.linalg.norm(at[0] - at[-1]) < 1e-6:
-                points = [(x, y, z) for x, y, z in at[:-1].tolist()]
-                return element.part("outline", points, ("its footprint only; it has no body",), closed=True)
-    raise NoPart("no geometry")
-
-
-def prism_part(element: Element, whole: Prism, said: tuple[str, ...]) -> Part:
-    """A 'prism' part: the largest piece of the plan area with its holes; smaller pieces are mentioned."""
-    pieces = [p for p in shapely.get_parts(whole.area) if p.geom_type == "Polygon"]
-    pieces.sort(key=lambda p: (-p.area, shapely.bounds(p).tolist()))
-    words = [*said, *_mesh_words(element, whole), *whole.notes]
-    if len(pieces) > 1:
-        words.append(f"largest of {len(pieces)} pieces, {pieces[0].area / whole.area.area:.0%} of the area")
-    outer = shapely.get_coordinates(shapely.get_exterior_ring(shapely.orient_polygons(pieces[0])))[:-1]
-    holes = [shapely.get_coordinates(ring)[:-1] for ring in pieces[0].interiors]
-    return element.part(
-        "prism",
-        [(x, y, whole.bottom) for x, y in outer.tolist()],
-        words or ["outline of its body on plan"],
-        closed=True,
-        holes=tuple(tuple((x, y, whole.bottom) for x, y in ring.tolist()) for ring in holes),
-        z_bottom=whole.bottom,
-        z_top=whole.top,
-    )
-
-
-def _filled(element: Element, whole: Prism) -> float:
-    """Share of the upright prism that the meshes of an element fill; 1 when it has none."""
-    meshes = [(b.points(), b.shape) for b in element.bodies if isinstance(b.shape, Facets)]
-    upright = whole.area.area * (whole.top - whole.bottom)
-    if not meshes or upright <= 0:
-        return 1.0 if not meshes else 0.0
-    return sum(mesh_volume(points, shape.faces) for points, shape in meshes) / upright
-
-
-def _mesh_words(element: Element, whole: Prism) -> list[str]:
-    if not any(isinstance(b.shape, Facets) for b in element.bodies):
-        return []
-    return [f"fitted to a mesh: its shadow on plan, an upright prism it fills to {_filled(element, whole):.0%}"]
-
-
-def any_parts(element: Element, sections: SectionTable) -> tuple[Part, ...]:
-    """The part of an element whose class says nothing: pile, wall, bar, prism or mesh by its shape alone."""
-    if not element.bodies or all(isinstance(body.shape, Line) for body in element.bodies):
-        return bar_parts(element, sections)
-    if len(element.bodies) == 1:
-        body = element.bodies[0]
-        if is_pile_shape(body) and _diameter(body) <= WIDEST_PILE:
-            return (round_part(element, body, sections),)
-        if not is_pile_shape(body) and _is_slender(body):
-            return bar_parts(element, sections)
-    try:
-        whole = element_prism(element)
-    except NoPart:
-        return _meshes_or_raise(element, "body without plan area")
-    strip = find_strip(whole.area, _hint(element))
-    if strip is not None and strip.misfit <= FITS and _is_wall(strip, whole):
-        return wall_parts(element, sections)
-    if _filled(element, whole) < HALF_FULL:
-        return _meshes_or_raise(element, "body that is no upright prism")
-    return (prism_part(element, whole, ()),)
-
-
-def _meshes_or_raise(element: Element, reason: str) -> tuple[Part, ...]:
-    made = mesh_parts(element)
-    if not made:
-        raise NoPart(reason)
-    return made
-
-
-def _is_slender(body: Placed) -> bool:
-    """A sweep, a lying extrusion three times as long as its section, or a mesh of an upright cylinder."""
-    shape = body.shape
-    if isinstance(shape, Sweep):
-        return True
-    if isinstance(shape, Facets):
-        return fit_cylinder(body.points(), shape.faces) is not None
-    assert isinstance(shape, Extrusion)
-    at = np.array([p for ring in shape.profile.outlines for p in ring])
-    across = float(np.linalg.norm(np.ptp(at, axis=0))) * body.scale
-    length = float(np.linalg.norm(body.vector))
-    return length > (6 if is_upright(body.vector) else 3) * across
-
-
-def _is_wall(strip: Strip, whole: Prism) -> bool:
-    """A body at least twice as high as thick and at least three times as long as thick."""
-    height, length = whole.top - whole.bottom, length_of_line(strip.line)
-    return height >= 2 * strip.thickness and length >= 3 * strip.thickness
+    at = _moved(line[:, :2], side)
+    return None if at is None else np.column_stack([at, np.full(len(at), line[0, 2])])

@@ -6,7 +6,7 @@ from collections.abc import Iterator
 from pathlib import Path
 
 import pytest
-from builders_export import Job, first_pit_job, showcase_job
+from builders_export import Job, empty_job, first_pit_job, showcase_job
 
 from export.report.page import report_page
 
@@ -40,7 +40,7 @@ def browser() -> Iterator[object]:
 @pytest.fixture(scope="module")
 def files(tmp_path_factory: pytest.TempPathFactory) -> dict[str, Path]:
     folder = tmp_path_factory.mktemp("reports")
-    made: dict[str, Job] = {"first": first_pit_job(), "showcase": showcase_job()}
+    made: dict[str, Job] = {"first": first_pit_job(), "showcase": showcase_job(), "empty": empty_job()}
     for name, job in made.items():
         text = report_page(job.proposal, job.definitions, job.site, "ab" * 32)
         (folder / f"{name}.html").write_text(text, encoding="utf-8")
@@ -68,12 +68,13 @@ class Opened:
         self.context.close()
 
 
-@pytest.mark.parametrize("name", ["first", "showcase"])
+@pytest.mark.parametrize("name", ["first", "showcase", "empty"])
 @pytest.mark.parametrize("width", [1440, 390])
 @pytest.mark.parametrize("scheme", ["light", "dark"])
 def test_it_opens_from_disk_offline_without_error_or_request(browser, files, name, width, scheme) -> None:
     with Opened(browser, files[name], width, color_scheme=scheme) as opened:
-        opened.page.locator("figure.spatial").first.scroll_into_view_if_needed()
+        for figure in opened.page.locator("figure.spatial").all():
+            figure.scroll_into_view_if_needed()
         opened.page.wait_for_timeout(200)
         assert opened.said == []
         assert [url for url in opened.asked if not url.startswith(("file:", "data:"))] == []

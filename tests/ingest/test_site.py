@@ -165,7 +165,7 @@ def test_a_starting_brief_reads_back_and_its_lines_do_too_when_taken_up(tmp_path
     (tmp_path / "taken.toml").write_text(line.replace("nan", "-1.5"))
     taken = read_site([tmp_path / "pit.dxf"], tmp_path / "taken.toml")
     assert {support.head[2] for support in taken.supports} == {-1.5}
-    with pytest.raises(FileExistsError):
+    with pytest.raises(InputError, match="there already"):
         write_starting_brief(site, path)
 
 
@@ -383,3 +383,34 @@ def test_the_order_of_the_input_does_not_matter(order: list[int]) -> None:
     ]
     straight, mixed = site_of([parts_of(*parts)], Brief()), site_of([parts_of(*(parts[n] for n in order))], Brief())
     assert straight == mixed
+
+
+def test_members_that_differ_in_their_number_only_are_asked_about_once() -> None:
+    bars = [
+        part(
+            "bar",
+            (5.0 * n, 0.0, -1.5),
+            (5.0 * n, 20.0, -1.5),
+            cls="IfcMember",
+            name=f"Strut {n}",
+            item=str(n),
+            file="m.ifc",
+        )
+        for n in range(6)
+    ]
+    site = site_of([parts_of(*bars, file="m.ifc")], Brief())
+    assert {support.group for support in site.supports} == {"Strut *"}
+    (question,) = [q for q in site.questions if "section of the supports" in q.about]
+    assert 'match = { name = "Strut *" }' in question.brief_line
+
+
+def test_what_the_brief_names_and_the_files_do_not_have_is_a_finding(tmp_path: Path) -> None:
+    text = (
+        "[[supports]]\nmatch = { layer = 'STRUT' }\n[[stages]]\nname = 'dig'\ninstall = ['SHEET PILE']\n"
+        "[[strata]]\nname = 'clay'\nfrom_boreholes = 'LC'\n"
+    )
+    site = site_of([parts_of(replace(WALL, layer="STRUTS"))], brief_of(tmp_path, text))
+    found = {finding.code: finding for finding in site.findings}
+    assert set(found) == {"brief-match", "stage-member", "stratum-code"}
+    assert 'layer "STRUTS"' in found["brief-match"].text
+    assert found["brief-match"].where == "brief.toml, line 2, supports[1].match"

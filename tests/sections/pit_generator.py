@@ -36,6 +36,8 @@ def make_runs(r, pit, kinds):
         ends = np.cumsum([bit.length for bit in pit.bits])[:-1].tolist()
         at_corners = [s for s in ends if 6 < s < total - 6] if r.random() < 0.5 else []
         anywhere = sorted(total * (k + r.uniform(0.3, 0.7)) / len(kinds) for k in range(1, len(kinds)))
+        anywhere = [min(ends + [0.0], key=lambda e: abs(e - s)) if min(abs(e - s) for e in ends + [0.0]) < 2 else s
+                    for s in anywhere]  # fmt: skip
         some = sorted(r.sample(at_corners, min(len(kinds) - 1, len(at_corners))))
         cuts += some if len(some) == len(kinds) - 1 and min(np.diff([0.0, *some, total])) > 6 else anywhere
     pit.runs = []

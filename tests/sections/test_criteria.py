@@ -20,7 +20,7 @@ from builders_ratios import (
     struts_along,
 )
 
-from ingest.model import OUTPUTS, Borehole, Layer, Limits, Load, Material, Site, Stratum
+from ingest.model import OUTPUTS, Borehole, Layer, Limits, Load, Material, Receptor, Site, Stratum
 from sections.criteria import CRITERIA, RING_CRITERIA
 from sections.criteria.corner_class import corner_class
 from sections.criteria.corner_shape import corner_shape
@@ -39,6 +39,7 @@ from sections.criteria.wall_change import wall_change
 from sections.criteria.water import water_gradient
 from sections.loads import area_ratios
 from sections.model import Circle, CriterionResult, FoundPit, Run, Step
+from sections.severity import find_severity, severity_at
 
 LIMITS = Limits()
 W, EXC, RET, FORCE = OUTPUTS[:4]
@@ -729,3 +730,28 @@ def test_the_corners_of_a_polygon_may_throw_the_thrust_out_of_the_wall(
     expect = {8: 0.5283755593, 12: 0.2311678471}.get(sides)
     if expect:
         assert result.inputs["eccentricity"][0] == pytest.approx(expect, rel=1e-9)
+
+
+# --- severity at the stations ----------------------------------------------------------------------------------------
+
+
+def test_the_vector_of_a_clay_pit_is_that_of_its_formulas() -> None:
+    # EI 1408000, h 2.5: 3674.29 by water and 1897.09 by soil (MV1); H 10, B 30 wide, su 90, gamma 19, H/B < 1: Terzaghi
+    # with B' = 30/sqrt 2: 5.7 x 90/(10 (19 - 90/21.213)) = 3.4765; receptor 8 m behind the south wall
+    site, found = clay_pit()
+    site = replace(site, receptors=(Receptor(id="R", kind="building", points=((20.0, -8.0),)),))
+    vector = severity_at(find_severity(site, found), spot(found, 20.0))
+    assert vector["system_stiffness_by_water"] == pytest.approx(3674.291539)
+    assert vector["system_stiffness_by_soil"] == pytest.approx(1897.094737)
+    assert vector["basal_safety"] == pytest.approx(5.7 * 90.0 / (10.0 * (19.0 - 90.0 * np.sqrt(2.0) / 30.0)))
+    assert vector["excavated_depth"] == 10.0
+    assert vector["surcharge"] == 0.0
+    assert vector["receptor_distance_over_depth"] == pytest.approx(0.8)
+    assert vector["stability_number"] == pytest.approx(19.0 * 10.0 / 90.0)
+
+
+def test_what_is_not_known_of_severity_is_none() -> None:
+    vector = severity_at(find_severity(*polygon_pit()), 0)
+    assert vector["excavated_depth"] == 6.0
+    unknown = {"basal_safety", "system_stiffness_by_water", "plane_strain_ratio", "receptor_distance_over_depth"}
+    assert {name for name, value in vector.items() if value is None} >= unknown

@@ -11,7 +11,7 @@ from scipy.interpolate import LinearNDInterpolator
 from scipy.spatial import ConvexHull, Delaunay
 
 from ingest.model import Borehole, Layer, Stratum
-from sections.ground import borehole_tops, find_bedding, layers_along, nearest_borehole, nearest_hole, water_along
+from sections.ground import borehole_tops, find_bedding, layers_along, nearest_borehole, water_along
 from sections.tin import level_at, make_surface
 
 CODES = (
@@ -159,5 +159,4 @@ def test_how_far_the_nearest_borehole_is():
     holes = (hole("B1", 0.0, 0.0, ("MG", 0.0), -20.0), hole("B2", 40.0, 0.0, ("MG", 0.0), -20.0))
     site = site_of(boreholes=holes)
     assert nearest_borehole(site, [[3.0, 4.0], [40.0, 9.0]]).tolist() == [5.0, 9.0]
-    assert nearest_hole(site, [[3.0, 4.0], [40.0, 9.0]]).tolist() == [0, 1]
     assert np.isinf(nearest_borehole(site_of(), [[0.0, 0.0]])).all()

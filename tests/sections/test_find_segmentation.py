@@ -10,7 +10,7 @@ import ruptures
 from hypothesis import given
 from hypothesis import strategies as st
 
-from sections.segmentation import alike_stretches, group_alike, segment, zone_penalty
+from sections.segmentation import alike_stretches, group_alike, segment
 
 STEPS = np.array([1.0, 1, 1, 1, 5, 5, 5, 5, 2, 2])
 NOISY = np.array([10, 10.2, 9.9, 10.1, 12, 12.1, 11.9, 12, 12.05, 8, 8.1, 7.9])
@@ -80,7 +80,6 @@ def test_a_step_pays_for_itself_exactly_at_the_stated_penalty():
     # a step of D = 2 between 6 m and 6 m lowers the cost by D^2 L1 L2 / (L1 + L2) = 12 = 2^2 x 6 / 2
     series = np.array([0.0, 2.0])
     weights = np.array([6.0, 6.0])
-    assert zone_penalty(2.0, 6.0) == 12.0
     assert segment(series, weights, 11.99).ends.tolist() == [1, 2]
     assert segment(series, weights, 12.01).ends.tolist() == [2]
 
