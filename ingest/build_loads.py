@@ -15,8 +15,6 @@ from ingest.roles import RoleGiven
 from ingest.trail import Source
 
 UNITS = {"point": "kN", "line": "kN/m", "area": "kPa", "footing": "kPa"}
-
-
 _KINDS: dict[str, LoadKind] = {"point": "point", "line": "line", "area": "area"}
 
 
@@ -28,52 +26,53 @@ def build_loads(given: Sequence[RoleGiven], moved: Moved, notes: Notes) -> tuple
         moved: World to local, for points of the brief.
         notes: Takes missing values and refused shapes.
     """
+    drawn = (_drawn_load(item, notes) for item in given)
+    stated = (_stated_load(number, entry, moved, notes) for number, entry in enumerate(notes.brief.loads))
+    return tuple(load for load in (*drawn, *stated) if load is not None)
+
+
+def _drawn_load(item: RoleGiven, notes: Notes) -> Load | None:
+    part = item.part
+    found = find_entry(notes.brief.loads, part)
+    entry = found[1] if found else LoadTable.model_construct()
+    modelled = part.tags.get("load_kind", "")
+    kind = entry.kind or _KINDS.get(modelled) or _kind(part)
+    value = entry.value if entry.value is not None or kind != modelled else _modelled_value(part)
+    points = _load_points(part, kind)
+    if points is None:
+        notes.refuse(part, f"{kind} load without a fitting shape on plan")
+        return None
+    if value is None:
+        about = f"{label(item)}: how large is this load ({UNITS[kind]})?"
+        notes.ask(about, f'[[loads]]\n{match_line(part.layer, part.name, part.cls)}\nkind = "{kind}"\nvalue = nan')
+    return Load(
+        id="",
+        kind=kind,
+        value=value,
+        points=points,
+        level=entry.level if entry.level is not None else part.z_bottom,
+        stage=entry.stage,
+        layer=part.layer,
+        name=part.name,
+        evidence=item.evidence,
+        sources=(part.source,),
+    )
+
+
+def _stated_load(number: int, entry: LoadTable, moved: Moved, notes: Notes) -> Load | None:
     brief = notes.brief
-    loads = []
-    for item in given:
-        found = find_entry(brief.loads, item.part)
-        entry = found[1] if found else LoadTable.model_construct()
-        modelled = item.part.tags.get("load_kind", "")
-        kind = entry.kind or _KINDS.get(modelled) or _kind(item.part)
-        value = entry.value if entry.value is not None or kind != modelled else _modelled_value(item.part)
-        points = _load_points(item.part, kind)
-        if points is None:
-            notes.refuse(item.part, f"{kind} load without a fitting shape on plan")
-            continue
-        if value is None:
-            about = f"{label(item)}: how large is this load ({UNITS[kind]})?"
-            match = match_line(item.part.layer, item.part.name, item.part.cls)
-            notes.ask(about, f'[[loads]]\n{match}\nkind = "{kind}"\nvalue = nan')
-        loads.append(
-            Load(
-                id="",
-                kind=kind,
-                value=value,
-                points=points,
-                level=entry.level if entry.level is not None else item.part.z_bottom,
-                stage=entry.stage,
-                layer=item.part.layer,
-                name=item.part.name,
-                evidence=item.evidence,
-                sources=(item.part.source,),
-            )
-        )
-    for number, entry in enumerate(brief.loads):
-        if entry.points is not None and entry.kind is not None:
-            source = Source(file=brief.file, item=f"loads[{number + 1}]")
-            loads.append(
-                Load(
-                    id="",
-                    kind=entry.kind,
-                    value=entry.value,
-                    points=tuple(moved.to_local(point) for point in entry.points),
-                    level=entry.level,
-                    stage=entry.stage,
-                    evidence=Evidence(role="load", why=f"brief, {brief.place('loads', number)}", confidence=1.0),
-                    sources=(source,),
-                )
-            )
-    return tuple(loads)
+    if entry.points is None or entry.kind is None:
+        return None
+    return Load(
+        id="",
+        kind=entry.kind,
+        value=entry.value,
+        points=tuple(moved.to_local(point) for point in entry.points),
+        level=entry.level,
+        stage=entry.stage,
+        evidence=Evidence(role="load", why=f"brief, {brief.place('loads', number)}", confidence=1.0),
+        sources=(Source(file=brief.file, item=f"loads[{number + 1}]"),),
+    )
 
 
 def build_receptors(given: Sequence[RoleGiven], moved: Moved, notes: Notes) -> tuple[Receptor, ...]:

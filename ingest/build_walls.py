@@ -6,10 +6,11 @@ import math
 from collections.abc import Sequence
 
 from ingest.brief_tables import WallTable
+from ingest.errors import InputError
 from ingest.figures import centre_line, centroid, extent, outline_of, plan
 from ingest.matching import fits
 from ingest.model import BarSection, Continuity, Part, Pile, Point, WallKind, WallPiece
-from ingest.notes import Notes
+from ingest.notes import Notes, label
 from ingest.record import record
 from ingest.roles import RoleGiven
 from ingest.surroundings import upright
@@ -65,30 +66,36 @@ def given_of(item: RoleGiven, tied: Tied, notes: Notes) -> WallGiven:
     part = item.part
     entries = [e for e in notes.brief.walls if e.match is None or fits(e.match, part)]
     entries.sort(key=lambda entry: entry.match is None)
-
-    def first(name: str) -> object:
-        return next((value for entry in entries if (value := getattr(entry, name)) is not None), None)
-
-    levels = notes.brief.levels
     drawn_top, drawn_toe = _levels(part)
-    top = _first_number(first("top"), drawn_top, tied.value(item, "top"), levels.top)
-    toe = _first_number(first("toe"), drawn_toe, tied.value(item, "toe"))
-    _check_levels(part, entries, top, toe, notes)
-    material, factor, continuity = first("material"), first("EI_factor"), first("continuity")
+    stated_top = _first_number(_first(entries, "top"), notes.brief.levels.top)
+    stated_toe = _first_number(_first(entries, "toe"))
+    if stated_top is not None and stated_toe is not None and stated_toe >= stated_top:
+        raise _wrong_levels(item, entries, stated_top, stated_toe, notes)
+    top = _first_number(stated_top, drawn_top, tied.value(item, "top"))
+    toe = _first_number(stated_toe, drawn_toe, tied.value(item, "toe"))
+    if top is not None and toe is not None and toe >= top:
+        text = f"toe {toe:g} m is not below its top {top:g} m; the toe is not taken"
+        notes.see("wall-levels", "check", label(item), text, (part.source,))
+        toe = None
+    material, factor = _first(entries, "material"), _first(entries, "EI_factor")
     return WallGiven(
         material=material if isinstance(material, str) else None,
         EI_factor=factor if isinstance(factor, float) else None,
-        continuity=continuity or "unknown",  # type: ignore[arg-type]
+        continuity=_first(entries, "continuity") or "unknown",  # type: ignore[arg-type]
         top=top,
         toe=toe,
     )
 
 
-def _check_levels(part: Part, entries: Sequence[WallTable], top: float | None, toe: float | None, notes: Notes) -> None:
-    if top is not None and toe is not None and toe >= top:
-        number = notes.brief.walls.index(entries[0]) if entries else 0
-        problem = f"wall {part.layer or part.name or part.source.item}: toe {toe:g} m is not below its top {top:g} m"
-        raise notes.stop(problem, "correct top or toe; levels are in metres, upwards positive", "walls", number)
+def _first(entries: Sequence[WallTable], name: str) -> object:
+    return next((value for entry in entries if (value := getattr(entry, name)) is not None), None)
+
+
+def _wrong_levels(item: RoleGiven, entries: Sequence[WallTable], top: float, toe: float, notes: Notes) -> InputError:
+    number = next(n for n, entry in enumerate(notes.brief.walls) if entry in entries and entry.toe == toe)
+    problem = f"wall {label(item)}: toe {toe:g} m is not below its top {top:g} m"
+    remedy = "correct top or toe; levels are in metres, upwards positive"
+    return notes.stop(problem, remedy, "walls", number, "toe")
 
 
 def _capping_beam(notes: Notes) -> bool | None:

@@ -10,7 +10,7 @@ import numpy as np
 
 from ingest.brief import Brief
 from ingest.brief_lines import one_line, quoted
-from ingest.model import Borehole, FileParts, Frame, Part, Point, Point3, Registered
+from ingest.model import FileParts, Frame, Part, Point, Point3, Registered
 from ingest.notes import Notes
 from ingest.outlines import FITS, SLIPS, Placement, distance_between, find_placements, outline_points
 from ingest.roles import RoleGiven
@@ -162,19 +162,16 @@ def _move(file: FileParts, shift: Point, turn: float) -> FileParts:
         return file
     c, s = math.cos(math.radians(turn)), math.sin(math.radians(turn))
 
-    def moved(point: Point3) -> Point3:
+    def _moved(point: Point3) -> Point3:
         return c * point[0] - s * point[1] + shift[0], s * point[0] + c * point[1] + shift[1], point[2]
 
-    def of_part(part: Part) -> Part:
-        holes = tuple(tuple(moved(point) for point in hole) for hole in part.holes)
-        return replace(part, points=tuple(moved(point) for point in part.points), holes=holes)
-
-    def of_hole(hole: Borehole) -> Borehole:
-        return replace(hole, location=moved(hole.location))
+    def _part(part: Part) -> Part:
+        holes = tuple(tuple(_moved(point) for point in hole) for hole in part.holes)
+        return replace(part, points=tuple(_moved(point) for point in part.points), holes=holes)
 
     return replace(
         file,
-        parts=tuple(of_part(part) for part in file.parts),
-        setting=tuple(of_part(part) for part in file.setting),
-        boreholes=tuple(of_hole(hole) for hole in file.boreholes),
+        parts=tuple(_part(part) for part in file.parts),
+        setting=tuple(_part(part) for part in file.setting),
+        boreholes=tuple(replace(hole, location=_moved(hole.location)) for hole in file.boreholes),
     )

@@ -110,6 +110,7 @@ def _records(given: Sequence[RoleGiven], moved: Moved, ground: float | None, not
     brief = notes.brief
 
     def having(*roles: Role) -> list[RoleGiven]:
+        """Parts with one of these roles."""
         return [item for item in given if item.role in roles]
 
     materials = build_materials(notes)

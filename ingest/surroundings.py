@@ -156,6 +156,7 @@ class _Walls:
         self.empty = self._lines.empty
 
     def near(self, point: Point) -> bool:
+        """Whether a wall stands close by."""
         return self._lines.distance(point, NEAR_WALL) <= NEAR_WALL
 
     def side(self, point: Point) -> str:

@@ -40,8 +40,8 @@ def split_words(name: str) -> tuple[str, ...]:
     """Break a name into lower-case words and numbers without accents.
 
     Example:
-        >>> split_words("A-WALL_BasementØ750")
-        ('a', 'wall', 'basement', 'o', '750')
+        >>> split_words("A-WALL_Böschung D750")
+        ('a', 'wall', 'boschung', 'd', '750')
     """
     camel = re.sub(r"(?<=[a-z])(?=[A-Z])", " ", name)
     flat = unicodedata.normalize("NFKD", camel.casefold().translate(_NOT_DECOMPOSED))

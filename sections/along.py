@@ -243,19 +243,38 @@ def steps_of(found: FoundPit) -> Floats:
     return np.array(sorted(at for step in found.pit.steps for at in step.at))
 
 
-def gaps_of(found: FoundPit) -> Floats:
-    """Chainages of support heads whose tributary width is out of step with their row by more than a tenth."""
-    at: list[Floats] = []
-    for row in found.rows:
-        for place, width in ((row.head_at, row.tributary_head), (row.far_at, row.tributary_far)):
-            at.append(place[out_of_step(width)])
+def gaps_of(found: FoundPit, ratio: float = 0.1) -> Floats:
+    """Chainages of supports beside a gap in their row, at either end, on either wall."""
+    at = [
+        place[beside_gap(found, place, width, ratio)]
+        for row in found.rows
+        for place, width in ((row.head_at, row.tributary_head), (row.far_at, row.tributary_far))
+    ]
     return np.concatenate(at) if at else np.zeros(0)
 
 
-def out_of_step(width: Floats, ratio: float = 0.1) -> Bools:
-    """True for members that stand for a length of wall clearly larger than the usual one of their row."""
-    known = width[~np.isnan(width)]
-    if len(known) == 0:
-        return np.zeros(len(width), dtype=bool)
-    usual = float(np.median(known))
-    return np.asarray(np.nan_to_num(width, nan=0.0) > usual * (1.0 + ratio) + 1e-9)
+def beside_gap(found: FoundPit, at: Floats, width: Floats, ratio: float = 0.1) -> Bools:
+    """True for the members of one row that stand beside a gap clearly larger than the usual one.
+
+    Args:
+        found: The pit.
+        at: (k,) chainage of the members on this wall; nan where they do not meet it.
+        width: (k,) length of wall each one stands for, m: shows an end member that stands too far from the wall's end.
+        ratio: What counts as clearly larger.
+
+    The usual gap is the lower median of those on one side of the pit: of two unlike gaps the larger is the odd one.
+    """
+    beside = np.zeros(len(at), dtype=bool)
+    met = np.flatnonzero(~np.isnan(at))
+    under = np.searchsorted(found.stations.chainage, at[met] + 1e-3, side="right") - 1
+    side = found.stations.side[under]
+    for one in np.unique(side):
+        members = met[side == one][np.argsort(at[met[side == one]], kind="stable")]
+        gaps = np.diff(at[members])
+        if len(gaps) == 0:
+            continue
+        most = float(np.sort(gaps)[(len(gaps) - 1) // 2]) * (1.0 + ratio) + 1e-9
+        beside[members[:-1][gaps > most]] = True
+        beside[members[1:][gaps > most]] = True
+        beside[members[width[members] > most]] = True
+    return beside

@@ -220,7 +220,7 @@ def _needed(
 
 
 def _least_lengths(judged: JudgedPit) -> Floats:
-    """Excavated depth of each zone, m: what must be left of it to need a section; DEPTH_UNKNOWN where it is not known."""
+    """Excavated depth of each zone, m: what must be left of it to need a section; else DEPTH_UNKNOWN."""
     stations = judged.found.stations
     deepest = np.zeros(len(judged.found.pit.zones))
     np.maximum.at(deepest, stations.zone, np.nan_to_num(stations.depth))

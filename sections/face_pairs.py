@@ -84,7 +84,7 @@ def candidates(faces: Faces, within: bool) -> Ints:
         faces: The faces.
         within: True to look only at faces of one body (which is longer than it is thick), False to look at all.
     """
-    lines = list(shapely.linestrings(np.stack((faces.p, faces.q), axis=1)))
+    lines = np.asarray(shapely.linestrings(np.stack((faces.p, faces.q), axis=1))).tolist()
     a, b = shapely.STRtree(lines).query(lines, predicate="dwithin", distance=THICKEST)
     ok = a < b
     if within:

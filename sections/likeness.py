@@ -158,26 +158,47 @@ _Type = tuple[Construction | None, tuple[_Held, ...]]
 def _types_of(site: Site, found: FoundPit, types: dict[_Type, int]) -> Ints:
     """Index into `types` of every station; new kinds of wall and supports are added to it."""
     stations = found.stations
-    known: dict[tuple[int, tuple[int, ...]], int] = {}
+    bays = np.round(bays_at(found), 2).tolist()
+    known: dict[tuple[int, tuple[tuple[int, float], ...]], int] = {}
     index = np.zeros(len(stations.chainage), dtype=np.int64)
-    for i, key in enumerate(zip(stations.run.tolist(), stations.supports, strict=True)):
+    for i, (number, held) in enumerate(zip(stations.run.tolist(), stations.supports, strict=True)):
+        key = (number, tuple((j, bays[i][j]) for j in held))
         if key not in known:
-            run = None if key[0] < 0 else found.shape.runs[key[0]]
-            rows = tuple(sorted((_held(site, found, j) for j in key[1]), key=_by_level))
+            run = None if number < 0 else found.shape.runs[number]
+            rows = tuple(sorted((_held(site, found, j, bay) for j, bay in key[1]), key=_by_level))
             made: _Type = (None if run is None else construction_of(run), rows)
             known[key] = types.setdefault(made, len(types))
         index[i] = known[key]
     return index
 
 
-def _held(site: Site, found: FoundPit, j: int) -> _Held:
+def bays_at(found: FoundPit) -> Floats:
+    """Distance between the supports on either side of each station, by row (n, rows), m.
+
+    Beyond the outermost support that of the outermost bay; 0 where a row has one support, or none, on this wall.
+    """
+    stations = found.stations
+    bays = np.zeros((len(stations.chainage), len(found.rows)))
+    for j, row in enumerate(found.rows):
+        at = np.concatenate([row.head_at, row.far_at])
+        at = np.sort(at[~np.isnan(at)])
+        side = stations.side[station_under(found, at)]
+        for one in np.unique(side):
+            places, here = at[side == one], stations.side == one
+            if len(places) > 1:
+                bay = np.clip(np.searchsorted(places, stations.chainage[here], side="right") - 1, 0, len(places) - 2)
+                bays[here, j] = np.diff(places)[bay]
+    return bays
+
+
+def _held(site: Site, found: FoundPit, j: int, bay: float) -> _Held:
     row = found.rows[j]
     member = row.member
     first = site.supports[row.supports[0]]
     section = "" if first.section is None else first.section.designation
     length = float(np.hypot(*np.subtract(first.far, first.head)[:2])) if member.role in ("anchor", "raker") else None
     labels = (member.role, section, first.material, row.waler)
-    numbers = (member.level, member.spacing, first.EA, member.free_length, length, member.inclination, member.skew)
+    numbers = (member.level, bay, first.EA, member.free_length, length, member.inclination, member.skew)
     return _Held(labels=labels, numbers=numbers)
 
 

@@ -104,8 +104,8 @@ def find_rings(graph: WallGraph, parting: Bools) -> tuple[Trace, ...]:
     open_between = pit[left] & pit[right] & ~parting
     total = len(faces.area)
     joined = coo_array((np.ones(open_between.sum()), (left[open_between], right[open_between])), shape=(total, total))
-    _, region = connected_components(joined, directed=False)
-    region = np.where(pit, region, -1).astype(np.int64)
+    _, part = connected_components(joined, directed=False)
+    region: Ints = np.where(pit, part, -1).astype(np.int64)
     outline = inner.pick(region[left] != region[right])
     again = trace_faces(outline)
     return tuple(_ring(outline, again, int(k)) for k in np.flatnonzero(_is_pit(outline, again, inner, faces, region)))

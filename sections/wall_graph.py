@@ -118,7 +118,7 @@ def _merge(graph: WallGraph, pairs: Ints) -> WallGraph:
 
 def edge_tree(graph: WallGraph) -> shapely.STRtree:
     """Search tree of the edges."""
-    return shapely.STRtree(list(shapely.linestrings(graph.xy[graph.ends])))
+    return shapely.STRtree(np.asarray(shapely.linestrings(graph.xy[graph.ends])).tolist())
 
 
 def _crossings(graph: WallGraph, tolerance: float) -> tuple[Ints, Ints, WallGraph]:

@@ -270,7 +270,12 @@ APART = ("sources", "inputs", "ledger", "proposal_sha256")
 def without_sources(tree: Any) -> Any:
     if isinstance(tree, dict):
         return {key: without_sources(value) for key, value in tree.items() if key not in APART}
-    return [without_sources(item) for item in tree] if isinstance(tree, list) else tree
+    if isinstance(tree, list):
+        # The drawing gives its waler no level, the model does: the one assumption they do not share.
+        return [
+            without_sources(item) for item in tree if not (isinstance(item, dict) and item.get("code") == "waler-level")
+        ]
+    return tree
 
 
 def test_the_same_pit_as_a_model_gives_the_same_sections(out: Path, tmp_path: Path) -> None:

@@ -78,7 +78,10 @@ def _standing(definition: SectionDefinition) -> list[str]:
 
 def _worth(definition: SectionDefinition) -> str:
     score = "none, a governing output is not assessed" if definition.score is None else f"{definition.score:.0f}"
-    half = f"May be halved at x = {fixed(definition.half.at_x)} m: " if definition.half.is_half else "Not halved: "
+    half = "Not to be halved: "
+    if definition.half.at_x is not None:
+        drawn = "Given as a half" if definition.half.is_half else "Given whole, may be halved"
+        half = f"{drawn} at x = {fixed(definition.half.at_x)} m: "
     return (
         f"Representativeness score: {score} (geometric; not a factor of safety). {half}{definition.half.basis}. "
         f"Extent: {definition.extent.basis}. {NOT_INCLUDED}."

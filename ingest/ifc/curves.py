@@ -241,8 +241,8 @@ def _part_of_polyline(points: Floats, start: float, end: float) -> Floats:
 def _aligned(pieces: list[Floats]) -> list[Floats]:
     """Turn round pieces whose sense was written wrongly, when that alone closes the joint."""
     for i in range(1, len(pieces)):
-        gap = np.linalg.norm(pieces[i][0] - pieces[i - 1][-1])
-        turned = np.linalg.norm(pieces[i][-1] - pieces[i - 1][-1])
+        gap = float(np.linalg.norm(pieces[i][0] - pieces[i - 1][-1]))
+        turned = float(np.linalg.norm(pieces[i][-1] - pieces[i - 1][-1]))
         if turned < 1e-6 * max(gap, 1e-30):
             pieces[i] = pieces[i][::-1]
     return pieces

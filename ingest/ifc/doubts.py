@@ -14,6 +14,8 @@ from ingest.trail import Assumption, Finding, Question, Reading, Severity
 LEAST_EXTENT = 1.0
 GREATEST_EXTENT = 20_000.0
 """Sites smaller or larger than this, m, are taken for a wrong unit (judgement)."""
+LIKELY_EXTENT = (5.0, 500.0)
+"""Extent of a likely site, m (common practice, no source)."""
 SHOWN = 5
 
 
@@ -78,19 +80,27 @@ class Doubts:
             Assumption(id=f"{self._file}-A{number}", code=code, about=self._file, text=text, basis=basis)
         )
 
-    def about_units(self, units: ProjectUnits, parts: list[Part]) -> None:
-        """Ask about the length unit when it is missing, or when the model has an unlikely size."""
+    def about_units(self, units: ProjectUnits, parts: list[Part]) -> str | None:
+        """Ask about the length unit when it is missing, or when the model has an unlikely size.
+
+        Returns:
+            A likelier unit when the file declares none and this one gives no likely site; else None.
+        """
         for text in units.doubts:
             self._find("ifc-unit", "check", text)
         extent = extent_of(parts)
+        likely = not parts or LEAST_EXTENT <= extent <= GREATEST_EXTENT
+        better = _better_unit(extent / units.length)
+        text = f"the model is {extent:.4g} m across in {units.name}"
         if not units.declared:
-            better = _better_unit(extent)
-            self._assume("length-unit", f"no length unit is declared; {units.name} was used", "none given in the file")
-            self._ask(units, better, f"no length unit is declared; in {units.name} the model is {extent:.4g} m across")
-        elif parts and not LEAST_EXTENT <= extent <= GREATEST_EXTENT:
-            text = f"the model is {extent:.4g} m across in its declared unit, {units.name}"
-            self._find("ifc-unit-size", "check", text)
-            self._ask(units, _better_unit(extent / units.length), text)
+            if parts and not LIKELY_EXTENT[0] <= extent <= LIKELY_EXTENT[1] and better != units.name:
+                return better
+            self._assume("length-unit", f"no length unit is declared; {units.name} was used", text)
+            self._ask(units, "mm" if units.name == "m" else "m", f"no length unit is declared; {text}")
+        elif not likely:
+            self._find("ifc-unit-size", "check", f"{text}, its declared unit")
+            self._ask(units, better, text)
+        return None
 
     def _ask(self, units: ProjectUnits, better: str, text: str) -> None:
         line = f'[files.{json.dumps(self._file)}] length_unit = "{better}"'
@@ -114,8 +124,8 @@ def extent_of(parts: list[Part]) -> float:
 
 
 def _better_unit(size: float) -> str:
-    """Unit that makes a model of this many units a likely site of 5 to 500 m."""
+    """Unit that makes a model of this many units a likely site."""
     for unit, metres in (("m", 1.0), ("mm", 1e-3), ("cm", 1e-2), ("foot", 0.3048)):
-        if 5.0 <= size * metres <= 500.0:
+        if LIKELY_EXTENT[0] <= size * metres <= LIKELY_EXTENT[1]:
             return unit
     return "m" if size < 1000 else "mm"

@@ -56,9 +56,9 @@ class Product:
 class Inventory:
     """Everything that can be known of the products before they are placed."""
 
-    def __init__(self, model: Any, file: str, length_unit: str | None) -> None:
+    def __init__(self, model: Any, file: str, length_unit: str | None, guess: str | None = None) -> None:
         self.file = file
-        self.units = read_units(model, file, length_unit)
+        self.units = read_units(model, file, length_unit, guess)
         self.relations = Relations(model)
         self.properties = PropertyTable(model, self.units)
         self.frames = FrameTable()
@@ -227,6 +227,9 @@ class Inventory:
             said.append(
                 f"{self.placements.fallbacks} placements along an alignment were read from their fallback position"
             )
+        if self.items.operators.shifted:
+            count = self.items.operators.shifted
+            said.append(f"{count} mapped bodies have a source with an origin of its own; check where they stand")
         if self.relations.unread:
             said.append(f"{self.relations.unread} relations or materials are damaged and were left out")
         if self.properties.unread:

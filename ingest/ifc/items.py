@@ -50,7 +50,7 @@ class ItemReader:
         Raises:
             ValueError: If an item is of a kind that is not read.
         """
-        items = representation.get_argument(ITEMS) or ()
+        items: tuple[Entity, ...] = representation.get_argument(ITEMS) or ()
         if len(items) == 1:
             return self.item(items[0], depth)
         return tuple(found for item in items for found in self.item(item, depth))

@@ -21,9 +21,11 @@ class OperatorTable:
         self._rows: dict[tuple[int, int], int] = {}
         self._chains: dict[tuple[int, int], int] = {}
         self._made: list[Floats | Triple] = [(0.0, 0.0, 0.0)]
+        self.shifted = 0
+        """Mappings whose source has an origin of its own: the standard's words allow two readings."""
 
     def row(self, operator: Entity, origin: Entity) -> int:
-        """Row of one mapping: `origin`, a frame of the source, is brought onto the target of the operator."""
+        """Row of one mapping: the operator after the frame `origin` of the source, as geometry kernels have it."""
         key = (operator.id(), origin.id())
         known = self._rows.get(key)
         if known is None:
@@ -47,7 +49,8 @@ class OperatorTable:
         row = self._frames.row(origin)
         if self._frames.is_plain(row):
             return made
-        return np.asarray(_full(made) @ np.linalg.inv(self._frames.matrix(row)))
+        self.shifted += 1
+        return np.asarray(_full(made) @ self._frames.matrix(row))
 
     def matrices(self) -> Floats:
         """All mappings as (n, 4, 4), in the file's units."""

@@ -19,7 +19,7 @@ from ingest.ifc.georeference import read_georeference
 from ingest.ifc.ground import read_borehole
 from ingest.ifc.inventory import Inventory, Product
 from ingest.ifc.makers import make_parts
-from ingest.ifc.opening import open_model
+from ingest.ifc.opening import Opened, open_model
 from ingest.ifc.representations import NO_GEOMETRY
 from ingest.ifc.unreadable import UNREADABLE
 from ingest.model import Borehole, FileParts, Part
@@ -44,7 +44,12 @@ def read_ifc(path: Path, *, length_unit: str | None = None) -> FileParts:
         InputError: If the file cannot be read, or `length_unit` is unknown.
     """
     with collector_paused():
-        return _Reading(path, length_unit).result()
+        opened = open_model(path)
+        first = _Reading(opened, path.name, length_unit)
+        read = first.result()
+        if first.likelier_unit is None:
+            return read
+        return _Reading(opened, path.name, None, guess=first.likelier_unit).result()
 
 
 @contextmanager
@@ -62,12 +67,13 @@ def collector_paused() -> Iterator[None]:
 class _Reading:
     """One run over one file."""
 
-    def __init__(self, path: Path, length_unit: str | None) -> None:
-        opened = open_model(path)
-        self.file, self.sha256 = path.name, opened.sha256
+    def __init__(self, opened: Opened, file: str, length_unit: str | None, guess: str | None = None) -> None:
+        self.file, self.sha256 = file, opened.sha256
         self.model = opened.model
         self.losses = list(opened.losses)
-        self.inventory = Inventory(self.model, self.file, length_unit)
+        self.inventory = Inventory(self.model, self.file, length_unit, guess)
+        self.likelier_unit: str | None = None
+        """Set when the file declares no length unit and metres make no likely site of it."""
         self.doubts = Doubts(self.file)
         self.context: Counter[str] = Counter()
         self.ignored: Counter[str] = Counter()
@@ -85,7 +91,7 @@ class _Reading:
         self._place(georeference.matrix)
         for product in inventory.products:
             self._make_parts(product)
-        self.doubts.about_units(inventory.units, self.parts)
+        self.likelier_unit = self.doubts.about_units(inventory.units, self.parts)
         self.doubts.about_georeference(georeference)
         self.doubts.about_damage(inventory.damage(), self.losses)
         self._check_sum()

@@ -89,13 +89,14 @@ class ProjectUnits:
         return product
 
 
-def read_units(model: Any, file: str, length_unit: str | None = None) -> ProjectUnits:
+def read_units(model: Any, file: str, length_unit: str | None = None, guess: str | None = None) -> ProjectUnits:
     """Read the units of the project.
 
     Args:
         model: Loaded IFC model.
         file: Name for messages.
         length_unit: The engineer's word for the length unit, which stands above the file's.
+        guess: Length unit when the file declares none; metres without it.
 
     Raises:
         InputError: If `length_unit` is no known unit.
@@ -117,7 +118,7 @@ def read_units(model: Any, file: str, length_unit: str | None = None) -> Project
             lengths.append((unit_name(unit), si))
         else:
             factors.setdefault(kind, si)
-    name, length = _choose_length(lengths, doubts)
+    name, length = _choose_length(lengths, doubts) if lengths else (guess or "m", METRES[guess or "m"])
     declared = bool(lengths)
     if given is not None:
         name, length, declared = given, METRES[given], True
@@ -143,8 +144,6 @@ def _assigned(model: Any) -> Iterable[Entity]:
 
 
 def _choose_length(lengths: list[tuple[str, float]], doubts: list[str]) -> tuple[str, float]:
-    if not lengths:
-        return "m", 1.0
     named = [(_known_name(name, si), si) for name, si in lengths]
     chosen = next(((name, si) for name, si in named if name in METRES), named[0])
     if len({si for _, si in lengths}) > 1:

@@ -117,7 +117,7 @@ def _able(stations: Stations, ends: WallEnds, place: _Place, sheet: Sheet) -> Bo
     wall = (np.where(np.isnan(stations.top), stations.ground, stations.top) - stations.toe) / place.depth
     short = place.length < 1.0 - 1e-9
     reasons = (
-        (np.isnan(stations.depth), "Excavated depth not given here, so the distance to a corner cannot be put in depths."),
+        (np.isnan(stations.depth), "The excavated depth is not given here, so no distance can be put in depths."),
         (stations.depth <= 0.0, "Nothing is excavated here."),
         (~np.isnan(stations.radius), "The wall is curved here; the class of wall is known for straight walls only."),
         (ends.has(REENTRANT), "This wall ends in a re-entrant corner, so its other end gives it no sure relief."),

@@ -10,7 +10,7 @@ from __future__ import annotations
 import numpy as np
 
 from ingest.model import Limits, Site
-from sections.along import cover_of, distance_along, out_of_step
+from sections.along import beside_gap, cover_of, distance_along
 from sections.criteria.sheet import WALL_OUTPUTS, Sheet
 from sections.model import Bools, CriterionResult, Floats, FoundPit, SupportRow
 
@@ -56,13 +56,13 @@ def _largest_count(row: SupportRow) -> int:
 def _around_gaps(
     found: FoundPit, row: SupportRow, at: Floats, tributary: Floats, limits: Limits
 ) -> tuple[Bools, Floats]:
-    """Stations within the wall that an out-of-step support stands for and one usual bay, or depth, beyond it."""
+    """Stations on the wall that a support beside a gap stands for, and one usual bay, or depth, beyond it."""
     n = len(found.stations.chainage)
-    wide = out_of_step(tributary, limits.spacing_ratio) & ~np.isnan(at)
+    wide = beside_gap(found, at, tributary, limits.spacing_ratio)
     if not np.any(wide):
         return np.zeros(n, dtype=bool), np.zeros(n)
     usual = float(np.median(tributary[~np.isnan(tributary)]))
     widest = float(np.max(tributary[wide]))
     depth = np.where(np.isnan(found.stations.depth), np.inf, found.stations.depth)
-    reach = widest + np.maximum(usual, depth)
+    reach = widest / 2 + np.maximum(usual, depth)
     return distance_along(found, at[wide]) <= reach, np.full(n, widest)

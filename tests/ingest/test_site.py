@@ -254,7 +254,7 @@ def test_a_preload_of_the_wrong_sign_is_refused_with_its_line(tmp_path: Path, ro
     [
         ("[[supports]]\nsection = 'HEB 301'\n", "line 2", "HEB 300"),
         ("[[materials]]\nid = 'c'\nkind = 'concrete'\nconcrete_class = 'C31/37'\n", "line 4", "C30/37"),
-        ("[[walls]]\ntoe = 5.0\n[levels]\ntop = 1.0\n", "line 1", "5 m"),
+        ("[[walls]]\ntoe = 5.0\n[levels]\ntop = 1.0\n", "line 2", "5 m"),
     ],
 )
 def test_what_the_brief_says_of_sections_classes_and_levels_must_be_known(
@@ -414,3 +414,10 @@ def test_what_the_brief_names_and_the_files_do_not_have_is_a_finding(tmp_path: P
     assert set(found) == {"brief-match", "stage-member", "stratum-code"}
     assert 'layer "STRUTS"' in found["brief-match"].text
     assert found["brief-match"].where == "brief.toml, line 2, supports[1].match"
+
+
+def test_a_toe_that_only_the_model_has_and_cannot_be_is_not_taken(tmp_path: Path) -> None:
+    wall = replace(WALL, z_bottom=-2.0, z_top=3.0)
+    site = site_of([parts_of(wall)], brief_of(tmp_path, "[levels]\ntop = -5.0\n"))
+    assert (site.walls[0].top, site.walls[0].toe) == (-5.0, None)
+    assert {finding.code for finding in site.findings} == {"wall-levels"}

@@ -15,13 +15,13 @@ from sections.along import (
     NONE,
     REENTRANT,
     bay_of,
+    beside_gap,
     changes_of,
     cover_of,
     distance_along,
     find_ends,
     gaps_of,
     is_rectangle,
-    out_of_step,
     toe_steps_of,
 )
 from sections.model import Arc, Run
@@ -113,9 +113,23 @@ def test_bays_and_gaps_of_a_row() -> None:
     assert not cover_of(found.stations, 1)[spot(found, 40.0), 0]
 
 
-def test_widths_a_tenth_over_the_usual_are_in_step() -> None:
-    assert list(out_of_step(np.array([5.0, 5.0, 5.5, 5.51, np.nan]))) == [False, False, False, True, False]
-    assert not out_of_step(np.array([np.nan])).any()
+@pytest.mark.parametrize(
+    ("xs", "beside"),
+    [
+        ([102.5, 107.5, 112.5, 117.5, 122.5, 127.5], []),
+        ([102.5, 107.5, 113.0, 118.5, 124.0], [24.0]),  # 5.5 m beside 5.0 m is in step; the last holds 8.75 m
+        ([102.5, 107.5, 117.5], [7.5, 17.5]),  # of two gaps the larger is the odd one; 12.5 m to the corner as well
+        ([107.5, 112.5, 117.5, 122.5, 127.5], [7.5]),  # the first one stands 7.5 m from the corner
+        ([107.5, 122.5], []),
+        ([110.0, 120.0], [10.0, 20.0]),  # each holds 15 m of wall, one and a half bays
+        ([115.0], []),
+    ],
+)
+def test_a_gap_is_told_from_the_usual_bay(xs: list[float], beside: list[float]) -> None:
+    _, found = polygon_pit(rows=(struts_across(xs, (200.0, 220.0)),))
+    row = found.rows[0]
+    told = row.head_at[beside_gap(found, row.head_at, row.tributary_head)]
+    assert list(told) == pytest.approx(beside)
 
 
 def test_changes_of_wall_and_of_toe() -> None:

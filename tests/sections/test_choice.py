@@ -285,6 +285,14 @@ def test_supports_must_be_alike_in_level_stiffness_and_waler(other: dict[str, ob
     assert like(site, found, 10.0, 20.0) is same
 
 
+def test_a_wide_bay_is_not_like_a_usual_one() -> None:
+    gap = struts_across([102.5, 107.5, 117.5, 122.5, 127.5], (200.0, 220.0), waler=True)
+    site, found = polygon_pit(rows=(gap, STRUTS[1]))
+    assert not like(site, found, 5.0, 12.0)
+    assert not like(site, found, 12.0, 5.0)
+    assert like(site, found, 5.0, 20.0)
+
+
 def test_the_long_and_the_short_way_across_are_not_alike() -> None:
     site, found = polygon_pit(rows=STRUTS)
     assert not like(site, found, 15.0, 40.0)

@@ -169,7 +169,7 @@ def test_no_supports_leave_the_support_force_open() -> None:
         ({"floor": -18.1, "toe": -30.0}, "outside the 5 to 18 m"),
         ({"toe": -7.7}, "outside the 1.3 to 2.0"),
         ({"toe": -12.1}, "outside the 1.3 to 2.0"),
-        ({"floor": float("nan")}, "depth not given"),
+        ({"floor": float("nan")}, "depth is not given"),
         ({"floor": 0.0}, "Nothing is excavated"),
         ({"radius": 30.0}, "curved"),
     ],
