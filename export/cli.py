@@ -86,7 +86,7 @@ def build_parser() -> Parser:
             allow_abbrev=False,
         )
         add(command)
-        command.add_argument("--quiet", action="store_true", help="no progress and no summary; errors still show")
+        command.add_argument("-q", "--quiet", action="store_true", help="no progress and no summary; errors still show")
         command.add_argument("--json", action="store_true", help="answer and errors as JSON")
     return parser
 

@@ -58,7 +58,7 @@ def build_walers(given: Sequence[RoleGiven], supports: Sequence[Support], notes:
     """Make the walers; one drawn flat lies at the level of the supports when these have but one.
 
     Args:
-        given: Parts with role waler; capping beams are told apart by their use.
+        given: Parts with role waler, capping beams left out.
         supports: The supports already built.
         notes: Takes what is missing or refused.
     """
@@ -71,7 +71,7 @@ def build_walers(given: Sequence[RoleGiven], supports: Sequence[Support], notes:
             notes.refuse(part, "waler without a line on plan")
             continue
         level = _drawn_level(part)
-        if level is None and len(levels) == 1 and item.use != "capping_beam":
+        if level is None and len(levels) == 1:
             level = next(iter(levels))
             basis = "the supports given have this one level"
             notes.assume("waler-level", label(item), f"waler at {level:g} m", basis, (part.source,))

@@ -7,15 +7,20 @@ from collections.abc import Sequence
 
 from ingest.brief_tables import WallTable
 from ingest.errors import InputError
-from ingest.figures import centre_line, centroid, extent, outline_of, plan
+from ingest.faces import THICKEST, find_faces
+from ingest.figures import NearLines, centre_line, centroid, extent, outline_of, plan
 from ingest.matching import fits
 from ingest.model import BarSection, Continuity, Part, Pile, Point, WallKind, WallPiece
 from ingest.notes import Notes, label
 from ingest.record import record
 from ingest.roles import RoleGiven
-from ingest.surroundings import upright
+from ingest.surroundings import PILE_DIAMETER, upright
 from ingest.tie_texts import Tied
+from ingest.words import find_meanings, layer_name
 
+_DRAWN = {"path": "axis", "circle": "axis", "outline": "outline"}
+BESIDE = 1.0
+"""A capping beam runs along a wall whose middle is within this of it, m (judgement)."""
 POST = 1.5
 """Largest side of a post drawn by its outline, m (judgement)."""
 
@@ -31,11 +36,14 @@ class WallGiven:
     toe: float | None = None
 
 
-def build_walls(given: Sequence[RoleGiven], tied: Tied, notes: Notes) -> tuple[tuple[WallPiece, ...], tuple[Pile, ...]]:
+def build_walls(
+    given: Sequence[RoleGiven], beams: Sequence[RoleGiven], tied: Tied, notes: Notes
+) -> tuple[tuple[WallPiece, ...], tuple[Pile, ...]]:
     """Make wall pieces and piles.
 
     Args:
         given: Parts with role wall or bearing_pile.
+        beams: Capping beams.
         tied: Levels written beside them.
         notes: Takes the parts that give nothing, with the reason.
 
@@ -44,11 +52,11 @@ def build_walls(given: Sequence[RoleGiven], tied: Tied, notes: Notes) -> tuple[t
     """
     walls: list[WallPiece] = []
     piles: list[Pile] = []
-    capping = _capping_beam(notes)
+    capping, faces = _Capping(beams, notes), _faces(given)
     for item in given:
-        found = _pile(item, tied, notes, capping) or (
-            _wall(item, tied, notes, capping) if item.role == "wall" else None
-        )
+        found: Pile | WallPiece | None = _pile(item, tied, notes, capping)
+        if found is None and item.role == "wall":
+            found = _wall(item, faces.get(id(item.part)), tied, notes, capping)
         if isinstance(found, Pile):
             piles.append(found)
         elif isinstance(found, WallPiece):
@@ -98,22 +106,37 @@ def _wrong_levels(item: RoleGiven, entries: Sequence[WallTable], top: float, toe
     return notes.stop(problem, remedy, "walls", number, "toe")
 
 
-def _capping_beam(notes: Notes) -> bool | None:
-    said = [entry.capping_beam for entry in notes.brief.supports if entry.capping_beam is not None]
-    if len(set(said)) == 1:
-        notes.assume(
-            "capping-beam",
-            "",
-            f"every wall {'has a' if said[0] else 'is without'} capping beam",
-            "the brief says so of its supports and names no single wall",
-        )
-        return said[0]
-    return None
+class _Capping:
+    """Which walls have a capping beam: those a drawn one runs along, else what the brief says of all supports."""
+
+    def __init__(self, beams: Sequence[RoleGiven], notes: Notes) -> None:
+        usable = [item for item in beams if len(item.part.points) > 1]
+        for item in beams:
+            if item not in usable:
+                notes.refuse(item.part, "capping beam without a line on plan")
+        self._lines = NearLines([_beam_line(item.part) for item in usable], [])
+        said = [entry.capping_beam for entry in notes.brief.supports if entry.capping_beam is not None]
+        self._said = said[0] if len(set(said)) == 1 else None
+        if self._said is not None:
+            text = f"every wall {'has a' if self._said else 'is without'} capping beam"
+            notes.assume("capping-beam", "", text, "the brief says so of its supports and names no single wall")
+
+    def over(self, middle: Point) -> bool | None:
+        """Whether the wall that passes here has one; None when nothing says."""
+        return True if self._lines.distance(middle, BESIDE) <= BESIDE else self._said
 
 
-def _pile(item: RoleGiven, tied: Tied, notes: Notes, capping: bool | None) -> Pile | None:
+def _beam_line(part: Part) -> tuple[Point, ...]:
+    ring = outline_of(part)
+    line = centre_line(ring) if ring is not None else None
+    if line is not None:
+        return line[0]
+    return plan(part.points) if ring is None else (*ring, ring[0])
+
+
+def _pile(item: RoleGiven, tied: Tied, notes: Notes, capping: _Capping) -> Pile | None:
     part = item.part
-    round_ = upright(part)
+    round_ = _pile_circle(part)
     post = None if round_ else _post(item)
     if round_ is None and post is None:
         return None
@@ -128,13 +151,13 @@ def _pile(item: RoleGiven, tied: Tied, notes: Notes, capping: bool | None) -> Pi
         kind=kind,
         bearing=None if bearing and item.use == "pile" else bearing,
         section=post or part.section,
-        male=None if item.use not in ("male", "female") else item.use == "male",
+        male=item.use == "male" if kind == "secant" and item.use in ("male", "female") else None,
         top=said.top if not bearing else _first_number(_levels(part)[0], tied.value(item, "top")),
         toe=said.toe if not bearing else _first_number(_levels(part)[1], tied.value(item, "toe")),
         material=said.material,
         EI_factor=said.EI_factor,
         continuity=said.continuity,
-        capping_beam=None if bearing else capping,
+        capping_beam=None if bearing else capping.over(centre),
         layer=part.layer,
         name=part.name,
         evidence=item.evidence,
@@ -158,9 +181,9 @@ def _post(item: RoleGiven) -> BarSection | None:
     return None
 
 
-def _wall(item: RoleGiven, tied: Tied, notes: Notes, capping: bool | None) -> WallPiece | None:
+def _wall(item: RoleGiven, face: str | None, tied: Tied, notes: Notes, capping: _Capping) -> WallPiece | None:
     part = item.part
-    axis, closed, drawn, thickness = _axis(part)
+    axis, closed, drawn, thickness = _axis(part, face)
     if len(axis) < 2:
         return None
     said = given_of(item, tied, notes)
@@ -176,7 +199,7 @@ def _wall(item: RoleGiven, tied: Tied, notes: Notes, capping: bool | None) -> Wa
         material=said.material,
         EI_factor=said.EI_factor,
         continuity=said.continuity,
-        capping_beam=capping,
+        capping_beam=capping.over(_halfway(axis)),
         layer=part.layer,
         name=part.name,
         evidence=item.evidence,
@@ -184,17 +207,42 @@ def _wall(item: RoleGiven, tied: Tied, notes: Notes, capping: bool | None) -> Wa
     )
 
 
-def _axis(part: Part) -> tuple[tuple[Point, ...], bool, str, float | None]:
-    if part.form in ("outline", "prism", "mesh"):
-        ring = outline_of(part) or plan(part.points)
-        line = centre_line(ring) if len(ring) > 2 else None
-        drawn = "solid" if part.form != "outline" else "hatch" if part.cls == "HATCH" else "outline"
-        if line is not None:
-            return line[0], False, drawn, line[1]
-        return ring, True, drawn, part.thickness
+def _axis(part: Part, face: str | None) -> tuple[tuple[Point, ...], bool, str, float | None]:
+    """Line of a wall, whether it is a ring, how it was drawn, and its thickness."""
+    ring = outline_of(part) or (plan(part.points) if part.form == "mesh" else None)
+    if ring is not None and len(ring) > 2:
+        line = None if part.form == "circle" else centre_line(ring)
+        drawn = _DRAWN.get(part.form, "solid") if part.cls != "HATCH" else "hatch"
+        if line is not None and line[1] <= THICKEST:
+            return line[0], False, "outline" if drawn == "axis" else drawn, line[1]
+        return ring, True, face or drawn, part.thickness
     if part.form == "path":
-        return plan(part.points), part.closed, "axis", part.thickness
+        return plan(part.points), False, face or "axis", part.thickness
     return (), False, "axis", None
+
+
+def _halfway(axis: Sequence[Point]) -> Point:
+    """Middle of the first stretch of a wall, a point on it."""
+    (x1, y1), (x2, y2) = axis[:2]
+    return (x1 + x2) / 2, (y1 + y2) / 2
+
+
+def _faces(given: Sequence[RoleGiven]) -> dict[int, str]:
+    """By part: which wall lines without thickness are faces; a layer of axes has none."""
+    lines = [
+        item.part
+        for item in given
+        if item.role == "wall" and item.part.thickness is None and item.part.form in ("path", "circle")
+        if _pile_circle(item.part) is None
+        if all(meaning.use != "axis" for meaning in find_meanings(layer_name(item.part.layer)))
+    ]
+    return {id(lines[n]): kind for n, kind in find_faces(lines).items()}
+
+
+def _pile_circle(part: Part) -> tuple[Point, float] | None:
+    """Centre and diameter of a round upright; a circle wider than any pile is the wall of a shaft."""
+    found = upright(part)
+    return found if found is not None and found[1] <= PILE_DIAMETER[1] else None
 
 
 def _levels(part: Part) -> tuple[float | None, float | None]:

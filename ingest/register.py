@@ -3,6 +3,7 @@
 from __future__ import annotations
 
 import math
+from collections import Counter
 from collections.abc import Iterable, Sequence
 from dataclasses import dataclass, replace
 
@@ -14,6 +15,7 @@ from ingest.model import FileParts, Frame, Part, Point, Point3, Registered
 from ingest.notes import Notes
 from ingest.outlines import FITS, SLIPS, Placement, distance_between, find_placements, outline_points
 from ingest.roles import RoleGiven
+from ingest.surroundings import upright
 from ingest.trail import Source
 
 NEAR_ORIGIN = 10_000.0
@@ -87,12 +89,23 @@ def check_registration(moved: Moved, given: Sequence[RoleGiven], notes: Notes) -
             outlines = walls[one.file], walls[other.file]
             drawn_twice = all(len(points) > 3 for points in outlines)
             if not apart and not (drawn_twice and distance_between(*outlines) > FITS):
+                _compare_counts(one.file, other.file, given, notes)
                 continue
             placements = find_placements(*outlines) if drawn_twice else ()
             if placements:
                 _ask_placement(one.file, other.file, placements, moved, notes)
             elif apart:
                 _ask_shift(one.file, other.file, a, b, gap, notes)
+
+
+def _compare_counts(one: str, other: str, given: Sequence[RoleGiven], notes: Notes) -> None:
+    """Two files that show the same walls or supports should show as many of them."""
+    piles = Counter(g.part.source.file for g in given if g.role == "wall" and upright(g.part) is not None)
+    supports = Counter(g.part.source.file for g in given if g.role in ("strut", "corner_strut", "raker", "anchor"))
+    for what, count in (("wall piles", piles), ("supports", supports)):
+        if count[one] and count[other] and count[one] != count[other]:
+            text = f"{one} shows {count[one]} {what}, {other} {count[other]}"
+            notes.see("counts-differ", "check", f"{one}, {other}", text)
 
 
 def _ask_placement(one: str, other: str, placements: Sequence[Placement], moved: Moved, notes: Notes) -> None:

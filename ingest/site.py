@@ -115,7 +115,9 @@ def _records(given: Sequence[RoleGiven], moved: Moved, ground: float | None, not
 
     materials = build_materials(notes)
     tied = tie_texts(given, notes)
-    walls, piles = build_walls(having("wall", "bearing_pile"), tied, notes)
+    caps = [item for item in having("waler") if item.use == "capping_beam"]
+    walers = [item for item in having("waler") if item.use != "capping_beam"]
+    walls, piles = build_walls(having("wall", "bearing_pile"), caps, tied, notes)
     supports = build_supports(having("strut", "corner_strut", "raker", "anchor"), walls, piles, materials, tied, notes)
     dug = [item for item in given if item.role == "slab" and item.use == "floor"]
     stages, sequence = build_stages(brief)
@@ -135,7 +137,7 @@ def _records(given: Sequence[RoleGiven], moved: Moved, ground: float | None, not
         walls=_ordered("wall", walls),
         piles=_ordered("pile", piles),
         supports=_ordered("support", supports),
-        walers=_ordered("waler", build_walers(having("waler"), supports, notes)),
+        walers=_ordered("waler", build_walers(walers, supports, notes)),
         plates=_ordered("plate", build_plates([i for i in having("slab", "footing") if i.use != "floor"], notes)),
         columns=_ordered("column", build_columns(having("column"), notes)),
         loads=_ordered("load", build_loads(having("load"), moved, notes)),

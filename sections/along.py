@@ -4,18 +4,19 @@ from __future__ import annotations
 
 from dataclasses import dataclass
 from itertools import chain
-from typing import NamedTuple
 
 import numpy as np
-from numpy.typing import NDArray
 
 from sections.model import Bools, Corner, Floats, FoundPit, Ints, Run, Stations
 
 NONE, INSIDE, FREE, CURVE, REENTRANT = range(5)
 """Kinds of end of a straight wall, mildest first: where two coincide the later one counts."""
 
-STRAIGHT_FROM, STRAIGHT_TO, GENTLE_TO = 150.0, 190.0, 210.0
-"""Interior angles: from 150 to 190 degrees the wall counts as straight, to 210 as gently turned out (judgement)."""
+STRAIGHT_FROM, STRAIGHT, GENTLE = 150.0, 10.0, 30.0
+"""An inside corner of 150 degrees and more is none; a turn out of the pit up to 10 degrees is none, up to 30 gentle
+(judgement)."""
+ARC_PIECES = 16
+"""Pieces in which an arc that turns out of the pit is counted."""
 ORTHOGONAL, ACUTE = 120.0, 60.0
 """Inside corners from 60 to 120 degrees count as square; sharper ones too, and are flagged (judgement)."""
 SAME_PLACE = 0.01
@@ -94,9 +95,12 @@ def _features(found: FoundPit) -> tuple[Floats, Ints, Floats]:
     shape = found.shape
     rows: list[tuple[float, int, float]] = []
     if shape.circle is None:
-        for corner in shape.corners:
-            if not STRAIGHT_FROM <= corner.interior_angle <= GENTLE_TO:
-                rows.append((corner.at, _corner_kind(found, corner), corner.interior_angle))
+        inside = [corner for corner in shape.corners if corner.interior_angle < STRAIGHT_FROM]
+        rows += [(corner.at, _inside_kind(found, corner), corner.interior_angle) for corner in inside]
+        at, turn = outward_turns(found)
+        rows += [
+            (a, REENTRANT, 180.0 + t) for a, t in zip(at.tolist(), turn.tolist(), strict=True) if t > GENTLE + 1e-6
+        ]
     if not shape.closed:
         rows += [(0.0, FREE, np.nan), (shape.length, FREE, np.nan)]
     rows += [(at, CURVE, np.nan) for arc in shape.arcs for at in (arc.start, arc.to)]
@@ -108,12 +112,34 @@ def _features(found: FoundPit) -> tuple[Floats, Ints, Floats]:
     )
 
 
-def _corner_kind(found: FoundPit, corner: Corner) -> int:
-    """Tell what a corner does: it holds nothing where the wall on one of its sides is not there."""
-    if corner.interior_angle > 180.0:
-        return REENTRANT
+def _inside_kind(found: FoundPit, corner: Corner) -> int:
+    """Tell what an inside corner does: it holds nothing where the wall on one of its sides is not there."""
     touching = [run.wall.kind for run in found.shape.runs if _touches(found, run, corner.at)]
     return FREE if "none" in touching else INSIDE
+
+
+def outward_turns(found: FoundPit) -> tuple[Floats, Floats]:
+    """Where the wall turns out of the pit, and by how much within one excavated depth around, degrees.
+
+    A re-entrant corner drawn as several blunt ones, or rounded, is one: turns that stand close add up. Straight walls
+    and rings have none; with the depth not known all of them add up.
+    """
+    shape = found.shape
+    if shape.circle is not None:
+        return np.zeros(0), np.zeros(0)
+    deepest = float(np.nanmax(found.stations.depth, initial=0.0))
+    turns = [(corner.at, corner.interior_angle - 180.0) for corner in shape.corners if corner.interior_angle > 180.0]
+    for arc in shape.arcs:
+        length = (arc.to - arc.start) % shape.length
+        if not arc.ccw and length > 0.0:
+            places = arc.start + length * (np.arange(ARC_PIECES) + 0.5) / ARC_PIECES
+            each = float(np.degrees(length / arc.radius)) / ARC_PIECES
+            turns += [(float(place % shape.length), each) for place in places]
+    at, turn = np.array([one[0] for one in turns]), np.array([one[1] for one in turns])
+    apart = np.abs(at[:, None] - at[None, :])
+    apart = np.minimum(apart, np.abs(shape.length - apart)) if shape.closed else apart
+    near = apart <= (0.5 * deepest if deepest > 0.0 else np.inf) + SAME_PLACE
+    return at, np.asarray(near @ turn)
 
 
 def _touches(found: FoundPit, run: Run, at: float) -> bool:
@@ -184,56 +210,10 @@ def _row_spacing(spacing: float | None, at: Floats) -> float:
     return float(np.max(np.diff(heads))) if len(heads) > 1 else 0.0
 
 
-def changes_of(found: FoundPit) -> Floats:
-    """Chainages at which the construction of the wall changes; runs that only end there, at a corner, do not count."""
-    shape = found.shape
-    runs = sorted(shape.runs, key=lambda run: run.start)
-    if len(runs) < 2:
-        return np.zeros(0)
-    pairs = zip([runs[-1], *runs[:-1]] if shape.closed else runs[:-1], runs if shape.closed else runs[1:], strict=True)
-    return np.array(sorted(run.start for before, run in pairs if construction_of(before) != construction_of(run)))
-
-
-class Construction(NamedTuple):
-    """What makes one run of wall like another: numbers that have a tolerance, levels, and all that must be the same."""
-
-    size: tuple[float | None, ...]
-    levels: tuple[float | None, float | None]
-    labels: tuple[object, ...]
-
-
-def construction_of(run: Run) -> Construction:
-    """Construction of a run: thickness, diameter, pile centres and factor on EI; top and toe; kind and the rest."""
-    wall = run.wall
-    bending = (None, None) if wall.structural is None else (wall.structural.which, wall.structural.spacing)
-    return Construction(
-        size=(wall.thickness, wall.diameter, wall.centres, wall.EI_factor, bending[1]),
-        levels=(wall.top, wall.toe),
-        labels=(wall.kind, wall.continuity, wall.material, wall.post, wall.capping_beam, bending[0]),
-    )
-
-
-def kinds_at(found: FoundPit) -> NDArray[np.str_]:
-    """Kind of wall at each station; "unknown" where no run was found."""
-    return np.array([*(run.wall.kind for run in found.shape.runs), "unknown"])[found.stations.run]
-
-
-def toe_steps_of(found: FoundPit) -> Floats:
-    """Chainages at which the toe of the wall changes, or is not known on one side."""
-    runs = sorted(found.shape.runs, key=lambda run: run.start)
-    return np.array(
-        sorted(
-            run.start
-            for before, run in zip([runs[-1], *runs[:-1]], runs, strict=True)
-            if before.wall.toe != run.wall.toe and (found.shape.closed or run.start > 0.0)
-        )
-    )
-
-
 def is_rectangle(found: FoundPit) -> bool:
     """Tell whether the pit is closed by four straight walls at right angles, within 5 degrees (judgement)."""
     shape = found.shape
-    felt = [corner for corner in shape.corners if not STRAIGHT_FROM <= corner.interior_angle <= STRAIGHT_TO]
+    felt = [corner for corner in shape.corners if not STRAIGHT_FROM <= corner.interior_angle <= 180.0 + STRAIGHT]
     square = all(abs(corner.interior_angle - 90.0) <= 5.0 for corner in felt)
     return shape.closed and shape.circle is None and not shape.arcs and len(felt) == 4 and square
 

@@ -9,12 +9,13 @@ from typing import Literal
 import numpy as np
 
 from ingest.model import Limits, LineDecision, Point, Site
-from sections.along import changes_of, steps_of
+from sections.along import steps_of
 from sections.chainage import cast, line_of, locate
 from sections.cut import Cut, CutWall
 from sections.likeness import nearest_station, station_under, tied_to
 from sections.model import Floats, FoundPit, Ints
 from sections.opposite_wall import ONE_CUT_LIMIT
+from sections.wall_changes import changes_of
 from sections.world import to_local
 
 BEHIND, INSIDE, NARROW = 3.0, 2.0, 4.0

@@ -17,6 +17,7 @@ from sections.definition import (
     SectionMaterial,
     SectionMember,
     SectionStage,
+    SupportLoss,
     Water,
 )
 from sections.implied import imply
@@ -43,6 +44,7 @@ class Judged:
     verdicts: dict[str, Verdict]
     represents: tuple[Represents, ...]
     score: float | None
+    losses: tuple[SupportLoss, ...] = ()
     stands_for: float | None = None
     """Length of wall the section stands for, m."""
 
@@ -116,6 +118,7 @@ def define_section(site: Site, cut: Cut, judged: Judged) -> SectionDefinition:
         balance=balance_section(cut, parts.members, columns, materials, parts.loads, site.water_retained),
         implied=parts.implied,
         actions_without_twin=list_actions(cut, parts.members),
+        losses=tuple(loss for loss in judged.losses if loss.member in {m.id for m in parts.members})[:3],
         receptors=receptors_met(site, cut),
         assumptions=(*parts.assumptions, *staged),
         findings=(*parts.findings, *extent_notes, *ground_notes, *gaps),

@@ -348,6 +348,22 @@ class Action:
 
 
 @record
+class SupportLoss:
+    """Loss of one real member of a row: ratios to the whole arrangement. Accidental, never part of a verdict's band.
+
+    `at`: chainage of the member whose loss is worst. `gap_movement`: movement of its place; `neighbour_force`: force of
+    its worse neighbour; face moments: the largest ratio anywhere along the wall.
+    """
+
+    member: str
+    at: float
+    gap_movement: float
+    neighbour_force: float | None
+    wall_moment_excavated_face: float
+    wall_moment_retained_face: float
+
+
+@record
 class SectionReceptor:
     """A receptor where the cut meets or passes it."""
 
@@ -381,6 +397,8 @@ class SectionDefinition:
     balance: Balance
     implied: tuple[Implied, ...]
     actions_without_twin: tuple[Action, ...]
+    losses: tuple[SupportLoss, ...] = ()
+    """The worst three losses of a single support among the rows of the section."""
     receptors: tuple[SectionReceptor, ...] = ()
     questions: tuple[Question, ...] = ()
     assumptions: tuple[Assumption, ...] = ()

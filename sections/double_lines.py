@@ -3,7 +3,7 @@
 from __future__ import annotations
 
 from collections.abc import Sequence
-from dataclasses import dataclass
+from dataclasses import dataclass, replace
 
 import numpy as np
 import shapely
@@ -11,11 +11,16 @@ from scipy.spatial import cKDTree
 
 from ingest.model import Point, WallPiece
 from ingest.trail import Question, Reading
-from sections.face_pairs import THICKEST, Faces, Pair, candidates, drop_doubles, pair_faces
+from sections.face_pairs import THICKEST, Faces, Pair, beside, candidates, drop_doubles, pair_faces
 from sections.model import Bools, Floats, Ints
 
 CAP_JOINT = 0.03
 """Ends of a cap and of the faces it closes meet within this, m."""
+THIN = ("sheet", "king_post", "none")
+"""Walls that are drawn as one line: two of them side by side are two walls."""
+MOST_PAIRED = 0.7
+BUILDING_WALL, EMBEDDED_WALL = 0.6, 1.25
+"""Distance of two lines up to which they are faces: of any walls, or of walls of one thickness, m (judgement)."""
 ROUND_A_CORNER = 2.2
 """A left-over face shorter than this many thicknesses only goes round a corner of a wall found already."""
 
@@ -38,6 +43,7 @@ def centre_lines(pieces: Sequence[tuple[int, WallPiece]], origin: Point) -> tupl
     Returns:
         The centre lines, and a question for every place where faces could be paired otherwise.
     """
+    pieces, asked = _read_as_faces(pieces, origin)
     axes = [(i, _vertices(piece, origin)) for i, piece in pieces if not _has_faces(piece)]
     faces = _faces([(i, piece) for i, piece in pieces if _has_faces(piece)], origin)
     if not len(faces.p):
@@ -53,7 +59,58 @@ def centre_lines(pieces: Sequence[tuple[int, WallPiece]], origin: Point) -> tupl
         left = _left_over(pool, paired, across)
     questions = tuple(_question(k, a, b, origin) for k, (a, b) in enumerate(unsure))
     single = tuple(sorted({i for i, _ in left}))
-    return Centred(axes=(*axes, *left), middles=(*own, *across), single=single), questions
+    return Centred(axes=(*axes, *left), middles=(*own, *across), single=single), (*asked, *questions)
+
+
+def _read_as_faces(
+    pieces: Sequence[tuple[int, WallPiece]], origin: Point
+) -> tuple[Sequence[tuple[int, WallPiece]], list[Question]]:  # fmt: skip
+    """Lines without a thickness that run beside each other in pairs nearly everywhere are faces, not axes."""
+    groups: dict[tuple[str, str], list[tuple[int, WallPiece]]] = {}
+    for i, piece in pieces:
+        if piece.drawn == "axis" and piece.thickness is None and piece.kind not in THIN:
+            groups.setdefault((piece.layer, piece.kind), []).append((i, piece))
+    as_faces: set[int] = set()
+    asked: list[Question] = []
+    for (layer, _), members in sorted(groups.items()):
+        thick = _paired_thickness(drop_doubles(_faces(members, origin)))
+        if thick is not None:
+            as_faces |= {i for i, _ in members}
+            asked.append(_face_question(len(asked) + 1, layer, thick))
+    return [(i, replace(p, drawn="face") if i in as_faces else p) for i, p in pieces], asked
+
+
+def _paired_thickness(faces: Faces) -> float | None:
+    """Usual distance between lines if most of their length has a partner at about that distance."""
+    pairs = candidates(faces, within=False)
+    if not len(pairs):
+        return None
+    low, high, offset = beside(faces, pairs)
+    shared = high - low
+    covered = np.zeros(len(faces.p))
+    for side in (0, 1):
+        np.add.at(covered, pairs[:, side], shared)
+    total = float(faces.length.sum())
+    if float(np.minimum(covered, faces.length).sum()) < MOST_PAIRED * total:
+        return None
+    order = np.argsort(offset)
+    thick = float(offset[order[np.searchsorted(np.cumsum(shared[order]), 0.5 * shared.sum())]])
+    even = float(shared[np.abs(offset - thick) <= 0.05].sum()) >= 0.8 * float(shared.sum())
+    return thick if thick <= BUILDING_WALL or (even and thick <= EMBEDDED_WALL) else None
+
+
+def _face_question(number: int, layer: str, thick: float) -> Question:
+    return Question(
+        id=f"faces-or-axes-{number}",
+        about=f"the wall lines of layer {layer or '0'}",
+        readings=(
+            Reading(reading=f"the two faces of walls about {thick:.2f} m thick",
+                    evidence="nearly all run beside each other in pairs", confidence=0.8),
+            Reading(reading="axes of walls that stand beside each other", evidence="they give no thickness",
+                    confidence=0.2),
+        ),
+        brief_line=f'[[roles]] match = {{layer = "{layer or "0"}"}}, role = "wall"',
+    )  # fmt: skip
 
 
 def _has_faces(piece: WallPiece) -> bool:

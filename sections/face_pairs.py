@@ -93,8 +93,7 @@ def candidates(faces: Faces, within: bool) -> Ints:
     u = faces.along
     ok = np.abs((u[a] * u[b]).sum(axis=1)) >= np.cos(np.radians(PARALLEL))
     a, b = a[ok], b[ok]
-    low, high = _overlap(faces, a, b)
-    offset = _offset(faces, a, b, 0.5 * (low + high))
+    low, high, offset = beside(faces, np.column_stack((a, b)))
     shorter = np.minimum(faces.length[a], faces.length[b])
     bent = np.abs((u[a] * u[b]).sum(axis=1)) < np.cos(np.radians(STRAIGHT))
     ok = (high - low >= np.where(bent, np.maximum(0.2 * shorter, SLIVER), 2 * SLIVER)) & (offset >= THINNEST) & (offset <= THICKEST)
@@ -116,6 +115,13 @@ def _usual(body: Ints, offset: Floats, length: Floats) -> Bools:
         middle = offset[order[int(np.searchsorted(along, 0.5 * along[-1]))]]
         ok[mine] = offset[mine] <= MUCH_THICKER * middle
     return ok
+
+
+def beside(faces: Faces, pairs: Ints) -> tuple[Floats, Floats, Floats]:
+    """Stretch of the first face that lies beside the second (from, to along it), and how far apart they are there, m."""
+    a, b = pairs.T
+    low, high = _overlap(faces, a, b)
+    return low, high, _offset(faces, a, b, 0.5 * (low + high))
 
 
 def _overlap(faces: Faces, a: Ints, b: Ints) -> tuple[Floats, Floats]:

@@ -13,11 +13,12 @@ from typing import NamedTuple
 import numpy as np
 
 from ingest.model import Limits, Load, Site
-from sections.along import Construction, construction_of, cover_of
+from sections.along import cover_of
 from sections.chainage import ON
 from sections.ground import layers_along, water_along
 from sections.model import Bools, Floats, FoundPit, Ints, SupportRow
 from sections.signature import STRATA
+from sections.wall_changes import Construction, construction_of
 
 SIZE = 0.01
 """Thickness, diameter and pile centres within this fraction count as one size (judgement)."""

@@ -14,8 +14,9 @@ from typing import Literal
 import numpy as np
 
 from ingest.model import OUTPUTS
-from sections.along import changes_of, distance_along, find_ends, gaps_of, steps_of
+from sections.along import distance_along, find_ends, gaps_of, steps_of
 from sections.model import Bools, Floats, FoundPit
+from sections.wall_changes import changes_of
 
 Class = Literal["far", "near", "change", "unlike", "rows"]
 

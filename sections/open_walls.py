@@ -19,6 +19,9 @@ NEARBY = 80.0
 BENT = 60.0
 """A way that turns by more than this in all closes in on its excavated side, degrees (common practice, no source)."""
 
+CLOSED_IN = 170.0
+"""A way that turns by this much in all leaves no doubt, degrees."""
+
 
 @dataclass(frozen=True, kw_only=True)
 class Witness:
@@ -66,7 +69,7 @@ def oriented(trace: Trace, witnesses: Sequence[Witness], origin: Point) -> tuple
     else:
         evidence, value = "nothing beside it tells; south or west to north or east as drawn", _northward(points)
     turned = trace if value > 0 else trace.reversed()
-    if votes and abs(bend) < BENT or votes * bend > 0:
+    if votes and abs(bend) < BENT or votes * bend > 0 or (not votes and abs(bend) >= CLOSED_IN):
         return turned, None
     return turned, _question(turned, evidence, origin, 0.7 if votes or abs(bend) >= BENT else 0.5)
 

@@ -8,6 +8,7 @@ from dataclasses import dataclass, replace
 import numpy as np
 import shapely
 
+from sections.chords import read_chords
 from sections.joints import meet
 from sections.model import Bools, Floats, Ints
 from sections.sides import Samples, Side, fit_side
@@ -100,7 +101,7 @@ def _as_one(samples: Samples, a: Side, b: Side) -> Side | None:
     one = fit_side(both, 0, len(keep), "arc" in forms)
     off = both.xy - one.centre if one.form == "arc" else both.xy - one.first
     away = np.abs(np.hypot(*off.T) - one.radius) if one.form == "arc" else np.abs(cross(one.ahead, off))
-    if away.max() > SAME_LINE:
+    if away.max() > SAME_LINE * max(1.0, 0.5 * samples.rough):
         return None
     return replace(one, block=(a.block[0], b.block[1]))
 
@@ -124,7 +125,7 @@ def build_outline(samples: Samples, sides: Sequence[Side], short: float) -> Outl
         sides: Sides in order.
         short: Sides shorter than this between two that meet are only a cut across the corner, m.
     """
-    kept = merge_sides(samples, sides)
+    kept = read_chords(merge_sides(samples, sides), samples.closed)
     if len(kept) == 1 and samples.closed:
         return full_circle(kept[0])
     return _assemble(samples, _drop_cuts(samples, kept, short))

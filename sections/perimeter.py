@@ -50,14 +50,14 @@ def find_shapes(site: Site) -> Shapes:
         there is neither a wall nor a slab to go by.
     """
     origin = _origin(site)
-    lines, questions = gather_lines(site, origin)
+    lines, seen, questions = gather_lines(site, origin)
     choice = choose_rings(site, lines, origin) if lines else None
     if choice is None or not choice.traces:
         return _from_slab(site)
     ways, asked = _ways(site, choice.traces, lines, origin)
     made = [_shape(site, way, lines, origin, start) for way, start in zip(ways, _starts(site, ways, origin), strict=True)]
     shapes, findings = _numbered(site, made)
-    every = [*choice.findings, *findings]
+    every = [*seen, *choice.findings, *findings]
     numbered = tuple(replace(f, id=f"shape-{k + 1}") for k, f in enumerate(every))
     return shapes, numbered, (*questions, *choice.questions, *asked)
 

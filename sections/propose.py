@@ -11,8 +11,9 @@ from ingest.model import Site
 from ingest.trail import Assumption, Finding, NotAssessed, Question
 from sections.candidates import cut_of
 from sections.choice import Choice, Chosen, choose
+from sections.criteria.screening import variants_of
 from sections.define import Judged, define_section, wall_names
-from sections.definition import SectionDefinition
+from sections.definition import SectionDefinition, SupportLoss
 from sections.find import find_pits
 from sections.judged import JudgedPit, judge_stations
 from sections.model import (
@@ -25,6 +26,8 @@ from sections.model import (
     StationTable,
 )
 from sections.perimeter import find_shapes
+from sections.screening.losses import find_losses
+from sections.screening.scene import make_scene
 from sections.severity import find_severity, severity_at
 from sections.verdict import worst_first
 
@@ -55,11 +58,12 @@ def propose(site: Site, progress: Tell = _silent) -> tuple[Proposal, tuple[Secti
     rings = {i: judge_stations(site, found, axisymmetric=True) for i, found in enumerate(founds) if found.stations.ring}
     progress("choose the cuts", 2, 4)
     choice = choose(site, plane, rings=rings) if founds else None
+    losses = [_losses(site, found) for found in founds]
     rows, definitions = [], []
     for number, one in enumerate(choice.chosen if choice else (), start=1):
         progress("define sections", number, len(choice.chosen if choice else ()))
         judged = rings[one.candidate.pit] if one.candidate.kind == "axisymmetric" else plane[one.candidate.pit]
-        row, definition = define_chosen(site, founds, judged, one, f"S{number}")
+        row, definition = define_chosen(site, founds, judged, one, f"S{number}", losses[one.candidate.pit])
         rows.append(row)
         definitions.append(definition)
     proposal = Proposal(
@@ -92,7 +96,12 @@ def propose(site: Site, progress: Tell = _silent) -> tuple[Proposal, tuple[Secti
 
 
 def define_chosen(
-    site: Site, founds: Sequence[FoundPit], judged: JudgedPit, chosen: Chosen, name: str
+    site: Site,
+    founds: Sequence[FoundPit],
+    judged: JudgedPit,
+    chosen: Chosen,
+    name: str,
+    losses: tuple[SupportLoss, ...] = (),
 ) -> tuple[ChosenSection, SectionDefinition]:
     """Define one chosen cut and list it as the proposal does."""
     cut = cut_of(chosen.candidate, founds)
@@ -121,6 +130,7 @@ def define_chosen(
             verdicts=verdicts,
             represents=chosen.represents,
             score=score,
+            losses=losses,
             stands_for=stands_for or None,
         ),
     )
@@ -136,6 +146,11 @@ def define_chosen(
         represents=chosen.represents,
     )
     return row, definition
+
+
+def _losses(site: Site, found: FoundPit) -> tuple[SupportLoss, ...]:
+    scene, _ = make_scene(site, found)
+    return () if scene is None else find_losses(scene, variants_of(scene)[0])
 
 
 def _length(found: FoundPit, start: float, to: float) -> float:

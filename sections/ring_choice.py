@@ -15,8 +15,16 @@ from scipy.sparse import coo_array
 from scipy.sparse.csgraph import connected_components
 
 from ingest.model import Point, Site
-from ingest.trail import Finding, Question, Reading
+from ingest.trail import Finding, Question
 from sections.model import Bools, Floats
+from sections.ring_notes import (
+    aside_notes,
+    bridge_notes,
+    gap_notes,
+    inner_ring_question,
+    shallow_notes,
+    twin_note,
+)
 from sections.rings import Trace, find_open, find_rings
 from sections.wall_graph import WallGraph, build_graph
 from sections.wall_joins import close_joins
@@ -50,21 +58,21 @@ def choose_rings(site: Site, lines: Sequence[WallLine], origin: Point) -> Choice
     if not embedded.any():
         return _building_rings(site, lines, origin)
     graph = _network(site, lines, embedded & ~shallow)
-    rings = _pits(find_rings(graph, np.ones(len(graph.ends), dtype=bool)))
-    rings, findings = _once(rings, lines, origin)
-    rest = _unused(graph, rings)
-    loose, inside = _outside(rest, rings)
+    every = _pits(find_rings(graph, np.ones(len(graph.ends), dtype=bool)))
+    rings, findings = _once(every, lines, origin)
+    rest = _unused(graph, every)
+    loose, inside, wings = _beside(rest, rings)
     closing = _closing_rings(site, lines, embedded, rest.pick(loose)) if loose.any() else []
     if closing:
         rings, more = _once([*rings, *closing], lines, origin)
         findings += more
         loose &= ~np.isin(rest.line, np.concatenate([_lines_of(ring) for ring in closing]))
-    ways = [way for way in find_open(rest.pick(loose)) if _length(way) >= LEAST_OPEN]
-    findings += [_gap(way, origin) for way in ways if _nearly_closed(way)]
-    findings += _inside_note(rest.pick(inside), origin)
+    ways = [way for way in find_open(rest.pick(loose)) if way.length >= LEAST_OPEN]
     if not rings and not ways:
         return _building_rings(site, lines, origin)
-    return Choice(traces=(*rings, *ways), findings=(*findings, *_shallow_note(site, lines, shallow, origin)))
+    findings += gap_notes(ways, origin) + bridge_notes([*rings, *ways], lines, site.limits.plan, origin)
+    findings += aside_notes(rest, inside, wings, LEAST_OPEN, origin) + shallow_notes(site, lines, shallow, origin)
+    return Choice(traces=(*rings, *ways), findings=tuple(findings))
 
 
 def _is_shallow(site: Site, line: WallLine) -> bool:
@@ -95,10 +103,6 @@ def area_of(points: Floats) -> float:
     return float(0.5 * (x @ np.roll(y, -1) - y @ np.roll(x, -1)))
 
 
-def _length(way: Trace) -> float:
-    return float(_spans(way.graph)[way.edges].sum())
-
-
 def _lines_of(ring: Trace) -> Floats:
     return np.unique(ring.graph.line[ring.edges])
 
@@ -115,11 +119,7 @@ def _once(rings: Sequence[Trace], lines: Sequence[WallLine], origin: Point) -> t
             kept.append(k)
             continue
         x, y = areas[k].representative_point().coords[0]
-        findings.append(Finding(
-            id="", code="wall-drawn-twice", severity="note", where=f"({x + origin[0]:.2f}, {y + origin[1]:.2f})",
-            text="Two rings lie closer together than a pit could: one wall drawn twice, or a lining. "
-                 "The one of better evidence (piles, then faces, then lines) is taken.",
-        ))  # fmt: skip
+        findings.append(twin_note((x + origin[0], y + origin[1])))
     return [rings[k] for k in sorted(kept)], findings
 
 
@@ -144,11 +144,12 @@ def _unused(graph: WallGraph, rings: Sequence[Trace]) -> WallGraph:
     return graph.pick(free)
 
 
-def _outside(rest: WallGraph, rings: Sequence[Trace]) -> tuple[Bools, Bools]:
-    """Which left-over edges stand free outside all rings, and which lie inside one; wings at a ring are neither."""
+def _beside(rest: WallGraph, rings: Sequence[Trace]) -> tuple[Bools, Bools, Bools]:
+    """Which left-over edges stand free outside all rings, which lie inside one, and which run on from one."""
     count = len(rest.ends)
     if not count:
-        return np.zeros(0, dtype=bool), np.zeros(0, dtype=bool)
+        none = np.zeros(0, dtype=bool)
+        return none, none, none
     on_ring = np.zeros(len(rest.xy), dtype=bool)
     inside_node = np.zeros(len(rest.xy), dtype=bool)
     for ring in rings:
@@ -157,9 +158,9 @@ def _outside(rest: WallGraph, rings: Sequence[Trace]) -> tuple[Bools, Bools]:
     size = (len(rest.xy),) * 2
     total, label = connected_components(coo_array((np.ones(count), rest.ends.T), shape=size), directed=False)
     touches = np.bincount(label, on_ring & (rest.degree > 0), minlength=total) > 0
-    within = np.bincount(label, inside_node, minlength=total) > 0
+    within = np.bincount(label, inside_node & ~on_ring, minlength=total) > 0
     part = label[rest.ends[:, 0]]
-    return ~touches[part] & ~within[part], within[part]
+    return ~touches[part] & ~within[part], within[part], touches[part] & ~within[part]
 
 
 def _closing_rings(site: Site, lines: Sequence[WallLine], embedded: Bools, loose: WallGraph) -> list[Trace]:
@@ -176,7 +177,7 @@ def _closing_rings(site: Site, lines: Sequence[WallLine], embedded: Bools, loose
         graph = _network(site, lines, embedded | others)
         rings = [ring for ring in _pits(find_rings(graph, embedded[graph.line])) if _uses(ring, loose)]
         rings = [ring for ring in rings if least <= _share(ring, embedded) < 1.0]
-        if rings and sum(_share(ring, embedded) * _length(ring) for ring in rings) >= wanted:
+        if rings and sum(_share(ring, embedded) * ring.length for ring in rings) >= wanted:
             return rings
     return []
 
@@ -204,7 +205,7 @@ def _building_rings(site: Site, lines: Sequence[WallLine], origin: Point) -> Cho
         rings = sorted(_pits(find_rings(graph, np.zeros(len(graph.ends), dtype=bool))), key=lambda r: -area_of(r.points))
         if rings:
             return _outermost(rings, lines, origin)
-    ways = [way for way in find_open(_network(site, lines, lowest)) if _length(way) >= LEAST_OPEN]
+    ways = [way for way in find_open(_network(site, lines, lowest)) if way.length >= LEAST_OPEN]
     return Choice(traces=tuple(ways[:1]) if not site.plates else ())
 
 
@@ -217,58 +218,6 @@ def _outermost(rings: Sequence[Trace], lines: Sequence[WallLine], origin: Point)
         if outer is None and area.area >= LEAST_SHARE * areas[0].area:
             kept.append(k)
         elif outer is not None and area.area >= LEAST_SHARE * areas[outer].area and not _same_wall(areas[outer], area):
-            x, y = np.array(area.representative_point().coords[0]) + origin
-            questions.append(_inner_question(len(questions) + 1, x, y))
+            x, y = area.representative_point().coords[0]
+            questions.append(inner_ring_question(len(questions) + 1, (x + origin[0], y + origin[1])))
     return Choice(traces=tuple(rings[k] for k in kept), questions=tuple(questions))
-
-
-def _inner_question(number: int, x: float, y: float) -> Question:
-    return Question(
-        id=f"inner-ring-{number}",
-        about=f"the closed ring of walls near ({x:.2f}, {y:.2f}) inside another",
-        readings=(
-            Reading(reading="walls of the building inside the pit", evidence="no kind of wall is known", confidence=0.7),
-            Reading(reading="a deeper pit within the pit", evidence="it is closed and not small", confidence=0.3),
-        ),
-        brief_line='[[roles]] match = {layer = "..."}, role = "wall", wall_kind = "sheet"',
-    )
-
-
-def _nearly_closed(way: Trace) -> bool:
-    gap = float(np.hypot(*(way.points[-1] - way.points[0])))
-    return gap <= 0.25 * _length(way)
-
-
-def _gap(way: Trace, origin: Point) -> Finding:
-    a, b = way.points[0] + origin, way.points[-1] + origin
-    gap = float(np.hypot(*(b - a)))
-    return Finding(
-        id="", code="wall-gap", severity="check", where=f"({a[0]:.2f}, {a[1]:.2f}) to ({b[0]:.2f}, {b[1]:.2f})",
-        text=f"{gap:.2f} m between the two ends of the wall: too far to close. It is read as an open perimeter.",
-    )  # fmt: skip
-
-
-def _inside_note(rest: WallGraph, origin: Point) -> list[Finding]:
-    found = []
-    for way in find_open(rest):
-        length = _length(way)
-        if length >= LEAST_OPEN:
-            x, y = way.points.mean(axis=0) + origin
-            found.append(Finding(
-                id="", code="wall-inside-pit", severity="check", where=f"({x:.2f}, {y:.2f})",
-                text=f"A retaining wall of {length:.1f} m stands inside a pit without closing a ring. "
-                     "It is not part of the perimeter and was not assessed.",
-            ))  # fmt: skip
-    return found
-
-
-def _shallow_note(site: Site, lines: Sequence[WallLine], shallow: Bools, origin: Point) -> list[Finding]:
-    if not shallow.any():
-        return []
-    toe = min(line.toe for line, is_shallow in zip(lines, shallow, strict=True) if is_shallow and line.toe is not None)
-    x, y = lines[int(np.flatnonzero(shallow)[0])].points[0] + origin
-    return [Finding(
-        id="", code="wall-above-formation", severity="note", where=f"({x:.2f}, {y:.2f})",
-        text=f"{int(shallow.sum())} wall lines end above half the depth of the dig (lowest toe {toe:.2f} m, formation "
-             f"{site.formation:.2f} m) and were not taken as retaining.",
-    )]  # fmt: skip

@@ -38,6 +38,12 @@ class Trace:
         """Plan points in order."""
         return self.graph.xy[self.nodes]
 
+    @property
+    def length(self) -> float:
+        """Length of the way, m."""
+        ends = self.graph.xy[self.graph.ends[self.edges]]
+        return float(np.hypot(*(ends[:, 1] - ends[:, 0]).T).sum())
+
     def reversed(self) -> Trace:
         """The same way walked backwards."""
         return Trace(graph=self.graph, edges=self.edges[::-1], forward=~self.forward[::-1], closed=self.closed)

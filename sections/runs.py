@@ -68,7 +68,27 @@ def stretches_along(site: Site, outline: Outline, trace: Trace, lines: Sequence[
         one = lines[line[k]]
         bits.append(Stretch(start=float(start[k]), stop=float(stop[k]), kind=one.kind, piece=one.piece,
                             thickness=one.thickness))  # fmt: skip
-    return _settled(site, sorted(bits, key=lambda bit: (bit.start, bit.stop, bit.pile)))
+    bits.sort(key=lambda bit: (bit.start, bit.stop, bit.pile))
+    return _settled(site, _between_piles(bits, lines, outline.length))
+
+
+def _between_piles(bits: Sequence[Stretch], lines: Sequence[WallLine], length: float) -> list[Stretch]:
+    """The bits without drawn stretches from one pile to its neighbour: a line drawn along a row is no wall of its own."""
+    pace = {int(p): max(one.pace) for one in lines for p in one.piles}
+    piles = [bit for bit in bits if bit.pile >= 0]
+    if len(piles) < 2:
+        return list(bits)
+    at = np.array([bit.start for bit in piles])
+    wide = 1.6 * np.array([pace[bit.pile] for bit in piles])
+    kept = []
+    for bit in bits:
+        after = int(np.searchsorted(at, bit.stop - SPECK)) % len(at)
+        before = int(np.searchsorted(at, bit.start + SPECK, side="right")) - 1
+        gap = (at[after] - at[before]) % length
+        inside = (bit.stop - bit.start) <= gap <= max(wide[after], wide[before])
+        if bit.pile >= 0 or not inside:
+            kept.append(bit)
+    return kept
 
 
 def _settled(site: Site, bits: list[Stretch]) -> list[Stretch]:

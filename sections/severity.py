@@ -148,11 +148,11 @@ def rank_severity(vectors: Sequence[Mapping[str, float | None]]) -> tuple[int, .
     For movement and stability only; no index is traded against another.
     """
 
-    def key(position: int) -> tuple[tuple[int, float], ...]:
+    def _key(position: int) -> tuple[tuple[int, float], ...]:
         values = ((vectors[position].get(name), larger) for name, larger in ORDER)
         return tuple((1, 0.0) if value is None else (0, -value if larger else value) for value, larger in values)
 
-    return tuple(sorted(range(len(vectors)), key=lambda position: (key(position), position)))
+    return tuple(sorted(range(len(vectors)), key=lambda position: (_key(position), position)))
 
 
 def _over(distance: Floats, depth: Floats) -> Floats:

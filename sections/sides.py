@@ -8,7 +8,7 @@ Jackson et al. 2005, recalled): squared distance over squared tolerance, plus a 
 from __future__ import annotations
 
 from collections.abc import Sequence
-from dataclasses import dataclass
+from dataclasses import dataclass, replace
 from typing import Literal
 
 import numpy as np
@@ -24,6 +24,9 @@ TOLERANCE = 0.005
 """How far points of one side are expected to lie from it, m; rows of piles set out less well raise it."""
 MOST_NOISE = 0.008
 """Scatter above this is no scatter but the shape of the row, m."""
+ROUGHER = (3.0, 8.0)
+RAGGED_TURN = 15.0
+"""Bends to and fro of less than this are scatter, degrees."""
 LINE_PRICE, ARC_PRICE, POINT_PRICE = 14.0, 20.0, 8.0
 MOST_RADIUS, LEAST_RADIUS = 2000.0, 0.6
 LEAST_RISE = 0.03
@@ -42,6 +45,7 @@ class Samples:
         pile: (n,) True for pile centres.
         middle: (n,) True for middles of drawn segments, which lie off the arc that chords stand for.
         closed: True for a ring.
+        rough: Factor on the tolerance where the points turn out not to lie in line.
     """
 
     xy: Floats
@@ -50,11 +54,12 @@ class Samples:
     pile: Bools
     middle: Bools
     closed: bool
+    rough: float = 1.0
 
     def pick(self, keep: Ints | Bools) -> Samples:
         """Some of the samples, or all in another order."""
         return Samples(xy=self.xy[keep], opens=self.opens[keep], weight=self.weight[keep], pile=self.pile[keep],
-                       middle=self.middle[keep], closed=self.closed)  # fmt: skip
+                       middle=self.middle[keep], closed=self.closed, rough=self.rough)  # fmt: skip
 
 
 @dataclass(frozen=True, kw_only=True, eq=False)
@@ -147,7 +152,7 @@ def tolerance_of(samples: Samples) -> Floats:
         if row.any():
             noise = float(np.median(across[row])) / 0.6745 / np.sqrt(20.0)
     noise = noise if noise < MOST_NOISE else 0.0
-    return np.where(samples.pile, max(1.5 * noise, TOLERANCE), TOLERANCE)
+    return samples.rough * np.where(samples.pile, max(1.5 * noise, TOLERANCE), TOLERANCE)
 
 
 def find_sides(samples: Samples) -> tuple[Samples, tuple[Side, ...]]:
@@ -160,11 +165,24 @@ def find_sides(samples: Samples) -> tuple[Samples, tuple[Side, ...]]:
         The samples as they were split last, and the sides.
     """
     sides = _split(samples)
+    for rough in ROUGHER:
+        if not _is_ragged(sides):
+            break
+        samples = replace(samples, rough=rough)
+        sides = _split(samples)
     if samples.closed and len(sides) > 2:
         start = sides[len(sides) // 2].block[0]
         samples = samples.pick(np.roll(np.arange(len(samples.xy)), -start))
         sides = _split(samples)
     return samples, sides
+
+
+def _is_ragged(sides: Sequence[Side]) -> bool:
+    """Many small bends to and fro: piles that were not set out in line, or measured as built."""
+    ahead = np.array([side.ahead for side in sides if side.form == "line"]).reshape(-1, 2)
+    turn = np.degrees(np.arctan2(cross(ahead[:-1], ahead[1:]), (ahead[:-1] * ahead[1:]).sum(axis=1)))
+    small = turn[np.abs(turn) < RAGGED_TURN]
+    return bool(len(small) >= 4 and min((small > 0).mean(), (small < 0).mean()) >= 0.25)
 
 
 def _split(samples: Samples) -> tuple[Side, ...]:

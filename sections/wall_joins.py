@@ -18,6 +18,8 @@ NEXT_PILE = 1.25
 """The end of a row of piles joins another end within this many spacings, whatever the direction."""
 NEAR_PILE = 0.4
 """A wall that meets a bay within this share of its length from a pile meets the pile: no pile is cut off."""
+FOREIGN = 0.6
+"""Spacings by which a row of piles is readier to meet piles than to meet a drawn line."""
 FACING = 25.0
 """Two ends within this of looking straight at each other continue one line, degrees."""
 
@@ -162,9 +164,10 @@ def _end_to_edge(graph: WallGraph, ends: LooseEnds, tolerance: float) -> list[Jo
     t = ((meet - graph.xy[a]) * along).sum(axis=1) / span
     at_node = np.minimum(to_a, to_b) <= np.where(is_bay, NEAR_PILE * span, tolerance)
     nearer = np.where(to_a < to_b, a, b)
+    cost = s + np.where(is_bay, 0.0, FOREIGN * ends.pace[end])
     return [
-        Join(cost=float(s[k]), end=int(end[k]), node=int(nearer[k])) if at_node[k] else
-        Join(cost=float(s[k]), end=int(end[k]), edge=int(edge[k]), point=(float(meet[k, 0]), float(meet[k, 1])))
+        Join(cost=float(cost[k]), end=int(end[k]), node=int(nearer[k])) if at_node[k] else
+        Join(cost=float(cost[k]), end=int(end[k]), edge=int(edge[k]), point=(float(meet[k, 0]), float(meet[k, 1])))
         for k in np.flatnonzero(ok & (s >= 0) & (t >= -tolerance) & (t <= span + tolerance))
     ]  # fmt: skip
 

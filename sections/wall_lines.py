@@ -2,19 +2,21 @@
 
 from __future__ import annotations
 
-from collections.abc import Iterable
+from collections.abc import Iterable, Sequence
 from dataclasses import dataclass
 
 import numpy as np
 
 from ingest.model import Point, Site, WallKind, WallPiece
-from ingest.trail import Question
+from ingest.trail import Finding, Question
 from sections.double_lines import centre_lines
 from sections.model import Floats, Ints
 from sections.pile_rows import EMBEDDED, PileRow, find_pile_rows, pile_size
 
 PLAIN_REACH = 0.6
 """How far the end of a line of unknown thickness is extended to meet another, m (judgement)."""
+WIDEST_FLANGE = 1.0
+"""Longest piece of the profile of sheet piling, m (common practice, no source)."""
 NO_PILES: Ints = np.zeros(0, dtype=np.int64)
 
 
@@ -52,18 +54,35 @@ class WallLine:
         return self.kind in EMBEDDED
 
 
-def gather_lines(site: Site, origin: Point) -> tuple[tuple[WallLine, ...], tuple[Question, ...]]:
+def gather_lines(
+    site: Site, origin: Point
+) -> tuple[tuple[WallLine, ...], tuple[Finding, ...], tuple[Question, ...]]:  # fmt: skip
     """All wall lines of a site relative to `origin`, in an order that does not depend on the order of the input."""
     rows = tuple(_row_line(site, row, origin) for row in find_pile_rows(site.piles))
-    drawn = sorted(range(len(site.walls)), key=lambda i: _place(site.walls[i]))
+    usable = [i for i, piece in enumerate(site.walls) if len(piece.axis) > 1]
+    drawn = sorted(usable, key=lambda i: _place(site.walls[i]))
     centred, questions = centre_lines([(i, site.walls[i]) for i in drawn], origin)
     lines = [_drawn_line(site.walls[i], i, points, None) for i, points in centred.axes]
     lines += [_drawn_line(site.walls[i], i, points, t) for i, points, t in centred.middles]
-    return (*rows, *(line for line in lines if len(line.points) > 1)), questions
+    return (*rows, *(line for line in lines if len(line.points) > 1)), _single_notes(site, centred.single), questions
+
+
+def _single_notes(site: Site, single: Sequence[int]) -> tuple[Finding, ...]:
+    """Faces that have no second face."""
+    if not single:
+        return ()
+    pieces = [site.walls[i] for i in single]
+    names = ", ".join(dict.fromkeys(piece.name or piece.id for piece in pieces[:5])) + (" ..." if single[5:] else "")
+    return (Finding(
+        id="", code="single-face", severity="check", where=names,
+        text=f"{len(single)} wall faces have no second face. The line drawn is taken as the wall axis: half a thickness "
+             "may be missing.",
+        sources=tuple(source for piece in pieces for source in piece.sources),
+    ),)  # fmt: skip
 
 
 def _place(piece: WallPiece) -> tuple[Point, Point, str]:
-    ends = sorted((piece.axis[0], piece.axis[-1])) if piece.axis else [(0.0, 0.0)] * 2
+    ends = sorted((piece.axis[0], piece.axis[-1]))
     return ends[0], ends[1], piece.id
 
 
@@ -92,11 +111,14 @@ def lowest(levels: Iterable[float | None]) -> float | None:
 
 
 def _drawn_line(piece: WallPiece, index: int, points: Floats, thickness: float | None) -> WallLine:
-    step = np.hypot(*np.diff(points, axis=0).T) > 1e-6
+    points = points[np.append(True, np.hypot(*np.diff(points, axis=0).T) > 1e-6)]
+    if piece.kind == "sheet":
+        points = webs_middle(points)
     thick = thickness if thickness is not None else piece.thickness
     reach = PLAIN_REACH if thick is None else max(1.3 * thick, 0.3)
+    reach = max(reach, WIDEST_FLANGE) if piece.kind == "sheet" else reach
     return WallLine(
-        points=points[np.append(True, step)],
+        points=points,
         kind=piece.kind,
         thickness=thick,
         reach=(reach, reach),
@@ -105,3 +127,26 @@ def _drawn_line(piece: WallPiece, index: int, points: Floats, thickness: float |
         toe=piece.toe,
         paired=thickness is not None,
     )
+
+
+def webs_middle(points: Floats) -> Floats:
+    """Axis of sheet piling drawn by its profile: the middles of its webs; any other line is returned as it is.
+
+    A profile turns left, right, right, left ... by equal angles at short steps, webs and flanges in turn.
+    """
+    if len(points) < 8:
+        return points
+    step = np.diff(points, axis=0)
+    span = np.hypot(*step.T)
+    angle = np.arctan2(step[:, 1], step[:, 0])
+    turn = (np.diff(angle) + np.pi) % (2 * np.pi) - np.pi
+    bends = np.abs(turn) > np.radians(20.0)
+    back = np.sign(turn[:-2]) == -np.sign(turn[2:])
+    if span.max() > WIDEST_FLANGE or bends.mean() < 0.9 or back.mean() < 0.8:
+        return points
+    chord = points[4:] - points[:-4]
+    along = np.arctan2(chord[:, 1], chord[:, 0])[np.clip(np.arange(len(step)) - 2, 0, len(chord) - 1)]
+    off = np.abs((angle - along + np.pi) % (2 * np.pi) - np.pi)
+    web = off > 0.5 * float(off.max())
+    middles = 0.5 * (points[:-1] + points[1:])[web]
+    return np.asarray(middles) if len(middles) > 1 else points

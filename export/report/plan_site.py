@@ -24,6 +24,7 @@ def to_world(frame: ProposalFrame) -> ToWorld:
     east, north_, _ = frame.offset
 
     def world(point: tuple[float, ...]) -> Point:
+        """Local to world, m."""
         return east + c * point[0] - s * point[1], north_ + s * point[0] + c * point[1]
 
     return world

@@ -11,6 +11,7 @@ from export.report.section_tables import (
     criteria_table,
     implied_table,
     load_table,
+    losses_table,
     material_table,
     smear_table,
     stage_table,
@@ -59,6 +60,8 @@ def section_body(definition: SectionDefinition, proposal: Proposal, site: Site) 
             tag("h3", "What the section implies in three dimensions"),
             spatial_figure(definition, proposal, site),
             implied_table(definition),
+            tag("h3", "Loss of one support (accidental, not in the bands above)"),
+            losses_table(definition),
             tag("h3", "What the section cannot show"),
             actions_table(definition),
         ]

@@ -258,3 +258,19 @@ def actions_table(definition: SectionDefinition) -> Html:
         for one in definition.actions_without_twin
     ]
     return table(f"{definition.id}: actions with no 2D twin", ["Action", "#Size", "Where"], rows)
+
+
+def losses_table(definition: SectionDefinition) -> Html:
+    """The worst losses of one support: an accidental situation beside the section, never in its bands."""
+    rows = [
+        [
+            f"{one.member} at ch {fixed(one.at)}",
+            fixed(one.gap_movement),
+            fixed(one.neighbour_force),
+            fixed(one.wall_moment_excavated_face),
+            fixed(one.wall_moment_retained_face),
+        ]
+        for one in definition.losses
+    ]
+    heads = ["Support lost", "#Movement of its place", "#Force of its neighbour", "#Moment, excavated face"]
+    return table(f"{definition.id}: times the value with all supports", [*heads, "#Moment, retained face"], rows)

@@ -153,6 +153,7 @@ def _tone(corner: list[list[float]], middle: list[float] | None) -> int | None:
 
 def _palette() -> bytes:
     def mixed(colour: tuple[int, int, int], share: float) -> bytes:
+        """A colour thinned with paper."""
         return bytes(round(p + (c - p) * share) for p, c in zip(PAPER, colour, strict=True))
 
     plain = [mixed(INK, 0.36 - 0.26 * n / (TONES - 1)) for n in range(TONES)]
@@ -164,6 +165,7 @@ def _png(index: NDArray[np.uint8]) -> bytes:
     """An indexed PNG (ISO/IEC 15948) of 8 bits a pixel."""
 
     def chunk(kind: bytes, data: bytes) -> bytes:
+        """Length, kind, data, check sum."""
         return struct.pack(">I", len(data)) + kind + data + struct.pack(">I", zlib.crc32(kind + data))
 
     rows = np.hstack((np.zeros((len(index), 1), dtype=np.uint8), index)).tobytes()

@@ -9,14 +9,20 @@ from typing import Any
 
 import numpy as np
 
+from ingest.dxf.clip import clipping_outline
 from ingest.dxf.curves import entity_axes
 from ingest.dxf.figures import sketch
+from ingest.dxf.layers import LayerTable
 from ingest.dxf.linework import layer_of
 from ingest.dxf.placing import Matrix
 from ingest.dxf.sketch import Batch, Left, Sketch, settle
 from ingest.dxf.text import decode, sketch_text
 from ingest.model import Point3
 
+DEEPEST = 64
+"""Blocks nested deeper than this are a fault of the file or an attack."""
+_INVISIBLE, _CONSTANT = 1, 2
+"""Flags of attributes and their definitions."""
 MOST_FIGURES = 1_000_000
 """More figures than this from one insert are a fault of the file or an attack."""
 
@@ -96,15 +102,16 @@ def copies(known: dict[str, Any]) -> tuple[int, int]:
 class BlockBook:
     """The blocks of one drawing, each drawn once and kept."""
 
-    def __init__(self, document: Any, sagitta: float, ignored: frozenset[str] = frozenset()) -> None:
-        """Args: document as loaded; sagitta in drawing units at scale 1; layers left out, folded."""
+    def __init__(self, document: Any, sagitta: float, layers: LayerTable) -> None:
+        """Args: document as loaded; sagitta in drawing units at scale 1; the layers of the drawing."""
         self._blocks = document.blocks
         self.sagitta = sagitta
-        self._ignored = ignored
+        self._layers = layers
         self._drawn: dict[tuple[str, int], Batch] = {}
         self._bases: dict[str, Any] = {}
         self._sizes: dict[str, int] = {}
-        self.left: Counter[str] = Counter()
+        self.left: dict[str, Counter[str]] = {}
+        """What gave no figure, by block and reason."""
 
     def block(self, name: str) -> Any:
         """A block as loaded, None when the file does not have it."""
@@ -118,11 +125,14 @@ class BlockBook:
         return found
 
     def figures(self, name: str) -> int:
-        """Number of figures one insert of the block gives, nested ones included; -1 where a block holds itself."""
+        """Number of figures one insert of the block gives, nested ones included.
+
+        -1 where a block holds itself, or blocks nest deeper than any draughtsman's.
+        """
         return self._count(name.lower(), ())
 
     def _count(self, key: str, path: tuple[str, ...]) -> int:
-        if key in path:
+        if key in path or len(path) > DEEPEST:
             return -1
         if key in self._sizes:
             return self._sizes[key]
@@ -155,32 +165,56 @@ class BlockBook:
 
     def _draw(self, name: str, sagitta: float) -> Batch:
         sketches: list[Sketch] = []
+        left: Counter[str] = Counter()
+        title = self.title(name)
         for entity in self._entities(name):
             known = vars(entity.dxf)
-            layer = decode(layer_of(known))
-            if layer.casefold() in self._ignored or known.get("invisible", 0):
+            layer = self._layers.use(layer_of(known))
+            if layer.left_out or known.get("invisible", 0):
                 continue
             if entity.dxftype() == "INSERT":
-                sketches += self.nested(entity, self.sagitta / sagitta)
+                sketches += self._nested(entity, self.sagitta / sagitta, left)
                 continue
-            figures = sketch(entity, sagitta)
+            fixed = entity.dxftype() == "ATTDEF" and known.get("flags", 0) & _CONSTANT
+            figures = sketch_text(entity, sagitta) if fixed else sketch(entity, sagitta)
             if isinstance(figures, Left):
-                self.left[figures.reason] += 1
+                left[figures.reason] += 1
                 continue
             for figure in figures:
-                figure.name, figure.layer = name, layer
+                figure.name, figure.layer = title, layer.name
+                if layer.state:
+                    figure.tags = {**(figure.tags or {}), "layer_state": layer.state}
             sketches += figures
-        return settle(sketches, sagitta)
+        batch = settle(sketches, sagitta)
+        left.update(why for _, why in batch.dropped)
+        self.left[name.lower()] = left
+        return batch
 
-    def nested(self, entity: Any, outer: float) -> list[Sketch]:
+    def title(self, name: str) -> str:
+        """Name of a block as the draughtsman knows it: that of the block a variant without a name was made from."""
+        if name.startswith("*U"):
+            from ezdxf.dynblkhelper import get_dynamic_block_record_handle
+
+            record = self._blocks.get(name).block_record
+            handle = get_dynamic_block_record_handle(record)
+            name = next((block.name for block in self._blocks if block.block_record_handle == handle), name)
+        return decode(name)
+
+    def all_left(self) -> Counter[str]:
+        """What gave no figure in any block, by reason."""
+        return sum(self.left.values(), Counter())
+
+    def _nested(self, entity: Any, outer: float, left: Counter[str]) -> list[Sketch]:
         """The figures of an insert inside a block, in the units of that block."""
         known = vars(entity.dxf)
         name = str(known.get("name", ""))
         block = self._blocks.get(name)
         if block is None:
-            self.left["insert of a block that is not in the file"] += 1
+            left["insert of a block that is not in the file"] += 1
             return []
         matrix, shifts = insert_matrices(known, block.block.dxf.base_point)
+        if clipping_outline(entity, block.block.dxf.base_point) is not None:
+            left["clipping outline of an insert inside a block: not applied"] += 1
         inner = self.content(name, scaled(matrix, outer))
         layer, tags = decode(layer_of(known)), attributes(entity)
         (p, q, _), (r, t, _), (_, _, rise) = matrix
@@ -222,11 +256,11 @@ def attributes(entity: Any) -> dict[str, str]:
 
 
 def attribute_texts(entity: Any) -> list[Sketch]:
-    """Attributes of an insert as texts at their own places."""
+    """Attributes of an insert as texts at their own places; hidden ones are left out."""
     sketches: list[Sketch] = []
     for attrib in entity.attribs:
         figures = sketch_text(attrib, 0.0)
-        if isinstance(figures, Left):
+        if isinstance(figures, Left) or vars(attrib.dxf).get("flags", 0) & _INVISIBLE:
             continue
         for figure in figures:
             figure.tags = {"attribute": decode(str(vars(attrib.dxf).get("tag", "")))}

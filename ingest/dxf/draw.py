@@ -77,7 +77,7 @@ class Drawer:
     def __init__(self, file: str, scale: float, document: Any, layers: LayerTable) -> None:
         """Args: metres per drawing unit, the loaded drawing, its layers."""
         self.file, self.scale, self.layers = file, scale, layers
-        self.book = BlockBook(document, SAGITTA / scale, layers.ignored)
+        self.book = BlockBook(document, SAGITTA / scale, layers)
         self.drawn = Drawn()
         self._database = document.entitydb
         self._world = Placing(scaled(IDENTITY, scale), (0.0, 0.0, 0.0))
@@ -196,7 +196,7 @@ class Drawer:
         columns, rows = copies(known)
         figures = self.book.figures(name)
         if figures < 0:
-            return Left("ignored", "insert of a block that holds itself")
+            return Left("ignored", "insert of a block that holds itself or nests too deep")
         if max(figures, 1) * columns * rows > MOST_FIGURES:
             return Left("ignored", f"insert that gives more than {MOST_FIGURES} figures")
         return None

@@ -89,5 +89,5 @@ def sketch(entity: Any, sagitta: float) -> list[Sketch] | Left:
         return ASIDE.get(kind) or Left("ignored", f"unreadable object of another program: {kind}")
     try:
         return sketcher(entity, sagitta)
-    except (ValueError, TypeError, AttributeError, ArithmeticError, LookupError) as fault:
+    except (ValueError, TypeError, AttributeError, ArithmeticError, LookupError, RecursionError) as fault:
         return Left("ignored", f"{kind} cannot be read: {type(fault).__name__}")

@@ -9,7 +9,7 @@ from typing import Any
 import numpy as np
 
 from ingest.dxf.curves import Floats, circle_of_bulges, entity_axes
-from ingest.dxf.sketch import Left, Sketch
+from ingest.dxf.sketch import FARTHEST_UNITS, OUT_OF_REACH, Left, Sketch
 
 
 def incomplete(what: str) -> Left:
@@ -146,6 +146,8 @@ def sketch_ellipse(entity: Any, sagitta: float) -> list[Sketch] | Left:
 
 def sketch_spline(entity: Any, sagitta: float) -> list[Sketch] | Left:
     """A SPLINE by its control points and knots, or through its fit points where it has only those."""
+    if any(not abs(c) < FARTHEST_UNITS for point in chain(entity.control_points, entity.fit_points) for c in point):
+        return Left("ignored", OUT_OF_REACH)
     try:
         points = [p for point in entity.construction_tool().flattening(sagitta) for p in (point.x, point.y, point.z)]
     except (ValueError, TypeError, IndexError, ZeroDivisionError, ArithmeticError) as fault:

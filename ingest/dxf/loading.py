@@ -4,6 +4,7 @@ from __future__ import annotations
 
 import gc
 import logging
+import re
 from collections.abc import Iterator
 from contextlib import contextmanager
 from dataclasses import dataclass
@@ -14,6 +15,8 @@ from ingest.dxf.damage import SEND_AGAIN, find_bad_number
 from ingest.dxf.tagscan import scan_tags
 from ingest.errors import InputError
 
+_LINE = re.compile(r"\b(line):? (\d+)")
+_ENTITY = re.compile(r"\b([A-Z_]{3,})\(#([0-9A-F]+)\)")
 MANY_OBJECTS = 1_000_000
 """More new objects than this are set aside from the collector: it would walk through all of them to find nothing."""
 
@@ -64,12 +67,11 @@ def load_document(path: Path) -> Loaded:
 
     try:
         document, auditor = recover.readfile(path)
-    except Exception as fault:
+    except Exception:
         bad = find_bad_number(scan_tags(path.read_bytes()))
-        place, problem = bad if bad else ("", "")
-        words = f"cannot be loaded: {describe_fault(fault)}"
-        words = f"{problem!r} stands where a number must be" if bad else words
-        raise InputError(path.name, place or "whole file", words, SEND_AGAIN) from None
+        words = f"{bad[1]!r} stands where a number must be" if bad else f"cannot be loaded: {first}"
+        place = bad[0] if bad else _place(first)
+        raise InputError(path.name, place, words, SEND_AGAIN) from None
     repairs = tuple(str(entry.message) for entry in auditor.errors)
     return Loaded(document, first, repairs)
 
@@ -81,7 +83,16 @@ def let_go(document: Any) -> None:
     vars(document).clear()
 
 
+def _place(words: str) -> str:
+    """Line or entity that a library's message names."""
+    found = _LINE.search(words) or _ENTITY.search(words)
+    return " ".join(found.groups()) if found else "whole file"
+
+
 def describe_fault(fault: Exception) -> str:
-    """One line of what a library says, without its type unless it says nothing."""
+    """One line of what the library says, where it says it in words."""
+    from ezdxf import DXFError
+
     words = " ".join(str(fault).split())
-    return (words[:160] or type(fault).__name__).rstrip(".")
+    known = isinstance(fault, DXFError | ValueError) and " " in words
+    return words[:160].rstrip(".") if known else "its structure is damaged"

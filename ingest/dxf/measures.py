@@ -10,7 +10,7 @@ from typing import Any
 
 import numpy as np
 
-from ingest.dxf.blocks import copies, insert_matrices, plus, times, turn_point
+from ingest.dxf.blocks import DEEPEST, copies, insert_matrices, plus, times, turn_point
 from ingest.dxf.placing import IDENTITY, Matrix
 from ingest.model import Point3
 from ingest.units import FOOT, INCH, METRES
@@ -110,7 +110,7 @@ def _look_inside(
     name = str(known.get("name", ""))
     block = document.blocks.get(name)
     columns, rows = copies(known)
-    if block is None or name in path or columns * rows > 1000:
+    if block is None or name in path or len(path) > DEEPEST or columns * rows > 1000:
         return
     inner, shifts = insert_matrices(known, block.block.dxf.base_point)
     for own in shifts:

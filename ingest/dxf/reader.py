@@ -10,11 +10,12 @@ from ingest.dxf.account import list_raw, open_account
 from ingest.dxf.damage import check_bytes, read_bytes
 from ingest.dxf.draw import Drawer
 from ingest.dxf.drawing_unit import find_unit
+from ingest.dxf.georeference import describe_georeference
 from ingest.dxf.layers import LayerTable
 from ingest.dxf.leaders import tie_leaders
 from ingest.dxf.loading import let_go, load_document, quiet
 from ingest.dxf.measures import take_measures
-from ingest.dxf.report import report_findings, report_losses
+from ingest.dxf.report import Report, report_losses
 from ingest.dxf.tagscan import Tags
 from ingest.model import FileParts
 
@@ -69,9 +70,15 @@ def _read(
     loaded.document.modelspace().entity_space.clear()
     drawn = drawer.draw(account, progress)
     drawn.aside["ignored"].update(account.aside)
+    place = describe_georeference(loaded.document)
     let_go(loaded.document)
     losses = report_losses(account, loaded, drawn, drawer.book)
-    findings = report_findings(path.name, account, repeated, loaded, drawn, drawer)
+    report = Report(path.name)
+    report.see_loading(account, repeated, loaded)
+    report.see_unread(drawn, drawer.book)
+    report.see_layers(drawn, layers)
+    if place:
+        report.see("georeference", "note", place)
     return FileParts(
         file=path.name,
         sha256=sha256,
@@ -84,7 +91,7 @@ def _read(
         context=dict(sorted(drawn.aside["context"].items())),
         ignored=dict(sorted(drawn.aside["ignored"].items())),
         losses=losses,
-        findings=(*unit.findings, *findings),
+        findings=(*unit.findings, *report.found),
         questions=unit.questions,
         assumptions=unit.assumptions,
     )

@@ -2,11 +2,13 @@
 
 from __future__ import annotations
 
-from collections.abc import Callable
+from collections.abc import Sequence
+from dataclasses import dataclass, field
 
 from ingest.dxf.account import Account
 from ingest.dxf.blocks import BlockBook
-from ingest.dxf.draw import Drawer, Drawn
+from ingest.dxf.draw import Drawn
+from ingest.dxf.layers import LayerTable
 from ingest.dxf.loading import Loaded
 from ingest.trail import Finding, Severity, Source
 
@@ -23,7 +25,6 @@ _UNREAD = (
     ("insert that gives more", "insert-too-large", "inserts that give too many figures"),
     ("embedded object", "embedded-object", "embedded objects of other programs"),
     ("underlay", "underlay", "underlays kept in other files"),
-    ("lost in reading", "lost-in-reading", "entities that the file holds but the library dropped"),
 )
 
 
@@ -43,53 +44,61 @@ def report_losses(account: Account, loaded: Loaded, drawn: Drawn, book: BlockBoo
 
 def _serious(book: BlockBook) -> dict[str, int]:
     known = ("empty text", "attribute definition", "mask", "hidden", "dimension", "viewport", "leader")
-    return {why: count for why, count in book.left.items() if not why.startswith(known)}
+    return {why: count for why, count in book.all_left().items() if not why.startswith(known)}
 
 
-def report_findings(
-    file: str, account: Account, repeated: tuple[str, ...], loaded: Loaded, drawn: Drawn, drawer: Drawer
-) -> tuple[Finding, ...]:
-    """Findings on one drawing, in a fixed order."""
-    found: list[Finding] = []
+@dataclass(slots=True)
+class Report:
+    """Findings on one drawing, collected in a fixed order."""
 
-    def see(code: str, severity: Severity, text: str, items: tuple[str, ...] = ()) -> None:
-        sources = tuple(Source(file=file, item=item) for item in items)
-        found.append(Finding(id=f"{code}:{file}", code=code, severity=severity, where=file, text=text, sources=sources))
+    file: str
+    found: list[Finding] = field(default_factory=list)
 
-    if loaded.recovered:
-        see("recovered", "check", f"read in recovery mode ({loaded.recovered}); compare the counts with the drawing")
-    if account.lost:
-        lost = ", ".join(f"{count} {kind}" for kind, count in sorted(account.lost.items()))
-        see("lost-in-reading", "check", f"entities that the file holds were not read: {lost}")
-    if repeated:
-        shown = ", ".join(repeated[:3])
-        words = f"{len(repeated)} handles stand at more than one entity ({shown})"
-        see("handle-twice", "check", words, repeated[:3])
-    for start, code, words in _UNREAD[:-1]:
-        counts = {why: n for kind in drawn.aside.values() for why, n in kind.items() if why.startswith(start)}
-        inside = sum(n for why, n in drawer.book.left.items() if why.startswith(start))
-        if counts or inside:
-            first = tuple(drawn.examples[why] for why in sorted(counts) if why in drawn.examples)[:3]
-            blocks = f", {inside} more inside blocks" if inside else ""
-            see(code, "check", f"{sum(counts.values())} {words}{blocks}", first)
-    _see_layers(drawn, drawer, see)
-    paper = account.aside.get("paper space", 0)
-    if paper:
-        see("paper-space", "note", f"{paper} entities on layout sheets (paper space) are not read")
-    return tuple(found)
+    def see(self, code: str, severity: Severity, text: str, items: Sequence[str] = ()) -> None:
+        """Take in one finding."""
+        sources = tuple(Source(file=self.file, item=item) for item in items)
+        finding = Finding(
+            id=f"{code}:{self.file}", code=code, severity=severity, where=self.file, text=text, sources=sources
+        )
+        self.found.append(finding)
 
+    def see_loading(self, account: Account, repeated: Sequence[str], loaded: Loaded) -> None:
+        """How the file was got open, and what the library dropped."""
+        if loaded.recovered:
+            words = f"read in recovery mode ({loaded.recovered}); compare the counts with the drawing"
+            self.see("recovered", "check", words)
+        if account.lost:
+            lost = ", ".join(f"{count} {kind}" for kind, count in sorted(account.lost.items()))
+            self.see("lost-in-reading", "check", f"entities that the file holds were not read: {lost}")
+        if repeated:
+            words = f"{len(repeated)} handles stand at more than one entity ({', '.join(repeated[:3])})"
+            self.see("handle-twice", "check", words, repeated[:3])
+        paper = account.aside.get("paper space", 0)
+        if paper:
+            self.see("paper-space", "note", f"{paper} entities on layout sheets (paper space) are not read")
 
-def _see_layers(drawn: Drawn, drawer: Drawer, see: Callable[[str, Severity, str], None]) -> None:
-    hidden = sorted({(p.layer, p.tags["layer_state"]) for p in drawn.parts if "layer_state" in p.tags})
-    if hidden:
-        shown = ", ".join(f"{layer} ({state})" for layer, state in hidden[:6]) + (" ..." if len(hidden) > 6 else "")
-        see("layer-hidden", "check", f"read although their layers are off or frozen in the drawing: {shown}")
-    if drawn.xrefs:
-        see("external-reference-names", "note", "attached by reference: " + ", ".join(sorted(drawn.xrefs)[:6]))
-    used = {p.layer for p in drawn.parts} | drawer.layers.names
-    folded = {name.casefold() for name in used}
-    for wanted in sorted(drawer.layers.ignored - folded):
-        near = drawer.layers.nearest(wanted, used)
-        hint = f'; the nearest is "{near}"' if near else ""
-        words = f'the brief leaves out the layer "{wanted}", which the drawing does not have{hint}'
-        see("layer-unknown", "check", words)
+    def see_unread(self, drawn: Drawn, book: BlockBook) -> None:
+        """Content that gives no part although it may matter."""
+        for start, code, words in _UNREAD:
+            counts = {why: n for kind in drawn.aside.values() for why, n in kind.items() if why.startswith(start)}
+            inside = sum(n for why, n in book.all_left().items() if why.startswith(start))
+            if counts or inside:
+                first = [drawn.examples[why] for why in sorted(counts) if why in drawn.examples][:3]
+                blocks = f", {inside} more inside blocks" if inside else ""
+                self.see(code, "check", f"{sum(counts.values())} {words}{blocks}", first)
+        if drawn.xrefs:
+            names = ", ".join(sorted(drawn.xrefs)[:6])
+            self.see("external-reference-names", "note", f"attached by reference: {names}")
+
+    def see_layers(self, drawn: Drawn, layers: LayerTable) -> None:
+        """Layers that are off or frozen, and layers of the brief that do not exist."""
+        hidden = sorted({(p.layer, p.tags["layer_state"]) for p in drawn.parts if "layer_state" in p.tags})
+        if hidden:
+            shown = ", ".join(f"{layer} ({state})" for layer, state in hidden[:6]) + (" ..." if len(hidden) > 6 else "")
+            self.see("layer-hidden", "check", f"read although their layers are off or frozen in the drawing: {shown}")
+        used = {p.layer for p in drawn.parts} | layers.names
+        for wanted in sorted(layers.ignored - {name.casefold() for name in used}):
+            near = layers.nearest(wanted, used)
+            hint = f'; the nearest is "{near}"' if near else ""
+            words = f'the brief leaves out the layer "{wanted}", which the drawing does not have{hint}'
+            self.see("layer-unknown", "check", words)

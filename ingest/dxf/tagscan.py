@@ -6,6 +6,7 @@ import struct
 import sys
 from collections import Counter
 from dataclasses import dataclass, field
+from itertools import zip_longest
 from typing import Any
 
 import numpy as np
@@ -36,7 +37,7 @@ class Tags:
     ended: bool
     """Whether the end mark (0, EOF) was found."""
     bad_code: int | None = None
-    """Index of the first tag whose group code is none; tags from there on mean nothing."""
+    """Number of tags before the first one whose group code is none; what follows it means nothing."""
     zeros: Ints = field(default_factory=lambda: np.empty(0, dtype=np.int64))
     names: list[str] = field(default_factory=list)
     """Value of each tag with group code 0, in step with `zeros`."""
@@ -51,9 +52,10 @@ class Tags:
 
     def place(self, index: int) -> str:
         """Where a value stands: its line in a text file, its byte in a binary one."""
-        if self.binary or index >= len(self.codes):
-            return f"byte {int(self.starts[index]) if index < len(self.codes) else len(self.data)}"
-        return f"line {2 * index + 2}"
+        if not self.binary:
+            return f"line {2 * index + 2}"
+        known = len(self.codes)
+        return f"byte {self.starts[index] if index < known else self.stops[-1] if known else len(BINARY_MARK)}"
 
     def header(self, variable: str) -> str | None:
         """First value of a header variable, None where the file does not set it."""
@@ -93,8 +95,6 @@ def scan_tags(data: bytes) -> Tags:
     """
     tags = _scan_binary(data) if data.startswith(BINARY_MARK) else _scan_text(data)
     tags.zeros = np.flatnonzero(tags.codes == 0)
-    if tags.bad_code is not None:
-        tags.zeros = tags.zeros[tags.zeros < tags.bad_code]
     tags.names = [sys.intern(tags.value(z).decode("latin-1")) for z in tags.zeros.tolist()]
     _find_sections(tags)
     return tags
@@ -178,14 +178,14 @@ def _cut(
     zeros = np.flatnonzero((codes == 0) & (stops - starts == 3) & ~bad).tolist()
     ending = next((z for z in zeros if data[starts[z] : stops[z]] == b"EOF"), None)
     if len(faults) and (ending is None or faults[0] < ending):
-        return int(faults[0]) + 1, int(faults[0]), False
+        return int(faults[0]), int(faults[0]), False
     return (len(codes), None, False) if ending is None else (ending + 1, None, True)
 
 
 def _find_sections(tags: Tags) -> None:
     """Note where each section begins and ends."""
     tags.marks = [k for k, name in enumerate(tags.names) if name in _MARKS]
-    for k, following in zip(tags.marks, [*tags.marks[1:], None], strict=True):
+    for k, following in zip_longest(tags.marks, tags.marks[1:]):
         at = int(tags.zeros[k])
         if tags.names[k] != "SECTION" or at + 1 >= len(tags.codes) or tags.codes[at + 1] != 2:
             continue
@@ -217,8 +217,7 @@ def _scan_binary(data: bytes) -> Tags:
         kind = _KIND.get(code)
         stop = _binary_stop(data, begin, kind)
         if kind is None or stop < 0:
-            bad = len(codes) if kind is None else None
-            codes, starts, stops = [*codes, max(code, 0)], [*starts, at], [*stops, at]
+            bad = len(codes) if kind is None and code >= 0 else None
             break
         first = begin + 1 if kind == "x" else begin
         codes.append(code)

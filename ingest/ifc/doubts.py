@@ -96,21 +96,24 @@ class Doubts:
             if parts and not LIKELY_EXTENT[0] <= extent <= LIKELY_EXTENT[1] and better != units.name:
                 return better
             self._assume("length-unit", f"no length unit is declared; {units.name} was used", text)
-            self._ask(units, "mm" if units.name == "m" else "m", f"no length unit is declared; {text}")
+            other = "mm" if units.name == "m" else "m"
+            self._ask(units.name, (units.name, text, 0.6), (other, "the other unit in common use", 0.2))
         elif not likely:
             self._find("ifc-unit-size", "check", f"{text}, its declared unit")
-            self._ask(units, better, text)
+            self._ask(better, (units.name, f"declared in the file, but {text}", 0.3), (better, "a likely site", 0.5))
         return None
 
-    def _ask(self, units: ProjectUnits, better: str, text: str) -> None:
-        line = f'[files.{json.dumps(self._file)}] length_unit = "{better}"'
-        readings = (
-            Reading(reading=f"the unit is {units.name}", evidence=text, confidence=0.3),
-            Reading(reading=f"the unit is {better}", evidence="gives the model a likely size", confidence=0.5),
-        )
+    def _ask(self, unit: str, *readings: tuple[str, str, float]) -> None:
+        """Ask for the length unit; the brief line offers `unit`."""
         self._questions.append(
             Question(
-                id=f"{self._file}-Q{len(self._questions) + 1}", about="length unit", readings=readings, brief_line=line
+                id=f"{self._file}-Q{len(self._questions) + 1}",
+                about=f"{self._file}: length unit",
+                readings=tuple(
+                    Reading(reading=f"the unit is {name}", evidence=why, confidence=share)
+                    for name, why, share in readings
+                ),
+                brief_line=f'[files.{json.dumps(self._file)}]\nlength_unit = "{unit}"',
             )
         )
 

@@ -2,17 +2,19 @@
 
 from __future__ import annotations
 
-from math import hypot
+from math import hypot, pi
 
 import numpy as np
 import shapely
 from numpy.typing import NDArray
 
+from ingest.ifc.bars import is_pile_shape
+from ingest.ifc.curves import circle_points
 from ingest.ifc.elements import Element, NoPart, SectionTable
-from ingest.ifc.plan import Prism, is_flat, is_upright, profile_upright
+from ingest.ifc.plan import Prism, is_flat, is_upright, prism, profile_upright
 from ingest.ifc.plates import element_prism, element_prisms, mesh_words, prism_parts
 from ingest.ifc.shapes import Extrusion, Line, Sweep
-from ingest.ifc.strips import FITS, Strip, find_strip
+from ingest.ifc.strips import FITS, Strip, arc_steps, find_strip
 from ingest.model import Part, Point3
 
 Floats = NDArray[np.float64]
@@ -31,12 +33,10 @@ def wall_parts(element: Element, sections: SectionTable) -> tuple[Part, ...]:
     """
     if not element.bodies:
         return (_from_axis(element),)
-    quick = _plain_wall(element)
-    if quick is not None:
-        return (quick,)
-    swept = _swept_wall(element)
-    if swept is not None:
-        return (swept,)
+    for reader in (_plain_wall, _round_wall, _swept_wall):
+        made = reader(element)
+        if made is not None:
+            return (made,)
     whole = element_prism(element)
     hint = hint_of(element)
     strip = find_strip(whole.area, hint)
@@ -49,6 +49,31 @@ def wall_parts(element: Element, sections: SectionTable) -> tuple[Part, ...]:
         *whole.notes,
     ]
     return (_strip_part(element, strip, whole.bottom, whole.top, said),)
+
+
+def _round_wall(element: Element) -> Part | None:
+    """A shaft of one piece: an upright tube, as a closed path half its wall thickness inside the outer radius."""
+    body = element.bodies[0]
+    shape = body.shape
+    if len(element.bodies) > 1 or not isinstance(shape, Extrusion) or not is_pile_shape(body):
+        return None
+    if shape.profile.kind != "hollow circle":
+        return None
+    whole = prism(body)
+    thickness, radius = shape.profile.size[1] * body.scale, shape.profile.size[0] * body.scale
+    u, v = shape.profile.centre
+    x, y = (body.origin[k] + u * body.x[k] + v * body.y[k] for k in (0, 1))
+    middle = radius - thickness / 2
+    ring = circle_points(x, y, middle, arc_steps(middle, 2 * pi))
+    return element.part(
+        "path",
+        [(x, y, whole.bottom) for x, y in ring],
+        ("upright extrusion of a hollow circle, middle of its thickness", *whole.notes),
+        closed=True,
+        thickness=thickness,
+        z_bottom=whole.bottom,
+        z_top=whole.top,
+    )
 
 
 def _swept_wall(element: Element) -> Part | None:

@@ -9,6 +9,7 @@ from __future__ import annotations
 from collections.abc import Callable
 
 from ingest.model import Limits, Site
+from sections.criteria.anchor_clash import anchor_clash
 from sections.criteria.corner_class import corner_class
 from sections.criteria.corner_shape import corner_shape
 from sections.criteria.floor_step import floor_step
@@ -31,6 +32,7 @@ Criterion = Callable[[Site, FoundPit, Limits], CriterionResult]
 
 CRITERIA: tuple[Criterion, ...] = (
     reentrant,
+    anchor_clash,
     shape,
     supports_skew,
     supports_gap,

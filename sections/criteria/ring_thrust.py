@@ -9,10 +9,10 @@ from __future__ import annotations
 import numpy as np
 
 from ingest.model import RING_OUTPUTS, Limits, Site
-from sections.along import kinds_at
 from sections.criteria.shape import HOOPLESS
 from sections.criteria.sheet import Sheet
 from sections.model import CriterionResult, Floats, FoundPit
+from sections.wall_changes import kinds_at
 
 CODE = "ring_thrust"
 

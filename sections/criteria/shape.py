@@ -10,9 +10,9 @@ from __future__ import annotations
 import numpy as np
 
 from ingest.model import Limits, Site
-from sections.along import kinds_at
 from sections.criteria.sheet import WALL_OUTPUTS, Sheet
 from sections.model import CriterionResult, FoundPit
+from sections.wall_changes import kinds_at
 
 CODE = "shape"
 HOOPLESS = ("contiguous", "king_post", "sheet", "none")

@@ -94,16 +94,13 @@ class Sheet:
         basis: str,
         reference: str,
         inputs: dict[str, Floats] | None = None,
-        own_margin: bool = False,
-        by_class_only: bool = False,
-        cross_check: bool = False,
-        recalled: bool = False,
+        own_margin: bool = False, by_class_only: bool = False, cross_check: bool = False, recalled: bool = False,
         settled_by: str = "",
         speaks_of: Iterable[str] = WALL_OUTPUTS,
         silence: dict[str, str] | None = None,
         carries: tuple[Mechanism, ...] = (),
         stages: tuple[tuple[str, ...], Ints] | None = None,
-    ) -> CriterionResult:
+    ) -> CriterionResult:  # fmt: skip
         """Hand the sheet in."""
         values = inputs or {}
         return CriterionResult(

@@ -63,7 +63,7 @@ def bare_job() -> Job:
     job = first_pit_job()
     bare = replace(
         job.definitions[0], members=(), loads=(), stages=(), criteria=(), represents=(), walls=(), verdicts={},
-        implied=(),
+        implied=(), losses=(),
         ground=d.Ground(surface=(), layers=(), water=(), nearest_borehole=None), materials={}, actions_without_twin=(),
         balance=d.Balance(horizontal=(), vertical=()), assumptions=(), questions=(), findings=(), not_assessed=(),
     )  # fmt: skip

@@ -165,6 +165,12 @@ def section(n: int, line: tuple[m.Point, m.Point], span: float, ats: tuple[float
             d.Implied(about=ids[2], quantity="stiffness", real=STRUT_EA, implied=STRUT_EA, ratio=1.0, grade="fair",
                       do_in_inputs="none", read_outputs="multiply the force by 5.0 m"),
         ),
+        losses=(
+            d.SupportLoss(
+                member=ids[2], at=ats[0], gap_movement=1.9, neighbour_force=1.37, wall_moment_excavated_face=1.22,
+                wall_moment_retained_face=1.4,
+            ),
+        ),
         actions_without_twin=(
             d.Action(name="horizontal bending of the waler", size=None, unit="kNm", at=f"ch {ats[0]:.1f}"),
             d.Action(name="change of wall movement along the wall", size=0.012, unit="m per m", at="3 m from corners"),

@@ -158,6 +158,12 @@ def test_what_was_not_assessed_is_printed(page: str) -> None:
     assert "no criterion could be evaluated for this output" in words
 
 
+def test_losses_of_a_support_stand_apart_from_the_bands(page: str) -> None:
+    words = " ".join(" ".join(Outline(page).words).split())
+    assert "Loss of one support (accidental, not in the bands above)" in words
+    assert "P1-strut-1 at ch 15.00 1.90 1.37 1.22 1.40" in words
+
+
 def test_every_verdict_has_its_own_line_and_area_pattern() -> None:
     assert set(BEST_FIRST) == set(WORST_FIRST)
     css = resources.files("export.report").joinpath("drawing.css").read_text()

@@ -96,3 +96,24 @@ def test_files_that_lie_on_each_other_are_not_asked_about() -> None:
     site = site_of([file_of("a.dxf", L_SHAPE), file_of("b.dxf", shifted)], Brief())
     assert not site.findings
     assert {entry.file: replace(entry.registered, residual=None) for entry in site.inputs if entry.registered}
+
+
+def piles_of(name: str, count: int) -> FileParts:
+    parts = tuple(
+        Part(
+            source=Source(file=name, item=str(n)),
+            form="circle",
+            points=((0.9 * n, 0.0, 0.0),),
+            radius=0.375,
+            layer="WALL PILES",
+        )
+        for n in range(count)
+    )
+    return replace(file_of(name, L_SHAPE), parts=parts, entities=count)
+
+
+def test_files_that_show_the_same_wall_with_another_count_of_piles_are_told() -> None:
+    site = site_of([piles_of("a.dxf", 40), piles_of("b.dxf", 39)], Brief())
+    (finding,) = site.findings
+    assert (finding.code, finding.text) == ("counts-differ", "a.dxf shows 40 wall piles, b.dxf 39")
+    assert not site_of([piles_of("a.dxf", 40), piles_of("b.dxf", 40)], Brief()).findings

@@ -421,3 +421,64 @@ def test_a_toe_that_only_the_model_has_and_cannot_be_is_not_taken(tmp_path: Path
     site = site_of([parts_of(wall)], brief_of(tmp_path, "[levels]\ntop = -5.0\n"))
     assert (site.walls[0].top, site.walls[0].toe) == (-5.0, None)
     assert {finding.code for finding in site.findings} == {"wall-levels"}
+
+
+def drawn_as(*parts: Part) -> list[tuple[str, bool, float | None]]:
+    walls = site_of([parts_of(*parts)], Brief()).walls
+    return [(wall.drawn, wall.closed, wall.thickness) for wall in walls]
+
+
+def wall_line(*points: tuple[float, float], item: str, layer: str = "DIAPHRAGM WALL", closed: bool = False) -> Part:
+    return part("path", *((x, y, 0.0) for x, y in points), item=item, layer=layer, closed=closed)
+
+
+def test_two_parallel_lines_a_walls_thickness_apart_are_faces_and_one_alone_is_the_axis() -> None:
+    near, far = wall_line((0, 0), (20, 0), item="1"), wall_line((0.5, 0.8), (20, 0.8), item="2")
+    assert drawn_as(near, far) == [("face", False, None)] * 2
+    assert drawn_as(near) == [("axis", False, None)]
+    assert drawn_as(near, replace(far, layer="SECANT WALL")) == [("axis", False, None)] * 2
+    axes = [replace(line, layer="WALL AXIS DIAPHRAGM") for line in (near, far)]
+    assert drawn_as(*axes) == [("axis", False, None)] * 2
+
+
+def test_the_two_rings_of_a_wall_are_faces_and_a_ring_alone_is_the_axis() -> None:
+    outer = wall_line((0, 0), (30, 0), (30, 10), (0, 10), item="1", closed=True)
+    inner = wall_line((0.8, 0.8), (29.2, 0.8), (29.2, 9.2), (0.8, 9.2), item="2", closed=True)
+    assert drawn_as(outer, inner) == [("face", True, None)] * 2
+    assert drawn_as(outer) == [("axis", True, None)]
+
+
+def test_one_ring_round_the_body_of_a_bent_wall_is_its_outline() -> None:
+    body = wall_line((0, 0), (20, 0), (20, 15), (19.2, 15), (19.2, 0.8), (0, 0.8), item="1", closed=True)
+    assert drawn_as(body) == [("outline", True, None)]
+
+
+def test_a_panel_drawn_by_its_outline_has_axis_and_thickness() -> None:
+    panel = wall_line((0, 0), (6, 0), (6, 0.8), (0, 0.8), item="1", closed=True)
+    assert drawn_as(panel) == [("outline", False, pytest.approx(0.8))]
+
+
+def test_a_circle_wider_than_any_pile_is_the_wall_of_a_shaft() -> None:
+    outer = part("circle", (0.0, 0.0, 0.0), radius=6.0, layer="SHAFT WALL", item="1", closed=True)
+    site = site_of([parts_of(outer)], Brief())
+    assert not site.piles
+    (wall,) = site.walls
+    assert wall.closed
+    assert all(math.hypot(x, y) == pytest.approx(6.0) for x, y in wall.axis)
+    inner = replace(outer, radius=5.4, source=Source(file="a.dxf", item="2"))
+    assert drawn_as(outer, inner) == [("face", True, None)] * 2
+
+
+@pytest.mark.parametrize(("layer", "male"), [("SECANT-MALE", True), ("Secant piles primary", False), ("SECANT", None)])
+def test_male_and_female_piles_are_told_by_their_layer(layer: str, male: bool | None) -> None:
+    piles = [part("circle", (0.9 * n, 0.0, 0.0), radius=0.44, layer=layer, item=str(n)) for n in range(6)]
+    assert {pile.male for pile in site_of([parts_of(*piles)], Brief()).piles} == {male}
+
+
+def test_a_drawn_capping_beam_is_known_to_the_walls_it_runs_along_and_is_no_waler() -> None:
+    beam = wall_line((0, 0.2), (20, 0.2), item="b", layer="CAPPING BEAM")
+    other = wall_line((0, 15), (20, 15), item="o")
+    site = site_of([parts_of(wall_line((0, 0), (20, 0), item="w"), other, beam)], Brief())
+    assert [(wall.axis[0][1], wall.capping_beam) for wall in site.walls] == [(0.0, True), (15.0, None)]
+    assert not site.walers
+    assert site.ledger["a.dxf"].roles == {"wall": 2, "waler": 1}

@@ -16,15 +16,14 @@ from sections.along import (
     REENTRANT,
     bay_of,
     beside_gap,
-    changes_of,
     cover_of,
     distance_along,
     find_ends,
     gaps_of,
     is_rectangle,
-    toe_steps_of,
 )
 from sections.model import Arc, Run
+from sections.wall_changes import changes_of, toe_steps_of
 
 
 def test_the_wall_of_a_rectangle_ends_at_its_corners() -> None:
