@@ -11,10 +11,11 @@ import tempfile
 from collections.abc import Callable, Sequence
 from typing import TYPE_CHECKING, NoReturn
 
+from export import VERSION
+
 if TYPE_CHECKING:
     from ingest.errors import InputError
 
-VERSION = "0.1.0"
 CAUTION = "Screening aid: local codes and a licensed engineer decide."
 EXIT_CODES = """\
 exit codes:

@@ -27,6 +27,7 @@ def run_inspect(options: argparse.Namespace) -> Answer:
     site = _read(options)
     pits = find_pits(site)
     if options.write_brief:
+        Path(options.write_brief).parent.mkdir(parents=True, exist_ok=True)
         write_starting_brief(site, Path(options.write_brief))
     if options.json:
         return 0, json.dumps(describe_json(site, pits), indent=2, ensure_ascii=False)

@@ -2,6 +2,7 @@
 
 from __future__ import annotations
 
+import re
 from collections.abc import Iterable, Mapping, Sequence
 from pathlib import Path
 from typing import Any
@@ -40,7 +41,7 @@ def _ledger_lines(site: Site, file: str) -> list[str]:
 
 def _role_lines(site: Site) -> list[str]:
     """One line per layer or class and role: what was decided, why, how sure."""
-    seen: dict[tuple[str, str, str, float], int] = {}
+    seen: dict[tuple[str, str, str], list[float]] = {}
     for group in (
         site.walls,
         site.piles,
@@ -53,12 +54,19 @@ def _role_lines(site: Site) -> list[str]:
     ):
         for item in group:
             if item.evidence:
-                key = (item.layer or item.name, item.evidence.role, item.evidence.why, item.evidence.confidence)
-                seen[key] = seen.get(key, 0) + 1
+                label = item.layer or _numbered(item.name)
+                seen.setdefault((label, item.evidence.role, _numbered(item.evidence.why)), []).append(
+                    item.evidence.confidence
+                )
     lines = ["", "Roles"] if seen else []
-    for (label, role, why, confidence), count in sorted(seen.items()):
-        lines.append(f"  {label or '(no layer)'}: {count} as {role} ({why}; confidence {confidence:.2f})")
+    for (label, role, why), sure in sorted(seen.items()):
+        lines.append(f"  {label or '(no layer)'}: {len(sure)} as {role} ({why}; confidence {min(sure):.2f})")
     return lines
+
+
+def _numbered(words: str) -> str:
+    """A name without its running number, so that PILE 1 to PILE 32 are one line; numbers of the brief's lines stay."""
+    return re.sub(r"(?<=[ _.-])\d+(?=\"|$)", "*", words)
 
 
 def _pit_lines(pit: Pit) -> list[str]:
@@ -77,6 +85,8 @@ def _wall_words(run: Run) -> str:
     size = f", {wall.thickness:.2f} m thick" if wall.thickness else ""
     if wall.diameter and wall.centres:
         size = f", {wall.count} piles of {wall.diameter:.2f} m at {wall.centres:.2f} m"
+    elif wall.kind == "king_post" and wall.centres:
+        size = f", {wall.count} posts {wall.post or ''} at {wall.centres:.2f} m".replace("  ", " ")
     toe = ", toe not given" if wall.toe is None else f", toe {wall.toe:.2f}"
     return f"{wall.kind} wall{size}{toe}"
 

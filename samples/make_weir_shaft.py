@@ -13,13 +13,13 @@ from ifc_model import SiteModel
 
 FOLDER = Path(__file__).parent / "weir_shaft"
 CENTRE = (412.0, 618.0)
-SIDES, APOTHEM, THICKNESS = 12, 8.5, 1.0
+SIDES, APOTHEM, THICKNESS = 12, 7.5, 1.2
 """Regular twelve-sided wall axis; its corners stand 15 degrees off the easting axis."""
 TOP, TOE, SLAB_UNDERSIDE, SLAB_TOP = 24.0, -3.0, 3.0, 4.2
 RING_LEVELS, RING_WIDTH, RING_DEPTH = (22.6, 16.0, 9.5), 0.8, 1.0
 PROP_LEVEL, PROP_TUBE, PROP_BEARING = 12.6, (0.813, 0.020), 30.0
 """The one cross-prop stands square to two panels, 30 degrees off the easting axis."""
-CRANE_AT, CRANE_SIDE, CRANE_TURN = (14.5, 52.0), 6.0, 23.0
+CRANE_AT, CRANE_SIDE, CRANE_TURN = (13.5, 52.0), 6.0, 23.0
 """Distance from the shaft's centre, bearing from the easting axis; side of the base, and how far it is turned."""
 Point = tuple[float, float]
 

@@ -12,7 +12,7 @@ from shapely.geometry.base import BaseGeometry
 
 from ingest.model import Plate, Role, Site, Waler
 from ingest.trail import Source
-from sections.chainage import ON, area_of, locate
+from sections.chainage import ON, area_of, locate, normal_at
 from sections.model import Along, Bools, Floats, Member, PitShape, SupportRow
 from sections.numbering import in_order
 from sections.segmentation import group_alike
@@ -20,6 +20,8 @@ from sections.support_ends import REACH
 
 WALER_LEVEL = 1.0
 """A waler within this height of a row carries it, m (judgement)."""
+ACROSS = 0.5
+"""Sine of the largest angle between a waler and the wall it runs along (judgement)."""
 WALER_SHARE = 0.8
 """A waler that runs along this share of a row carries it (judgement)."""
 
@@ -56,11 +58,18 @@ def _in_file_order(sources: Sequence[Source]) -> tuple[Source, ...]:
 
 
 def waler_stretches(shape: PitShape, waler: Waler) -> tuple[tuple[float, float], ...]:
-    """Stretches of wall, as (from, to), along which a waler runs."""
+    """Stretches of wall, as (from, to), along which a waler runs.
+
+    Where it merely passes the end of another wall, in a sharp corner, it runs across that wall and not along it.
+    """
     line = shapely.LineString(waler.points) if len(waler.points) > 1 else shapely.Point(waler.points[0])
     dense = shapely.get_coordinates(shapely.segmentize(line, 0.25) if line.length > 0.0 else line)
-    found = locate(shape, dense)
-    return _stretches(found.at[found.distance <= REACH], shape)
+    pieces = np.diff(dense, axis=0)
+    spots = np.concatenate([dense[:-1], dense[1:]])
+    found = locate(shape, spots)
+    way = np.tile(pieces / np.maximum(np.hypot(*pieces.T), 1e-9)[:, None], (2, 1))
+    across = np.abs(np.einsum("ij,ij->i", way, normal_at(shape, found.at)))
+    return _stretches(found.at[(found.distance <= REACH) & (across <= ACROSS)], shape)
 
 
 def _stretches(at: Floats, shape: PitShape) -> tuple[tuple[float, float], ...]:

@@ -73,7 +73,7 @@ def stretches_along(site: Site, outline: Outline, trace: Trace, lines: Sequence[
 
 
 def _between_piles(bits: Sequence[Stretch], lines: Sequence[WallLine], length: float) -> list[Stretch]:
-    """The bits without drawn stretches from one pile to its neighbour: a line drawn along a row is no wall of its own."""
+    """The bits without drawn stretches between neighbouring piles: a line drawn along a row is no wall of its own."""
     pace = {int(p): max(one.pace) for one in lines for p in one.piles}
     piles = [bit for bit in bits if bit.pile >= 0]
     if len(piles) < 2:

@@ -75,8 +75,8 @@ def _single_notes(site: Site, single: Sequence[int]) -> tuple[Finding, ...]:
     names = ", ".join(dict.fromkeys(piece.name or piece.id for piece in pieces[:5])) + (" ..." if single[5:] else "")
     return (Finding(
         id="", code="single-face", severity="check", where=names,
-        text=f"{len(single)} wall faces have no second face. The line drawn is taken as the wall axis: half a thickness "
-             "may be missing.",
+        text=f"{len(single)} wall faces have no second face. The line drawn is taken as the wall axis: half a "
+             "thickness may be missing.",
         sources=tuple(source for piece in pieces for source in piece.sources),
     ),)  # fmt: skip
 

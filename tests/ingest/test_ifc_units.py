@@ -47,7 +47,7 @@ def test_the_engineers_word_stands_above_the_file(tmp_path: Path) -> None:
 
 def test_a_misspelt_length_unit_is_refused(tmp_path: Path) -> None:
     path = one_pile(IfcBuilder()).save(tmp_path / "m.ifc")
-    with pytest.raises(InputError, match="metres"):
+    with pytest.raises(InputError, match="nearest known unit is metre"):
         read_ifc(path, length_unit="metrez")
 
 

@@ -75,19 +75,24 @@ def run_faults(shape, pit):
         if [r.wall.kind for r in held] != [run.kind]:
             yield f"{[r.wall.kind for r in held]} for {run.kind}"
             continue
-        wall = held[0].wall
-        if run.spacings and not 0.985 * run.spacings[0] <= (wall.centres or 0.0) <= 1.01 * run.spacings[1]:
-            yield f"centres {wall.centres:.3f} for {run.spacings}"
-        if run.spacings is None and run.kind == "diaphragm" and abs((wall.thickness or 0) - run.size) > 0.01:
-            yield f"thickness {wall.thickness} for {run.size}"
-        if len(pit.runs) == 1 and pit.shares is None and run.count not in (None, wall.count):
-            yield f"{wall.count} piles for {run.count}"
+        yield from wall_faults(held[0].wall, run, len(pit.runs) == 1 and pit.shares is None)
         if (k or (pit.closed and len(pit.runs) > 1)) and pit.shares is None:
-            near = 0.5 * max(r.spacing or 0.1 for r in (run, pit.runs[k - 1]))
-            away = [abs((r.start - at(run.start) + shape.length / 2) % shape.length - shape.length / 2)
-                    for r in shape.runs]  # fmt: skip
-            if min(away) > near + 0.02:
-                yield f"boundary off by {min(away):.2f} m, allowed {near:.2f} m"
+            yield from boundary_faults(shape, at(run.start), 0.5 * max(r.spacing or 0.1 for r in (run, pit.runs[k - 1])))
+
+
+def wall_faults(wall, run, whole):
+    if run.spacings and not 0.985 * run.spacings[0] <= (wall.centres or 0.0) <= 1.01 * run.spacings[1]:
+        yield f"centres {wall.centres:.3f} for {run.spacings}"
+    if run.kind == "diaphragm" and abs((wall.thickness or 0) - run.size) > 0.01:
+        yield f"thickness {wall.thickness} for {run.size}"
+    if whole and run.count not in (None, wall.count):
+        yield f"{wall.count} piles for {run.count}"
+
+
+def boundary_faults(shape, at, allowed):
+    away = min(abs((r.start - at + shape.length / 2) % shape.length - shape.length / 2) for r in shape.runs)
+    if away > allowed + 0.02:
+        yield f"boundary off by {away:.2f} m, allowed {allowed:.2f} m"
 
 
 def circle_faults(shape, pit):

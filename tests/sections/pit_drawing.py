@@ -62,27 +62,7 @@ class Draughtsman:
         Set out side by side, with a pile in every corner, or (where all sides are long) once round without regard to
         corners.
         """
-        ends = self.bits_of(pit, run)
-        if pit.circle is not None and len(ends) > 2:
-            run.spacing = min(run.spacing, 0.49 * min(np.diff(ends)))  # fewer piles to a side make no polygon
-        arcs = [bit.length for bit in pit.bits if bit.centre is not None]
-        run.spacing = min([run.spacing, *(0.2 * length for length in arcs)])  # fewer posts make no arc
-        if min(np.diff(ends)) > 6 * run.spacing and self.r.random() < 0.3 and len(ends) > 2:
-            ends = [run.start, run.stop]
-        lengths = np.diff(ends)
-        while np.ptp(lengths / np.maximum(np.round(lengths / run.spacing), 1)) > 0.08 * run.spacing:
-            run.spacing *= 1.02 if run.kind == "contiguous" else 0.95
-            if run.kind != "king_post" and not 0.6 <= run.spacing / run.size <= 1.5:
-                run.spacing = run.size * (1.2 if run.kind == "contiguous" else 0.8)
-                lengths, ends = np.array([run.stop - run.start]), [run.start, run.stop]
-        places = []
-        for a, b in zip(ends, ends[1:], strict=False):
-            n = max(round((b - a) / run.spacing), 1)
-            places += [a + (b - a) * k / n for k in range(n)]
-        if not pit.closed and abs(run.stop - pit.length) < 1e-6:
-            places.append(run.stop)
-        if pit.shares is not None and run.start == 0.0:
-            places = places[1:]  # the other pit's wall stands there
+        places = self.places(pit, run)
         run.spacings = (float(np.diff(places).min()), float(np.diff(places).max()))
         run.spacing = float(np.median(np.diff(places)))
         run.count = len(places)
@@ -90,6 +70,34 @@ class Draughtsman:
         style, named = self.r.choice(styles), self.r.random() < 0.8
         for k, s in enumerate(places):
             self.pile(pit.at(s), run, k % 2 == 1, style, named)
+
+    def places(self, pit, run):
+        """Distances of the piles; spacings of the sides differ by less than a tenth."""
+        ends = self.bits_of(pit, run)
+        if pit.circle is not None and len(ends) > 2:
+            run.spacing = min(run.spacing, 0.49 * min(np.diff(ends)))  # fewer piles to a side make no polygon
+        arcs = [bit.length for bit in pit.bits if bit.centre is not None]
+        run.spacing = min([run.spacing, *(0.2 * length for length in arcs)])  # fewer posts make no arc
+        if min(np.diff(ends)) > 6 * run.spacing and self.r.random() < 0.3 and len(ends) > 2:
+            ends = [run.start, run.stop]
+        ends = self.evened(run, ends)
+        places = []
+        for a, b in zip(ends, ends[1:], strict=False):
+            n = max(round((b - a) / run.spacing), 1)
+            places += [a + (b - a) * k / n for k in range(n)]
+        if not pit.closed and abs(run.stop - pit.length) < 1e-6:
+            places.append(run.stop)
+        return places[1:] if pit.shares is not None and run.start == 0.0 else places
+
+    def evened(self, run, ends):
+        """Choose a spacing that suits all sides, or else set out once round."""
+        lengths = np.diff(ends)
+        while np.ptp(lengths / np.maximum(np.round(lengths / run.spacing), 1)) > 0.08 * run.spacing:
+            run.spacing *= 1.02 if run.kind == "contiguous" else 0.95
+            if run.kind != "king_post" and not 0.6 <= run.spacing / run.size <= 1.5:
+                run.spacing = run.size * (1.2 if run.kind == "contiguous" else 0.8)
+                return [run.start, run.stop]
+        return ends
 
     def pile(self, at, run, odd, style, named):
         male = run.kind == "secant" and odd
@@ -112,18 +120,21 @@ class Draughtsman:
         if style == "short" and (min(np.diff(ends)) < 4 or any(len(way) > 2 for way in ways)):
             style = "axis"
         for k, way in enumerate(ways):
-            if style in ("axis", "short"):
-                inner = (k > 0, k < len(ways) - 1)
-                for part in self.split(self.shortened(way, run, inner) if style == "short" else way):
-                    self.piece(self.frayed(part), run, "axis", run.size)
-            elif style == "face":
-                for side in (0.5, -0.5):
-                    for part in self.split(offset(way, side * run.size)):
-                        self.piece(part, run, "face", None)
-            else:
-                for part in self.panels(way):
-                    left, right = offset(part, 0.5 * run.size), offset(part, -0.5 * run.size)
-                    self.piece([*left, *right[::-1]], run, "outline", None, closed=True)
+            self.stretch(way, run, style, (k > 0, k < len(ways) - 1))
+
+    def stretch(self, way, run, style, inner):
+        """One straight or arc of a wall; `inner` tells at which ends the same wall goes on round a corner."""
+        if style in ("axis", "short"):
+            for part in self.split(self.shortened(way, run, inner) if style == "short" else way):
+                self.piece(self.frayed(part), run, "axis", run.size)
+        elif style == "face":
+            for side in (0.5, -0.5):
+                for part in self.split(offset(way, side * run.size)):
+                    self.piece(part, run, "face", None)
+        else:
+            for part in self.panels(way):
+                left, right = offset(part, 0.5 * run.size), offset(part, -0.5 * run.size)
+                self.piece([*left, *right[::-1]], run, "outline", None, closed=True)
 
     def two_rings(self, pit, run):
         """Both faces of a closed wall as closed rings."""

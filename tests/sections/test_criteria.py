@@ -39,7 +39,7 @@ from sections.criteria.supports_skew import supports_skew
 from sections.criteria.wall_change import wall_change
 from sections.criteria.water import water_gradient
 from sections.loads import area_ratios
-from sections.model import Circle, CriterionResult, FoundPit, Run, Step
+from sections.model import Arc, Circle, CriterionResult, FoundPit, Run, Step
 from sections.severity import find_severity, severity_at
 
 LIMITS = Limits()
@@ -261,6 +261,37 @@ def test_nothing_is_two_dimensional_near_a_reentrant_corner() -> None:
     assert result.gate[spot(found, 126.0)].all()
     assert not result.gate[spot(found, 113.5)].any()
     assert not result.gate[spot(found, 126.5)].any()
+
+
+def blunted(cut: float) -> tuple[tuple[float, float], ...]:
+    """The L with its re-entrant corner replaced by three turns of 30 degrees, the two pieces between `cut` long."""
+    c, s = cut * np.cos(np.radians(30.0)), cut * np.sin(np.radians(30.0))
+    x, y = 30.0 + c + s, 30.0
+    corner = ((x, y), (x - c, y + s), (x - c - s, y + s + c))
+    return ((0.0, 0.0), (60.0, 0.0), (60.0, 30.0), *corner, (30.0, 60.0), (0.0, 60.0))
+
+
+def test_a_reentrant_corner_drawn_as_three_blunt_ones_is_one() -> None:
+    # 30 degrees each would be a gentle turn; within one depth of 6 m they add up to 90
+    site, found = polygon_pit(blunted(1.0), beam=False)
+    result = reentrant(site, found, LIMITS)
+    middle = found.shape.corners[4].at
+    i = int(np.argmin(np.abs(found.stations.chainage - middle)))
+    assert result.gate[i].all()
+    assert band(corner_class(site, found, LIMITS), spot(found, 100.0), W) is None
+    # far apart they are three gentle turns
+    site, found = polygon_pit(blunted(12.0), beam=False)
+    assert not reentrant(site, found, LIMITS).gate.any()
+
+
+def test_a_rounded_reentrant_corner_is_one_where_it_is_tight() -> None:
+    site, found = polygon_pit(ELL, beam=False)
+    for radius, shut in ((2.0, True), (15.0, False)):
+        quarter = radius * np.pi / 2
+        arc = Arc(start=120.0 - quarter / 2, to=120.0 + quarter / 2, centre=(0.0, 0.0), radius=radius, ccw=False)
+        straight = tuple(c for c in found.shape.corners if c.interior_angle < 180.0)
+        rounded = replace(found, shape=replace(found.shape, corners=straight, arcs=(arc,)))
+        assert bool(reentrant(site, rounded, LIMITS).gate[spot(found, 120.0)].all()) is shut
 
 
 def test_the_reach_is_the_support_bay_where_that_is_larger() -> None:

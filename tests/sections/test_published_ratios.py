@@ -117,6 +117,11 @@ def test_the_shape_has_its_offset_and_its_plane_strain_reach(v: dict[str, Any]) 
     assert at_reach == pytest.approx(0.95, abs=1e-8)
 
 
+def test_no_check_value_lies_unused() -> None:
+    others = {"combine", "combine with load", "one mechanism", "plane strain ratio of a wall"}
+    assert {v["case"] for v in VALUES} <= {*CASES, *others, "hydraulic holds", "round holds"}
+
+
 def test_the_bell_shape_has_its_width() -> None:
     v = next(v for v in VALUES if v["case"] == "bell")
     assert float(bell_width(**v["given"])) == pytest.approx(v["W"], rel=1e-9), v["source"]

@@ -1,0 +1,113 @@
+"""Ratios along the wall of a scene's block: demands in three dimensions over those of its plane slice."""
+
+from __future__ import annotations
+
+from dataclasses import dataclass
+
+import numpy as np
+
+from block import Array
+from pits import FLOOR, End, Model, Slice, ends_of, nearest_ends, sector_model, tensor_model
+from scenes import Scene
+
+OUTPUTS = ("wall_deflection", "wall_moment_excavated_face", "wall_moment_retained_face", "support_force")
+
+
+@dataclass(frozen=True)
+class Ratios:
+    """Per facet the point on plan, the side, and the four ratios (n, 4), nan where there is none."""
+
+    points: Array
+    side: Array
+    ratio: Array
+    unknowns: int
+
+
+def oracle_ratios(scene: Scene, refine: float = 1.0) -> Ratios:
+    """Solve the block of a scene and its slices."""
+    model = (sector_model if scene.sectors else tensor_model)(scene, refine)
+    facets = range(len(model.path.lengths))
+    slices = [model.cut(f) for f in facets]
+    ends = ends_of(scene)
+    real = np.array([_real(model, f) for f in facets])
+    near = [nearest_ends(scene, ends, int(model.side[f]), float(model.place[f])) for f in facets]
+    width = np.array([max((e.width for e in n), default=0.0) for n in near])
+    bay = np.array([_bay_mean(scene, model, real[:, k], width) for k in range(3)]).T
+    use = np.column_stack([bay if scene.rows else real[:, :2], bay[:, 2]])[:, -3:] if not scene.rows else bay
+    flat = np.array([(s.deflection, s.excavated, s.retained) for s in slices])
+    largest = flat[:, 1:].max(axis=1)
+    flat[:, 1:] = np.maximum(flat[:, 1:], FLOOR * largest[:, None])
+    support = [_support(scene, model, n, s) for n, s in zip(near, slices, strict=True)]
+    return Ratios(model.points, model.side, np.column_stack([use / flat, support]), model.block.unknowns)
+
+
+def _real(model: Model, facet: int) -> tuple[float, float, float]:
+    """Largest deflection and moments in the middle of a facet."""
+    w = sum(model.block.deflection(model.path, facet + e, facet) for e in (0, 1)) / 2
+    M = sum(model.block.moment(model.path, facet + e, facet) for e in (0, 1)) / 2
+    return float(max(w.max(), 0.0)), float(max(M.max(), 0.0)), float(max(-M.min(), 0.0))
+
+
+def _bay_mean(scene: Scene, model: Model, values: Array, width: Array) -> Array:
+    """Mean over one bay centred at each facet, within its side; a mirror plane shows what lies behind it."""
+    out = values.copy()
+    corners = np.array(scene.corners)
+    side_length = np.hypot(*(np.roll(corners, -1, axis=0) - corners).T)
+    for side in np.unique(model.side):
+        here = np.flatnonzero(model.side == side)
+        here = here[np.argsort(model.place[here])]
+        place, length, value = model.place[here], model.path.lengths[here], values[here]
+        total = side_length[side]
+        cover = length.sum()
+        if cover < total - 1e-6:
+            place = np.concatenate([place, total - place[::-1]])
+            order = np.argsort(place)
+            place, length, value = place[order], np.tile(length, 2)[order], np.concatenate([value, value[::-1]])[order]
+            length = np.where(place <= total / 2, length, length)
+        edges = np.concatenate([[0.0], np.cumsum(_mirrored(length, place, total))])
+        sums = np.concatenate([[0.0], np.cumsum(value * np.diff(edges))])
+        low = np.maximum(model.place[here] - width[here] / 2, 0.0)
+        high = np.minimum(model.place[here] + width[here] / 2, total)
+        wide = high - low > 1e-9
+        mean = (np.interp(high, edges, sums) - np.interp(low, edges, sums)) / np.where(wide, high - low, 1.0)
+        out[here] = np.where(wide, mean, values[here])
+    return out
+
+
+def _mirrored(length: Array, place: Array, total: float) -> Array:
+    """Facet lengths that fill the side, from their middles."""
+    edges, at = [0.0], 0.0
+    for middle in place:
+        at = 2 * middle - at
+        edges.append(at)
+    return np.diff(edges)
+
+
+def _support(scene: Scene, model: Model, near: list[End], flat: Slice) -> float:
+    """Worst level at a facet: force of the nearest prop over its width against the slice's force per metre."""
+    largest = max(flat.force.values(), default=0.0)
+    if largest <= 0:
+        return float("nan")
+    each = []
+    for e in near:
+        mate = _mate(scene, model, e)
+        z = scene.props[e.prop].depth
+        each.append(model.force[mate] / e.width / max(flat.force[z], FLOOR * largest))
+    return float(max(each))
+
+
+def _mate(scene: Scene, model: Model, end: End) -> int:
+    """The prop itself, or its image where the model does not hold it."""
+    if not np.isnan(model.force[end.prop]):
+        return end.prop
+    own = scene.props[end.prop]
+    kept = [i for i, p in enumerate(scene.props) if p.depth == own.depth and not np.isnan(model.force[i])]
+    image = _images(scene, own.head)
+    return min(kept, key=lambda i: min(np.hypot(*(np.array(scene.props[i].head) - q)) for q in image))
+
+
+def _images(scene: Scene, point: tuple[float, float]) -> list[Array]:
+    mx, my = scene.mirror
+    x = [point[0]] + ([2 * mx - point[0]] if mx is not None else [])
+    y = [point[1]] + ([2 * my - point[1]] if my is not None else [])
+    return [np.array((a, b)) for a in x for b in y]
