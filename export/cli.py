@@ -39,8 +39,8 @@ EXAMPLES = {
         "cutworthy judge samples/first_pit/first_pit.dxf --line 102,190,103,230 --json",
     ),
     "members": (
-        "cutworthy members out/first_pit/sections/S1.json samples/first_pit/results.csv",
-        "cutworthy members out/first_pit/sections/S1.json samples/first_pit/results.csv --out out/members.csv",
+        "cutworthy members out/first_pit/sections/S1.json out/first_pit/sections/S2.json samples/first_pit/results.csv",
+        "cutworthy members out/first_pit/sections/S[12].json samples/first_pit/results.csv --out out/members.csv",
     ),
     "schema": ("cutworthy schema", "cutworthy schema section"),
 }

@@ -20,6 +20,8 @@ from sections.support_ends import REACH
 
 WALER_LEVEL = 1.0
 """A waler within this height of a row carries it, m (judgement)."""
+STEP = 0.25
+"""Distance at which a waler is laid on the wall, m."""
 ACROSS = 0.5
 """Sine of the largest angle between a waler and the wall it runs along (judgement)."""
 WALER_SHARE = 0.8
@@ -63,7 +65,7 @@ def waler_stretches(shape: PitShape, waler: Waler) -> tuple[tuple[float, float],
     Where it merely passes the end of another wall, in a sharp corner, it runs across that wall and not along it.
     """
     line = shapely.LineString(waler.points) if len(waler.points) > 1 else shapely.Point(waler.points[0])
-    dense = shapely.get_coordinates(shapely.segmentize(line, 0.25) if line.length > 0.0 else line)
+    dense = shapely.get_coordinates(shapely.segmentize(line, STEP) if line.length > 0.0 else line)
     pieces = np.diff(dense, axis=0)
     spots = np.concatenate([dense[:-1], dense[1:]])
     found = locate(shape, spots)
@@ -100,7 +102,7 @@ def _to_corner(shape: PitShape, place: float, way: float) -> float:
     if shape.closed:
         corners = np.concatenate([corners, corners + shape.length])
     ahead = way * (corners - place)
-    near = corners[(ahead >= 0.0) & (ahead <= REACH)]
+    near = corners[(ahead >= 0.0) & (ahead <= REACH + STEP)]
     return float(near[0]) if len(near) else place
 
 

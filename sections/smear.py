@@ -25,6 +25,8 @@ POWER_OF_COS_BETA: dict[MemberQuantity, int] = {
     "EA": 3, "EI": 3, "weight": -1, "preload": 1, "limit": 1, "k_effective": 2, "free_strain": -2,
 }  # fmt: skip
 """Power of cos(beta) that turns a member's value into the section's (statics of a bar in plane motion)."""
+NO_SKEW = 1e-6
+"""Skews below this are rounding of the coordinates, degrees."""
 
 
 @record
@@ -90,7 +92,8 @@ def find_direction(head: Point3, far: Point3, along_wall: Point) -> Direction:
     dx, dy = far[0] - head[0], far[1] - head[1]
     along, normal = dx * tx + dy * ty, abs(dy * tx - dx * ty)
     inclination = degrees(atan2(head[2] - far[2], hypot(along, normal)))
-    return Direction(skew=degrees(atan2(along, normal)), inclination=inclination)
+    skew = degrees(atan2(along, normal))
+    return Direction(skew=skew if abs(skew) > NO_SKEW else 0.0, inclination=inclination)
 
 
 def member_parts(

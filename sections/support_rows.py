@@ -85,7 +85,7 @@ def _facts(site: Site, shape: PitShape, sides: Sides, ends: SupportEnds) -> _End
         head_level=levels[:count],
         far_level=levels[count:],
         inclination=np.where(given, inclination, np.nan),
-        skew=np.degrees(np.arctan2(along, across)),
+        skew=np.where(along < 1e-6 * across, 0.0, np.degrees(np.arctan2(along, across))),
     )
 
 

@@ -33,7 +33,7 @@ def oracle_ratios(scene: Scene, refine: float = 1.0) -> Ratios:
     near = [nearest_ends(scene, ends, int(model.side[f]), float(model.place[f])) for f in facets]
     width = np.array([max((e.width for e in n), default=0.0) for n in near])
     bay = np.array([_bay_mean(scene, model, real[:, k], width) for k in range(3)]).T
-    use = np.column_stack([bay if scene.rows else real[:, :2], bay[:, 2]])[:, -3:] if not scene.rows else bay
+    use = bay if scene.rows else np.column_stack([real[:, :2], bay[:, 2]])
     flat = np.array([(s.deflection, s.excavated, s.retained) for s in slices])
     largest = flat[:, 1:].max(axis=1)
     flat[:, 1:] = np.maximum(flat[:, 1:], FLOOR * largest[:, None])
@@ -56,15 +56,13 @@ def _bay_mean(scene: Scene, model: Model, values: Array, width: Array) -> Array:
     for side in np.unique(model.side):
         here = np.flatnonzero(model.side == side)
         here = here[np.argsort(model.place[here])]
-        place, length, value = model.place[here], model.path.lengths[here], values[here]
+        place, value = model.place[here], values[here]
         total = side_length[side]
-        cover = length.sum()
-        if cover < total - 1e-6:
+        if model.path.lengths[here].sum() < total - 1e-6:
             place = np.concatenate([place, total - place[::-1]])
             order = np.argsort(place)
-            place, length, value = place[order], np.tile(length, 2)[order], np.concatenate([value, value[::-1]])[order]
-            length = np.where(place <= total / 2, length, length)
-        edges = np.concatenate([[0.0], np.cumsum(_mirrored(length, place, total))])
+            place, value = place[order], np.concatenate([value, value[::-1]])[order]
+        edges = np.concatenate([[0.0], np.cumsum(_lengths(place))])
         sums = np.concatenate([[0.0], np.cumsum(value * np.diff(edges))])
         low = np.maximum(model.place[here] - width[here] / 2, 0.0)
         high = np.minimum(model.place[here] + width[here] / 2, total)
@@ -74,8 +72,8 @@ def _bay_mean(scene: Scene, model: Model, values: Array, width: Array) -> Array:
     return out
 
 
-def _mirrored(length: Array, place: Array, total: float) -> Array:
-    """Facet lengths that fill the side, from their middles."""
+def _lengths(place: Array) -> Array:
+    """Lengths of facets that fill a side, from their middles."""
     edges, at = [0.0], 0.0
     for middle in place:
         at = 2 * middle - at
