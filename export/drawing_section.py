@@ -67,7 +67,7 @@ def _ground(space: Any, definition: SectionDefinition) -> None:
             x, z = min(x for ring in rings for x, _ in ring), max(z for ring in rings for _, z in ring)
             words(space, (x + 0.4, z - 0.6), one.material or one.id, "ground_text")
     for water in definition.ground.water:
-        if len(water.line) > 1:
+        if len(water.line) > 1 and not water.before_work:
             polyline(space, water.line, "water")
 
 

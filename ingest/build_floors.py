@@ -35,6 +35,7 @@ def build_plates(given: Sequence[RoleGiven], notes: Notes) -> tuple[Plate, ...]:
                 holes=tuple(plan(hole) for hole in part.holes),
                 top=part.z_top,
                 underside=part.z_bottom,
+                material=notes.material_of(part),
                 layer=part.layer,
                 name=part.name,
                 evidence=item.evidence,

@@ -87,7 +87,7 @@ def given_of(item: RoleGiven, tied: Tied, notes: Notes) -> WallGiven:
         toe = None
     material, factor = _first(entries, "material"), _first(entries, "EI_factor")
     return WallGiven(
-        material=material if isinstance(material, str) else None,
+        material=material if isinstance(material, str) else notes.material_of(part),
         EI_factor=factor if isinstance(factor, float) else None,
         continuity=_first(entries, "continuity") or "unknown",  # type: ignore[arg-type]
         top=top,

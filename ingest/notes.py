@@ -51,6 +51,10 @@ class Notes:
             Finding(id="", code=code, severity=severity, where=where, text=text, sources=tuple(sources))
         )
 
+    def material_of(self, part: Part) -> str | None:
+        """Material of the brief that the model names on a part; None where it names none the brief describes."""
+        return next((m.id for m in self.brief.materials if part.material and alike(m.id, part.material)), None)
+
     def stop(self, problem: str, remedy: str, *path: str | int) -> InputError:
         """The error for a fault of the brief, with its line."""
         return InputError(self.brief.file, self.brief.place(*path), problem, remedy)

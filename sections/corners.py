@@ -59,7 +59,7 @@ def find_arcs(outline: Outline) -> tuple[Arc, ...]:
         arcs.append(
             Arc(
                 start=0.0 if whole else float(at[first]),
-                to=outline.length if last == count and first == 0 or last == count else float(at[last % count]),
+                to=outline.length if last % count == 0 else float(at[last % count]),
                 centre=(float(side.centre[0]), float(side.centre[1])),
                 radius=float(side.radius),
                 ccw=side.turn > 0,

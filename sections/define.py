@@ -210,7 +210,7 @@ def _stages(
             text="No stages: the ground or dig level at the wall is not given",
         )
         return (), (), (finding,)
-    return plan_stages(site, dig, tuple(names.values()), props, loads, [line.id for line in water])
+    return plan_stages(site, dig, tuple(names.values()), props, loads, water)
 
 
 def _not_assessed(site: Site) -> tuple[NotAssessed, ...]:

@@ -79,12 +79,17 @@ class GroundLayer:
 
 @record
 class Water:
-    """A water line."""
+    """A water line. Before work the level outside holds inside the pit too: side "excavated", kind "retained"."""
 
     id: str
     side: Literal["left", "right", "excavated"]
     line: Curve
     kind: Literal["retained", "excavated"]
+
+    @property
+    def before_work(self) -> bool:
+        """True for the water that stood inside the pit before it was dug."""
+        return self.side == "excavated" and self.kind == "retained"
 
 
 @record

@@ -122,13 +122,14 @@ def _profile(value: float | None, gradient: float | None, top: float | None, bas
 
 
 def water_lines(site: Site, cut: Cut) -> tuple[Water, ...]:
-    """Water behind each wall and inside the pit, where the brief gives levels."""
+    """Water behind each wall, and inside the pit before work and when dug, where the brief gives levels."""
     lines = []
     inside = cut.pit_interval()
     if site.water_retained is not None:
         for wall in cut.walls:
             span = (0.0, wall.x) if wall.side == "left" else (wall.x, cut.length)
             lines.append(_water(f"water-{wall.side}", wall.side, span, site.water_retained, "retained"))
+        lines.append(_water("water-before", "excavated", inside, site.water_retained, "retained"))
     if site.water_excavated is not None:
         lines.append(_water("water-excavated", "excavated", inside, site.water_excavated, "excavated"))
     return tuple(lines)

@@ -8,6 +8,7 @@ import numpy as np
 
 from ingest.model import Load, Site
 from ingest.trail import Finding
+from sections.column_loads import inside_rows, row_load
 from sections.cut import Cut, CutWall, crossings
 from sections.definition import Curve, LoadValue, SectionLoad
 from sections.hand_over import (
@@ -17,6 +18,7 @@ from sections.hand_over import (
     hand_over_perpendicular_line,
     hand_over_point,
 )
+from sections.section_stages import AT_END
 
 UNITS = {"point": "kN", "line": "kN/m", "area": "kPa", "footing": "kPa"}
 NEAREST = 0.1
@@ -45,7 +47,8 @@ def load_rows(site: Site, cut: Cut, stands_for: float | None) -> tuple[tuple[Sec
         Loads and what could not be worked out. A load inside the pit is listed with its drawn value: it has no equal
         effect on the wall to keep.
     """
-    rows, findings = [], []
+    made = [row_load(row) for row in inside_rows(site, cut)]
+    rows, findings = [row for row, _ in made], [finding for _, finding in made if finding]
     for name, load, wall in loads_at(site, cut):
         row, problem = _row(name, load, wall, cut, stands_for)
         rows.append(row)
@@ -60,12 +63,14 @@ def load_rows(site: Site, cut: Cut, stands_for: float | None) -> tuple[tuple[Sec
                     sources=load.sources,
                 )
             )
-    return tuple(rows), tuple(findings)
+    return tuple(sorted(rows, key=lambda row: row.id)), tuple(findings)
 
 
 def load_stages(site: Site, cut: Cut) -> dict[str, str | None]:
-    """Stage in which each load of the section comes on; None from the start."""
-    return {name: load.stage for name, load, _ in loads_at(site, cut)}
+    """Stage in which each load of the section comes on: None from the start, AT_END for loads inside the pit."""
+    inside = inside_rows(site, cut) if cut.kind == "plane_strain" else ()
+    stages = {row.id: row.load.stage or AT_END for row in inside}
+    return stages | {name: load.stage for name, load, _ in loads_at(site, cut)}
 
 
 def loads_at(site: Site, cut: Cut) -> list[tuple[str, Load, CutWall]]:

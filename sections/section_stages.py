@@ -3,17 +3,19 @@
 from __future__ import annotations
 
 from collections.abc import Mapping, Sequence
-from dataclasses import dataclass
+from dataclasses import dataclass, replace
 
 import numpy as np
 
 from ingest.model import Site, Stage
 from ingest.trail import Assumption, Finding
 from sections.cut import Interval
-from sections.definition import Curve, SectionStage
+from sections.definition import Curve, SectionStage, Water
 
 OVER_DIG = 0.5
 """Dig below a support's level before it is installed, m (common practice, no source)."""
+AT_END = "after the last stage"
+"""Stage of loads that stand on the finished floor and have none of their own."""
 
 
 @dataclass(frozen=True, kw_only=True)
@@ -57,7 +59,7 @@ def plan_stages(
     walls: Sequence[str],
     props: Sequence[Prop],
     loads: Mapping[str, str | None],
-    water: Sequence[str],
+    water: Sequence[Water],
 ) -> tuple[tuple[SectionStage, ...], tuple[Assumption, ...], tuple[Finding, ...]]:
     """Lay out the stages of a section.
 
@@ -66,8 +68,8 @@ def plan_stages(
         dig: Final dig profile.
         walls: Wall member ids.
         props: Supports of the section.
-        loads: Load ids with the stage of the brief in which each comes on; None from the start.
-        water: Ids of the water lines.
+        loads: Load ids with the stage of the brief in which each comes on; None from the start, AT_END at the end.
+        water: Water lines; those inside the pit take turns at the first dig below the water outside.
 
     Returns:
         Stages (stage 0 = stress in the ground before work), what was assumed, and what did not fit.
@@ -80,7 +82,7 @@ def plan_stages(
             text="stress in the ground before work",
             level=dig.ground,
             loads_on=from_start,
-            water=(*water,),
+            water=tuple(line.id for line in water if line.kind == "retained"),
             assumed=False,
         ),
         SectionStage(
@@ -89,17 +91,71 @@ def plan_stages(
     )
     if site.stages:
         stages, findings = _given(site.stages, first, dig, props, {k: v for k, v in loads.items() if v})
-        return stages, (), findings
+        stages = _loaded(_drawn_down(stages, water), loads)
+        return stages, (), (*findings, *_untold_water(site, dig, water), *_unknown_stages(site, loads))
     assumption = Assumption(
         id="stages",
         code="stages_by_template",
         about="construction stages",
         text=f"Dug from the top down to {OVER_DIG} m below each support, which is then installed, then to the dig "
-        "level; slabs are cast from the bottom up, no support is removed",
+        "level; slabs are cast from the bottom up, no support is removed"
+        + ("; water inside is drawn down in one step" if any(line.kind == "excavated" for line in water) else ""),
         basis="common practice, no source; sequence not given",
     )
-    findings = _untold_sequence(site)
-    return _template(first, dig, props), (assumption,), findings
+    findings = (*_untold_sequence(site), *_untold_water(site, dig, water), *_unknown_stages(site, loads))
+    return _loaded(_drawn_down(_template(first, dig, props), water), loads), (assumption,), findings
+
+
+def _loaded(stages: tuple[SectionStage, ...], loads: Mapping[str, str | None]) -> tuple[SectionStage, ...]:
+    """Add the stage in which the loads inside the pit come on."""
+    late = tuple(load for load, stage in loads.items() if stage == AT_END)
+    if not late:
+        return stages
+    order = len(stages)
+    text = "loads inside the pit come on"
+    return (*stages, SectionStage(id=f"T{order}", order=order, text=text, level=stages[-1].level, loads_on=late))
+
+
+def _unknown_stages(site: Site, loads: Mapping[str, str | None]) -> tuple[Finding, ...]:
+    known = {None, AT_END, *(stage.name for stage in site.stages)}
+    return tuple(
+        Finding(
+            id=f"stage-{load}",
+            code="load_never_on",
+            severity="check",
+            where=load,
+            text=f"Load {load} comes on in stage {stage!r}, which the brief does not have: it is never on",
+        )
+        for load, stage in loads.items()
+        if stage not in known
+    )
+
+
+def _drawn_down(stages: tuple[SectionStage, ...], water: Sequence[Water]) -> tuple[SectionStage, ...]:
+    """Put the water of the dug pit into the first stage that digs below the water outside."""
+    outside = [level for line in water if line.kind == "retained" for _, level in line.line]
+    dug = tuple(line.id for line in water if not line.before_work)
+    if not any(line.kind == "excavated" for line in water):
+        return stages
+    level = max(outside, default=float("inf"))
+    first = next((k for k, stage in enumerate(stages) if stage.dig and (stage.level or 0.0) < level), None)
+    return tuple(replace(stage, water=dug) if k == first else stage for k, stage in enumerate(stages))
+
+
+def _untold_water(site: Site, dig: DigProfile, water: Sequence[Water]) -> tuple[Finding, ...]:
+    """What the brief says of water that no stage carries, and what it does not say."""
+    found = []
+    outside = max((level for line in water if line.kind == "retained" for _, level in line.line), default=-float("inf"))
+    if outside > dig.lowest and not any(line.kind == "excavated" for line in water):
+        text = (
+            f"The dig goes to {dig.lowest:.2f}, below the water outside at {outside:.2f}; the water inside is not given"
+        )
+        found.append(("stage-water-inside", "water_inside_missing", text))
+    told = [stage.name for stage in site.stages if stage.water is not None]
+    if told:
+        text = f"The water levels of the stages {', '.join(told)} are not laid out; one level inside holds for all"
+        found.append(("stage-water", "stage_water_not_laid_out", text))
+    return tuple(Finding(id=name, code=code, severity="check", where="stages", text=text) for name, code, text in found)
 
 
 def _template(first: tuple[SectionStage, ...], dig: DigProfile, props: Sequence[Prop]) -> tuple[SectionStage, ...]:

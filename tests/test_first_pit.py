@@ -293,3 +293,19 @@ def test_the_same_inputs_give_the_same_bytes(out: Path, tmp_path: Path) -> None:
     names = sorted(path.relative_to(out) for path in out.rglob("*") if path.is_file())
     assert names == sorted(path.relative_to(folder) for path in folder.rglob("*") if path.is_file())
     assert [name for name in names if (out / name).read_bytes() != (folder / name).read_bytes()] == []
+
+
+def test_the_expected_figures_of_the_sample_come_out(proposal: dict[str, Any], section: dict[str, Any]) -> None:
+    expected = json.loads((PIT / "expected" / "figures.json").read_text())
+    (pit,) = proposal["pits"]
+    assert pit["length"] == expected["length"]
+    assert [corner["at"] for corner in pit["corners"]] == expected["corners"]
+    zones = [[z["from"], z["to"]] for z in pit["zones"]]
+    assert sum(zones, []) == pytest.approx(sum(expected["zones"], []), abs=0.01)
+    figures = expected["S1"]
+    assert section["line"] == figures.pop("line")
+    load = figures.pop("P1-load-1")
+    assert section["loads"][0]["section"] == {"value": pytest.approx(load["section"]), "unit": load["unit"]}
+    for name, values in figures.items():
+        got = member(section, name)["section"]
+        assert {key: got[key] for key in values} == pytest.approx(values), name

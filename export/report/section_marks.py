@@ -20,7 +20,7 @@ def levels_of(definition: SectionDefinition) -> list[tuple[float, str]]:
     for one in definition.members:
         noted += _member_levels(one)
     noted += [(min(z for _, z in ring), "dig level") for stage in definition.stages for ring in stage.dig if ring]
-    noted += [(water.line[0][1], "water") for water in definition.ground.water if water.line]
+    noted += [(water.line[0][1], "water") for water in definition.ground.water if water.line and not water.before_work]
     noted.append((definition.extent.z[0], "base of model"))
     found: dict[float, list[str]] = {}
     for z, what in noted:
@@ -126,7 +126,7 @@ def water_marks(definition: SectionDefinition, view: View) -> Html:
 
 def _waters(definition: SectionDefinition, view: View) -> Iterable[Html]:
     for water in definition.ground.water:
-        if not water.line:
+        if not water.line or water.before_work:
             continue
         points = [view.at(point) for point in water.line]
         x, y = points[0][0] + 0.62 * (points[-1][0] - points[0][0]), points[0][1]

@@ -119,11 +119,13 @@ class Doubts:
 
 
 def extent_of(parts: list[Part]) -> float:
-    """Largest side of the box about all points of all parts, m; 0 without parts."""
+    """Largest side of the box about all parts, m, their heights included; 0 without parts."""
     at = [point for part in parts for point in part.points]
     if not at:
         return 0.0
-    return float(np.ptp(np.array(at), axis=0).max())
+    levels = [z for part in parts for z in (part.z_bottom, part.z_top) if z is not None]
+    tall = max(levels) - min(levels) if levels else 0.0
+    return max(float(np.ptp(np.array(at), axis=0).max()), tall)
 
 
 def _better_unit(size: float) -> str:

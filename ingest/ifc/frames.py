@@ -58,10 +58,11 @@ class FrameTable:
             up = frame.get_argument(AXIS)
             if kind != "IfcAxis1Placement":
                 first = frame.get_argument(REF_DIRECTION)
-        self._origins.append(triple(frame.get_argument(LOCATION).get_argument(COORDINATES)))
-        self._ups.append(_UP if up is None else self.direction(up))
-        self._firsts.append(_EAST if first is None else self.direction(first))
-        return len(self._firsts) - 1
+        return self.add(
+            triple(frame.get_argument(LOCATION).get_argument(COORDINATES)),
+            _UP if up is None else self.direction(up),
+            _EAST if first is None else self.direction(first),
+        )
 
     def add(self, origin: Triple, up: Triple, first: Triple) -> int:
         """Append a frame given by its numbers."""
@@ -96,12 +97,18 @@ def triple(numbers: tuple[float, ...]) -> Triple:
     """Two or three coordinates as three.
 
     Raises:
-        ValueError: If there are fewer than two.
+        ValueError: If there are fewer or more, or one is no number: damaged files hold texts and lists here.
     """
-    if len(numbers) == 3:
-        return numbers
-    x, y = numbers
-    return (x, y, 0.0)
+    x, y, z = numbers if len(numbers) == 3 else (*numbers, 0.0)
+    if type(x) is float and type(y) is float and type(z) is float:
+        return (x, y, z)
+    return (_number(x), _number(y), _number(z))
+
+
+def _number(value: object) -> float:
+    if isinstance(value, bool) or not isinstance(value, int | float):
+        raise ValueError("a coordinate is no number")
+    return float(value)
 
 
 def frame_matrices(origins: Floats, ups: Floats, firsts: Floats) -> Floats:

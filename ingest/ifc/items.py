@@ -82,7 +82,7 @@ class ItemReader:
 
     def _extrusion(self, item: Entity) -> Extrusion:
         x, y, z = self.frames.direction(item.get_argument(EXTRUDED_DIRECTION))
-        depth = item.get_argument(DEPTH)
+        depth = item.get_argument(DEPTH) * 1.0
         if not x and not y:
             vector = (0.0, 0.0, depth if z > 0 else -depth)
         else:

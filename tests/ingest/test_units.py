@@ -47,8 +47,8 @@ def test_the_two_feet_differ_by_two_parts_in_a_million() -> None:
     ("written", "known"),
     [
         ("Metre", "m"), ("meters", "m"), ("MILLIMETER", "mm"), ("Centimeters", "cm"),
-        ("in", "inch"), ("Feet", "foot"), ("ft", "foot"), ("US survey feet", "us_survey_foot"), ("us-ft", "us_survey_foot"),
-        ("yd", "yard"), ("micron", "um"),
+        ("in", "inch"), ("Feet", "foot"), ("ft", "foot"), ("yd", "yard"), ("micron", "um"),
+        ("US survey feet", "us_survey_foot"), ("us-ft", "us_survey_foot"),
     ],
 )  # fmt: skip
 def test_units_are_known_by_their_usual_names(written: str, known: str) -> None:

@@ -36,7 +36,7 @@ def grade(start: float, length: float, count: int, ratio: float) -> Array:
 
 def fill(marks: Sequence[float], step: float) -> Array:
     marks = np.unique(np.round(marks, 6))
-    pieces = [np.linspace(a, b, max(1, int(np.ceil((b - a) / step - 1e-9))) + 1)[:-1]
+    pieces = [np.linspace(a, b, max(1, int(np.ceil((b - a) / step - 1e-4))) + 1)[:-1]
               for a, b in zip(marks[:-1], marks[1:], strict=True)]  # fmt: skip
     return np.concatenate([*pieces, marks[-1:]])
 
@@ -265,8 +265,9 @@ def _hang(
     unit = (far - head) / np.hypot(*(far - head))
     gaps = [np.hypot(*(xy - end).T) for end in (head, far)]
     met = [int(np.argmin(gap)) if gap.min() < 1e-4 else -1 for gap in gaps]
+    mirror = (None, 0.0) if scene.sectors else scene.mirror
     on_plane = any(m is not None and abs(head[k] - m) < 1e-9 and abs(unit[k]) < 1e-9
-                   for k, m in enumerate(scene.mirror))  # fmt: skip
+                   for k, m in enumerate(mirror))  # fmt: skip
     share = 0.5 if on_plane else 1.0
     if met[0] < 0 and (met[1] < 0 or not prop.tie):
         return None
