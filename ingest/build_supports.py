@@ -54,14 +54,18 @@ def build_supports(
     return tuple(supports)
 
 
-def build_walers(given: Sequence[RoleGiven], supports: Sequence[Support], notes: Notes) -> tuple[Waler, ...]:
+def build_walers(
+    given: Sequence[RoleGiven], supports: Sequence[Support], materials: Sequence[Material], notes: Notes
+) -> tuple[Waler, ...]:
     """Make the walers; one drawn flat lies at the level of the supports when these have but one.
 
     Args:
         given: Parts with role waler, capping beams left out.
         supports: The supports already built.
+        materials: Materials of the brief.
         notes: Takes what is missing or refused.
     """
+    known = {material.id: material for material in materials}
     levels = {round(support.head[2], 3) for support in supports if support.level_given}
     stiff = {entry.waler_EI for entry in notes.brief.supports if entry.waler_EI is not None}
     walers = []
@@ -75,13 +79,16 @@ def build_walers(given: Sequence[RoleGiven], supports: Sequence[Support], notes:
             level = next(iter(levels))
             basis = "the supports given have this one level"
             notes.assume("waler-level", label(item), f"waler at {level:g} m", basis, (part.source,))
-        line = plan(part.points)
+        line, material = plan(part.points), notes.material_of(part)
+        of_model = {"section": None, "EA": None, "material": material}
         walers.append(
             Waler(
                 id="",
                 points=(*line, line[0]) if part.closed or part.form in ("outline", "prism") else line,
                 level=level,
                 EI=next(iter(stiff)) if len(stiff) == 1 else None,
+                EA=find_rigidity(label(item), part, of_model, (), known, notes)[1],
+                material=material,
                 layer=part.layer,
                 name=part.name,
                 evidence=item.evidence,

@@ -8,12 +8,13 @@ from collections.abc import Sequence
 from ingest.brief_tables import WallTable
 from ingest.errors import InputError
 from ingest.faces import THICKEST, find_faces
-from ingest.figures import NearLines, centre_line, centroid, extent, outline_of, plan
+from ingest.figures import NearLines, centre_line, centroid, extent, outline_of, plan, sides_of
 from ingest.matching import fits
 from ingest.model import BarSection, Continuity, Part, Pile, Point, WallKind, WallPiece
 from ingest.notes import Notes, label
 from ingest.record import record
 from ingest.roles import RoleGiven
+from ingest.steel import find_section
 from ingest.surroundings import PILE_DIAMETER, upright
 from ingest.tie_texts import Tied
 from ingest.words import find_meanings, layer_name
@@ -21,6 +22,8 @@ from ingest.words import find_meanings, layer_name
 _DRAWN = {"path": "axis", "circle": "axis", "outline": "outline"}
 BESIDE = 1.0
 """A capping beam runs along a wall whose middle is within this of it, m (judgement)."""
+SAME_POST = 0.02
+"""Drawn size of a post and that of the section it is named after may differ by this, m (judgement)."""
 POST = 1.5
 """Largest side of a post drawn by its outline, m (judgement)."""
 
@@ -137,7 +140,7 @@ def _beam_line(part: Part) -> tuple[Point, ...]:
 def _pile(item: RoleGiven, tied: Tied, notes: Notes, capping: _Capping) -> Pile | None:
     part = item.part
     round_ = _pile_circle(part)
-    post = None if round_ else _post(item)
+    post = None if round_ else _post(item, notes)
     if round_ is None and post is None:
         return None
     centre, diameter = round_ if round_ else (centroid(part), None)
@@ -165,7 +168,7 @@ def _pile(item: RoleGiven, tied: Tied, notes: Notes, capping: _Capping) -> Pile 
     )
 
 
-def _post(item: RoleGiven) -> BarSection | None:
+def _post(item: RoleGiven, notes: Notes) -> BarSection | None:
     """A post drawn by its outline or standing as an upright bar of any section."""
     part = item.part
     if part.form == "bar" and len(part.points) == 2:
@@ -173,12 +176,34 @@ def _post(item: RoleGiven) -> BarSection | None:
         upright_bar = math.hypot(x2 - x1, y2 - y1) <= 0.02 * abs(z2 - z1)
         return (part.section or BarSection(designation="")) if upright_bar else None
     ring = outline_of(part)
-    if ring is None or max(extent(ring)) > POST:
+    if ring is None or max(extent(ring)) > 2 * POST or sides_of(ring)[1] > POST:
         return None
     if item.wall_kind == "king_post" or item.role == "bearing_pile":
-        width, depth = extent(ring)
-        return BarSection(designation="as drawn", width=width, depth=depth)
+        width, depth = sides_of(ring)
+        return _named_post(item, width, depth, notes) or BarSection(designation="as drawn", width=width, depth=depth)
     return None
+
+
+def _named_post(item: RoleGiven, width: float, depth: float, notes: Notes) -> BarSection | None:
+    """The steel section that a post's block is named after, where it has the size drawn."""
+    part = item.part
+    try:
+        section = find_section(part.name)
+    except ValueError:
+        return None
+    named = sorted(size for size in (section.width, section.depth) if size is not None)
+    if any(abs(a - b) > SAME_POST for a, b in zip(named, sorted((width, depth)), strict=False)):
+        text = f"its block is named {part.name}, but it is drawn {width:.3f} x {depth:.3f} m; the name is not taken"
+        notes.see("post-size", "check", label(item), text, (part.source,))
+        return None
+    notes.assume(
+        "post-section",
+        f"{label(item)} {section.designation}",
+        f"posts are {section.designation}, web across the wall: they bend about their major axis",
+        "name of the block they are drawn with, and its size",
+        (part.source,),
+    )
+    return section
 
 
 def _wall(item: RoleGiven, face: str | None, tied: Tied, notes: Notes, capping: _Capping) -> WallPiece | None:

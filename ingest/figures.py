@@ -106,6 +106,17 @@ def extent(ring: Sequence[Point]) -> tuple[float, float]:
     return max(xs) - min(xs), max(ys) - min(ys)
 
 
+def sides_of(ring: Sequence[Point]) -> tuple[float, float]:
+    """Shorter and longer side of the smallest rectangle round a ring, however it is turned, m."""
+    from shapely import Polygon, get_coordinates, oriented_envelope
+
+    corners = get_coordinates(oriented_envelope(Polygon(ring)))
+    if len(corners) < 4:
+        return 0.0, math.dist(ring[0], ring[-1])
+    one, other = (math.dist(corners[k], corners[k + 1]) for k in (0, 1))
+    return min(one, other), max(one, other)
+
+
 class NearLines:
     """Lines and points on plan, asked for the distance of a point from the nearest of them."""
 

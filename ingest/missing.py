@@ -24,7 +24,10 @@ def _ask_levels(site: Site, notes: Notes) -> None:
     if site.formation is None and not site.floors:
         notes.ask("formation level is not given", "[levels]\nformation = nan")
     held = [pile for pile in site.piles if not pile.bearing]
-    toes = [wall.toe for wall in site.walls] + [pile.toe for pile in held]
+    # lagging between king posts goes no deeper than the dig: the toe is that of the posts
+    posts = any(pile.kind == "king_post" for pile in held)
+    walls = [wall for wall in site.walls if not (posts and wall.kind == "king_post")]
+    toes = [wall.toe for wall in walls] + [pile.toe for pile in held]
     if None in toes:
         notes.ask("toe level of the wall is not given", "[[walls]]\ntoe = nan")
 

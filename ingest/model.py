@@ -261,12 +261,14 @@ class Support:
 
 @record
 class Waler:
-    """A beam along the wall. EI in kNm2 about the vertical axis."""
+    """A beam along the wall. EI in kNm2 about the vertical axis, EA in kN."""
 
     id: str
     points: tuple[Point, ...]
     level: float | None = None
     EI: float | None = None
+    EA: float | None = None
+    material: str | None = None
     layer: str = ""
     name: str = ""
     evidence: Evidence | None = None

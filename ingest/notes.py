@@ -53,7 +53,8 @@ class Notes:
 
     def material_of(self, part: Part) -> str | None:
         """Material of the brief that the model names on a part; None where it names none the brief describes."""
-        return next((m.id for m in self.brief.materials if part.material and alike(m.id, part.material)), None)
+        named = part.material.casefold()
+        return next((entry.id for entry in self.brief.materials if entry.id.casefold() == named), None)
 
     def stop(self, problem: str, remedy: str, *path: str | int) -> InputError:
         """The error for a fault of the brief, with its line."""

@@ -98,16 +98,21 @@ def _meet_siblings(stand: Stand, level: Sequence[Stand], start: float, to: float
 
 
 def rows_at(
-    covers: Sequence[Cover], sides: Sides, steps: Walk, count: int
+    covers: Sequence[Cover], sides: Sides, steps: Walk, levels: Floats
 ) -> tuple[Floats, tuple[tuple[int, ...], ...]]:
-    """Spacing of each row at each station (rows, n), nan where it does not hold the wall, and the rows that do."""
-    spacing = np.full((count, len(steps.chainage)), np.nan)
+    """Spacing of each row at each station (rows, n), nan where it does not hold the wall, and the rows that do.
+
+    Args:
+        levels: (rows,) below which the dig must go for a row to be there, m; nan where not known.
+    """
+    spacing = np.full((len(levels), len(steps.chainage)), np.nan)
     for cover in covers:
         length = float(sides.length[cover.side])
         place = np.minimum(steps.place + 2.0 * ON, length - 0.5 * ON)
         for turn in (-length, 0.0, length) if sides.loop else (0.0,):
             shifted = place + turn
             on = (steps.side == cover.side) & (shifted >= cover.start - ON) & (shifted < cover.to)
+            on &= ~(steps.floor > levels[cover.row])  # a row above whose level the dig stops is not there
             spacing[cover.row, on] = _bay_at(cover, shifted[on])
     held = ~np.isnan(spacing)
     rows, stations = np.nonzero(held)

@@ -9,6 +9,7 @@ import numpy as np
 
 from ingest.model import Site
 from ingest.trail import Finding, Question
+from sections.buried_rows import end_at_steps
 from sections.chainage import area_of, find_sides
 from sections.floors import FloorPlan, find_floors, find_steps, floor_records
 from sections.mirror import find_axes
@@ -90,7 +91,8 @@ def _describe(
     steps = find_steps(plan, shape, site.limits)
     loads = find_loads(site, shape, _depth(site, plan))
     rows = number_rows(find_rows(site, shape, sides, ends), shape.id)
-    rows = replace(rows, rows=carry_by_walers(site, shape, rows.rows))
+    ended = end_at_steps(rows.rows, plan, shape, steps, site.limits)
+    rows = replace(rows, rows=carry_by_walers(site, shape, ended))
     extra = np.array([at for step in steps for at in step.at])
     stations, zones = stand(site, shape, sides, plan, rows, loads, extra, around)
     near = tuple(load.load for load in loads)

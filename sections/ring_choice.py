@@ -205,7 +205,8 @@ def _building_rings(site: Site, lines: Sequence[WallLine], origin: Point) -> Cho
         rings = sorted(_pits(find_rings(graph, np.zeros(len(graph.ends), dtype=bool))), key=lambda r: -area_of(r.points))
         if rings:
             return _outermost(rings, lines, origin)
-    ways = [way for way in find_open(_network(site, lines, lowest)) if way.length >= LEAST_OPEN]
+    drawn = lowest & np.array([line.sure for line in lines], dtype=bool)
+    ways = [way for way in find_open(_network(site, lines, drawn)) if way.length >= LEAST_OPEN]
     return Choice(traces=tuple(ways[:1]) if not site.plates else ())
 
 

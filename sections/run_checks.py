@@ -23,6 +23,7 @@ def check_runs(site: Site, shape: PitShape) -> list[Finding]:
         if len(piles) > 2:
             found += _gaps(shape, run, piles)
             found += _secant(shape, run, piles)
+            found += _unnamed(shape, run, piles)
     return found
 
 
@@ -42,6 +43,20 @@ def _gaps(shape: PitShape, run: Run, piles: Sequence[Pile]) -> list[Finding]:
     ]  # fmt: skip
 
 
+def _unnamed(shape: PitShape, run: Run, piles: Sequence[Pile]) -> list[Finding]:
+    if run.wall.kind != "king_post" or any(pile.kind or pile.section or pile.bearing is False for pile in piles):
+        return []
+    return [Finding(
+        id="", code="posts-by-place", severity="check", where=_where(shape, run),
+        text=f"Nothing says that these {len(piles)} piles are a wall. They stand too far apart for a contiguous one and "
+             "are taken as king posts because they close the perimeter.",
+    )]  # fmt: skip
+
+
+def _where(shape: PitShape, run: Run) -> str:
+    return f"{shape.id}, ch {run.start:.2f} to {run.to:.2f}"
+
+
 def _name(pile: Pile) -> str:
     return pile.name or pile.id
 
@@ -54,5 +69,4 @@ def _secant(shape: PitShape, run: Run, piles: Sequence[Pile]) -> list[Finding]:
         if is_cut(piles)
         else "The piles of this secant wall do not cut into each other: they are taken as its males; no females are drawn."
     )
-    where = f"{shape.id}, ch {run.start:.2f} to {run.to:.2f}"
-    return [Finding(id="", code="secant-males", severity="check", where=where, text=text)]
+    return [Finding(id="", code="secant-males", severity="check", where=_where(shape, run), text=text)]

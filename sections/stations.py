@@ -53,7 +53,8 @@ def stand(
     events += [load_ends(shape, near.load, depth) for near in loads]
     steps = walk(site, shape, sides, plan, events, around)
     bearing_on = _surround(shape, steps, loads)
-    spacing, held = rows_at(covers, sides, steps, len(rows.rows))
+    levels = np.array([np.nan if row.member.level is None else row.member.level for row in rows.rows])
+    spacing, held = rows_at(covers, sides, steps, levels + site.limits.level)
     pressures = {
         "surcharge": bearing_on.surcharge,
         "footing": bearing_on.footing,

@@ -35,6 +35,7 @@ class WallLine:
         pace: Spacing of a row of piles at the first and the last end, m; 0 for other walls.
         kinds: Kind of the pile at each vertex; empty for a wall that is not a row of piles.
         paired: True where the line is the middle of two faces.
+        sure: False for piles that nobody calls a wall and that stand too far apart to show it.
     """
 
     points: Floats
@@ -47,11 +48,12 @@ class WallLine:
     pace: tuple[float, float] = (0.0, 0.0)
     kinds: tuple[WallKind, ...] = ()
     paired: bool = False
+    sure: bool = True
 
     @property
     def embedded(self) -> bool:
         """True for walls that are built from the ground down to retain it."""
-        return self.kind in EMBEDDED
+        return self.sure and self.kind in EMBEDDED
 
 
 def gather_lines(
@@ -98,6 +100,7 @@ def _row_line(site: Site, row: PileRow, origin: Point) -> WallLine:
         thickness=size,
         reach=(1.3 * row.ends[0] + 0.1, 1.3 * row.ends[1] + 0.1),
         pace=row.ends,
+        sure=row.sure,
         kinds=(*row.kinds, row.kinds[0]) if row.closed else row.kinds,
         piles=np.append(index, index[:1]) if row.closed else index,
         piece=-1,

@@ -65,6 +65,8 @@ def clip_parts(parts: Iterable[Part], outline: Floats, hidden_inside: bool) -> l
             kept.append(part)
         elif part.form in ("path", "outline", "circle"):
             rest = shape.difference(window) if hidden_inside else shape.intersection(window)
+            if part.form != "outline":  # a ring cut where it happens to start comes in two
+                rest = shapely.line_merge(rest)
             kept += [replace(part, **_cut(part, piece), evidence=_HOW) for piece in _pieces(rest)]
     return kept
 

@@ -43,7 +43,7 @@ def read_ifc(path: Path, *, length_unit: str | None = None) -> FileParts:
     Raises:
         InputError: If the file cannot be read, or `length_unit` is unknown.
     """
-    with collector_paused():
+    with collector_paused(), np.errstate(all="ignore"):  # numbers that run over are found and named at the end
         opened = open_model(path)
         first = _Reading(opened, path.name, length_unit)
         read = first.result()
@@ -91,6 +91,7 @@ class _Reading:
         self._place(georeference.matrix)
         for product in inventory.products:
             self._make_parts(product)
+        self._drop_endless()
         self.likelier_unit = self.doubts.about_units(inventory.units, self.parts)
         self.doubts.about_georeference(georeference)
         self.doubts.about_damage(inventory.damage(), self.losses)
@@ -125,8 +126,7 @@ class _Reading:
 
     def _place(self, matrix: Floats) -> None:
         world, self.unplaced = self.inventory.placements.solve()
-        with np.errstate(all="ignore"):
-            self.world = np.einsum("ij,njk->nik", matrix, world)
+        self.world = np.einsum("ij,njk->nik", matrix, world)
         self.inventory.bodies.place(self.world, self.inventory.items)
 
     def _make_parts(self, product: Product) -> None:
@@ -143,6 +143,17 @@ class _Reading:
         except (*UNREADABLE, OverflowError, ZeroDivisionError, GEOSException, np.linalg.LinAlgError) as error:
             product.fault = product.fault or str(error)
             self._leave_out(product, "geometry cannot be read")
+
+    def _drop_endless(self) -> None:
+        """Take out elements with a number that is not finite; a single one would spoil the whole site."""
+        endless = {part.source.item for part in find_endless(self.parts)}
+        if endless:
+            for item in sorted(endless):
+                self.doubts.note_damage(item, "a coordinate or size is not finite")
+            self.parts = [part for part in self.parts if part.source.item not in endless]
+            self.ignored["coordinates are not finite numbers"] += len(endless)
+        bad = find_endless(self.setting)
+        self.setting = [part for part in self.setting if part not in bad]
 
     def _leave_out(self, product: Product, reason: str) -> None:
         if product.fault:
@@ -201,3 +212,16 @@ class _Reading:
         total = len(items) + sum(self.context.values()) + sum(self.ignored.values())
         if total != self.inventory.entities:
             raise RuntimeError(f"{total} products accounted for, {self.inventory.entities} are in the file")
+
+
+def find_endless(parts: list[Part]) -> list[Part]:
+    """Parts with a coordinate, level or size that is not a finite number."""
+    sums = [sum(x + y + z for x, y, z in part.points) + sum(s for s in _sizes(part) if s is not None) for part in parts]
+    bad = np.flatnonzero(~np.isfinite(np.array(sums, float)))
+    return [parts[i] for i in bad]
+
+
+def _sizes(part: Part) -> tuple[float | None, ...]:
+    section = part.section
+    own = (part.z_top, part.z_bottom, part.radius, part.thickness)
+    return own if section is None else (*own, section.A, section.I, section.width, section.depth, section.diameter)

@@ -34,12 +34,13 @@ class Strip:
     closed: bool = False
 
 
-def find_strip(area: Area, hint: Floats | None) -> Strip | None:
+def find_strip(area: Area, hint: Floats | None, expected: float | None = None) -> Strip | None:
     """Find the centre line and thickness of a wall from its outline on plan.
 
     Args:
         area: Plan area, m.
         hint: (n, 2) line the file draws along the wall (its reference line, not its centre line), or None.
+        expected: Thickness that layers sum to, m: tells a stub shorter than thick from a wall.
 
     Returns:
         The best strip, or None when the outline is no strip.
@@ -56,8 +57,11 @@ def find_strip(area: Area, hint: Floats | None) -> Strip | None:
         hint = None  # a closed line is the outline once more, not a line along the wall
     if hint is not None and len(hint) > 2:
         return _arc_strip(outer, hint, area.area) or _bent_strip(area, hint)
-    way = _way(area, hint)
-    return _straight_strip(area, outer, way, "along its axis" if hint is not None else "along its longer side")
+    way = _way(area, hint, expected)
+    how = "along its axis" if hint is not None else "along its longer side"
+    if hint is None and expected is not None:
+        how = "across the side its layers sum to"
+    return _straight_strip(area, outer, way, how)
 
 
 def _one_piece(area: MultiPolygon) -> Area:
@@ -66,14 +70,17 @@ def _one_piece(area: MultiPolygon) -> Area:
     return joined if isinstance(joined, Polygon) else areal(shapely.minimum_rotated_rectangle(area))
 
 
-def _way(area: Area, hint: Floats | None) -> Floats:
+def _way(area: Area, hint: Floats | None, expected: float | None) -> Floats:
     if hint is not None and len(hint) == 2 and np.ptp(hint, axis=0).max() > 1e-6:
         way = hint[1] - hint[0]
         return np.asarray(way / np.hypot(*way))
     box = shapely.get_coordinates(shapely.minimum_rotated_rectangle(area))
     sides = np.diff(box[:3], axis=0)
-    longer = sides[int(np.argmax(np.hypot(*sides.T)))]
-    return np.asarray(longer / np.hypot(*longer))
+    lengths = np.hypot(*sides.T)
+    along = int(np.argmax(lengths))
+    if expected is not None and abs(lengths[along] - expected) < abs(lengths[1 - along] - expected):
+        along = 1 - along
+    return np.asarray(sides[along] / lengths[along])
 
 
 def _straight_strip(area: Area, outer: Floats, way: Floats, how: str) -> Strip | None:

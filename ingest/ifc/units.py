@@ -8,6 +8,7 @@ from math import pi
 from typing import Any
 
 from ingest.errors import InputError
+from ingest.ifc.unreadable import UNREADABLE
 from ingest.units import METRES, metres_per
 from ingest.units import unit_name as short_name
 
@@ -106,13 +107,14 @@ def read_units(model: Any, file: str, length_unit: str | None = None, guess: str
     doubts: list[str] = []
     lengths: list[tuple[str, float]] = []
     for unit in _assigned(model):
-        if unit.is_a("IfcMonetaryUnit"):
-            continue
-        kind = str(unit.UnitType)
+        kind = "unit"
         try:
+            if unit.is_a("IfcMonetaryUnit"):
+                continue
+            kind = str(unit.UnitType)
             si = unit_factor(unit)
-        except (AttributeError, TypeError, ValueError, RuntimeError):
-            doubts.append(f"the {kind} #{unit.id()} has no factor that can be read")
+        except UNREADABLE:
+            doubts.append(f"the {kind} {str(unit)[:80]} has no factor that can be read")
             continue
         if kind == "LENGTHUNIT":
             lengths.append((unit_name(unit), si))
@@ -136,11 +138,12 @@ def _given(file: str, length_unit: str | None) -> str | None:
 
 
 def _assigned(model: Any) -> Iterable[Entity]:
-    for project in model.by_type("IfcProject"):
-        if project.UnitsInContext is not None:
-            return tuple(project.UnitsInContext.Units)
-    found = model.by_type("IfcUnitAssignment")
-    return tuple(found[0].Units) if found else ()
+    assignments = [getattr(project, "UnitsInContext", None) for project in model.by_type("IfcProject")]
+    for one in (*assignments, *model.by_type("IfcUnitAssignment")):
+        units = getattr(one, "Units", None)
+        if isinstance(units, tuple):
+            return units
+    return ()
 
 
 def _choose_length(lengths: list[tuple[str, float]], doubts: list[str]) -> tuple[str, float]:

@@ -39,7 +39,7 @@ def wall_parts(element: Element, sections: SectionTable) -> tuple[Part, ...]:
             return (made,)
     whole = element_prism(element)
     hint = hint_of(element)
-    strip = find_strip(whole.area, hint)
+    strip = find_strip(whole.area, hint, layers_of(element))
     if strip is None or strip.misfit > LOOSE_FIT or (element.cls == "IfcPlate" and _is_plate(strip, whole)):
         return tuple(part for one in element_prisms(element) for part in prism_parts(element, one))
     said = [
@@ -167,6 +167,10 @@ def _along_first(
             along, across = abs(x * first[0] + y * first[1]), abs(x * second[0] + y * second[1])
             if max(along, across) > 0:
                 return along >= across
+    layers = layers_of(element)
+    if layers is not None:
+        across_second = abs(sy * hypot(*second) - layers)
+        return across_second <= abs(sx * hypot(*first) - layers)
     return sx >= sy
 
 
@@ -174,6 +178,12 @@ def hint_of(element: Element) -> Floats | None:
     """The line the file draws along an element, on plan."""
     line = element.axis_line()
     return None if line is None else line[:, :2]
+
+
+def layers_of(element: Element) -> float | None:
+    """Sum of the material layers, m; None when there are none."""
+    use = element.material
+    return use.total * element.length if use is not None and use.layers else None
 
 
 def _fit_words(element: Element, strip: Strip, whole: Prism) -> list[str]:
@@ -184,10 +194,9 @@ def _fit_words(element: Element, strip: Strip, whole: Prism) -> list[str]:
 
 
 def _layer_words(element: Element, thickness: float) -> str:
-    use = element.material
-    if use is None or not use.layers:
+    total = layers_of(element)
+    if total is None:
         return ""
-    total = use.total * element.length
     if abs(total - thickness) <= ALIKE:
         return f"layers sum to its thickness, {thickness:.3f} m"
     return f"layers sum to {total:.3f} m, the body is {thickness:.3f} m thick"
@@ -207,7 +216,7 @@ def _from_axis(element: Element) -> Part:
     if line is None:
         raise NoPart("no geometry")
     use, said = element.material, ["its axis only; it has no body"]
-    thickness = use.total * element.length if use and use.layers else None
+    thickness = layers_of(element)
     if thickness and use and use.offset is not None:
         offset = use.offset * element.length + use.sense * thickness / 2
         moved = _beside(element, line, offset)

@@ -5,68 +5,17 @@ from __future__ import annotations
 import os
 import random
 import stat
-import subprocess
-import sys
 import time
 import zipfile
 from collections.abc import Callable, Iterator
 from pathlib import Path
 
-import ezdxf
-import ifcopenshell
 import pytest
+from guard_builder import good_ags, good_dxf, good_ifc, is_clear
 
-from ingest import guard
 from ingest.errors import InputError
 from ingest.guard import kind_of, read_guarded, read_here
 from ingest.model import FileParts
-
-AGS = (
-    '"GROUP","PROJ"\n"HEADING","PROJ_ID"\n"UNIT",""\n"TYPE","ID"\n"DATA","P"\n\n'
-    '"GROUP","LOCA"\n"HEADING","LOCA_ID","LOCA_NATE","LOCA_NATN","LOCA_GL"\n"UNIT","","m","m","m"\n"TYPE","ID","2DP","2DP","2DP"\n'
-    + "".join(f'"DATA","BH{n}","{500 + 7.25 * n:.2f}","{300 + 3.5 * n:.2f}","4.50"\n' for n in range(40))
-)
-
-
-def good_ags(path: Path) -> None:
-    path.write_bytes(AGS.replace("\n", "\r\n").encode())
-
-
-def good_dxf(path: Path) -> None:
-    drawing = ezdxf.new("R2010", units=6)
-    space = drawing.modelspace()
-    for n in range(60):
-        space.add_circle((100.5 + n, 200.25), 0.375, dxfattribs={"layer": "PILES"})
-        space.add_line((100.5 + n, 0.0), (100.75 + n, 9.125), dxfattribs={"layer": "STRUTS"})
-    drawing.saveas(path)
-
-
-def good_ifc(path: Path) -> None:
-    model = ifcopenshell.file(schema="IFC4")
-    make = model.create_entity
-    unit = make("IfcUnitAssignment", [make("IfcSIUnit", None, "LENGTHUNIT", None, "METRE")])
-    origin = make("IfcAxis2Placement3D", make("IfcCartesianPoint", (0.0, 0.0, 0.0)))
-    context = make("IfcGeometricRepresentationContext", None, "Model", 3, 1e-5, origin)
-    make("IfcProject", ifcopenshell.guid.new(), None, "P", None, None, None, None, [context], unit)
-    for n in range(30):
-        at = make("IfcAxis2Placement3D", make("IfcCartesianPoint", (1.25 * n, 2.5, -0.75)))
-        disc = make("IfcCircleProfileDef", "AREA", None, None, 0.375)
-        up = make("IfcDirection", (0.0, 0.0, 1.0))
-        body = make("IfcExtrudedAreaSolid", disc, origin, up, 12.25)
-        shape = make("IfcShapeRepresentation", context, "Body", "SweptSolid", [body])
-        whole = make("IfcProductDefinitionShape", None, None, [shape])
-        make(
-            "IfcPile",
-            ifcopenshell.guid.new(),
-            None,
-            f"pile {n}",
-            None,
-            None,
-            make("IfcLocalPlacement", None, at),
-            whole,
-        )
-    model.write(str(path))
-
 
 MAKERS: dict[str, Callable[[Path], None]] = {"dxf": good_dxf, "ifc": good_ifc, "ags": good_ags}
 
@@ -128,11 +77,6 @@ def read_or_error(path: Path) -> FileParts | InputError:
         return read_guarded(path, kind_of(path), read_limit=20.0)
     except InputError as error:
         return error
-
-
-def is_clear(error: InputError, name: str) -> bool:
-    lines = str(error).split("\n")
-    return error.file == name and len(lines) <= 3 and "Traceback" not in str(error) and bool(error.remedy)
 
 
 def test_a_good_file_is_read(good: Path) -> None:
@@ -229,97 +173,3 @@ def test_a_packed_model_is_read_and_a_bomb_is_not(tmp_path: Path) -> None:
     assert isinstance(refused, InputError)
     assert is_clear(refused, bomb.name)
     assert not (tmp_path.parent / "inside.ifc").exists()
-
-
-HOSTILE = {
-    "hang": "import time\ndef read(path):\n    time.sleep(60)\n",
-    "crash": "import os, signal\ndef read(path):\n    os.kill(os.getpid(), signal.SIGSEGV)\n",
-    "memory": "def read(path):\n    return [bytes(50_000_000) for _ in range(100)]\n",
-    "exit": "import os\ndef read(path):\n    os._exit(3)\n",
-    "chatter": "import os\nfrom ingest.ags import read_ags\n"
-    "def read(path):\n    print('noise')\n    os.write(1, b'noise')\n    return read_ags(path)\n",
-    "fault": "def read(path):\n    raise KeyError(str(path))\n",
-}
-
-
-@pytest.fixture
-def hostile_reader(tmp_path: Path, monkeypatch: pytest.MonkeyPatch) -> Callable[[str], Path]:
-    """A file whose reader does what the test wants, found by the child on its own path."""
-    site = tmp_path / "site"
-    site.mkdir()
-
-    def make(what: str) -> Path:
-        (site / "hostile_reader.py").write_text(HOSTILE[what])
-        monkeypatch.setenv("PYTHONPATH", str(site))
-        path = tmp_path / "site.ags"
-        good_ags(path)
-        return path
-
-    return make
-
-
-@pytest.mark.parametrize(
-    ("what", "words"),
-    [("hang", "not read within"), ("crash", "signal 11"), ("memory", "GB"), ("exit", "code 3"), ("fault", "KeyError")],
-)
-def test_a_reader_that_misbehaves_is_one_clear_error(
-    what: str, words: str, hostile_reader: Callable[[str], Path], monkeypatch: pytest.MonkeyPatch
-) -> None:
-    path = hostile_reader(what)
-    monkeypatch.setattr(guard, "_command", hostile_command)
-    start = time.monotonic()
-    with pytest.raises(InputError) as caught:
-        read_guarded(path, "ags", read_limit=3.0)
-    assert words in caught.value.problem
-    assert is_clear(caught.value, path.name)
-    assert str(path.parent) not in str(caught.value)
-    assert time.monotonic() - start < 8
-
-
-def test_chatter_of_a_library_does_not_spoil_the_answer(
-    hostile_reader: Callable[[str], Path], monkeypatch: pytest.MonkeyPatch
-) -> None:
-    path = hostile_reader("chatter")
-    monkeypatch.setattr(guard, "_command", hostile_command)
-    assert len(read_guarded(path, "ags").boreholes) == 40
-
-
-def hostile_command(kind: str, path: str, memory: int) -> list[str]:
-    """The child with one reader replaced."""
-    code = (
-        "import sys; from ingest import guard; guard.READERS['ags'] = 'hostile_reader:read'; "
-        f"sys.argv[1:] = [{kind!r}, {path!r}, '{memory}']; sys.exit(guard.main())"
-    )
-    return [sys.executable, "-P", "-c", code]
-
-
-@pytest.mark.parametrize(
-    ("kind", "heavy"),
-    [
-        ("ags", {"numpy", "scipy", "shapely", "ezdxf", "ifcopenshell"}),
-        ("dxf", {"ifcopenshell", "scipy", "networkx"}),
-        ("ifc", {"ezdxf", "networkx"}),
-    ],
-)
-def test_a_child_loads_only_what_its_reader_needs(kind: str, heavy: set[str]) -> None:
-    module = guard.READERS[kind].partition(":")[0]  # type: ignore[index]
-    code = f"import sys, ingest.guard, ingest.model, {module}; print(*sys.modules)"
-    home = str(Path(guard.__file__).parents[1])
-    loaded = subprocess.run(
-        [sys.executable, "-c", code], cwd=home, capture_output=True, text=True, check=True
-    ).stdout.split()
-    assert not heavy & set(loaded)
-
-
-def test_a_child_is_up_in_half_a_second_or_four_times_an_import_of_numpy(tmp_path: Path) -> None:
-    path = tmp_path / "site.ags"
-    good_ags(path)
-    numpy = min(seconds(lambda: subprocess.run([sys.executable, "-c", "import numpy"], check=True)) for _ in range(3))
-    child = min(seconds(lambda: read_guarded(path, "ags")) for _ in range(3))
-    assert child < max(0.5, 4 * numpy)
-
-
-def seconds(work: Callable[[], object]) -> float:
-    start = time.monotonic()
-    work()
-    return time.monotonic() - start

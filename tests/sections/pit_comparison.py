@@ -77,7 +77,8 @@ def run_faults(shape, pit):
             continue
         yield from wall_faults(held[0].wall, run, len(pit.runs) == 1 and pit.shares is None)
         if (k or (pit.closed and len(pit.runs) > 1)) and pit.shares is None:
-            yield from boundary_faults(shape, at(run.start), 0.5 * max(r.spacing or 0.1 for r in (run, pit.runs[k - 1])))
+            allowed = 0.5 * max(r.spacing or 0.1 for r in (run, pit.runs[k - 1]))
+            yield from boundary_faults(shape, at(run.start), allowed)
 
 
 def wall_faults(wall, run, whole):

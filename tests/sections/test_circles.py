@@ -21,9 +21,7 @@ def ring(points, **more):
     return Site(piles=tuple(Pile(id=f"p{k}", centre=(float(x), float(y)), **more) for k, (x, y) in enumerate(points)))
 
 
-@given(
-    radius=st.floats(1.0, 200.0), x=st.floats(-1e3, 1e3), y=st.floats(-1e3, 1e3), sweep=st.floats(0.5, 2 * np.pi)
-)
+@given(radius=st.floats(1.0, 200.0), x=st.floats(-1e3, 1e3), y=st.floats(-1e3, 1e3), sweep=st.floats(0.5, 2 * np.pi))
 def test_points_on_a_circle_give_it_back(radius, x, y, sweep):
     centre, found = fit_circle(around(radius, np.linspace(0.3, 0.3 + sweep, 12, endpoint=False), (x, y)))
     assert found == pytest.approx(radius, rel=1e-6)

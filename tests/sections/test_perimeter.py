@@ -1,4 +1,4 @@
-"""The perimeter of pits small enough to work by hand. Angles and lengths are plain geometry unless a source is given."""
+"""The perimeter of pits small enough to work by hand. Where no source is given, plain geometry."""
 
 from __future__ import annotations
 

@@ -38,8 +38,9 @@ def test_a_wall_that_changes_at_two_corners_has_two_runs_that_begin_there():
 
 def test_the_runs_of_a_ring_sum_to_its_piles():
     piles = row(BOX[0], (18.0, 0.0), 1.0, "a", diameter=0.8, kind="contiguous")
-    piles += row((18.0, 0.0), BOX[1], 2.0, "b", kind="king_post", section=BarSection(designation="HP", depth=0.3))
-    piles += row(BOX[1], BOX[2], 2.0, "c", kind="king_post", section=BarSection(designation="HP", depth=0.3))
+    post = {"kind": "king_post", "diameter": None, "section": BarSection(designation="HP", depth=0.3)}
+    piles += row((18.0, 0.0), BOX[1], 2.0, "b", **post)
+    piles += row(BOX[1], BOX[2], 2.0, "c", **post)
     piles += row(BOX[2], BOX[3], 1.0, "d", diameter=0.8, kind="contiguous")
     piles += row(BOX[3], BOX[0], 1.0, "e", diameter=0.8, kind="contiguous")
     shape = only(Site(piles=piles))
@@ -105,16 +106,19 @@ def test_a_secant_wall_whose_piles_are_all_alike_is_taken_by_halves_and_reported
     assert [f.code for f in findings] == ["secant-males"]
 
 
-@pytest.mark.parametrize(
-    ("spacing", "kind"), [(0.625, "secant"), (1.0, "contiguous"), (1.25, "contiguous"), (2.0, None)]
-)
+@pytest.mark.parametrize(("spacing", "kind"), [(0.625, "secant"), (1.0, "contiguous"), (1.25, "contiguous")])
 def test_unnamed_piles_are_a_wall_by_their_spacing_over_diameter(spacing, kind):
     # Cut into each other: secant; up to 1.8 diameters: contiguous (common practice, no source).
-    piles = rows(BOX, spacing, diameter=0.8)
-    shape = only(Site(piles=piles))
-    assert shape.length == pytest.approx(100.0)
-    if kind is not None:
-        assert [r.wall.kind for r in shape.runs] == [kind]
+    shape = only(Site(piles=rows(BOX, spacing, diameter=0.8)))
+    assert bounds(shape) == [(kind, 0.0, 100.0)]
+
+
+def test_unnamed_piles_far_apart_are_a_wall_only_where_they_close_a_ring_and_that_is_reported():
+    shapes, findings, _ = find_shapes(Site(piles=rows(BOX, 2.0, diameter=0.8)))
+    assert bounds(shapes[0]) == [("king_post", 0.0, 100.0)]
+    assert [f.code for f in findings] == ["posts-by-place"]
+    strips = rows([(0.0, 0.0), (30.0, 0.0)], 2.0, closed=False, diameter=0.8)
+    assert find_shapes(Site(piles=strips))[0] == ()
 
 
 def test_piles_drawn_twice_within_20_mm_count_once():
