@@ -137,7 +137,7 @@ def _records(given: Sequence[RoleGiven], moved: Moved, ground: float | None, not
         walls=_ordered("wall", walls),
         piles=_ordered("pile", piles),
         supports=_ordered("support", supports),
-        walers=_ordered("waler", build_walers(walers, supports, notes)),
+        walers=_ordered("waler", build_walers(walers, supports, materials, notes)),
         plates=_ordered("plate", build_plates([i for i in having("slab", "footing") if i.use != "floor"], notes)),
         columns=_ordered("column", build_columns(having("column"), notes)),
         loads=_ordered("load", build_loads(having("load"), moved, notes)),

@@ -52,7 +52,7 @@ def add_panels(model: SiteModel) -> None:
 
 def add_supports(model: SiteModel) -> None:
     """Ring beams inside the panels, and one prop from panel to panel across the middle."""
-    box = model.add("IfcRectangleProfileDef", "AREA", "ring beam", model.flat(), RING_WIDTH, RING_DEPTH)
+    box = model.add("IfcRectangleProfileDef", "AREA", "ring beam", model.flat(), RING_DEPTH, RING_WIDTH)
     ring = polygon(APOTHEM - THICKNESS / 2.0 - RING_WIDTH / 2.0)
     for n, level in enumerate(RING_LEVELS, start=1):
         points = [(*point, level) for point in ring]

@@ -125,6 +125,7 @@ class RealMember:
     count: int | None = None
     preload_kN: float | None = None
     weight_kN_per_m: float | None = None
+    A_m2: float | None = None
     limit_kN: float | None = None
     free_length: float | None = None
     bond_length: float | None = None

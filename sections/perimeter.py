@@ -13,7 +13,7 @@ from ingest.model import Plate, Point, Site, WallPiece
 from ingest.trail import Finding, Question, Reading, Source
 from sections.circles import find_circle, find_parts
 from sections.corners import find_arcs, find_corners, start_outline
-from sections.model import Arc, Circle, CirclePart, Corner, PitShape
+from sections.model import Arc, Circle, CirclePart, PitShape
 from sections.open_walls import find_witnesses, oriented
 from sections.outline import Outline, build_outline
 from sections.ring_choice import choose_rings
@@ -55,7 +55,8 @@ def find_shapes(site: Site) -> Shapes:
     if choice is None or not choice.traces:
         return _from_slab(site)
     ways, asked = _ways(site, choice.traces, lines, origin)
-    made = [_shape(site, way, lines, origin, start) for way, start in zip(ways, _starts(site, ways, origin), strict=True)]
+    starts = _starts(site, ways, origin)
+    made = [_shape(site, way, lines, origin, start) for way, start in zip(ways, starts, strict=True)]
     shapes, findings = _numbered(site, made)
     every = [*seen, *choice.findings, *findings]
     numbered = tuple(replace(f, id=f"shape-{k + 1}") for k, f in enumerate(every))

@@ -202,7 +202,8 @@ def _building_rings(site: Site, lines: Sequence[WallLine], origin: Point) -> Cho
     lowest = np.array([line.toe is None or line.toe <= min(toes) + 1.0 for line in lines], dtype=bool)
     for chosen in (lowest, np.ones(len(lines), dtype=bool)):
         graph = _network(site, lines, chosen)
-        rings = sorted(_pits(find_rings(graph, np.zeros(len(graph.ends), dtype=bool))), key=lambda r: -area_of(r.points))
+        rings = _pits(find_rings(graph, np.zeros(len(graph.ends), dtype=bool)))
+        rings.sort(key=lambda ring: -area_of(ring.points))
         if rings:
             return _outermost(rings, lines, origin)
     drawn = lowest & np.array([line.sure for line in lines], dtype=bool)

@@ -35,7 +35,7 @@ def gap_notes(ways: Sequence[Trace], origin: Point) -> list[Finding]:
         if gap <= 0.25 * way.length:
             found.append(Finding(
                 id="", code="wall-gap", severity="check", where=f"{_place(a)} to {_place(b)}",
-                text=f"{gap:.2f} m between the two ends of the wall: too far to close. It is read as an open perimeter.",
+                text=f"{gap:.2f} m between the two ends of the wall, too far to close: it is read as an open perimeter.",
             ))  # fmt: skip
     return found
 
@@ -98,7 +98,7 @@ def inner_ring_question(number: int, at: Point) -> Question:
         id=f"inner-ring-{number}",
         about=f"the closed ring of walls near {_place(at)} inside another",
         readings=(
-            Reading(reading="walls of the building inside the pit", evidence="no kind of wall is known", confidence=0.7),
+            Reading(reading="walls of the building in the pit", evidence="no kind of wall is known", confidence=0.7),
             Reading(reading="a deeper pit within the pit", evidence="it is closed and not small", confidence=0.3),
         ),
         brief_line='[[roles]] match = {layer = "..."}, role = "wall", wall_kind = "sheet"',

@@ -129,7 +129,7 @@ def _alike(found: FoundPit, a: int, b: int, limits: Limits) -> dict[str, bool]:
     depth = stations.depth
     return {
         "construction": _size(first) == _size(second),
-        "depth": bool(abs(depth[a] - depth[b]) <= limits.level) or bool(np.isnan(depth[a]) and np.isnan(depth[b])),
+        "depth": bool(abs(depth[a] - depth[b]) <= limits.level),
         "surcharge": bool(abs(stations.surcharge[a] - stations.surcharge[b]) <= limits.surcharge),
     }
 

@@ -48,8 +48,8 @@ def _unnamed(shape: PitShape, run: Run, piles: Sequence[Pile]) -> list[Finding]:
         return []
     return [Finding(
         id="", code="posts-by-place", severity="check", where=_where(shape, run),
-        text=f"Nothing says that these {len(piles)} piles are a wall. They stand too far apart for a contiguous one and "
-             "are taken as king posts because they close the perimeter.",
+        text=f"Nothing says that these {len(piles)} piles are a wall. They stand too far apart for a contiguous one "
+             "and are taken as king posts because they close the perimeter.",
     )]  # fmt: skip
 
 
@@ -67,6 +67,6 @@ def _secant(shape: PitShape, run: Run, piles: Sequence[Pile]) -> list[Finding]:
     text = (
         "Nothing tells the males of this secant wall from its females: every second pile is taken as a male."
         if is_cut(piles)
-        else "The piles of this secant wall do not cut into each other: they are taken as its males; no females are drawn."
+        else "The piles of this secant wall do not cut into each other: they are taken as males, without females."
     )
     return [Finding(id="", code="secant-males", severity="check", where=_where(shape, run), text=text)]

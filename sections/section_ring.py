@@ -6,13 +6,14 @@ from dataclasses import dataclass
 
 import numpy as np
 
-from ingest.model import Load, Material, Site, Waler
+from ingest.model import Load, Material, Site
 from ingest.trail import Finding
 from sections.cut import Cut, CutWall
 from sections.definition import Curve, End, Implied, LoadValue, PerRadian, RealMember, SectionLoad, SectionMember
 from sections.hand_over_ring import hand_over_ring_footing, hand_over_ring_point, ring_over_footing
 from sections.implied import grade
 from sections.model import Run, SupportRow
+from sections.ring_beams import beams_and_slabs
 from sections.section_loads import UNITS, loads_at
 from sections.section_stages import Prop
 from sections.smear_ring import SmearedRing, smear_ring_pile_wall, smear_ring_wall
@@ -53,13 +54,10 @@ def ring_parts(site: Site, cut: Cut, name: str) -> RingParts:
         if made is not None:
             members.append(made)
             props.append(_prop(site, row, made))
-    for number, waler in enumerate(site.walers, start=1):
-        beam, note = _ring_beam(wall, waler, number, name)
-        members += [beam] if beam else []
-        findings += note
-        if beam:
-            words = _words(waler.layer, waler.name)
-            props.append(Prop(id=beam.id, level=beam.points[0][1], preload=None, names=words))
+    beams, held, notes = beams_and_slabs(site, cut, wall, name)
+    members += beams
+    props += held
+    findings += notes
     loads, implied = _loads(site, cut, wall)
     return RingParts(members=tuple(members), props=tuple(props), loads=loads, implied=implied, findings=tuple(findings))
 
@@ -203,31 +201,6 @@ def _prop(site: Site, row: SupportRow, member: SectionMember) -> Prop:
         preload=preload,
         names=_words(support.layer, support.name, support.group, member.id),
     )
-
-
-def _ring_beam(wall: CutWall, waler: Waler, number: int, name: str) -> tuple[SectionMember | None, list[Finding]]:
-    where = f"{wall.found.stations.pit}-waler-{number}"
-    if waler.level is None:
-        return None, [_finding(where, "level_missing", f"level of {where} is not given: not in the section")]
-    point = (wall.x, waler.level)
-    smeared = _bare(RealMember(EI_kNm2=waler.EI))
-    member = SectionMember(
-        id=where,
-        role="waler",
-        side="right",
-        material=None,
-        form="ring",
-        points=(point,),
-        ends=(End(to=name, at=point, joint="pinned"),),
-        real=smeared.real,
-        section=smeared.section,
-        smear=(),
-        back=(),
-        sources=waler.sources,
-    )
-    return member, [
-        _finding(where, "ring_beam", f"axial stiffness of {where} is not given: its hoop is not in the section")
-    ]
 
 
 def _loads(site: Site, cut: Cut, wall: CutWall) -> tuple[tuple[SectionLoad, ...], tuple[Implied, ...]]:

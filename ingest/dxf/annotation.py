@@ -10,7 +10,7 @@ from ingest.dxf.sketch import Left, Sketch
 from ingest.dxf.text import decode, plain_mtext, written
 
 LINEAR, ALIGNED, DIAMETER, RADIUS = 0, 1, 3, 4
-_MARKS = {DIAMETER: "\u2300", RADIUS: "R"}
+_MARKS = {DIAMETER: "\u00d8", RADIUS: "R"}
 
 
 def sketch_dimension(entity: Any, sagitta: float) -> list[Sketch] | Left:
@@ -70,7 +70,6 @@ def sketch_multileader(entity: Any, sagitta: float) -> list[Sketch] | Left:
     if not words:
         return Left("context", "leader without a note")
     at, height = place.insert, abs(float(context.char_height)) or 1.0
-    height = _style(entity, "dimtxt") * _style(entity, "dimscale")
     figure = written(entity, (at.x, at.y, at.z), words, height, 0.0, planar=False)
     tips = [line.vertices[0] for leader in context.leaders for line in leader.lines if line.vertices]
     figure.xyz = [*figure.xyz, *(c for tip in tips for c in (tip.x, tip.y, tip.z))]

@@ -11,8 +11,9 @@ from ingest.dxf.linework import incomplete, layer_of
 from ingest.dxf.sketch import Left, Sketch
 
 _UNICODE = re.compile(r"\\[Uu]\+([0-9A-Fa-f]{4})")
+_INLINE = re.compile(r"\\[PNX~]|\\S([^;]*);|\\[ACcFfHTQWp][^;]*;|\\[LlOoKk]|\\([\\{}])|[{}]|\^(.)")
 _PERCENT = re.compile(r"%%(?:(\d{3})|([a-zA-Z%]))")
-_SIGNS = {"c": "\u2300", "d": "\u00b0", "p": "\u00b1", "%": "%"}
+_SIGNS = {"c": "\u00d8", "d": "\u00b0", "p": "\u00b1", "%": "%"}
 
 
 def decode(text: str) -> str:
@@ -26,7 +27,7 @@ def decode(text: str) -> str:
 
     Example:
         >>> decode(r"%%c750 \U+00B10.00 %%uTOE%%u")
-        '⌀750 ±0.00 TOE'
+        'Ø750 ±0.00 TOE'
     """
     if "%%" in text:
         text = _PERCENT.sub(_sign, text)
@@ -92,12 +93,28 @@ def sketch_mtext(entity: Any, sagitta: float) -> list[Sketch] | Left:
 
 
 def plain_mtext(raw: str) -> str:
-    """Text of a MTEXT without its formatting, lines kept apart."""
+    r"""Text of a MTEXT without its formatting, lines kept apart.
+
+    Args:
+        raw: With the format's inline codes: ``\P`` new line, ``\~`` blank, ``\S1^2;`` stacked, ``\H2.5x;`` and the like,
+            braces, ``^I`` tab (DXF reference, "MTEXT").
+
+    Example:
+        >>> plain_mtext(r"{\H1.5x;10no. 600 dia}\P@ 750\~c/c")
+        '10no. 600 dia\n@ 750 c/c'
+    """
     if not any(c in raw for c in "\\{}^"):
         return raw
-    from ezdxf.tools.text import fast_plain_mtext
+    return _INLINE.sub(_inline, raw)
 
-    return str(fast_plain_mtext(raw))
+
+def _inline(found: re.Match[str]) -> str:
+    stacked, literal, control = found.groups()
+    if stacked is not None:
+        return re.sub(r"\s*[#^/]\s*", "/", stacked)
+    if control is not None:
+        return {"I": " ", "J": "\n", " ": "^"}.get(control, "")
+    return literal or {"\\P": "\n", "\\N": "\n", "\\X": "\n", "\\~": " "}.get(found[0], "")
 
 
 def written(

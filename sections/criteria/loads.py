@@ -1,7 +1,7 @@
 """Loads behind the wall that are short along it: endless in the section, ended in truth.
 
-The section hands a load over with its real effect on the wall (equal effect) or, if the engineer takes that way, with
-its pressure kept. The real effect is r to 1 times what is handed over. How much of an output a load makes is not known
+The section hands a load over with its real effect on the wall, the larger of resultant and moment down to formation
+and toe. The others of these effects are then r to 1 times what is handed over. How much of an output a load makes is not known
 without a 2D run with and without it, so the band is [r, 1]. Source: elastic half-space, Boussinesq and Flamant.
 """
 
@@ -57,13 +57,13 @@ def loads(site: Site, found: FoundPit, limits: Limits) -> CriterionResult:
     sheet.lack(able, ("settlement",))
     sheet.text(
         able & ~open_,
-        "Loads that end along the wall act with {least:.2f} to 1.00 times what an endless load would; their share of "
-        "each output is not known.",
+        "Loads that end along the wall act with {least:.2f} to 1.00 times what the section carries for them; their "
+        "share of each output is not known.",
     )
     return sheet.close(
         CODE,
         "load",
-        basis="elastic half-space: effect of the real load over that of the endless one, by resultant and by moment",
+        basis="elastic half-space: effects of the real load over the one handed over, by resultant and moment",
         reference="Boussinesq 1885, Flamant 1892 (recalled); integrals derived",
         inputs={"least": least},
         speaks_of=(*WALL_OUTPUTS, "settlement"),
@@ -109,13 +109,13 @@ def _ratio(load: Load, seen: _Seen) -> Floats:
     if load.kind == "line":
         towards = seen.far - seen.near > short
         middle = (seen.near + seen.far) / 2
-        parallel = area_ratio(middle - 0.01, middle + 0.01, seen.low, seen.high, seen.heights)
+        parallel = _as_handed(*area_ratio(middle - 0.01, middle + 0.01, seen.low, seen.high, seen.heights))
         parallel = np.where(middle < NEAREST, np.nan, parallel)
         # handed over in the plane of the load: seen from a plane beside it the near end falls off fastest
         off = np.maximum(0.0, np.maximum(seen.low, -seen.high))
         fall = (seen.near**2 / (seen.near**2 + off**2)) ** 1.5
         return np.where(towards, np.where(seen.near < NEAREST, np.nan, fall), parallel)
-    ratio = area_ratio(np.maximum(seen.near, 0.0), seen.far, seen.low, seen.high, seen.heights)
+    ratio = _as_handed(*area_ratio(np.maximum(seen.near, 0.0), seen.far, seen.low, seen.high, seen.heights))
     return np.where((seen.near < -1e-6) | (short < 1e-9), np.nan, ratio)
 
 
@@ -131,13 +131,13 @@ def _point_ratio(seen: _Seen) -> Floats:
     return np.where(seen.near < NEAREST, np.nan, np.fmin.reduce(both, axis=1) / np.fmax.reduce(both, axis=1))
 
 
-def area_ratio(near: Floats, far: Floats, low: Floats, high: Floats, heights: Floats) -> Floats:
-    """Least effect on the wall of a loaded rectangle over that of an endless strip of the same pressure (m,).
+def area_ratio(near: Floats, far: Floats, low: Floats, high: Floats, heights: Floats) -> tuple[Floats, Floats]:
+    """Least and largest effect on the wall of a loaded rectangle over that of an endless strip of its pressure (m,).
 
     Args:
         near, far: Edges behind the wall, m.
         low, high: Its ends along the wall from the station, m, high above low.
-        heights: Depths to act over (m, h), m; nan where not known. Least over these, by resultant and by moment.
+        heights: Depths to act over (m, h), m; nan where not known. Over these, by resultant and by moment.
     """
     half = (far - near)[:, None, None] / 2
     x = near[:, None, None] + half * (1 + GAUSS)
@@ -147,7 +147,13 @@ def area_ratio(near: Floats, far: Floats, low: Floats, high: Floats, heights: Fl
     strip_force, strip_moment = _line_effects(x, H)
     by_force = np.sum(WEIGHT * force, axis=2) / np.sum(WEIGHT * strip_force, axis=2)
     by_moment = np.sum(WEIGHT * moment, axis=2) / np.sum(WEIGHT * strip_moment, axis=2)
-    return np.asarray(np.clip(np.fmin.reduce(np.concatenate([by_force, by_moment], axis=1), axis=1), 0.0, 1.0))
+    both = np.clip(np.concatenate([by_force, by_moment], axis=1), 0.0, 1.0)
+    return np.asarray(np.fmin.reduce(both, axis=1)), np.asarray(np.fmax.reduce(both, axis=1))
+
+
+def _as_handed(least: Floats, most: Floats) -> Floats:
+    """The section carries the largest of the effects: the others are the real demand over what it carries."""
+    return np.asarray(np.divide(least, most, out=np.full(np.shape(least), np.nan), where=most > 0))
 
 
 def _line_effects(x: Floats, H: Floats) -> tuple[Floats, Floats]:

@@ -64,7 +64,7 @@ def test_one_long_face_answers_to_two_short_ones():
 
 @pytest.mark.parametrize("gap", [0.2, 0.4, 0.6])
 def test_the_leaves_of_a_cavity_wall_are_not_paired_across_the_cavity(gap):
-    # Two leaves of 0.30 m with a clear gap: smallest distance first would take the cavity for a wall where it is narrow.
+    # Two leaves of 0.30 m with a clear gap: nearest first would take a narrow cavity for a wall.
     levels = (0.0, 0.3, 0.3 + gap, 0.6 + gap)
     found, questions = middles(faces(*(((0.0, y), (12.0, y)) for y in levels)))
     assert found == [(0.15, 0.3), (round(0.45 + gap, 4), 0.3)]
