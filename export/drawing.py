@@ -1,8 +1,8 @@
-"""Drawings for the office's own drawing program: the plan overlay and each section as DXF, in metres.
+"""Drawings for the office's own drawing program: the plan overlay and each section as DXF.
 
-Layer names follow the fields of ISO 13567: agent (2 characters, `G-` for the geotechnical engineer), element (6),
-presentation (2: `E-` element, `T-` text, `D-` dimension, `H-` hatch). The plan lies in world coordinates; a section
-has x along the cut and its level as y.
+Layer names follow the fields of ISO 13567: agent (2 characters, by which the reader knows its own drawings again),
+element (6), presentation (2: `E-` element, `T-` text, `D-` dimension, `H-` hatch). The plan lies on the drawing it was
+made from, in its coordinates and unit, else in world metres; a section, in metres, has x along the cut and its level as y.
 """
 
 from __future__ import annotations
@@ -12,6 +12,7 @@ from contextlib import contextmanager
 from pathlib import Path
 from typing import Any
 
+from export.drawing_place import DrawingPlace
 from export.drawing_plan import draw_plan
 from export.drawing_section import draw_section
 from export.drawing_style import new_drawing
@@ -28,7 +29,7 @@ def write_drawings(
     Args:
         proposal: The proposal, world coordinates.
         definitions: Its sections.
-        site: For the supports one by one; None leaves them out.
+        site: For the supports one by one and the drawing to lie on; None leaves them out.
         folder: Where to write.
 
     Returns:
@@ -37,8 +38,9 @@ def write_drawings(
     (folder / "sections").mkdir(exist_ok=True)
     names = ["plan.dxf"]
     with _fixed_meta_data():
-        plan = new_drawing()
-        draw_plan(plan, proposal, site)
+        plan, place = new_drawing(), DrawingPlace.of(site)
+        draw_plan(plan, proposal, site, place.words)
+        place.lay(plan)
         plan.saveas(folder / "plan.dxf")
         for definition in definitions:
             sheet: Any = new_drawing()

@@ -15,8 +15,8 @@ from sections.model import ChosenSection, Pit, Proposal
 VERDICT_OFF, STANDS_OFF = 0.6, 1.1
 
 
-def draw_plan(drawing: Any, proposal: Proposal, site: Site | None) -> None:
-    """Draw the whole plan into modelspace, world metres."""
+def draw_plan(drawing: Any, proposal: Proposal, site: Site | None, note: str = "") -> None:
+    """Draw the whole plan into modelspace, world metres; `note` is lettered below the caution."""
     space = drawing.modelspace()
     for pit in proposal.pits:
         polyline(space, pit.perimeter, "perimeter", pit.closed)
@@ -29,6 +29,7 @@ def draw_plan(drawing: Any, proposal: Proposal, site: Site | None) -> None:
         _cut(space, section)
     corner = min((p for pit in proposal.pits for p in pit.perimeter), key=lambda p: (p[1], p[0]), default=(0.0, 0.0))
     words(space, (corner[0], corner[1] - 4.0), NOTICE, "notes")
+    words(space, (corner[0], corner[1] - 4.5), note, "notes")
 
 
 def _verdicts(space: Any, pit: Pit, proposal: Proposal) -> None:

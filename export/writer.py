@@ -5,8 +5,11 @@ from __future__ import annotations
 from collections.abc import Sequence
 from pathlib import Path
 
+from export.bcf import write_bcf
 from export.drawing import write_drawings
 from export.folder import fresh_folder
+from export.ids_file import write_ids
+from export.implied_ifc import write_implied_ifc
 from export.report.page import report_page
 from export.report.plan import plan_file
 from export.section_json import write_proposal, write_section
@@ -17,7 +20,7 @@ from sections.model import Proposal
 
 
 def write_all(proposal: Proposal, definitions: Sequence[SectionDefinition], site: Site, folder: Path) -> list[str]:
-    """Write proposal, sections, report, drawings and tables into a folder, whole or not at all.
+    """Write proposal, sections, report, drawings, tables and the files for the BIM side, whole or not at all.
 
     Args:
         proposal: The proposal, world coordinates.
@@ -34,6 +37,11 @@ def write_all(proposal: Proposal, definitions: Sequence[SectionDefinition], site
     """
     with fresh_folder(folder) as aside:
         names = [*write_tables(proposal, definitions, aside), *write_drawings(proposal, definitions, site, aside)]
+        names += [
+            write_bcf(proposal, definitions, site, aside),
+            write_ids(proposal, site, aside),
+            write_implied_ifc(proposal, definitions, site, aside),
+        ]
         (aside / "plan.svg").write_text(plan_file(proposal, site), encoding="utf-8")
         names += ["proposal.json", "plan.svg", "report.html", *(f"sections/{one.id}.json" for one in definitions)]
         digest = write_proposal(proposal, site.inputs, aside, names)

@@ -134,6 +134,19 @@ class Borehole:
 
 
 @record
+class ModelPlace:
+    """How a model's own coordinates lie in the world: world = origin + scale Rz(rotation, counter-clockwise) model, m.
+
+    `given` when the file says so itself, in a map conversion or what stands for one.
+    """
+
+    origin: Point3 = (0.0, 0.0, 0.0)
+    rotation_deg: float = 0.0
+    scale: float = 1.0
+    given: bool = False
+
+
+@record
 class FileParts:
     """What one reader took from one file. `entities` is the file's own count, `ignored` counts them by reason."""
 
@@ -155,6 +168,8 @@ class FileParts:
     questions: tuple[Question, ...] = ()
     setting: tuple[Part, ...] = ()
     """Storeys with their level and the site's own terrain: shown, but no entities of the ledger."""
+    place: ModelPlace | None = None
+    """Of an IFC model; None where its conversion to the map is no plain shift, turn and scale."""
 
 
 @record
@@ -468,6 +483,8 @@ class Site:
     assumptions: tuple[Assumption, ...] = ()
     findings: tuple[Finding, ...] = ()
     not_assessed: tuple[NotAssessed, ...] = ()
+    places: dict[str, ModelPlace] = field(default_factory=dict)
+    """Where each IFC model lies in the world, by file, the brief's shift and turn included."""
 
 
 Quantity = Literal["N", "V", "M", "hoop", "reaction", "settlement"]

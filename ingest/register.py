@@ -11,7 +11,7 @@ import numpy as np
 
 from ingest.brief import Brief
 from ingest.brief_lines import one_line, quoted
-from ingest.model import FileParts, Frame, Part, Point, Point3, Registered
+from ingest.model import FileParts, Frame, ModelPlace, Part, Point, Point3, Registered
 from ingest.notes import Notes
 from ingest.outlines import FITS, SLIPS, Placement, distance_between, find_placements, outline_points
 from ingest.roles import RoleGiven
@@ -57,6 +57,24 @@ def lay_files(files: Sequence[FileParts], brief: Brief) -> Moved:
     crs = brief.site.crs or next((file.crs for file in laid if file.crs), None)
     frame = Frame(offset=(*offset, 0.0), crs=crs)
     return Moved(files=tuple(laid), frame=frame, registered=registered)
+
+
+def model_places(moved: Moved) -> dict[str, ModelPlace]:
+    """Where each model lies in the world, the brief's shift and turn included, by file name."""
+    places = {}
+    for file in moved.files:
+        if file.place is not None:
+            done = moved.registered[file.file]
+            (x, y), z = _turn(file.place.origin[:2], done.rotation_deg), file.place.origin[2]
+            origin = (x + done.shift[0], y + done.shift[1], z)
+            turn = file.place.rotation_deg + done.rotation_deg
+            places[file.file] = replace(file.place, origin=origin, rotation_deg=turn)
+    return places
+
+
+def _turn(point: Point, degrees: float) -> Point:
+    c, s = math.cos(math.radians(degrees)), math.sin(math.radians(degrees))
+    return c * point[0] - s * point[1], s * point[0] + c * point[1]
 
 
 def box_of(file: FileParts) -> tuple[float, float, float, float] | None:

@@ -15,7 +15,7 @@ from ingest.model import Evidence, Part, Role, WallKind
 from ingest.record import record
 from ingest.surroundings import WALL_ROW, Place, find_places, straight, upright
 from ingest.trail import Question, Reading
-from ingest.words import find_meanings, layer_name
+from ingest.words import find_meanings, is_own_layer, layer_name
 
 LEAST = 0.5
 """Confidence below which a part keeps to the context (judgement)."""
@@ -91,6 +91,8 @@ def find_role(part: Part, brief: Brief, place: Place) -> RoleGiven:
     stated = _from_brief(part, brief, place)
     if stated is not None:
         return _given(part, stated)
+    if is_own_layer(part.layer):
+        return _given(part, Clue(role="context", why="layer of this tool's own drawings", confidence=1.0))
     if part.form == "text":
         return _given(part, Clue(role="level", why=f'text "{part.text[:40]}"', confidence=0.6))
     clues = [*_from_class(part, place), *_from_properties(part), *_from_place(part, place), *_from_names(part, place)]

@@ -21,7 +21,7 @@ from ingest.ledger import make_ledger
 from ingest.missing import note_missing
 from ingest.model import FileParts, InputFile, Role, Site
 from ingest.notes import Notes
-from ingest.register import Moved, check_registration, lay_files
+from ingest.register import Moved, check_registration, lay_files, model_places
 from ingest.roles import RoleGiven, find_roles
 from ingest.starting_brief import write_starting_brief
 from ingest.tie_texts import tie_texts
@@ -150,6 +150,7 @@ def _records(given: Sequence[RoleGiven], moved: Moved, ground: float | None, not
         lines=build_lines(brief),
         confirmed=tuple(entry.assumption for entry in brief.decisions.confirm),
         limits=build_limits(brief),
+        places=model_places(moved),
     )
 
 

@@ -15,6 +15,9 @@ from ingest.record import record
 
 Phrase = tuple[str, ...]
 
+OWN_AGENT = "GQ"
+"""Agent field (ISO 13567-2) of the layers of this tool's own drawings: no name of the trade begins with it."""
+_OWN_LAYER = re.compile(OWN_AGENT + r"[-A-Z]{6}[ETDH]-")
 _LANGUAGES = ("en", "de", "fr", "es", "it", "nl", "pt", "pl", "sv")
 _NOT_DECOMPOSED = str.maketrans({"ł": "l", "ø": "o", "đ": "d", "æ": "ae", "œ": "oe"})
 _UMLAUTS = (("ue", "u"), ("oe", "o"), ("ae", "a"))
@@ -54,6 +57,18 @@ def layer_name(layer: str) -> str:
 
     fields = read_iso_fields(layer)
     return split_xref(layer)[1] if fields is None else f"{fields.element} {fields.user}".replace("-", " ")
+
+
+def is_own_layer(layer: str) -> bool:
+    """Whether a layer is one of this tool's own drawings, bound into another drawing or not.
+
+    Example:
+        >>> is_own_layer("GQWALL--E-"), is_own_layer("overlay$0$GQCUTS--E-"), is_own_layer("G-WALL--E-")
+        (True, True, False)
+    """
+    from ingest.dxf.layers import split_xref
+
+    return _OWN_LAYER.fullmatch(split_xref(layer)[1].upper()) is not None
 
 
 def find_meanings(name: str) -> tuple[Meaning, ...]:

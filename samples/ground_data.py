@@ -21,15 +21,15 @@ class Hole:
 
 
 def write_ags(path: Path, project: str, holes: Sequence[Hole]) -> None:
-    """Write an AGS4 file with the groups PROJ, TRAN, UNIT, TYPE, LOCA, GEOL and WSTG; the same bytes at every run."""
+    """Write an AGS4 file with its holes, strata and water strikes; the same bytes at every run."""
     groups = [
         _group("PROJ", ("PROJ_ID", "PROJ_NAME"), ("", ""), ("ID", "X"), [("1", project)]),
         _group(
             "TRAN",
-            ("TRAN_ISNO", "TRAN_DATE", "TRAN_PROD", "TRAN_STAT", "TRAN_AGS", "TRAN_DLIM", "TRAN_RCON"),
-            ("", "yyyy-mm-dd", "", "", "", "", ""),
-            ("X", "DT", "X", "X", "X", "X", "X"),
-            [("1", "2026-03-02", "Invented", "Invented data", "4.1", "|", "+")],
+            ("TRAN_ISNO", "TRAN_DATE", "TRAN_PROD", "TRAN_STAT", "TRAN_AGS", "TRAN_RECV", "TRAN_DLIM", "TRAN_RCON"),
+            ("", "yyyy-mm-dd", "", "", "", "", "", ""),
+            ("X", "DT", "X", "X", "X", "X", "X", "X"),
+            [("1", "2026-03-02", "Invented", "Invented data", "4.1", "Nobody", "|", "+")],
         ),
         _group(
             "LOCA",
@@ -49,12 +49,13 @@ def write_ags(path: Path, project: str, holes: Sequence[Hole]) -> None:
                 for top, base, code, words in hole.strata
             ],
         ),
+        *_water(holes),
         _group(
-            "WSTG",
-            ("LOCA_ID", "WSTG_DPTH"),
-            ("", "m"),
-            ("ID", "2DP"),
-            [(hole.name, f"{hole.water:.2f}") for hole in holes if hole.water is not None],
+            "ABBR",
+            ("ABBR_HDNG", "ABBR_CODE", "ABBR_DESC"),
+            ("", "", ""),
+            ("X", "X", "X"),
+            [("LOCA_TYPE", "CP", "Cable percussion (shell and auger)"), *_codes(holes)],
         ),
         _group("UNIT", ("UNIT_UNIT", "UNIT_DESC"), ("", ""), ("X", "X"), [("m", "metre"), ("yyyy-mm-dd", "date")]),
         _group(
@@ -67,6 +68,16 @@ def write_ags(path: Path, project: str, holes: Sequence[Hole]) -> None:
     ]
     path.parent.mkdir(parents=True, exist_ok=True)
     path.write_bytes("\r\n".join(groups).encode("ascii"))
+
+
+def _water(holes: Sequence[Hole]) -> list[str]:
+    rows = [(hole.name, f"{hole.water:.2f}") for hole in holes if hole.water is not None]
+    return [_group("WSTG", ("LOCA_ID", "WSTG_DPTH"), ("", "m"), ("ID", "2DP"), rows)] if rows else []
+
+
+def _codes(holes: Sequence[Hole]) -> list[Row]:
+    words = {code: text for hole in holes for _, _, code, text in hole.strata}
+    return [("GEOL_GEOL", code, text) for code, text in words.items()]
 
 
 def _loca(hole: Hole) -> Row:

@@ -134,15 +134,13 @@ class SiteModel:
         return self.element(kind, name, layer, self.frame((0.0, 0.0, bottom)), solid, predefined, material)
 
     def point_load(self, name: str, at: Numbers, down: float) -> None:
-        """A structural action in global axes, kN downwards, on a point of the analysis model."""
+        """A structural action in global axes at a point, kN downwards."""
         vertex = self.add("IfcVertexPoint", self.point(at))
         topology = self.add("IfcTopologyRepresentation", self.reference, "Reference", "Vertex", [vertex])
         whole = self.add("IfcProductDefinitionShape", None, None, [topology])
         place = self.add("IfcLocalPlacement", self.place, self.world)
-        item = self.root("IfcStructuralPointConnection", f"{name} point", None, place, whole)
         force = self.add("IfcStructuralLoadSingleForce", name, None, None, -float(down))
-        action = self.root("IfcStructuralPointAction", name, None, place, None, force, "GLOBAL_COORDS")
-        self.relate("IfcRelConnectsStructuralActivity", item, action)
+        self.root("IfcStructuralPointAction", name, None, place, whole, force, "GLOBAL_COORDS")
 
     def save(self, path: Path, script: str) -> None:
         """Write the file, header date fixed."""

@@ -6,11 +6,11 @@ Run: python samples/make_quarry_road.py [FOLDER]
 from __future__ import annotations
 
 import sys
-from math import cos, degrees, radians, sin
+from math import cos, radians, sin
 from pathlib import Path
 from typing import Any
 
-import ezdxf
+from drawing import Point, add_layer, add_line, add_text, new_drawing, save_drawing
 from ground_data import Hole, write_ags
 
 FOLDER = Path(__file__).parent / "quarry_road"
@@ -31,7 +31,6 @@ ANCHOR_ROWS = ((110.6, 15.0, 12.0, 0), (107.6, 20.0, 10.0, 10))
 RAKERS_AT = tuple(3.6 + 4.8 * i for i in range(6))
 RAKER_LENGTH = 7.0
 CRANE_RAILS = (15.0, 18.0)
-Point = tuple[float, float]
 
 
 def on_wall(chainage: float, into: float = 0.0) -> Point:
@@ -53,13 +52,6 @@ def from_leg(leg: int, along: float, into: float) -> Point:
     return round(WEST_END[0] + x, 4), round(WEST_END[1] + y, 4)
 
 
-def add_line(space: Any, layer: str, points: list[Point], *, closed: bool = False, level: float = 0.0) -> None:
-    """A polyline on its layer, at a level where the survey has one."""
-    if layer not in space.doc.layers:
-        space.doc.layers.add(layer)
-    space.add_lwpolyline(points, close=closed, dxfattribs={"layer": layer, "elevation": level})
-
-
 def draw_posts(drawing: Any) -> None:
     """King posts as inserts of one block, webs across the wall, and the lagging between them."""
     depth, width, web, flange = POST_SIZE
@@ -68,7 +60,7 @@ def draw_posts(drawing: Any) -> None:
     block = drawing.blocks.new(POST)
     block.add_lwpolyline(ring, close=True, dxfattribs={"layer": "0"})
     space = drawing.modelspace()
-    drawing.layers.add("KING-POSTS")
+    add_layer(space, "KING-POSTS")
     for n in range(sum(BAYS) + 1):
         turn = BEND if n > BAYS[0] else BEND / 2 if n == BAYS[0] else 0.0
         attributes = {"layer": "KING-POSTS", "rotation": turn}
@@ -113,26 +105,17 @@ def draw_loads(space: Any) -> None:
         add_text(space, f"+{GROUND + 0.02 * (n - 1.5):.2f}", from_leg(0, along, -12.5), layer="SPOT-LEVELS")
 
 
-def add_text(space: Any, text: str, at: Point, layer: str = "TEXT") -> None:
-    """A note of the surveyor."""
-    if layer not in space.doc.layers:
-        space.doc.layers.add(layer)
-    space.add_text(text, height=0.5, dxfattribs={"layer": layer, "insert": at})
-
-
 def draw_survey(path: Path) -> None:
     """The survey drawing; the same bytes at every run."""
-    ezdxf.options.write_fixed_meta_data_for_testing = True
-    drawing = ezdxf.new("R2007", units=6)
+    drawing = new_drawing("R2007")
     space = drawing.modelspace()
     draw_posts(drawing)
     draw_supports(space)
     draw_dig(space)
     draw_loads(space)
     add_text(space, f"KING POSTS {POST} AT 2.40 m, TIMBER LAGGING", from_leg(0, 2.0, 1.0))
-    add_text(space, f"RAKERS AT 4.80 m, {degrees(radians(35.0)):.0f} DEGREES", from_leg(1, 8.0, 3.0))
-    path.parent.mkdir(parents=True, exist_ok=True)
-    drawing.saveas(path)
+    add_text(space, "RAKERS AT 4.80 m, 35 DEGREES", from_leg(1, 8.0, 3.0))
+    save_drawing(drawing, path)
 
 
 def write_boreholes(path: Path) -> None:

@@ -8,9 +8,8 @@ from __future__ import annotations
 import sys
 from math import cos, dist, radians, sin
 from pathlib import Path
-from typing import Any
 
-import ezdxf
+from drawing import Point, add_line, add_text, new_drawing, save_drawing
 from ground_data import Hole, write_ags
 from ifc_model import SiteModel
 
@@ -46,7 +45,6 @@ BEARING = tuple(
 )
 COLUMNS = tuple((x, y) for y, count in ((8.0, 7), (16.0, 7), (30.0, 3)) for x in (4.0 + 6.0 * i for i in range(count)))
 COLUMN_LOAD = 2400.0
-Point = tuple[float, float]
 
 
 def world(point: Point) -> Point:
@@ -127,9 +125,7 @@ def add_supports(model: SiteModel) -> None:
                 layer = f"{kind.replace(' ', '-')}S-L{number}"
                 bar = (mm(x1, y1, level), mm(x2, y2, level))
                 model.bar("IfcMember", f"{kind} L{number}-{n}", layer, bar, tube, "STRUT", "steel S355")
-        beam = model.add(
-            "IfcIShapeProfileDef", "AREA", "welded 700x450", model.flat(), *mm(0.450, 0.700, 0.014, 0.030)
-        )
+        beam = model.add("IfcIShapeProfileDef", "AREA", "welded 700x450", model.flat(), *mm(0.450, 0.700, 0.014, 0.030))
         ring = inset(CORNERS, WALER_INSET)
         for n, (start, end) in enumerate(zip(ring, (*ring[1:], ring[0]), strict=True), start=1):
             bar = (mm(*start, level), mm(*end, level))
@@ -147,9 +143,7 @@ def add_floor(model: SiteModel) -> None:
     square = model.add("IfcRectangleProfileDef", "AREA", "600 x 600", model.flat(), *mm(0.6, 0.6))
     for n, at in enumerate(COLUMNS, start=1):
         solid = model.extrusion(square, mm(6.0)[0])
-        model.element(
-            "IfcColumn", f"COLUMN {n}", "COLUMNS", model.frame(mm(*at, RAFT_TOP)), solid, "COLUMN", "C40/50"
-        )
+        model.element("IfcColumn", f"COLUMN {n}", "COLUMNS", model.frame(mm(*at, RAFT_TOP)), solid, "COLUMN", "C40/50")
         model.point_load(f"COLUMN LOAD {n}", mm(*at, RAFT_TOP), COLUMN_LOAD)
 
 
@@ -174,8 +168,7 @@ def beside(side: int, start: float, end: float, near: float, far: float) -> list
 
 def draw_setting_out(path: Path) -> None:
     """The setting-out drawing in world metres: streets, canal, neighbour, tunnel, grid and wall line."""
-    ezdxf.options.write_fixed_meta_data_for_testing = True
-    drawing = ezdxf.new("R2013", units=6)
+    drawing = new_drawing("R2013")
     space = drawing.modelspace()
     rings: dict[str, list[list[Point]]] = {
         "SURCHARGE-STREET": [beside(5, -3.0, 40.0, 1.5, 9.0), beside(1, -2.0, 27.0, 1.5, 9.5)],
@@ -185,12 +178,12 @@ def draw_setting_out(path: Path) -> None:
     }
     for layer, outlines in rings.items():
         for ring in outlines:
-            add_line(space, layer, ring, closed=True)
-    add_line(space, "CANAL-EDGE", [(-15.0, -7.0), (65.0, -7.0)])
+            add_line(space, layer, [world(point) for point in ring], closed=True)
+    add_line(space, "CANAL-EDGE", [world((-15.0, -7.0)), world((65.0, -7.0))])
     for x in (4.0, 10.0, 16.0, 22.0, 28.0, 34.0, 40.0):
-        add_line(space, "GRID", [(x, -4.0), (x, 41.0)])
+        add_line(space, "GRID", [world((x, -4.0)), world((x, 41.0))])
     for y in (8.0, 16.0, 30.0):
-        add_line(space, "GRID", [(-4.0, y), (52.0, y)])
+        add_line(space, "GRID", [world((-4.0, y)), world((52.0, y))])
     notes = (
         ("TANNERY LANE", (-8.0, 18.0)),
         ("WHARF STREET", (52.0, 14.0)),
@@ -198,17 +191,8 @@ def draw_setting_out(path: Path) -> None:
         ("ALL LEVELS IN METRES ABOVE DATUM", (-8.0, 46.0)),
     )
     for text, at in notes:
-        space.add_text(text, height=0.8, rotation=TURN, dxfattribs={"layer": "TEXT", "insert": world(at)})
-    path.parent.mkdir(parents=True, exist_ok=True)
-    drawing.saveas(path)
-
-
-def add_line(space: Any, layer: str, points: list[Point], *, closed: bool = False) -> None:
-    """A polyline through points of the site, on its layer."""
-    doc = space.doc
-    if layer not in doc.layers:
-        doc.layers.add(layer)
-    space.add_lwpolyline([world(point) for point in points], close=closed, dxfattribs={"layer": layer})
+        add_text(space, text, world(at), height=0.8, turn=TURN)
+    save_drawing(drawing, path)
 
 
 def write_boreholes(path: Path) -> None:

@@ -40,9 +40,7 @@ def add_panels(model: SiteModel) -> None:
     """Twelve panels, each from corner to corner of the wall axis."""
     corners = polygon(APOTHEM)
     length = round(2.0 * APOTHEM * tan(pi / SIDES), 6)
-    profile = model.add(
-        "IfcRectangleProfileDef", "AREA", None, model.flat((length / 2.0, 0.0)), length, THICKNESS
-    )
+    profile = model.add("IfcRectangleProfileDef", "AREA", None, model.flat((length / 2.0, 0.0)), length, THICKNESS)
     for n, (start, end) in enumerate(zip(corners, (*corners[1:], corners[0]), strict=True), start=1):
         way = (end[0] - start[0], end[1] - start[1], 0.0)
         frame = model.frame((*start, TOE), (0.0, 0.0, 1.0), way)

@@ -201,7 +201,8 @@ def _needed(
 ) -> Bools:
     """Zones of which at least one excavated depth cannot be represented, and the cuts that lie in them (z, m).
 
-    A pit of which nothing can be represented gets a section in its longest zone, however short that is.
+    A pit of which nothing can be represented gets a section in its longest zone, however short that is; a ring one
+    axisymmetric section through each load or receptor that breaks its symmetry.
     """
     rows = []
     for p, one in judged.items():
@@ -216,7 +217,20 @@ def _needed(
             lies = [cut.pit == p and bool(np.any(zone[list(cut.stations[: cut.serves])] == z)) for cut in cuts]
             if any(lies):
                 rows.append(lies)
+        rows += _spokes(cuts, p, zone)
     return np.array(rows, dtype=bool).reshape(len(rows), len(cuts))
+
+
+def _spokes(cuts: Sequence[Candidate], pit: int, zone: Ints) -> list[list[bool]]:
+    """Axisymmetric cuts through loads and receptors, one of which is needed in each zone that has any."""
+    broken = [
+        cut.kind == "axisymmetric" and cut.pit == pit and any("load" in why or "receptor" in why for why in cut.why)
+        for cut in cuts
+    ]
+    zones = sorted({int(zone[cut.stations[0]]) for cut, breaks in zip(cuts, broken, strict=True) if breaks})
+    return [
+        [breaks and int(zone[cut.stations[0]]) == z for cut, breaks in zip(cuts, broken, strict=True)] for z in zones
+    ]
 
 
 def _least_lengths(judged: JudgedPit) -> Floats:

@@ -73,7 +73,7 @@ def _read_as_faces(
     as_faces: set[int] = set()
     asked: list[Question] = []
     for (layer, _), members in sorted(groups.items()):
-        thick = _paired_thickness(drop_doubles(_faces(members, origin)))
+        thick = _paired_thickness(drop_doubles(_faces(members, origin))) if len(members) > 1 else None
         if thick is not None:
             as_faces |= {i for i, _ in members}
             asked.append(_face_question(len(asked) + 1, layer, thick))

@@ -96,7 +96,8 @@ def candidates(faces: Faces, within: bool) -> Ints:
     low, high, offset = beside(faces, np.column_stack((a, b)))
     shorter = np.minimum(faces.length[a], faces.length[b])
     bent = np.abs((u[a] * u[b]).sum(axis=1)) < np.cos(np.radians(STRAIGHT))
-    ok = (high - low >= np.where(bent, np.maximum(0.2 * shorter, SLIVER), 2 * SLIVER)) & (offset >= THINNEST) & (offset <= THICKEST)
+    least = np.where(bent, np.maximum(0.2 * shorter, SLIVER), 2 * SLIVER)
+    ok = (high - low >= least) & (offset >= THINNEST) & (offset <= THICKEST)
     for side in (a, b):
         said = faces.thickness[side]
         ok &= np.isnan(said) | (np.abs(offset - said) <= 0.03)
@@ -118,7 +119,7 @@ def _usual(body: Ints, offset: Floats, length: Floats) -> Bools:
 
 
 def beside(faces: Faces, pairs: Ints) -> tuple[Floats, Floats, Floats]:
-    """Stretch of the first face that lies beside the second (from, to along it), and how far apart they are there, m."""
+    """Stretch of the first face that lies beside the second (from, to along it), and their distance there, m."""
     a, b = pairs.T
     low, high = _overlap(faces, a, b)
     return low, high, _offset(faces, a, b, 0.5 * (low + high))

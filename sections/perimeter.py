@@ -9,25 +9,25 @@ from typing import TypeVar
 import numpy as np
 import shapely
 
-from ingest.model import Plate, Point, Site, WallPiece
-from ingest.trail import Finding, Question, Reading, Source
+from ingest.model import Point, Site
+from ingest.trail import Finding, Question
 from sections.circles import find_circle, find_parts
 from sections.corners import find_arcs, find_corners, start_outline
 from sections.model import Arc, Circle, CirclePart, PitShape
 from sections.open_walls import find_witnesses, oriented
 from sections.outline import Outline, build_outline
-from sections.ring_choice import choose_rings
+from sections.ring_choice import Choice, choose_rings
 from sections.rings import Trace
 from sections.run_checks import check_runs
 from sections.runs import find_runs, stretches_along
 from sections.sides import Samples, find_sides, sample_way
+from sections.slab_edge import Shapes, from_slab, numbered_findings
 from sections.wall_lines import WallLine, gather_lines
 
 CUT_CORNER = 0.3
 """A straight shorter than this between two sides that meet only cuts their corner, m (judgement)."""
 
 Centred = TypeVar("Centred", Arc, Circle, CirclePart)
-Shapes = tuple[tuple[PitShape, ...], tuple[Finding, ...], tuple[Question, ...]]
 
 
 @dataclass(frozen=True, kw_only=True, eq=False)
@@ -51,16 +51,16 @@ def find_shapes(site: Site) -> Shapes:
     """
     origin = _origin(site)
     lines, seen, questions = gather_lines(site, origin)
-    choice = choose_rings(site, lines, origin) if lines else None
-    if choice is None or not choice.traces:
-        return _from_slab(site)
-    ways, asked = _ways(site, choice.traces, lines, origin)
+    choice = choose_rings(site, lines, origin) if lines else Choice(traces=())
+    if not choice.traces:
+        shapes, findings, asked = from_slab(site, (*seen, *choice.findings), find_shapes)
+        return shapes, findings, (*questions, *choice.questions, *asked)
+    ways, sides_asked = _ways(site, choice.traces, lines, origin)
     starts = _starts(site, ways, origin)
     made = [_shape(site, way, lines, origin, start) for way, start in zip(ways, starts, strict=True)]
-    shapes, findings = _numbered(site, made)
-    every = [*seen, *choice.findings, *findings]
-    numbered = tuple(replace(f, id=f"shape-{k + 1}") for k, f in enumerate(every))
-    return shapes, numbered, (*questions, *choice.questions, *asked)
+    shapes, checked = _numbered(site, made)
+    every = [*seen, *choice.findings, *checked]
+    return shapes, numbered_findings(every), (*questions, *choice.questions, *sides_asked)
 
 
 def _origin(site: Site) -> Point:
@@ -145,40 +145,3 @@ def _numbered(site: Site, shapes: Sequence[PitShape]) -> tuple[tuple[PitShape, .
     }  # fmt: skip
     final = tuple(replace(s, enclosing=within.get(s.id, ())) for s in named)
     return final, [finding for s in final for finding in check_runs(site, s)]
-
-
-def _from_slab(site: Site) -> Shapes:
-    """With slabs and no walls to go by, the outline of the lowest slab stands in for the perimeter."""
-    slabs = [plate for plate in site.plates if plate.role == "slab" and len(plate.outline) > 2]
-    if not slabs:
-        return (), (), ()
-    slab = min(slabs, key=lambda s: (_underside(s), -shapely.Polygon(s.outline).area, s.outline))
-    sources = tuple(Source(file=s.file, item=s.item, how="assumed") for s in slab.sources)
-    stand_in = WallPiece(id=slab.id, axis=slab.outline, closed=True, kind="unknown", sources=sources)
-    shapes, findings, questions = find_shapes(replace(site, walls=(stand_in,), piles=(), plates=()))
-    where = slab.name or slab.id
-    note = Finding(
-        id="shape-slab", code="perimeter-assumed", severity="check", where=where, sources=sources,
-        text="No wall closes a perimeter. The outline of the lowest slab stands in for the wall axis, and the kind of "
-             "wall is not known: every distance from the wall is an assumption to confirm.",
-    )  # fmt: skip
-    return shapes, (*findings, note), (*questions, _slab_question(where))
-
-
-def _underside(plate: Plate) -> float:
-    levels = [level for level in (plate.underside, plate.top) if level is not None]
-    return min(levels, default=np.inf)
-
-
-def _slab_question(where: str) -> Question:
-    return Question(
-        id="perimeter-assumed",
-        about="where the retaining wall stands",
-        readings=(
-            Reading(reading=f"along the edge of the lowest slab ({where})", evidence="no wall closes a perimeter",
-                    confidence=0.4),
-            Reading(reading="outside it, by working space", evidence="slabs are often cast free of the wall",
-                    confidence=0.6),
-        ),
-        brief_line='[[roles]] match = {layer = "..."}, role = "wall", wall_kind = "..."',
-    )  # fmt: skip

@@ -8,7 +8,7 @@ import numpy as np
 
 from ingest.model import Limits, Pile, WallKind
 from sections.model import Bools, Floats, Ints, Structural, Wall
-from sections.pile_rows import pile_size
+from sections.pile_kinds import pile_size
 
 SAME_SIZE = 0.02
 """Diameters and thicknesses closer than this are alike, m."""

@@ -22,6 +22,7 @@ from sections.ring_notes import (
     bridge_notes,
     gap_notes,
     inner_ring_question,
+    no_ring_note,
     shallow_notes,
     twin_note,
 )
@@ -206,9 +207,11 @@ def _building_rings(site: Site, lines: Sequence[WallLine], origin: Point) -> Cho
         rings.sort(key=lambda ring: -area_of(ring.points))
         if rings:
             return _outermost(rings, lines, origin)
+    if site.plates or not (site.supports or site.floors or site.formation is not None):
+        return Choice(traces=(), findings=(no_ring_note(lines),))
     drawn = lowest & np.array([line.sure for line in lines], dtype=bool)
     ways = [way for way in find_open(_network(site, lines, drawn)) if way.length >= LEAST_OPEN]
-    return Choice(traces=tuple(ways[:1]) if not site.plates else ())
+    return Choice(traces=tuple(ways[:1]))
 
 
 def _outermost(rings: Sequence[Trace], lines: Sequence[WallLine], origin: Point) -> Choice:

@@ -35,7 +35,7 @@ def gap_notes(ways: Sequence[Trace], origin: Point) -> list[Finding]:
         if gap <= 0.25 * way.length:
             found.append(Finding(
                 id="", code="wall-gap", severity="check", where=f"{_place(a)} to {_place(b)}",
-                text=f"{gap:.2f} m between the two ends of the wall, too far to close: it is read as an open perimeter.",
+                text=f"{gap:.2f} m between the two ends of the wall, too far to close: read as an open perimeter.",
             ))  # fmt: skip
     return found
 
@@ -90,6 +90,14 @@ def shallow_notes(site: Site, lines: Sequence[WallLine], shallow: Bools, origin:
         text=f"{int(shallow.sum())} wall lines end above half the depth of the dig (lowest toe {toe:.2f} m, formation "
              f"{site.formation:.2f} m) and were not taken as retaining.",
     )]  # fmt: skip
+
+
+def no_ring_note(lines: Sequence[WallLine]) -> Finding:
+    """Walls of a building, or of no known kind, that close nothing."""
+    return Finding(
+        id="", code="no-perimeter", severity="check", where="plan",
+        text=f"{len(lines)} wall lines close no ring, none is of a kind that retains ground, and nothing shows a dig.",
+    )  # fmt: skip
 
 
 def inner_ring_question(number: int, at: Point) -> Question:

@@ -13,7 +13,7 @@ from ingest.model import Limits, Site, WallKind, WallPiece
 from ingest.trail import Source
 from sections.model import Floats, Run, Wall
 from sections.outline import Outline
-from sections.pile_rows import without_specks
+from sections.pile_kinds import kinds_by_bay, without_specks
 from sections.pile_walls import SAME_SIZE, near, pile_wall, split_row
 from sections.rings import Trace
 from sections.wall_lines import WallLine
@@ -69,7 +69,7 @@ def stretches_along(site: Site, outline: Outline, trace: Trace, lines: Sequence[
         bits.append(Stretch(start=float(start[k]), stop=float(stop[k]), kind=one.kind, piece=one.piece,
                             thickness=one.thickness))  # fmt: skip
     bits.sort(key=lambda bit: (bit.start, bit.stop, bit.pile))
-    return _settled(site, _between_piles(bits, lines, outline.length))
+    return _settled(site, _between_piles(bits, lines, outline.length), outline.length, outline.closed)
 
 
 def _between_piles(bits: Sequence[Stretch], lines: Sequence[WallLine], length: float) -> list[Stretch]:
@@ -91,16 +91,26 @@ def _between_piles(bits: Sequence[Stretch], lines: Sequence[WallLine], length: f
     return kept
 
 
-def _settled(site: Site, bits: list[Stretch]) -> list[Stretch]:
-    """Kinds of unnamed piles settled by their neighbours along the wall, across the start of a ring too."""
+def _settled(site: Site, bits: list[Stretch], length: float, closed: bool) -> list[Stretch]:
+    """Kinds of unnamed piles settled by the bay that follows, single odd ones by their neighbours; round a ring too.
+
+    The bay that follows decides because a pile belongs to the run that begins at it.
+    """
     index = [k for k, bit in enumerate(bits) if bit.pile >= 0]
-    if not index:
+    if len(index) < 2:
         return bits
-    around = [*index[-3:], *index, *index[:3]]
-    lead = len(index[-3:])
-    kinds = without_specks([site.piles[bits[k].pile] for k in around], [bits[k].kind for k in around])
+    piles = [site.piles[bits[k].pile] for k in index]
+    at = np.array([bits[k].start for k in index])
+    after = (np.roll(at, -1) - at) % length
+    if not closed:
+        after[-1] = after[-2]
+    after = np.where(after > 2.0 * np.roll(after, 1), np.roll(after, 1), after)
+    kinds = kinds_by_bay(piles, after, [bits[k].kind for k in index])
+    lead = min(3, len(index)) if closed else 0
+    around = [*range(-lead, 0), *range(len(index)), *range(lead)]
+    kinds = without_specks([piles[k] for k in around], [kinds[k] for k in around])[lead : lead + len(index)]
     settled = list(bits)
-    for k, kind in zip(index, kinds[lead : lead + len(index)], strict=True):
+    for k, kind in zip(index, kinds, strict=True):
         settled[k] = replace(bits[k], kind=kind)
     return settled
 

@@ -11,7 +11,6 @@ from ingest.model import Point, Site
 from ingest.trail import Finding
 from sections.cut import Cut, crossings
 from sections.definition import Extent, Half, SectionLoad, SectionMember, SectionReceptor
-from sections.ground import nearest_borehole
 from sections.mirror import cut_mirrors
 from sections.world import to_local, to_world
 
@@ -67,8 +66,9 @@ def borehole_distance(site: Site, cut: Cut) -> float | None:
     """Least distance from the cut to a borehole, m; None without boreholes."""
     if not site.boreholes:
         return None
-    points = [cut.point(x) for x in np.linspace(0.0, cut.length, 21)]
-    return float(np.min(nearest_borehole(site, points)))
+    holes = [hole.location[:2] for hole in site.boreholes]
+    x = np.clip(cut.x_of(holes), 0.0, cut.length)
+    return float(np.min(np.hypot(cut.x_of(holes) - x, cut.y_of(holes))))
 
 
 def receptors_met(site: Site, cut: Cut) -> tuple[SectionReceptor, ...]:

@@ -11,7 +11,8 @@ from ingest.model import Point, Site, WallKind, WallPiece
 from ingest.trail import Finding, Question
 from sections.double_lines import centre_lines
 from sections.model import Floats, Ints
-from sections.pile_rows import EMBEDDED, PileRow, find_pile_rows, pile_size
+from sections.pile_kinds import EMBEDDED, pile_size
+from sections.pile_rows import PileRow, find_pile_rows
 
 PLAIN_REACH = 0.6
 """How far the end of a line of unknown thickness is extended to meet another, m (judgement)."""

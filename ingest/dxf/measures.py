@@ -93,7 +93,8 @@ def _look(
             for x, y in np.asarray(entity.lwpoints.values).reshape(-1, 5)[:, :2].tolist():
                 _point(found, (x, y, 0.0), matrix, shift)
         elif at is not None and kind != "POINT":
-            _point(found, (at.x, at.y, at.z), matrix, shift)
+            for place in (at, known.get("end") or at):
+                _point(found, (place.x, place.y, place.z), matrix, shift)
         _sizes(kind, entity, known, scale, found)
 
 

@@ -96,8 +96,8 @@ def plain_mtext(raw: str) -> str:
     r"""Text of a MTEXT without its formatting, lines kept apart.
 
     Args:
-        raw: With the format's inline codes: ``\P`` new line, ``\~`` blank, ``\S1^2;`` stacked, ``\H2.5x;`` and the like,
-            braces, ``^I`` tab (DXF reference, "MTEXT").
+        raw: With the format's inline codes (DXF reference, "MTEXT"): ``\P`` new line, ``\~`` blank, ``\S1^2;`` stacked,
+            ``\H2.5x;`` and the like, braces, ``^I`` tab.
 
     Example:
         >>> plain_mtext(r"{\H1.5x;10no. 600 dia}\P@ 750\~c/c")

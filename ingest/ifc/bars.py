@@ -2,6 +2,7 @@
 
 from __future__ import annotations
 
+from collections.abc import Sequence
 from math import atan2, degrees, hypot, sqrt
 
 import numpy as np
@@ -42,7 +43,7 @@ def bar_parts(element: Element, sections: SectionTable) -> tuple[Part, ...]:
     return (_from_points(element, main.points(), notes, None),)
 
 
-def _main_body(bodies: list[Placed]) -> tuple[Placed, tuple[str, ...]]:
+def _main_body(bodies: Sequence[Placed]) -> tuple[Placed, tuple[str, ...]]:
     """The longest body stands for the element; the others are said to be left out."""
     if len(bodies) == 1:
         return bodies[0], ()
@@ -108,6 +109,8 @@ def _extruded(element: Element, body: Placed, shape: Extrusion, sections: Sectio
 
 def cut_ends(body: Placed, shape: Extrusion, start: Triple, end: Triple) -> tuple[Triple, Triple, list[str]]:
     """Shorten a bar where planes cut its centroid line; other cuts are said to be left out."""
+    if not shape.cuts:
+        return start, end, []
     low, high, said = 0.0, 1.0, []
     a, way = np.array(start), np.array(end) - np.array(start)
     for cut in shape.cuts:

@@ -3,7 +3,7 @@
 from __future__ import annotations
 
 from dataclasses import dataclass
-from typing import TypeAlias
+from typing import Any, TypeAlias
 
 import numpy as np
 from numpy.typing import NDArray
@@ -52,7 +52,7 @@ class BodyList:
     """Bodies gathered for many products, placed together by `place` and handed out by `take`."""
 
     def __init__(self) -> None:
-        self._shapes: list[Shape] = []
+        self._shapes: list[Any] = []
         self._placements: list[int] = []
         self._mappings: list[int] = []
         self._frames: list[int] = []
@@ -114,6 +114,10 @@ class BodyList:
             Placed(self._shapes[row], *self._row(row), self._base[row], self._frame_matrices)
             for row in range(first, end)
         ]
+
+    def release(self, first: int, end: int) -> None:
+        """Forget the shapes of these rows; they cannot be taken again."""
+        self._shapes[first:end] = [None] * (end - first)
 
     def _row(self, row: int) -> tuple[Triple, Triple, Triple, Triple]:
         chunk = row // CHUNK

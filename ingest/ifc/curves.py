@@ -2,13 +2,13 @@
 
 from __future__ import annotations
 
-from math import acos, ceil, cos, pi, sin
+from math import acos, ceil, cos, isfinite, pi, sin
 from typing import Any
 
 import numpy as np
 from numpy.typing import NDArray
 
-from ingest.ifc.frames import FrameTable
+from ingest.ifc.frames import FrameTable, triple
 
 Entity = Any
 Floats = NDArray[np.float64]
@@ -52,12 +52,15 @@ class CurveReader:
         if reader is None:
             raise ValueError(f"{kind} is not read")
         points = reader(self, curve, depth)
-        if len(points) < 2 or not np.isfinite(points).all():
+        if len(points) < 2 or not isfinite(points.sum()):
             raise ValueError(f"{kind} #{curve.id()} has no two finite points")
         return points
 
     def _polyline(self, curve: Entity, _depth: int) -> Floats:
-        return _drop_repeats(_as_3d([p.get_argument(0) for p in curve.get_argument(0)]))
+        points = curve.get_argument(0)
+        if len(points) == 2:
+            return np.array([triple(p.get_argument(0)) for p in points])
+        return _drop_repeats(_as_3d([p.get_argument(0) for p in points]))
 
     def _indexed(self, curve: Entity, _depth: int) -> Floats:
         at = _as_3d(curve.Points.get_argument(0))

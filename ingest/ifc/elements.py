@@ -3,7 +3,7 @@
 from __future__ import annotations
 
 from collections.abc import Sequence
-from dataclasses import dataclass, field
+from dataclasses import dataclass
 from functools import lru_cache
 from typing import Any
 
@@ -37,10 +37,10 @@ class Element:
     material: MaterialUse | None
     tags: dict[str, str]
     length: float
-    bodies: list[Placed] = field(default_factory=list)
-    axes: list[Placed] = field(default_factory=list)
-    footprints: list[Placed] = field(default_factory=list)
-    openings: list[Placed] = field(default_factory=list)
+    bodies: Sequence[Placed] = ()
+    axes: Sequence[Placed] = ()
+    footprints: Sequence[Placed] = ()
+    openings: Sequence[Placed] = ()
     origin: Point3 = (0.0, 0.0, 0.0)
     of_parts: int = 0
     """Number of parts the bodies were taken from, 0 when they are the element's own."""

@@ -37,6 +37,7 @@ class FrameTable:
         self._origins: list[Triple] = [(0.0, 0.0, 0.0)]
         self._ups: list[Triple] = [_UP]
         self._firsts: list[Triple] = [_EAST]
+        self._made: Floats = np.empty((0, 4, 4))
 
     def row(self, frame: Entity | None) -> int:
         """Row of an IfcAxis2Placement2D, 3D or IfcAxis1Placement; `NO_FRAME` for None."""
@@ -89,8 +90,11 @@ class FrameTable:
         return np.asarray(frame_matrices(*one)[0])
 
     def matrices(self) -> Floats:
-        """All frames as (n, 4, 4), lengths in the file's units."""
-        return frame_matrices(np.array(self._origins), np.array(self._ups), np.array(self._firsts))
+        """All frames as (n, 4, 4), lengths in the file's units; not to be written to."""
+        if len(self._made) != len(self._origins):
+            numbers = (np.array(rows) for rows in (self._origins, self._ups, self._firsts))
+            self._made = frame_matrices(*numbers)
+        return self._made
 
 
 def triple(numbers: tuple[float, ...]) -> Triple:

@@ -13,6 +13,7 @@ from ingest.ifc.frames import FrameTable
 from ingest.ifc.relations import of_type
 from ingest.ifc.units import ProjectUnits, unit_factor, unit_name
 from ingest.ifc.unreadable import UNREADABLE
+from ingest.model import ModelPlace
 
 Entity = Any
 Floats = NDArray[np.float64]
@@ -38,6 +39,17 @@ class Georeference:
     given: bool = False
     assumed: list[tuple[str, str, str]] = field(default_factory=list)
     checks: list[tuple[str, str]] = field(default_factory=list)
+
+    def place(self, length: float) -> ModelPlace | None:
+        """The same as shift, turn and scale of model metres, `length` m per project unit; None where it is more."""
+        axes = self.matrix[:3, :3] / length
+        scale = float(np.linalg.norm(axes[:, 0]))
+        c, s = (axes[0, 0] / scale, axes[1, 0] / scale) if scale else (1.0, 0.0)
+        plain = scale * np.array([[c, -s, 0.0], [s, c, 0.0], [0.0, 0.0, 1.0]])
+        if not scale or not np.allclose(axes, plain, rtol=0, atol=1e-9):
+            return None
+        x, y, z = (float(value) for value in self.matrix[:3, 3])
+        return ModelPlace(origin=(x, y, z), rotation_deg=degrees(atan2(s, c)), scale=scale, given=self.given)
 
 
 def read_georeference(model: Any, units: ProjectUnits) -> Georeference:

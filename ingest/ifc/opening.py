@@ -111,6 +111,7 @@ def _check_start(path: Path, data: bytes) -> None:
 
 def _load(path: Path, source: Path, data: bytes, sha256: str) -> Opened:
     _check_start(path, data)
+    written = count_instances(data)
     ifcopenshell.get_log()
     try:
         model = ifcopenshell.open(source, format=".ifc")
@@ -121,7 +122,7 @@ def _load(path: Path, source: Path, data: bytes, sha256: str) -> Opened:
     log = ifcopenshell.get_log()
     if "[SYN" in log:
         raise _syntax_refused(path, data, log, "")
-    return Opened(model, sha256, find_losses(data, log, len(model.entity_names())))
+    return Opened(model, sha256, find_losses(data, log, written, len(model.entity_names())))
 
 
 def _schema_refused(path: Path, data: bytes) -> InputError:
@@ -149,13 +150,14 @@ def _syntax_refused(path: Path, data: bytes, log: str, error: str) -> InputError
     return InputError(path.name, place, f"is not valid IFC text: {what[:160]} ({len(lines)} faults)", EXPORT_AGAIN)
 
 
-def find_losses(data: bytes, log: str, loaded: int) -> tuple[str, ...]:
+def find_losses(data: bytes, log: str, written: int, loaded: int) -> tuple[str, ...]:
     """Compare the raw text with what was loaded: trailer, number of instances, ids used twice, ids never defined.
 
     Args:
         data: Bytes of the file.
         log: What the library wrote while it loaded them.
-        loaded: Number of instances it kept.
+        written: Number of instances in the text by `count_instances`.
+        loaded: Number of instances the library kept.
 
     Returns:
         One sentence per kind of loss, empty when nothing is missing.
@@ -163,7 +165,7 @@ def find_losses(data: bytes, log: str, loaded: int) -> tuple[str, ...]:
     losses = []
     if TRAILER not in data[-4096:]:
         losses.append(f"the file breaks off: its end marker {TRAILER.decode()} is missing after {len(data)} bytes")
-    raw = count_instances(data)
+    raw = written
     if raw != loaded:
         raw = len(_INSTANCE.findall(_HIDDEN.sub(b"", data)))
     if raw != loaded:

@@ -95,9 +95,15 @@ def _lying(body: Placed) -> Prism:
     start = np.array([p for ring in shape.profile.outlines for p in ring_points(body, ring)])
     both = np.vstack([start, start + body.vector])
     hull = shapely.convex_hull(shapely.multipoints(both[:, :2]))
-    level = abs(body.vector[2]) <= UPRIGHT * sqrt(sum(v * v for v in body.vector))
-    notes = () if level else ("inclined; outline is its hull on plan",)
-    return Prism(areal(hull), float(both[:, 2].min()), float(both[:, 2].max()), notes)
+    length = sqrt(sum(v * v for v in body.vector))
+    low, high = float(both[:, 2].min()), float(both[:, 2].max())
+    area = areal(hull)
+    if abs(body.vector[2]) > UPRIGHT * length:
+        return Prism(area, low, high, ("inclined; outline is its hull on plan",))
+    profile = sum(_polygon(list(ring)).area for ring in shape.profile.outlines) * body.scale**2
+    share = profile * length / (area.area * (high - low)) if area.area and high > low else 1.0
+    notes = () if share > 0.99 else (f"lies on its side; fills {share:.0%} of the upright prism",)
+    return Prism(area, low, high, notes)
 
 
 def _area(rings: list[list[Any]], holes: list[list[Any]]) -> Area:

@@ -76,10 +76,10 @@ class PropertyTable:
     def add_tags(self, key: int, tags: Tags) -> None:
         """Add the properties of a product and its type to its tags, name to text.
 
-        What the product says stands above its type. A name that comes twice with different values keeps the first;
+        To be asked once for each product: its own sets are let go. What it says stands above its type. A name that comes twice with different values keeps the first;
         the other is kept as `set: name`.
         """
-        for entity in self._sets.get(key, ()):
+        for entity in self._sets.pop(key, ()):
             for name, values in self._definitions(entity):
                 _merge(tags, name, values)
         own = self._types.get(key)

@@ -20,6 +20,7 @@ from ingest.ifc.ground import read_borehole
 from ingest.ifc.inventory import Inventory, Product
 from ingest.ifc.makers import make_parts
 from ingest.ifc.opening import Opened, open_model
+from ingest.ifc.proxies import read_only
 from ingest.ifc.representations import NO_GEOMETRY
 from ingest.ifc.unreadable import UNREADABLE
 from ingest.model import Borehole, FileParts, Part
@@ -43,7 +44,8 @@ def read_ifc(path: Path, *, length_unit: str | None = None) -> FileParts:
     Raises:
         InputError: If the file cannot be read, or `length_unit` is unknown.
     """
-    with collector_paused(), np.errstate(all="ignore"):  # numbers that run over are found and named at the end
+    # numbers that run over are found and named at the end
+    with collector_paused(), read_only(), np.errstate(all="ignore"):
         opened = open_model(path)
         first = _Reading(opened, path.name, length_unit)
         read = first.result()
@@ -83,6 +85,7 @@ class _Reading:
         self.sections = SectionTable()
 
     def result(self) -> FileParts:
+        """Everything the file gave, once all of it is placed and accounted for."""
         inventory = self.inventory
         georeference = read_georeference(self.model, inventory.units)
         for product in inventory.products:
@@ -115,6 +118,7 @@ class _Reading:
             assumptions=self.doubts.assumptions(),
             questions=self.doubts.questions(),
             setting=tuple(self.setting),
+            place=georeference.place(units.length),
         )
 
     def _describe(self, product: Product) -> None:
@@ -138,6 +142,8 @@ class _Reading:
                 self.context[product.part_of] += 1
             else:
                 self._make(product)
+                if product.rows is not None:
+                    self.inventory.bodies.release(product.rows[0], product.rows[3])
         except NoPart as reason:
             self._leave_out(product, str(reason))
         except (*UNREADABLE, OverflowError, ZeroDivisionError, GEOSException, np.linalg.LinAlgError) as error:
@@ -187,9 +193,12 @@ class _Reading:
             raise NoPart("placement refers to itself or cannot be read")
         element = self.inventory.element(product)
         first, axes, footprints, end = product.rows
-        take = self.inventory.bodies.take
-        element.bodies, element.axes = take(first, axes), take(axes, footprints)
-        element.footprints = take(footprints, end)
+        placed = self.inventory.bodies.take(first, end)
+        if end == axes:
+            element.bodies = placed
+        else:
+            split, last = axes - first, footprints - first
+            element.bodies, element.axes, element.footprints = placed[:split], placed[split:last], placed[last:]
         if product.group in ("setting", "ground"):
             x, y, z = self.world[product.placement][:3, 3].tolist()
             element.origin = (x, y, z)
@@ -197,14 +206,14 @@ class _Reading:
             self._take_from_parts(element, product)
         for opening in self.inventory.openings_of(product):
             if opening.rows is not None:
-                element.openings += take(*opening.rows[:2])
+                element.openings = (*element.openings, *self.inventory.bodies.take(*opening.rows[:2]))
         return element
 
     def _take_from_parts(self, element: Element, product: Product) -> None:
         for part in self.inventory.parts_of(product):
             if part.rows is not None and part.part_of:
                 found = self.inventory.bodies.take(*part.rows[:2])
-                element.bodies += found
+                element.bodies = (*element.bodies, *found)
                 element.of_parts += bool(found)
 
     def _check_sum(self) -> None:

@@ -7,7 +7,7 @@ from dataclasses import dataclass
 
 import numpy as np
 
-from sections.model import Floats, Ints
+from sections.model import Bools, Floats, Ints
 from sections.screening.hermite import moments
 from sections.screening.solve import Answer
 from sections.screening.twin import TwinAnswer
@@ -75,22 +75,21 @@ def over_stages(stages: Sequence[Demands]) -> tuple[Demands, dict[str, Ints]]:
     return Demands(**out), where
 
 
-def ratios(real: Demands, flat: Demands, smooth: Callable[[Floats], Floats], rows: bool) -> Floats:
+def ratios(real: Demands, flat: Demands, smooth: Callable[[Floats], Floats], rows: Bools) -> Floats:
     """(ns, 4) real over flat for `NAMES`; nan where the flat demand is nothing.
 
     Args:
         real: Demands of the folded wall, over stages.
         flat: Demands of the twins, over stages.
         smooth: Mean over one bay of supports along the wall.
-        rows: True for rows of piles, whose every output is the mean over a bay.
+        rows: (ns,) True for rows of piles, whose every output is the mean over a bay.
     """
     largest = np.maximum(flat.excavated, flat.retained)
     floor = FLOOR_OF_MOMENT * largest
-    mean = smooth if rows else (lambda values: values)
     out = np.column_stack(
         [
-            _over(mean(real.deflection), flat.deflection),
-            _over(mean(real.excavated), np.maximum(flat.excavated, floor)),
+            _over(np.where(rows, smooth(real.deflection), real.deflection), flat.deflection),
+            _over(np.where(rows, smooth(real.excavated), real.excavated), np.maximum(flat.excavated, floor)),
             _over(smooth(real.retained), np.maximum(flat.retained, floor)),
             _support_ratio(real.support, flat.support),
         ]

@@ -124,3 +124,11 @@ def column_at(grid: Grid, chainage: Floats) -> Ints:
     if grid.closed:
         gap = np.minimum(gap, grid.length - gap)
     return np.where(np.isnan(chainage), -1, np.argmin(gap, axis=1)).astype(np.int64)
+
+
+def facet_at(grid: Grid, chainage: Floats) -> Ints:
+    """(m,) facet whose middle is nearest to each chainage; -1 for nan."""
+    gap = np.abs(grid.middles[None, :] - np.nan_to_num(chainage)[:, None])
+    if grid.closed:
+        gap = np.minimum(gap, grid.length - gap)
+    return np.where(np.isnan(chainage), -1, np.argmin(gap, axis=1)).astype(np.int64)

@@ -44,7 +44,7 @@ def run_variant(scene: Scene, variant: Variant) -> VariantRatios:
         flat.append(twin_demands(groups, answers, which, len(scene.found.rows)))
     most_real, where_real = over_stages(real)
     most_flat, where_flat = over_stages(flat)
-    piles = bool(np.any(scene.found.stations.rows))
+    piles = scene.found.stations.rows[scene.grid.station]
     return VariantRatios(
         variant,
         ratios(most_real, most_flat, bay_mean(scene, smeared), piles),
@@ -70,10 +70,10 @@ def _solve(wall: FoldedWall, limits: PressureLimits, model: Factored) -> Answer:
 
 
 def _per_metre(smeared: Smeared, force: Floats) -> Floats:
-    """(ns, rows) force of the member that stands for each facet over its tributary width, square to the wall."""
+    """(ns, rows) push on the wall of the member that stands for each facet over its tributary width, square to it."""
     if len(force) == 0:
-        return np.zeros((len(smeared.opposite), 0))
-    each = np.where(smeared.member >= 0, force[smeared.member], np.nan) / smeared.tributary
+        return np.zeros((smeared.member.shape[1], 0))
+    each = np.where(smeared.member >= 0, force[smeared.member], np.nan) * smeared.across / smeared.tributary
     return np.asarray(each.T)
 
 
@@ -109,9 +109,7 @@ def _no_members() -> Members:
 
 
 def _no_rows(scene: Scene) -> Smeared:
-    ns = len(scene.EI)
-    nothing = np.zeros((0, ns))
+    nothing, none = np.zeros((0, len(scene.EI))), np.zeros((0, len(scene.EI)), int)
     return Smeared(
-        stiffness=nothing, tributary=nothing, member=np.zeros((0, ns), int), node=np.zeros(0, int),
-        far_node=np.zeros(0, int), opposite=np.full(ns, -1),
-    )  # fmt: skip
+        stiffness=nothing, tributary=nothing, across=nothing, member=none, node=none, far_node=none, partner=none
+    )

@@ -8,7 +8,7 @@ from dataclasses import dataclass
 import numpy as np
 
 from ingest.model import Material, Site
-from sections.model import Bools, Floats, FoundPit, SupportRow, Wall
+from sections.model import Bools, Floats, FoundPit, Ints, SupportRow, Wall
 from sections.screening.grid import Grid, column_at, make_grid, node_at
 from sections.screening.limits import PressureLimits
 from sections.screening.soil import Soil, find_limits, read_soil, unbalanced
@@ -22,6 +22,10 @@ BEAM_EI = 1.0e6
 """EI of a capping beam that may be there, kNm2 (judgement)."""
 WALER_EI = (5.0e4, 1.0e6)
 """EI of a waler that is there but has none given, kNm2: softest and stiffest tried (judgement)."""
+GYRATION = 0.25
+"""Radius of gyration that turns the EI of a waler or beam into the EA it is taken to have, m (judgement)."""
+WALER_LEVEL = 1.0
+"""A waler within this height of a row is the row's, m (judgement)."""
 
 
 @dataclass(frozen=True, kw_only=True)
@@ -208,25 +212,30 @@ def _row_members(scene: Scene, row: SupportRow, variant: Variant) -> Members:
 def beams_of(scene: Scene, variant: Variant, rows_in: Sequence[bool]) -> Beams:
     """Walers of the rows in place, along all facets of their wall, and the capping beam of the variant."""
     ns = len(scene.EI)
-    facet, node, EI = [], [], []
+    parts: list[tuple[Ints, int, float, float]] = []
     for row, there in zip(scene.found.rows, rows_in, strict=True):
         level = row.member.level
         if not there or not row.waler or level is None:
             continue
         given = scene.site.supports[row.supports[0]].waler_EI
-        stiffness = given if given is not None else variant.waler_EI or WALER_EI[0]
-        along = np.flatnonzero(_along(scene, row))
-        facet.append(along)
-        node.append(np.full(len(along), node_at(scene.grid, np.array([level]))[0]))
-        EI.append(np.full(len(along), stiffness))
+        bending = given if given is not None else variant.waler_EI or WALER_EI[0]
+        node = int(node_at(scene.grid, np.array([level]))[0])
+        parts.append((np.flatnonzero(_along(scene, row)), node, bending, _waler_EA(scene.site, level, bending)))
     if variant.beam_EI > 0:
-        facet.append(np.arange(ns))
-        node.append(np.zeros(ns, int))
-        EI.append(np.full(ns, variant.beam_EI))
-    if not facet:
-        return Beams(facet=np.zeros(0, int), node=np.zeros(0, int), EI=np.zeros(0), EA=np.zeros(0))
-    bending = np.concatenate(EI)
-    return Beams(facet=np.concatenate(facet), node=np.concatenate(node), EI=bending, EA=np.zeros(len(bending)))
+        parts.append((np.arange(ns), 0, variant.beam_EI, variant.beam_EI / GYRATION**2))
+    counts = [len(facets) for facets, _, _, _ in parts]
+    return Beams(
+        facet=np.concatenate([np.zeros(0, int), *(facets for facets, _, _, _ in parts)]),
+        node=np.repeat([node for _, node, _, _ in parts], counts).astype(int),
+        EI=np.repeat([bending for _, _, bending, _ in parts], counts).astype(float),
+        EA=np.repeat([stretching for _, _, _, stretching in parts], counts).astype(float),
+    )
+
+
+def _waler_EA(site: Site, level: float, EI: float) -> float:
+    """EA of the softest waler drawn at a level, kN; of one as stout as its EI where none is known."""
+    drawn = [w.EA for w in site.walers if w.EA and w.level is not None and abs(w.level - level) <= WALER_LEVEL]
+    return min(drawn, default=EI / GYRATION**2)
 
 
 def _along(scene: Scene, row: SupportRow) -> Bools:

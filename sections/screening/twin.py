@@ -16,16 +16,20 @@ from sections.screening.wall import DOWN, FoldedWall
 
 @dataclass(frozen=True, kw_only=True)
 class Prop:
-    """A smeared support of the twin: node and stiffness per metre; `opposite` is its node on the second wall or -1."""
+    """A smeared support of the twin: node on its wall (0 or 1) and stiffness per metre.
+
+    `opposite` is its node on the second wall, -1 where its far end is held still.
+    """
 
     node: int
     stiffness: float
     opposite: int = -1
+    wall: int = 0
 
 
 @dataclass(frozen=True)
 class TwinAnswer:
-    """Deflection and moment (excavated face positive) down the first wall, force per metre of each prop."""
+    """Deflection and moment (excavated face positive) down the first wall, force per metre of each of its props."""
 
     z: Floats
     w: Floats
@@ -73,8 +77,9 @@ class TwinModel:
         w, slope = U[0:size:2], U[1:size:2]
         M = moments(self.z, w, slope, self.strips[0].bending)
         two = len(self.strips) > 1
-        far = [U[size + 2 * p.opposite] if two and p.opposite >= 0 else 0.0 for p in self.props]
-        force = np.array([p.stiffness * (w[p.node] + other) for p, other in zip(self.props, far, strict=True)])
+        own = [p for p in self.props if p.wall == 0]
+        far = [U[size + 2 * p.opposite] if two and p.opposite >= 0 else 0.0 for p in own]
+        force = np.array([p.stiffness * (w[p.node] + other) for p, other in zip(own, far, strict=True)])
         return TwinAnswer(self.z, w, M, force)
 
 
@@ -109,7 +114,7 @@ def solve_strips(strips: Sequence[Strip], props: Sequence[Prop], wall: FoldedWal
         K[i * size : (i + 1) * size, i * size : (i + 1) * size] = strip.stiffness
     two = len(strips) > 1
     for prop in props:
-        spot = [2 * prop.node] + ([size + 2 * prop.opposite] if two and prop.opposite >= 0 else [])
+        spot = [prop.wall * size + 2 * prop.node] + ([size + 2 * prop.opposite] if two and prop.opposite >= 0 else [])
         K[np.ix_(spot, spot)] += prop.stiffness
     own = np.concatenate([strip.stiffness.diagonal() for strip in strips])
     free = np.flatnonzero(own > 0).astype(np.int64)

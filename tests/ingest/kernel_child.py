@@ -13,16 +13,8 @@ import ifcopenshell
 import ifcopenshell.geom
 import numpy as np
 
-CLASSES = (
-    "IfcWall",
-    "IfcSlab",
-    "IfcFooting",
-    "IfcPile",
-    "IfcColumn",
-    "IfcBeam",
-    "IfcMember",
-    "IfcBuildingElementProxy",
-)
+OPENED = ("IfcSlab", "IfcFooting")
+UNOPENED = ("IfcWall", "IfcPile", "IfcColumn", "IfcBeam", "IfcMember", "IfcBuildingElementProxy")
 
 
 def solids(path: str) -> dict[str, object]:

@@ -22,7 +22,20 @@ from ingest.model import Part
 
 CHILD = Path(__file__).parent / "kernel_child.py"
 FOLDER = Path(os.environ.get("CUTWORTHY_CORPUS", "")) / "ifc"
-APPROXIMATE = ("cut", "mesh", "hull", "not level", "parts", "left out", "box", "differs", "slope", "start", "longest")
+APPROXIMATE = (
+    "cut",
+    "mesh",
+    "hull",
+    "not level",
+    "parts",
+    "left out",
+    "box",
+    "differs",
+    "slope",
+    "start",
+    "longest",
+    "fills",
+)
 """Words of the evidence by which a reading says itself that it is no exact copy of the body."""
 VOLUME = 0.01
 """Largest difference of volumes: the kernel chords its arcs, and so do outlines here."""

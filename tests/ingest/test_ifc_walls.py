@@ -175,6 +175,15 @@ def test_layers_that_disagree_with_the_body_are_named(tmp_path: Path) -> None:
     assert "layers sum to 0.300 m, the body is 0.350 m thick" in only(model, tmp_path).evidence
 
 
+def test_layers_tell_a_stub_from_a_wall(tmp_path: Path) -> None:
+    model = IfcBuilder()
+    wall = model.product("IfcWall", "stub", body=model.extrusion(model.rectangle(0.3, 0.1), 2.5))
+    model.layers(wall, (0.3,), 0.0)
+    part = only(model, tmp_path)
+    assert part.thickness == approx(0.3)
+    assert part.points == (approx((0, -0.05, 0)), approx((0, 0.05, 0)))
+
+
 def test_a_wall_that_is_no_strip_keeps_its_outline(tmp_path: Path) -> None:
     model = IfcBuilder()
     ring = ((0, 0), (6, 0), (6, 1), (1, 1), (1, 6), (0, 6))
