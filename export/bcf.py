@@ -105,9 +105,7 @@ class _Book:
         r = self.records
         guid = str(self.stamp.guid(issue.kind, issue.id, issue.title))
         views = {f"viewpoint_{one.id}.bcfv": self._view(one, issue, guid) for one in issue.sections}
-        listed = [
-            r.ViewPoint(viewpoint=name, index=n, guid=view.guid) for n, (name, view) in enumerate(views.items())
-        ]
+        listed = [r.ViewPoint(viewpoint=name, index=n, guid=view.guid) for n, (name, view) in enumerate(views.items())]
         topic = r.Topic(
             guid=guid,
             topic_type=issue.kind,
@@ -155,9 +153,7 @@ class _Book:
                 aspect_ratio=round_number(ASPECT),
             ),
             clipping_planes=r.VisualizationInfoClippingPlanes(
-                clipping_plane=[
-                    r.ClippingPlane(location=self._point(at), direction=self._way((uy, -ux, 0.0)))
-                ]
+                clipping_plane=[r.ClippingPlane(location=self._point(at), direction=self._way((uy, -ux, 0.0)))]
             ),
         )
 

@@ -150,27 +150,26 @@ def _sources(one: SectionDefinition) -> Iterator[Source]:
 
 
 def _meant(one: Question, site: Site) -> Iterator[Source]:
-    """Entities of the site that the question's line of the brief matches."""
+    """Entities of the site that the question's line of the brief matches by id, layer or name."""
     for match in _matches(one.brief_line):
-        for record in chain(
-            site.walls, site.piles, site.supports, site.walers, site.plates, site.columns, site.loads, site.receptors
-        ):
-            if "class" not in match and all(
-                fnmatchcase(str(getattr(record, key, "")).casefold(), str(pattern).casefold())
-                for key, pattern in match.items()
-                if key != "id"
-            ):
-                yield from (source for source in record.sources if match.get("id", source.item) == source.item)
         if "id" in match:
-            yield from (
-                Source(file=file.file, item=str(match["id"])) for file in site.inputs if file.file in one.about
-            )
+            yield from (Source(file=row.file, item=match["id"]) for row in site.inputs if row.file in one.about)
+        elif match.keys() <= {"layer", "name"}:
+            for record in _records(site):
+                if all(fnmatchcase(getattr(record, key).casefold(), match[key].casefold()) for key in match):
+                    yield from record.sources
 
 
-def _matches(brief_line: str) -> list[dict[str, Any]]:
+def _records(site: Site) -> Iterator[Any]:
+    yield from (*site.walls, *site.piles, *site.supports, *site.walers)
+    yield from (*site.plates, *site.columns, *site.loads, *site.receptors)
+
+
+def _matches(brief_line: str) -> list[dict[str, str]]:
     try:
         tables = tomllib.loads(brief_line).values()
     except tomllib.TOMLDecodeError:
         return []
     rows = chain.from_iterable(table for table in tables if isinstance(table, list))
-    return [row["match"] for row in rows if isinstance(row, dict) and isinstance(row.get("match"), dict)]
+    found = [row["match"] for row in rows if isinstance(row, dict) and isinstance(row.get("match"), dict)]
+    return [{key: str(value) for key, value in match.items()} for match in found if match]

@@ -2,7 +2,8 @@
 
 Layer names follow the fields of ISO 13567: agent (2 characters, by which the reader knows its own drawings again),
 element (6), presentation (2: `E-` element, `T-` text, `D-` dimension, `H-` hatch). The plan lies on the drawing it was
-made from, in its coordinates and unit, else in world metres; a section, in metres, has x along the cut and its level as y.
+made from, in its coordinates and unit, else in world metres; a section, in metres, has x along the cut and its level as
+y.
 """
 
 from __future__ import annotations

@@ -23,7 +23,9 @@ XSD = "http://www.w3.org/2001/XMLSchema"
 INSTANCE = "http://www.w3.org/2001/XMLSchema-instance"
 VERSIONS = "IFC2X3 IFC4 IFC4X3_ADD2"
 ANY_SET = ".*"
+"""Pattern of the names of sets: a property counts whichever set it stands in."""
 PILES = frozenset({"secant", "contiguous", "king_post"})
+WALL_CLASSES = ("IFCWALL", "IFCWALLSTANDARDCASE")
 PROPS = frozenset({"strut", "corner_strut", "raker"})
 
 
@@ -39,10 +41,10 @@ class Asked:
 
 @dataclass(frozen=True)
 class Specification:
-    """What one class of element must carry."""
+    """What elements of these classes must carry."""
 
     name: str
-    entity: str
+    entities: tuple[str, ...]
     predefined: str
     why: str
     asked: tuple[Asked, ...]
@@ -121,13 +123,15 @@ def write_ids(proposal: Proposal, site: Site, folder: Path) -> str:
 def find_specifications(proposal: Proposal) -> list[Specification]:
     """What this job needs, by the walls and members found; walls alone where nothing was found."""
     kinds = sorted({run.wall.kind for pit in proposal.pits for run in pit.runs} - {"none"})
-    roles = {member.role for pit in proposal.pits for member in pit.members}
+    roles = {str(member.role) for pit in proposal.pits for member in pit.members}
     rows = [*_walls(kinds), *_supports(roles)]
     if "bearing_pile" in roles and not PILES & set(kinds):
-        rows.append(Specification("Bearing piles", "IFCPILE", "", "piles below the floor", _all(*PILE_SIZES)))
+        rows.append(Specification("Bearing piles", ("IFCPILE",), "", "piles below the floor", _all(*PILE_SIZES)))
     if "slab" in roles:
         rows.append(
-            Specification("Slabs", "IFCSLAB", "", "slabs that prop the wall or close the dig", (NAME, TYPE, MATERIAL))
+            Specification(
+                "Slabs", ("IFCSLAB",), "", "slabs that prop the wall or close the dig", (NAME, TYPE, MATERIAL)
+            )
         )
     return rows
 
@@ -137,10 +141,10 @@ def _walls(kinds: Sequence[str]) -> list[Specification]:
     panels = [kind for kind in kinds if kind not in PILES]
     rows = []
     if piles:
-        rows.append(Specification("Retaining wall of piles", "IFCPILE", "", _named(piles), _all(*PILE_SIZES)))
+        rows.append(Specification("Retaining wall of piles", ("IFCPILE",), "", _named(piles), _all(*PILE_SIZES)))
     if panels or not kinds:
         asked = (NAME, MATERIAL, *WALL_SIZES)
-        rows.append(Specification("Retaining wall", "IFCWALL", "RETAININGWALL", _named(panels), asked))
+        rows.append(Specification("Retaining wall", WALL_CLASSES, "RETAININGWALL", _named(panels), asked))
     return rows
 
 
@@ -155,13 +159,13 @@ def _supports(roles: set[str]) -> list[Specification]:
     if props:
         words = ", ".join(ROLE_NAMES[role] for role in props)
         why = f"found here: {words}; the level is that of the axis as modelled"
-        rows.append(Specification("Struts and rakers", "IFCMEMBER", "STRUT", why, (NAME, MATERIAL, *BAR_SIZES)))
+        rows.append(Specification("Struts and rakers", ("IFCMEMBER",), "STRUT", why, (NAME, MATERIAL, *BAR_SIZES)))
     if "anchor" in roles:
         why = "ground anchors, modelled from the head to the far end of the bond length"
-        rows.append(Specification("Ground anchors", "IFCTENDON", "", why, (NAME, *ANCHOR_SIZES)))
+        rows.append(Specification("Ground anchors", ("IFCTENDON",), "", why, (NAME, *ANCHOR_SIZES)))
     if "waler" in roles:
         why = "walers and ring beams, modelled at their level"
-        rows.append(Specification("Walers", "IFCBEAM", "", why, (NAME, MATERIAL, *BEAM_SIZES)))
+        rows.append(Specification("Walers", ("IFCBEAM",), "", why, (NAME, MATERIAL, *BEAM_SIZES)))
     return rows
 
 
@@ -174,7 +178,7 @@ def _specify(listed: ET.Element, one: Specification, number: int) -> None:
     specification = ET.SubElement(listed, "specification", marks)
     applies = ET.SubElement(specification, "applicability", {"minOccurs": "1", "maxOccurs": "unbounded"})
     entity = ET.SubElement(applies, "entity")
-    _value(entity, "name", one.entity)
+    _value(entity, "name", *one.entities)
     if one.predefined:
         _value(entity, "predefinedType", one.predefined)
     required = ET.SubElement(specification, "requirements")
@@ -198,10 +202,13 @@ def _require(required: ET.Element, kind: str, asked: Asked) -> None:
         _value(element, "baseName", asked.what)
 
 
-def _value(parent: ET.Element, name: str, words: str) -> None:
+def _value(parent: ET.Element, name: str, *words: str) -> None:
+    """One value, a choice of several, or the pattern for any."""
     element = ET.SubElement(parent, name)
-    if words == ANY_SET:
+    if words == (ANY_SET,) or len(words) > 1:
+        kind = "xs:pattern" if words == (ANY_SET,) else "xs:enumeration"
         restriction = ET.SubElement(element, "xs:restriction", {"base": "xs:string"})
-        ET.SubElement(restriction, "xs:pattern", {"value": words})
+        for word in words:
+            ET.SubElement(restriction, kind, {"value": word})
     else:
-        ET.SubElement(element, "simpleValue").text = words
+        ET.SubElement(element, "simpleValue").text = words[0]

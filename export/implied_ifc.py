@@ -29,9 +29,7 @@ LAYER = f"{OWN_AGENT}IMPLIEE-"
 SETS = "Cutworthy"
 
 
-def write_implied_ifc(
-    proposal: Proposal, definitions: Sequence[SectionDefinition], site: Site, folder: Path
-) -> str:
+def write_implied_ifc(proposal: Proposal, definitions: Sequence[SectionDefinition], site: Site, folder: Path) -> str:
     """Write `implied.ifc` (IFC4X3 ADD2).
 
     Args:
@@ -98,9 +96,10 @@ class _Model:
         """The bodies of one section, in one group."""
         local = self.add("IfcLocalPlacement", self.place, self._section_axes(definition))
         made = []
-        for one in (*definition.members, *definition.loads):
-            is_member = isinstance(one, SectionMember)
-            body = member_body(one, definition) if is_member else load_body(one)  # type: ignore[arg-type]
+        rows: list[tuple[SectionMember | SectionLoad, Body | None]] = []
+        rows += [(one, member_body(one, definition)) for one in definition.members]
+        rows += [(load, load_body(load)) for load in definition.loads]
+        for one, body in rows:
             if body is not None:
                 element = self._element(definition, body, local)
                 self._describe(element, definition, one, body)

@@ -18,6 +18,7 @@ from ingest.model import Site
 from sections.definition import SectionDefinition
 from sections.model import Proposal
 
+BIM_FILES = ("issues.bcf", "requirements.ids", "implied.ifc")
 
 def write_all(proposal: Proposal, definitions: Sequence[SectionDefinition], site: Site, folder: Path) -> list[str]:
     """Write proposal, sections, report, drawings, tables and the files for the BIM side, whole or not at all.
@@ -37,15 +38,14 @@ def write_all(proposal: Proposal, definitions: Sequence[SectionDefinition], site
     """
     with fresh_folder(folder) as aside:
         names = [*write_tables(proposal, definitions, aside), *write_drawings(proposal, definitions, site, aside)]
-        names += [
-            write_bcf(proposal, definitions, site, aside),
-            write_ids(proposal, site, aside),
-            write_implied_ifc(proposal, definitions, site, aside),
-        ]
         (aside / "plan.svg").write_text(plan_file(proposal, site), encoding="utf-8")
         names += ["proposal.json", "plan.svg", "report.html", *(f"sections/{one.id}.json" for one in definitions)]
+        names += BIM_FILES
         digest = write_proposal(proposal, site.inputs, aside, names)
         for one in definitions:
             write_section(one, aside / "sections" / f"{one.id}.json", digest)
         (aside / "report.html").write_text(report_page(proposal, definitions, site, digest), encoding="utf-8")
+        write_bcf(proposal, definitions, site, aside)
+        write_ids(proposal, site, aside)
+        write_implied_ifc(proposal, definitions, site, aside)
     return sorted(names)

@@ -25,12 +25,15 @@ ROUND_A_CORNER = 2.2
 """A left-over face shorter than this many thicknesses only goes round a corner of a wall found already."""
 
 
+Middle = tuple[tuple[int, int], Floats, float]
+
+
 @dataclass(frozen=True, kw_only=True, eq=False)
 class Centred:
-    """Axes as drawn, and middles of two faces with their thickness, each with the index of its wall piece."""
+    """Axes as drawn, and middles of two faces with their thickness, each with the indices of its wall pieces."""
 
     axes: tuple[tuple[int, Floats], ...]
-    middles: tuple[tuple[int, Floats, float], ...]
+    middles: tuple[Middle, ...]
     single: tuple[int, ...] = ()
 
 
@@ -51,7 +54,7 @@ def centre_lines(pieces: Sequence[tuple[int, WallPiece]], origin: Point) -> tupl
     own, used, _ = _middles(faces, candidates(faces, within=True) if (faces.body >= 0).any() else None, True)
     bodies = np.unique(faces.body[used & (faces.body >= 0)])
     pool = drop_doubles(faces.pick(~np.isin(faces.body, bodies) | (faces.body < 0)))
-    across: list[tuple[int, Floats, float]] = []
+    across: list[Middle] = []
     left: list[tuple[int, Floats]] = []
     unsure: list[tuple[Floats, Floats]] = []
     if len(pool.p):
@@ -142,7 +145,7 @@ def _faces(pieces: Sequence[tuple[int, WallPiece]], origin: Point) -> Faces:
 
 def _middles(
     faces: Faces, pairs: Ints | None, inside: bool
-) -> tuple[list[tuple[int, Floats, float]], Bools, list[tuple[Floats, Floats]]]:
+) -> tuple[list[Middle], Bools, list[tuple[Floats, Floats]]]:
     """Middles of the chosen pairs, which faces they used, and where the choice is open."""
     used = np.zeros(len(faces.p), dtype=bool)
     if pairs is None or not len(pairs):
@@ -153,7 +156,8 @@ def _middles(
     middles = []
     for pair in chosen:
         used[[pair.first, pair.second]] = True
-        middles.append((int(faces.piece[pair.first]), *_middle(faces, pair)))
+        pieces = (int(faces.piece[pair.first]), int(faces.piece[pair.second]))
+        middles.append((pieces, *_middle(faces, pair)))
     return middles, used, [(0.5 * (faces.p[a] + faces.q[a]), 0.5 * (faces.p[b] + faces.q[b])) for a, b in unsure]
 
 
@@ -196,7 +200,7 @@ def _middle(faces: Faces, pair: Pair) -> tuple[Floats, float]:
 
 
 def _left_over(
-    faces: Faces, paired: Bools, middles: Sequence[tuple[int, Floats, float]]
+    faces: Faces, paired: Bools, middles: Sequence[Middle]
 ) -> list[tuple[int, Floats]]:  # fmt: skip
     """Faces without a partner, as drawn; caps and bits round the corner of a wall found already are dropped."""
     alone = np.flatnonzero(~paired)

@@ -8,7 +8,7 @@ from sections.model import Floats
 from sections.sides import Side
 from sections.wall_graph import cross
 
-TANGENT = 3.0
+TANGENT = 4.5
 """An arc that runs into its neighbour within this is tangent to it, degrees."""
 
 

@@ -105,7 +105,10 @@ class Zone:
 
 @record
 class Circle:
-    """A near-circular ring: mean radius, largest deviation from it, number of sides (None for a true arc)."""
+    """A near-circular ring: mean radius, largest deviation from it, number of sides (None for a true arc).
+
+    Of a regular polygon `radius` is that of the circle through its corners, `deviation` what its own sides leave over.
+    """
 
     centre: Point
     radius: float

@@ -199,7 +199,7 @@ def _joint(samples: Samples, a: Side, b: Side) -> Floats | None:
     pace = max(_pace(samples, a), _pace(samples, b))
     round_it = float(np.hypot(*(point - a.last)) + np.hypot(*(b.first - point)))
     square = turn > np.radians(75.0) and gap <= 1.5 * pace
-    if lines and gap > 0.95 * pace and round_it > 1.25 * pace and not square:
+    if lines and 0.95 * pace < gap < 1.15 * pace and round_it > 1.25 * pace and not square:
         return None
     return point
 

@@ -224,7 +224,7 @@ def _row(
         spacing=float(np.median(spans)) if len(spans) else 0.0,
         kinds=kinds_of(members, spans, closed),
         ends=(float(spans[:3].max(initial=0.0)), float(spans[-3:].max(initial=0.0))),
-        sure=bool(named[chain].mean() > 0.5) or _is_close(members, spans),
+        sure=bool(named[chain].mean() > 0.5 or named[chain].sum() > 1) or _is_close(members, spans),
     )
 
 

@@ -33,6 +33,7 @@ class Stretch:
     kind: WallKind
     pile: int = -1
     piece: int = -1
+    partner: int = -1
     thickness: float | None = None
 
 
@@ -67,7 +68,7 @@ def stretches_along(site: Site, outline: Outline, trace: Trace, lines: Sequence[
     for k in np.flatnonzero(plain & (stop - start > SPECK)).tolist():
         one = lines[line[k]]
         bits.append(Stretch(start=float(start[k]), stop=float(stop[k]), kind=one.kind, piece=one.piece,
-                            thickness=one.thickness))  # fmt: skip
+                            partner=one.partner, thickness=one.thickness))  # fmt: skip
     bits.sort(key=lambda bit: (bit.start, bit.stop, bit.pile))
     return _settled(site, _between_piles(bits, lines, outline.length), outline.length, outline.closed)
 
@@ -229,8 +230,8 @@ def _wall(site: Site, group: Sequence[Stretch]) -> Wall:
     first = group[0]
     if first.pile >= 0:
         return pile_wall([site.piles[bit.pile] for bit in group], first.kind, site.limits)
-    pieces = [site.walls[i] for i in dict.fromkeys(bit.piece for bit in group)]
-    one = pieces[0]
+    one = site.walls[first.piece]
+    used = dict.fromkeys(i for bit in group for i in (bit.piece, bit.partner) if i >= 0)
     return Wall(
         kind=first.kind,
         thickness=first.thickness,
@@ -240,7 +241,7 @@ def _wall(site: Site, group: Sequence[Stretch]) -> Wall:
         capping_beam=one.capping_beam,
         material=one.material,
         EI_factor=one.EI_factor,
-        sources=unique_sources(pieces),
+        sources=unique_sources([site.walls[i] for i in used]),
     )
 
 

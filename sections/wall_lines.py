@@ -3,7 +3,7 @@
 from __future__ import annotations
 
 from collections.abc import Iterable, Sequence
-from dataclasses import dataclass
+from dataclasses import dataclass, replace
 
 import numpy as np
 
@@ -32,6 +32,7 @@ class WallLine:
         reach: How far the first and the last end may be extended to meet another wall, m.
         piles: (m,) index into `Site.piles` of each vertex; empty for a wall that is not a row of piles.
         piece: Index into `Site.walls`; -1 for a row of piles.
+        partner: Index of the piece that is the other face, -1 where there is none.
         toe: Deepest toe along the line; None when not given.
         pace: Spacing of a row of piles at the first and the last end, m; 0 for other walls.
         kinds: Kind of the pile at each vertex; empty for a wall that is not a row of piles.
@@ -48,6 +49,7 @@ class WallLine:
     toe: float | None
     pace: tuple[float, float] = (0.0, 0.0)
     kinds: tuple[WallKind, ...] = ()
+    partner: int = -1
     paired: bool = False
     sure: bool = True
 
@@ -66,7 +68,9 @@ def gather_lines(
     drawn = sorted(usable, key=lambda i: _place(site.walls[i]))
     centred, questions = centre_lines([(i, site.walls[i]) for i in drawn], origin)
     lines = [_drawn_line(site.walls[i], i, points, None) for i, points in centred.axes]
-    lines += [_drawn_line(site.walls[i], i, points, t) for i, points, t in centred.middles]
+    for (i, other), points, thick in centred.middles:
+        first, second = (other, i) if site.walls[i].kind == "unknown" else (i, other)
+        lines.append(replace(_drawn_line(site.walls[first], first, points, thick), partner=second))
     return (*rows, *(line for line in lines if len(line.points) > 1)), _single_notes(site, centred.single), questions
 
 

@@ -20,6 +20,8 @@ from ingest.model import BarSection, Part, Point3
 
 Floats = NDArray[np.float64]
 
+CENTRE, CENTROID = 5, 10
+"""Cardinal points in the middle of a section (IFC4, IfcCardinalPointReference)."""
 WIDEST_PILE = 3.0
 """Round upright bodies wider than this are no piles: EN 1536 covers bored piles up to 3.0 m diameter."""
 
@@ -236,13 +238,15 @@ def _from_axis(element: Element, sections: SectionTable) -> Part:
     line = element.axis_line()
     if line is None:
         raise NoPart("no geometry")
-    return _from_points(element, line, ("its axis only; it has no body",), _profile_section(element, sections))
-
-
-def _profile_section(element: Element, sections: SectionTable) -> BarSection | None:
-    """Section from the profile assigned with the material, when the body is missing."""
-    text = element.tags.get("ProfileName")
-    return BarSection(designation=text) if text else None
+    said = ["its axis only; it has no body"]
+    section = None
+    if element.profile is not None:
+        section = sections.section(element.profile, element.length, (1.0, 0.0))
+        said.append("section assigned with its material, taken upright")
+        point = element.material.cardinal_point if element.material else None
+        if point not in (None, CENTROID, CENTRE):
+            said.append(f"the axis is at cardinal point {point} of the section, not at its centroid")
+    return _from_points(element, line, tuple(said), section)
 
 
 def _from_points(element: Element, points: Floats, said: tuple[str, ...], section: BarSection | None) -> Part:

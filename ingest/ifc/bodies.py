@@ -97,6 +97,8 @@ class BodyList:
             self._placed[:, 0], self._placed[:, 1], self._placed[:, 2] = full[:, :3, 3], full[:, :3, 0], full[:, :3, 1]
             self._placed[:, 3] = np.einsum("nij,nj->ni", full[:, :3, :3], vectors)
         self._base = base
+        for gathered in (self._placements, self._mappings, self._frames, self._vectors):
+            gathered.clear()
         self._bad = ~(np.isfinite(self._placed).all(axis=(1, 2)) & np.isfinite(base).all(axis=(1, 2)))
         self._any_bad = bool(self._bad.any())
 

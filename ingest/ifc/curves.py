@@ -33,6 +33,10 @@ class CurveReader:
         self.angle = angle
         self._known: dict[int, Floats] = {}
 
+    def clear(self) -> None:
+        """Let go of the curves that were read."""
+        self._known.clear()
+
     def points(self, curve: Entity, depth: int = 0) -> Floats:
         """Points of a bounded curve, from its start to its end; a closed curve repeats its first point.
 

@@ -42,6 +42,8 @@ class Element:
     footprints: Sequence[Placed] = ()
     openings: Sequence[Placed] = ()
     origin: Point3 = (0.0, 0.0, 0.0)
+    profile: Profile | None = None
+    """Cross-section assigned with the material, read only when the element has no body."""
     of_parts: int = 0
     """Number of parts the bodies were taken from, 0 when they are the element's own."""
 

@@ -80,6 +80,11 @@ class FrameTable:
             known = self._directions[key] = triple(direction.get_argument(COORDINATES))
         return known
 
+    def clear(self) -> None:
+        """Let go of everything that was gathered; arrays handed out stay good."""
+        for kept in (self._rows, self._directions, self._origins, self._ups, self._firsts):
+            kept.clear()
+
     def is_plain(self, row: int) -> bool:
         """True for a frame at the origin that is not turned."""
         return (self._origins[row], self._ups[row], self._firsts[row]) == ((0.0, 0.0, 0.0), _UP, _EAST)

@@ -15,6 +15,7 @@ from ingest.ifc.frames import FrameTable
 from ingest.ifc.items import ItemReader
 from ingest.ifc.loads import items_of_actions, load_tags
 from ingest.ifc.placement import PlacementTable
+from ingest.ifc.profiles import Profile
 from ingest.ifc.properties import PropertyTable
 from ingest.ifc.relations import MaterialUse, Relations
 from ingest.ifc.representations import choose
@@ -121,8 +122,6 @@ class Inventory:
 
     def openings_of(self, product: Product) -> list[Product]:
         """Openings of a plate; they are described with it."""
-        if product.group != "plate":
-            return []
         found = (self._by_key.get(opening.id()) for opening in self.relations.openings.get(product.key, ()))
         return [opening for opening in found if opening is not None]
 
@@ -151,17 +150,27 @@ class Inventory:
         """The element of a product, with its attributes and properties; bodies are added by the caller."""
         entity, key = product.entity, product.key
         own_type = self.properties.type_of(key)
+        name = entity.get_argument(NAME)
         material = self.relations.material(key, None if own_type is None else own_type.id())
         return Element(
             source=Source(file=self.file, item=product.item),
             cls=product.cls,
             group=product.group,
-            name=entity.get_argument(NAME) or "",
+            name=name if isinstance(name, str) else str(name or ""),
             layer=self._layer(entity) if self.relations.layers else "",
             material=material,
             tags=self._tags(product, own_type, material),
             length=self.units.length,
         )
+
+    def profile_of(self, element: Element) -> Profile | None:
+        """Cross-section that the material of an element is assigned with, when it can be read."""
+        for entity in element.material.profiles if element.material is not None else ():
+            try:
+                return self.items.profiles.read(entity)
+            except UNREADABLE:
+                continue
+        return None
 
     def _tags(self, product: Product, own_type: Entity | None, material: MaterialUse | None) -> dict[str, str]:
         entity, key, relations = product.entity, product.key, self.relations

@@ -44,6 +44,12 @@ class ItemReader:
         self.profiles = ProfileReader(curves)
         self._known: dict[int, Described] = {}
 
+    def clear(self) -> None:
+        """Let go of everything that was described, once it is placed."""
+        self._known.clear()
+        for reader in (self.frames, self.curves, self.profiles):
+            reader.clear()
+
     def representation(self, representation: Entity, depth: int = 0) -> Described:
         """Shapes of all items of a shape representation.
 

@@ -13,7 +13,6 @@ from pathlib import Path
 from typing import Any
 
 import ifcopenshell
-import numpy as np
 
 from ingest.errors import InputError
 
@@ -111,7 +110,6 @@ def _check_start(path: Path, data: bytes) -> None:
 
 def _load(path: Path, source: Path, data: bytes, sha256: str) -> Opened:
     _check_start(path, data)
-    written = count_instances(data)
     ifcopenshell.get_log()
     try:
         model = ifcopenshell.open(source, format=".ifc")
@@ -122,7 +120,7 @@ def _load(path: Path, source: Path, data: bytes, sha256: str) -> Opened:
     log = ifcopenshell.get_log()
     if "[SYN" in log:
         raise _syntax_refused(path, data, log, "")
-    return Opened(model, sha256, find_losses(data, log, written, len(model.entity_names())))
+    return Opened(model, sha256, find_losses(data, log, len(model.entity_names())))
 
 
 def _schema_refused(path: Path, data: bytes) -> InputError:
@@ -150,13 +148,12 @@ def _syntax_refused(path: Path, data: bytes, log: str, error: str) -> InputError
     return InputError(path.name, place, f"is not valid IFC text: {what[:160]} ({len(lines)} faults)", EXPORT_AGAIN)
 
 
-def find_losses(data: bytes, log: str, written: int, loaded: int) -> tuple[str, ...]:
+def find_losses(data: bytes, log: str, loaded: int) -> tuple[str, ...]:
     """Compare the raw text with what was loaded: trailer, number of instances, ids used twice, ids never defined.
 
     Args:
         data: Bytes of the file.
         log: What the library wrote while it loaded them.
-        written: Number of instances in the text by `count_instances`.
         loaded: Number of instances the library kept.
 
     Returns:
@@ -165,11 +162,9 @@ def find_losses(data: bytes, log: str, written: int, loaded: int) -> tuple[str, 
     losses = []
     if TRAILER not in data[-4096:]:
         losses.append(f"the file breaks off: its end marker {TRAILER.decode()} is missing after {len(data)} bytes")
-    raw = written
-    if raw != loaded:
-        raw = len(_INSTANCE.findall(_HIDDEN.sub(b"", data)))
-    if raw != loaded:
-        losses.append(f"{raw} instances stand in the text, {loaded} were loaded")
+    written = count_instances(data, loaded)
+    if written != loaded:
+        losses.append(f"{written} instances stand in the text, {loaded} were loaded")
     twice = _TWICE.findall(log)
     if twice:
         losses.append(f"{len(twice)} ids are used twice, the first is #{twice[0]}")
@@ -180,16 +175,11 @@ def find_losses(data: bytes, log: str, written: int, loaded: int) -> tuple[str, 
     return tuple(losses)
 
 
-def count_instances(data: bytes) -> int:
-    """Count `#n=` in the text, comments and strings included. Array passes: a regex costs five times as much."""
-    text = np.frombuffer(data + b" " * 16, np.uint8)
-    at = np.flatnonzero(text == ord("#"))
-    before = text[at - 1]
-    at = at[(before != ord(",")) & (before != ord("("))] + 1
-    for _ in range(12):
-        digit = (text[at] >= ord("0")) & (text[at] <= ord("9"))
-        if not digit.any():
-            break
-        at = at + digit
-    blank = text[at] == ord(" ")
-    return int(np.count_nonzero(text[at + blank] == ord("=")))
+def count_instances(data: bytes, expected: int) -> int:
+    """Count the instances written in the text.
+
+    Lines that begin with an id are counted first, which costs next to nothing and settles it for nearly every file.
+    Only when that is not the number expected are comments and texts taken out and the rest searched.
+    """
+    quick = data.count(b"\n#") + data.startswith(b"#")
+    return quick if quick == expected else len(_INSTANCE.findall(_HIDDEN.sub(b"", data)))

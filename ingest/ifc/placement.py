@@ -33,23 +33,24 @@ class PlacementTable:
         """Row of an IfcObjectPlacement; row 0, the world, for None. Walks up the chain once per placement."""
         if placement is None:
             return 0
-        key = placement.id()
+        key: int = placement.id()
         known = self._rows.get(key)
         if known is not None:
             return known
-        first = len(self._parents)
-        below = None
-        while placement is not None:
-            key = placement.id()
+        first = below = len(self._parents)
+        above = self._append(key, placement)
+        while above is not None:
+            key = above.id()
             known = self._rows.get(key)
-            if below is not None:
-                self._parents[below] = len(self._parents) if known is None else known
+            self._parents[below] = len(self._parents) if known is None else known
             if known is not None:
                 break
-            below, placement = self._append(key, placement)
+            below = len(self._parents)
+            above = self._append(key, above)
         return first
 
-    def _append(self, key: int, placement: Entity) -> tuple[int, Entity | None]:
+    def _append(self, key: int, placement: Entity) -> Entity | None:
+        """Add one placement; returns the one it is relative to."""
         row = len(self._parents)
         self._rows[key] = row
         self._parents.append(0)
@@ -62,10 +63,10 @@ class PlacementTable:
                 self._frame_rows[row], parent = self._other(placement)
             if parent is not None:
                 parent.id()
-            return row, parent
+            return parent
         except UNREADABLE as error:
             self.unread[row] = str(error)[:80] or type(error).__name__
-        return row, None
+        return None
 
     def _other(self, placement: Entity) -> tuple[int, Entity | None]:
         kind = placement.is_a()
@@ -77,6 +78,11 @@ class PlacementTable:
             raise ValueError(f"{kind} without a Cartesian position")
         self.fallbacks += 1
         return self._frames.append(spare), parent
+
+    def clear(self) -> None:
+        """Let go of the chains once they are solved."""
+        for kept in (self._rows, self._parents, self._frame_rows):
+            kept.clear()
 
     def solve(self) -> tuple[Floats, NDArray[np.bool_]]:
         """World matrices (n, 4, 4) in file units, and which rows cannot be placed (a cycle, or an unread link).

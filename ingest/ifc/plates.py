@@ -30,7 +30,7 @@ def plate_parts(element: Element, sections: SectionTable) -> tuple[Part, ...]:
         NoPart: If it has neither body nor footprint.
     """
     if not element.bodies:
-        return (_from_footprint(element),)
+        return (part_from_footprint(element),)
     if len(element.bodies) == 1 and is_pile_shape(element.bodies[0]):
         made = round_part(element, element.bodies[0], sections)
         if (made.z_top or 0.0) - (made.z_bottom or 0.0) > 4 * (made.radius or 0.0):
@@ -109,7 +109,12 @@ def _open_up(element: Element, whole: Prism) -> Prism:
     return Prism(area, whole.bottom, whole.top, tuple(dict.fromkeys(notes)))
 
 
-def _from_footprint(element: Element) -> Part:
+def part_from_footprint(element: Element) -> Part:
+    """The outline of an element that has only its footprint.
+
+    Raises:
+        NoPart: If it has none.
+    """
     for body in element.footprints:
         if isinstance(body.shape, Line) and len(body.shape.points) > 3:
             at = body.points()

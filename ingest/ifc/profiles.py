@@ -146,6 +146,11 @@ class ProfileReader:
         self._known: dict[int, Profile] = {}
         self._ways: dict[int, tuple[float, float, float, float]] = {}
 
+    def clear(self) -> None:
+        """Let go of the profiles that were read."""
+        self._known.clear()
+        self._ways.clear()
+
     def read(self, profile: Entity, depth: int = 0) -> Profile:
         """Read one profile definition.
 

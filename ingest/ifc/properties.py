@@ -76,16 +76,36 @@ class PropertyTable:
     def add_tags(self, key: int, tags: Tags) -> None:
         """Add the properties of a product and its type to its tags, name to text.
 
-        To be asked once for each product: its own sets are let go. What it says stands above its type. A name that comes twice with different values keeps the first;
-        the other is kept as `set: name`.
+        To be asked once for each product: its own sets are let go. What it says stands above its type. A name that
+        comes twice with different values keeps the first; the other is kept as `set: name`.
         """
         for entity in self._sets.pop(key, ()):
+            if self._is_own(entity):
+                self._add_own(entity, tags)
+                continue
             for name, values in self._definitions(entity):
                 _merge(tags, name, values)
         own = self._types.get(key)
         if own is not None:
             for name, text in self._type_tags(own).items():
                 tags.setdefault(name, text)
+
+    def _is_own(self, entity: Entity) -> bool:
+        """True for a plain property set of one product alone, which need not be kept."""
+        if isinstance(entity, tuple) or entity.is_a() != "IfcPropertySet":
+            return False
+        return not self._shared or entity.id() not in self._shared
+
+    def _add_own(self, entity: Entity, tags: Tags) -> None:
+        found: Tags = {}
+        try:
+            self._properties(entity.get_argument(_PROPERTIES), found)
+        except UNREADABLE:
+            self.unread += 1
+        if tags.keys().isdisjoint(found):
+            tags.update(found)
+        else:
+            _merge(tags, entity.get_argument(NAME) or "", found)
 
     def _type_tags(self, own: Entity) -> Tags:
         key = own.id()

@@ -132,6 +132,8 @@ class _Reading:
         world, self.unplaced = self.inventory.placements.solve()
         self.world = np.einsum("ij,njk->nik", matrix, world)
         self.inventory.bodies.place(self.world, self.inventory.items)
+        self.inventory.items.clear()
+        self.inventory.placements.clear()
 
     def _make_parts(self, product: Product) -> None:
         if product.group == "context":
@@ -199,15 +201,26 @@ class _Reading:
         else:
             split, last = axes - first, footprints - first
             element.bodies, element.axes, element.footprints = placed[:split], placed[split:last], placed[last:]
+        if not element.bodies:
+            self._stand_in(element, product)
         if product.group in ("setting", "ground"):
             x, y, z = self.world[product.placement][:3, 3].tolist()
             element.origin = (x, y, z)
-        if not element.bodies and product.has_parts:
+        elif product.group == "plate":
+            self._take_openings(element, product)
+        return element
+
+    def _stand_in(self, element: Element, product: Product) -> None:
+        """What else can tell of an element without a body: its parts, or the section of its material."""
+        if product.has_parts:
             self._take_from_parts(element, product)
+        if element.axes:
+            element.profile = self.inventory.profile_of(element)
+
+    def _take_openings(self, element: Element, product: Product) -> None:
         for opening in self.inventory.openings_of(product):
             if opening.rows is not None:
                 element.openings = (*element.openings, *self.inventory.bodies.take(*opening.rows[:2]))
-        return element
 
     def _take_from_parts(self, element: Element, product: Product) -> None:
         for part in self.inventory.parts_of(product):

@@ -34,7 +34,8 @@ class MaterialUse:
     """The material of an element, lengths in the file's units.
 
     `layers` are (name, thickness) from the reference line onwards. `offset` and `sense` tell where they lie along the
-    `direction` axis of the element; None when the file gives no usage.
+    `direction` axis of the element; None when the file gives no usage. `extent` is the height of a wall that has no
+    body; `profiles` and `cardinal_point` describe a bar that has none.
     """
 
     name: str
@@ -42,6 +43,7 @@ class MaterialUse:
     offset: float | None = None
     sense: int = 1
     direction: str = ""
+    extent: float | None = None
     cardinal_point: int | None = None
     profiles: tuple[Entity, ...] = ()
 
@@ -174,7 +176,8 @@ def read_material(material: Entity) -> MaterialUse:
         base = read_material(material.ForLayerSet)
         sense = -1 if str(material.DirectionSense) == "NEGATIVE" else 1
         offset = float(material.OffsetFromReferenceLine)
-        return MaterialUse(base.name, base.layers, offset, sense, str(material.LayerSetDirection))
+        extent = getattr(material, "ReferenceExtent", None)
+        return MaterialUse(base.name, base.layers, offset, sense, str(material.LayerSetDirection), extent)
     if kind in ("IfcMaterialLayerSet", "IfcMaterialLayer"):
         rows = material.MaterialLayers if kind == "IfcMaterialLayerSet" else (material,)
         layers = tuple((_layer_name(row), float(row.LayerThickness)) for row in rows)

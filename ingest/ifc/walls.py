@@ -10,9 +10,9 @@ from numpy.typing import NDArray
 
 from ingest.ifc.bars import is_pile_shape
 from ingest.ifc.curves import circle_points
-from ingest.ifc.elements import Element, NoPart, SectionTable
+from ingest.ifc.elements import Element, SectionTable
 from ingest.ifc.plan import Prism, is_flat, is_upright, prism, profile_upright
-from ingest.ifc.plates import element_prism, element_prisms, mesh_words, prism_parts
+from ingest.ifc.plates import element_prism, element_prisms, mesh_words, part_from_footprint, prism_parts
 from ingest.ifc.shapes import Extrusion, Line, Sweep
 from ingest.ifc.strips import FITS, Strip, arc_steps, find_strip
 from ingest.model import Part, Point3
@@ -214,7 +214,7 @@ def _from_axis(element: Element) -> Part:
     """A wall with nothing but its reference line: moved into the middle of its layers when the file says where."""
     line = element.axis_line()
     if line is None:
-        raise NoPart("no geometry")
+        return part_from_footprint(element)
     use, said = element.material, ["its axis only; it has no body"]
     thickness = layers_of(element)
     if thickness and use and use.offset is not None:
@@ -226,7 +226,9 @@ def _from_axis(element: Element) -> Part:
     elif thickness:
         said.append("reference line; where the layers lie beside it is not given")
     points: list[Point3] = [(x, y, z) for x, y, z in line.tolist()]
-    return element.part("path", points, said, thickness=thickness)
+    bottom = float(line[0, 2])
+    top = bottom + use.extent * element.length if use and use.extent else None
+    return element.part("path", points, said, thickness=thickness, z_bottom=None if top is None else bottom, z_top=top)
 
 
 def _beside(element: Element, line: Floats, offset: float) -> Floats | None:

@@ -151,15 +151,15 @@ def wall_of(scene: Scene, variant: Variant, dig_to: float) -> tuple[FoldedWall, 
     known = soil.strength_known
     if known:
         pressure = pressure + np.where(below[:, :, None], lack, 0.0)
-    membrane = scene.EA * (1.0 if variant.membrane else 0.0)
+    along, membrane = _continuity(scene, variant)
     wall = FoldedWall(
         columns=grid.points,
         closed=grid.closed,
         z=grid.z,
         on=scene.on,
         Dv=scene.EI,
-        Dh=scene.EI * variant.along,
-        Dk=scene.EI * variant.along / 2,
+        Dh=scene.EI * along,
+        Dk=scene.EI * along / 2,
         Eht=membrane,
         Gt=membrane / 2.4,
         spring=retained * (1 + below),
@@ -176,6 +176,19 @@ def wall_of(scene: Scene, variant: Variant, dig_to: float) -> tuple[FoldedWall, 
         reserve=np.where(below[:, :, None], reserve, np.inf) if known else unlimited,
     )
     return wall, limits
+
+
+def _continuity(scene: Scene, variant: Variant) -> tuple[Floats, Floats]:
+    """Share of stiffness along the wall, and membrane stiffness, (ns,) each.
+
+    A variant is a reading of what is not known: it changes nothing where joints or continuity are confirmed. A row of
+    piles beside panels never becomes a plate because the panels might be one.
+    """
+    jointed = scene.found.stations.jointed[scene.grid.station]
+    whole = scene.found.stations.monolithic[scene.grid.station]
+    along = np.where(jointed, 0.0, np.where(whole, 1.0, variant.along))
+    membrane = np.where(jointed, 0.0, np.where(whole | variant.membrane, 1.0, 0.0))
+    return along, scene.EA * membrane
 
 
 def members_of(scene: Scene, variant: Variant) -> tuple[Members, tuple[int, ...]]:

@@ -33,21 +33,21 @@ def test_a_drawing_audits_clean_in_metres(drawn: Path, name: str) -> None:
 def test_layer_names_have_the_fields_of_iso_13567() -> None:
     # ISO 13567-2 clause 5: agent 2, element 6, presentation 2 characters (recalled)
     for *_, name in LAYERS.values():
-        assert (len(name), name[:2], name[8:]) == (10, "G-", name[8] + "-")
+        assert (len(name), name[:2], name[8:]) == (10, "GQ", name[8] + "-")
         assert name[8] in "ETDH"
 
 
 def test_the_cuts_of_the_plan_are_the_lines_of_the_sections(drawn: Path, first_pit: Job) -> None:
     space = ezdxf.readfile(drawn / "plan.dxf").modelspace()
     lines = [
-        ((e.dxf.start.x, e.dxf.start.y), (e.dxf.end.x, e.dxf.end.y)) for e in space.query('LINE[layer=="G-CUTS--E-"]')
+        ((e.dxf.start.x, e.dxf.start.y), (e.dxf.end.x, e.dxf.end.y)) for e in space.query('LINE[layer=="GQCUTS--E-"]')
     ]
     for section in first_pit.proposal.sections:
         assert section.line in lines
 
 
 def test_the_perimeter_lies_on_the_wall_axis(drawn: Path) -> None:
-    (line,) = ezdxf.readfile(drawn / "plan.dxf").modelspace().query('LWPOLYLINE[layer=="G-PERIM-E-"]')
+    (line,) = ezdxf.readfile(drawn / "plan.dxf").modelspace().query('LWPOLYLINE[layer=="GQPERIM-E-"]')
     assert tuple((x, y) for x, y, *_ in line.get_points()) == CORNERS
     assert line.closed
 
@@ -55,7 +55,7 @@ def test_the_perimeter_lies_on_the_wall_axis(drawn: Path) -> None:
 def test_a_section_is_dimensioned_and_its_wall_is_as_thick_as_it_is(drawn: Path) -> None:
     space = ezdxf.readfile(drawn / "sections/S1.dxf").modelspace()
     assert sorted(round(dimension.get_measurement(), 3) for dimension in space.query("DIMENSION")) == [18.0, 18.0, 20.0]
-    bodies = [line for line in space.query('LWPOLYLINE[layer=="G-WALL--E-"]') if line.closed]
+    bodies = [line for line in space.query('LWPOLYLINE[layer=="GQWALL--E-"]') if line.closed]
     xs = [x for x, *_ in bodies[0].get_points()]
     assert max(xs) - min(xs) == pytest.approx(0.75)
 

@@ -210,3 +210,19 @@ def test_a_proxy_is_read_by_its_shape(tmp_path: Path) -> None:
     anchor = model.polyline((0, 0, 0), (5, 0, -5))
     model.product("IfcBuildingElementProxy", "anchor", at=(0, 30, 0), axis=anchor)
     assert [part.form for part in read(model, tmp_path).parts] == ["circle", "path", "prism", "bar"]
+
+
+def test_a_beam_without_body_takes_its_section_from_its_material(tmp_path: Path) -> None:
+    model = IfcBuilder(unit="MILLIMETRE")
+    beam = model.product("IfcBeam", "B", axis=model.polyline((0, 0, 0), (6000, 0, 0)))
+    profile = model.file.create_entity(
+        "IfcMaterialProfile", None, None, model.material("S355"), model.rectangle(300, 600)
+    )
+    whole = model.file.create_entity("IfcMaterialProfileSet", None, None, [profile])
+    model.associate(beam, model.file.create_entity("IfcMaterialProfileSetUsage", whole, 8))
+    part = only(model, tmp_path)
+    assert part.points == (approx((0, 0, 0)), approx((6, 0, 0)))
+    assert part.section is not None
+    assert approx(0.3 * 0.6**3 / 12) == part.section.I
+    assert part.material == "S355"
+    assert "cardinal point 8" in part.evidence

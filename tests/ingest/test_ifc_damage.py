@@ -115,7 +115,8 @@ def test_a_wrong_extension_and_an_odd_name_are_read(whole: bytes, tmp_path: Path
 
 
 def test_instances_in_comments_and_texts_are_not_counted_as_lost(whole: bytes, tmp_path: Path) -> None:
-    assert count_instances(b"#1=IFCA();\n#2= IFCB(#1);#3 =IFCC((#1,#2),\n#2);") == 3
+    assert count_instances(b"#1=IFCA();\n#2= IFCB(#1);#3 =IFCC((#1,#2),\n#2);", 3) == 3
+    assert count_instances(b"#1=IFCA('\n#5=x');\n/* #2=IFCB(); */\n#3=IFCC(#1);", 2) == 2
     text = whole.replace(b"'P3'", b"'a;\n#999999=b'").replace(b"DATA;", b"DATA;\n/* #77777=IFCWALL($); */")
     assert read_ifc(write(tmp_path, text)).losses == ()
 

@@ -224,3 +224,22 @@ def test_the_level_comes_from_the_placement_not_from_the_storey(tmp_path: Path) 
     model.wall("W", (0, 0, -3.2), (5, 0, -3.2), 0.3, 2.9)
     part = only(model, tmp_path)
     assert (part.z_bottom, part.z_top) == (approx(-3.2), approx(-0.3))
+
+
+def test_a_wall_without_body_has_the_height_of_its_layers_reference_extent(tmp_path: Path) -> None:
+    model = IfcBuilder()
+    wall = model.product("IfcWall", "W", at=(0, 0, -3), axis=model.polyline((0, 0), (8, 0)))
+    model.layers(wall, (0.4,), -0.2)
+    model.file.by_type("IfcMaterialLayerSetUsage")[0].ReferenceExtent = 2.8
+    part = only(model, tmp_path)
+    assert (part.z_bottom, part.z_top) == (approx(-3), approx(-0.2))
+
+
+def test_a_wall_with_only_a_footprint_is_its_outline(tmp_path: Path) -> None:
+    model = IfcBuilder()
+    wall = model.product("IfcWall", "W")
+    ring = model.polyline((0, 0), (8, 0), (8, 0.3), (0, 0.3), (0, 0))
+    shape = model.representation("FootPrint", "Curve2D", [ring])
+    wall.Representation = model.file.create_entity("IfcProductDefinitionShape", None, None, [shape])
+    part = only(model, tmp_path)
+    assert (part.form, len(part.points), part.thickness) == ("outline", 4, None)

@@ -14,12 +14,14 @@ CIRCLE = 0.001
 def overlap(shape, pit):
     """Area of intersection over union; for an open wall 1 less the largest distance over 100 m, -1 if turned round."""
     truth = pit.outline()
+    near_zero = truth[0].copy()  # areas of almost equal shapes are delicate far from the origin
+    axis, truth = shape.axis - near_zero, truth - near_zero
     if pit.closed:
-        a, b = shapely.Polygon(shape.axis), shapely.Polygon(truth)
+        a, b = shapely.Polygon(axis), shapely.Polygon(truth)
         return a.intersection(b).area / a.union(b).area if a.is_valid else 0.0
-    a, b = shapely.LineString(shape.axis), shapely.LineString(truth)
+    a, b = shapely.LineString(axis), shapely.LineString(truth)
     away = max(shapely.hausdorff_distance(p, q, densify=0.05) for p, q in ((a, b), (b, a)))
-    turned = (shape.axis[-1] - shape.axis[0]) @ (truth[-1] - truth[0]) < 0
+    turned = (axis[-1] - axis[0]) @ (truth[-1] - truth[0]) < 0
     return -1.0 if turned else 1.0 - away / 100.0
 
 

@@ -7,6 +7,7 @@ import pytest
 from pit_lines import BOX, lines, only
 
 from ingest.model import Site, WallPiece
+from ingest.trail import Source
 from sections.double_lines import centre_lines
 from sections.perimeter import find_shapes
 
@@ -27,11 +28,13 @@ def grown(by):
 
 @pytest.mark.parametrize("drawn", ["face", "outline", "hatch"])
 def test_the_two_rings_of_a_wall_give_its_middle_and_thickness(drawn):
-    walls = tuple(WallPiece(id=f"r{by}", axis=grown(by), closed=True, drawn=drawn, kind="diaphragm")
-                  for by in (0.4, -0.4))  # fmt: skip
+    source = {by: Source(file="plan.dxf", item=f"{by}") for by in (0.4, -0.4)}
+    walls = tuple(WallPiece(id=f"r{by}", axis=grown(by), closed=True, drawn=drawn, kind="diaphragm", sources=(source[by],))
+                  for by in source)  # fmt: skip
     shape = only(Site(walls=walls))
     assert shape.axis == pytest.approx(np.array(BOX))
     assert shape.runs[0].wall.thickness == pytest.approx(0.8)
+    assert set(shape.runs[0].wall.sources) == set(source.values())
 
 
 def test_panels_drawn_by_their_outlines_make_one_wall():

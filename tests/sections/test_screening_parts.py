@@ -10,20 +10,60 @@ from hypothesis import given, settings
 from hypothesis import strategies as st
 from scipy import sparse
 
+from ingest.model import Floor, Material, Pile, Site, Stratum, WallPiece
+from sections.find import find_pits
+from sections.model import FoundPit
 from sections.screening.hermite import line_matrices
 from sections.screening.limits import PressureLimits, excess, settle
 from sections.screening.loss import lose_each, lose_members
+from sections.screening.scene import Variant, make_scene, wall_of
 from sections.screening.soil import Soil, find_limits, unbalanced
+
+
+def two_kinds_of_wall() -> tuple[Site, FoundPit]:
+    """A 30 x 20 m pit, three sides of 0.8 m panels whose joints nobody has told of, the north side of bored piles."""
+    concrete = Material(id="c", kind="concrete", E=30e6, unit_weight=25.0)
+    common = {"top": 0.0, "toe": -12.0, "material": "c", "EI_factor": 1.0}
+    panels = WallPiece(
+        id="w", axis=((0.0, 20.0), (0.0, 0.0), (30.0, 0.0), (30.0, 20.0)), kind="diaphragm", thickness=0.8, **common
+    )  # type: ignore[arg-type]
+    piles = tuple(
+        Pile(id=f"p{i}", centre=(29.0 - i, 20.0), diameter=0.75, kind="contiguous", continuity="jointed", **common)  # type: ignore[arg-type]
+        for i in range(29)
+    )
+    site = Site(
+        walls=(panels,),
+        piles=piles,
+        materials=(concrete,),
+        ground_level=0.0,
+        formation=-6.0,
+        floors=(Floor(level=-6.0, dig_level=-6.0),),
+        strata=(
+            Stratum(name="s", top_level=0.0, unit_weight=19.0, E=30e3, K0=0.5, phi=30.0, c=0.0, drainage="drained"),
+        ),
+    )
+    (found,) = find_pits(site)
+    return site, found
 
 
 def ground(*, depth: int = 16, weight: float = 20.0, K0: float = 0.5, phi: float = 30.0, water: float = np.nan) -> Soil:
     """One facet, 1 m elements from the surface at 0; Kp = 3 and Ka = 1/3 with phi = 30."""
     one = np.ones((1, depth))
     return Soil(
-        E=one * 30e3, nu=one * 0.3, K0=one * K0, weight=one * weight, su=one * np.nan, phi=one * phi, c=one * 0.0,
-        level=np.column_stack([-np.arange(depth), -np.arange(1, depth + 1)]).astype(float), ground=np.zeros(1),
-        water=np.full(1, water), surcharge=np.zeros(1), modulus_given=True, K0_given=True,
-    )  # fmt: skip
+        E=one * 30e3,
+        nu=one * 0.3,
+        K0=one * K0,
+        weight=one * weight,
+        su=one * np.nan,
+        phi=one * phi,
+        c=one * 0.0,
+        level=np.column_stack([-np.arange(depth), -np.arange(1, depth + 1)]).astype(float),
+        ground=np.zeros(1),
+        water=np.full(1, water),
+        surcharge=np.zeros(1),
+        modulus_given=True,
+        K0_given=True,
+    )
 
 
 def integral(values: np.ndarray, first: int, last: int) -> float:
@@ -65,9 +105,11 @@ def test_digging_releases_rest_pressure_and_water_down_to_the_dig_level_only() -
 def test_a_spring_beyond_its_limit_carries_its_limit() -> None:
     # One spring 100 kPa/m limited to 5 kPa beside a firm one of 100, load 20: 100 w + 5 = 20, w = 0.15.
     limits = PressureLimits(
-        retained_spring=np.full((1, 1, 2), 100.0), excavated_spring=np.zeros((1, 1, 2)),
-        relief=np.full((1, 1, 2), 5.0), reserve=np.full((1, 1, 2), np.inf),
-    )  # fmt: skip
+        retained_spring=np.full((1, 1, 2), 100.0),
+        excavated_spring=np.zeros((1, 1, 2)),
+        relief=np.full((1, 1, 2), 5.0),
+        reserve=np.full((1, 1, 2), np.inf),
+    )
     over, reached = settle(lambda e: excess(limits, (20.0 + e) / 200.0), np.zeros((1, 1, 2)))
     assert reached
     assert (20.0 + over[0, 0, 0]) / 200.0 == pytest.approx(0.15, rel=1e-3)
@@ -151,3 +193,16 @@ def test_a_point_load_on_an_endless_beam_on_springs_sinks_as_hetenyi_says() -> N
         K[i, i] += 1e5 * m.bend[e] + 1e4 * m.mass[e]
     F[n] = 100.0
     assert np.linalg.solve(K, F)[n] == pytest.approx(1.988176822e-3, rel=1e-4)
+
+
+def test_a_row_of_piles_beside_panels_never_becomes_a_plate() -> None:
+    site, found = two_kinds_of_wall()
+    scene, why = make_scene(site, found)
+    assert scene is not None, why
+    wall, _ = wall_of(scene, Variant(name="whole", along=1.0, membrane=True, beam_EI=0.0), -6.0)
+    piles = found.stations.jointed[scene.grid.station]
+    assert piles.any()
+    assert not piles.all()
+    assert np.all(wall.Dh[piles] == 0)
+    assert np.all(wall.Eht[piles] == 0)
+    assert np.all(wall.Dh[~piles] == scene.EI[~piles])
