@@ -16,7 +16,8 @@ from sections.model import Floats
 IN_LINE = 0.3
 """Loads whose places along the cut differ by less than this stand in one row across it, m (judgement)."""
 NEAR = 8.0
-"""Loads farther from the plane of the cut than this say nothing of it, m (judgement)."""
+"""Loads farther from the plane of the cut than this say nothing of it, nor stand loads farther apart in a row, m
+(judgement)."""
 
 
 @dataclass(frozen=True, kw_only=True)
@@ -62,7 +63,8 @@ def _rows(x: Floats, loads: Sequence[Load], near: list[int]) -> list[list[int]]:
 def _spacing(y: Floats) -> float | None:
     gaps = np.diff(np.sort(y))
     gaps = gaps[gaps > 0.05]
-    return float(np.median(gaps)) if len(gaps) else None
+    spacing = float(np.median(gaps)) if len(gaps) else np.inf
+    return spacing if spacing <= NEAR + IN_LINE else None
 
 
 def row_load(row: LoadRow) -> tuple[SectionLoad, Finding | None]:

@@ -8,7 +8,7 @@ from dataclasses import replace
 import numpy as np
 
 from ingest.model import Site
-from ingest.trail import Finding, Question
+from ingest.trail import Assumption, Finding, Question
 from sections.buried_rows import end_at_steps
 from sections.chainage import area_of, find_sides
 from sections.floors import FloorPlan, find_floors, find_steps, floor_records
@@ -42,8 +42,25 @@ def find_pits(site: Site) -> tuple[FoundPit, ...]:
     if not found:
         return ()
     # what was seen while looking for perimeters belongs to the site; the first pit carries it
-    first = replace(found[0], findings=(*findings, *found[0].findings), questions=(*questions, *found[0].questions))
+    first = replace(
+        found[0],
+        findings=(*findings, *found[0].findings),
+        questions=(*questions, *found[0].questions),
+        assumptions=(*(_taken(f) for f in findings if f.code == "perimeter-assumed"), *found[0].assumptions),
+    )
     return (first, *found[1:])
+
+
+def _taken(finding: Finding) -> Assumption:
+    """A perimeter taken from what is no wall is an assumption to sign."""
+    return Assumption(
+        id=f"perimeter-assumed:{finding.where}",
+        code="perimeter-assumed",
+        about=finding.where,
+        text=finding.text,
+        basis="no wall closes a perimeter there",
+        sources=finding.sources,
+    )
 
 
 def describe_pits(site: Site, shapes: Sequence[PitShape]) -> tuple[FoundPit, ...]:

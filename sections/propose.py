@@ -52,21 +52,44 @@ def propose(site: Site, progress: Tell = _silent) -> tuple[Proposal, tuple[Secti
     """
     progress("find the perimeter", 0, 4)
     founds = find_pits(site)
-    notes = () if founds else find_shapes(site)[1]
     progress("judge every metre", 1, 4)
     plane = tuple(judge_stations(site, found) for found in founds)
     rings = {i: judge_stations(site, found, axisymmetric=True) for i, found in enumerate(founds) if found.stations.ring}
     progress("choose the cuts", 2, 4)
     choice = choose(site, plane, rings=rings) if founds else None
     losses = [_losses(site, found) for found in founds]
-    rows, definitions = [], []
+    rows: list[ChosenSection] = []
+    definitions: list[SectionDefinition] = []
     for number, one in enumerate(choice.chosen if choice else (), start=1):
         progress("define sections", number, len(choice.chosen if choice else ()))
         judged = rings[one.candidate.pit] if one.candidate.kind == "axisymmetric" else plane[one.candidate.pit]
         row, definition = define_chosen(site, founds, judged, one, f"S{number}", losses[one.candidate.pit])
         rows.append(row)
         definitions.append(definition)
-    proposal = Proposal(
+    return _assemble(site, founds, plane, choice, rows, definitions), tuple(definitions)
+
+
+def _assemble(
+    site: Site,
+    founds: Sequence[FoundPit],
+    plane: Sequence[JudgedPit],
+    choice: Choice | None,
+    rows: Sequence[ChosenSection],
+    definitions: Sequence[SectionDefinition],
+) -> Proposal:
+    """Put the proposal together, each finding, question and assumption once."""
+    assumptions = (
+        *site.assumptions,
+        *(a for found in founds for a in found.assumptions),
+        *(a for one in definitions for a in one.assumptions),
+    )
+    findings = (
+        *site.findings,
+        *(() if founds else find_shapes(site)[1]),
+        *(f for found in founds for f in found.findings),
+        *(f for one in definitions for f in one.findings),
+    )
+    return Proposal(
         limits=site.limits,
         frame=ProposalFrame(offset=site.frame.offset, rotation_deg=site.frame.rotation_deg, crs=site.frame.crs),
         pits=tuple(found.pit for found in founds),
@@ -75,24 +98,10 @@ def propose(site: Site, progress: Tell = _silent) -> tuple[Proposal, tuple[Secti
         stations={one.found.pit.id: _table(one, choice, i) for i, one in enumerate(plane)},
         ledger=site.ledger,
         questions=_by_id((*site.questions, *(q for found in founds for q in found.questions))),
-        assumptions=_by_id(
-            (
-                *site.assumptions,
-                *(a for found in founds for a in found.assumptions),
-                *(a for d in definitions for a in d.assumptions),
-            )
-        ),
-        findings=_by_id(
-            (
-                *site.findings,
-                *notes,
-                *(f for found in founds for f in found.findings),
-                *(f for d in definitions for f in d.findings),
-            )
-        ),
+        assumptions=_by_id(assumptions),
+        findings=_by_id(findings),
         not_assessed=_not_assessed(site, choice),
     )
-    return proposal, tuple(definitions)
 
 
 def define_chosen(

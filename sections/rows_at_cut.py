@@ -92,15 +92,21 @@ def _nearest(site: Site, row: SupportRow, wall: CutWall) -> RowAtCut | None:
 
 
 def wall_of_other_end(met: RowAtCut, cut: Cut) -> CutWall | None:
-    """The wall of the section on which the other end of a strut stands; None when that wall is not in the section."""
+    """The wall of the section that the other end of a strut holds up there; None when it holds another stretch."""
     station = met.off_station
     if station is None or met.role != "strut":
         return None
     side = met.wall.found.stations.side
     for other in cut.walls:
-        if other is not met.wall and other.found is met.wall.found and side[other.station] == side[station]:
+        same_pit = other is not met.wall and other.found is met.wall.found
+        if same_pit and side[other.station] == side[station] and _covers(met.row, other):
             return other
     return None
+
+
+def _covers(row: SupportRow, wall: CutWall) -> bool:
+    """Whether the tributary width of a row covers the place where the cut meets a wall."""
+    return any(wall.found.rows[i] is row for i in wall.found.stations.supports[wall.station])
 
 
 def why_no_corner_strut(met: RowAtCut, limits: Limits) -> str:

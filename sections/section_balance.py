@@ -43,9 +43,9 @@ def balance_section(
             BalanceLine(text="residual: the section as a whole is pushed this way", value=rest, unit="kN/m")
         )
     if len(cut.walls) == 1:
-        text = (
-            "one wall only: what its supports push against is outside this section; model both walls if it is not fixed"
-        )
+        text = "round the ring the thrust balances itself, as far as it is even"
+        if cut.kind != "axisymmetric":
+            text = "one wall only: what its supports push against is outside this section; model both walls if it moves"
         horizontal.append(BalanceLine(text=text, value=None, unit="kN/m"))
     return Balance(horizontal=tuple(horizontal), vertical=tuple(_vertical(members)))
 
@@ -116,8 +116,10 @@ def _horizontal_preloads(members: Sequence[SectionMember]) -> list[BalanceLine]:
     for member in members:
         if not isinstance(member.section, PerMetre) or not member.section.preload_kN_per_m or len(member.points) < 2:
             continue
-        if all(end.to not in ("ground", "opposite") for end in member.ends):
+        if member.side == "both":
             continue  # a strut between two walls pushes both alike
+        if member.form != "bar":
+            continue  # a bond length hands on what its free length has
         (x1, z1), (x2, z2) = member.points[0], member.points[-1]
         along = (x2 - x1) / float(np.hypot(x2 - x1, z2 - z1))
         value = member.section.preload_kN_per_m * along
@@ -130,7 +132,7 @@ def _vertical(members: Sequence[SectionMember]) -> list[BalanceLine]:
     for member in members:
         if not isinstance(member.section, PerMetre):
             continue
-        if member.role == "wall" and member.section.weight_kN_per_m2 is not None:
+        if member.role == "wall" and member.section.weight_kN_per_m2 is not None and len(member.points) == 2:
             height = abs(member.points[0][1] - member.points[-1][1])
             kind = "net of soil" if member.section.net_of_soil else "full"
             value = member.section.weight_kN_per_m2 * height

@@ -160,8 +160,8 @@ def _unevenness(site: Site, row: SupportRow, where: str) -> list[Finding]:
     if count >= 2 and float(np.max(np.abs(gaps - 180 / count))) <= EVEN:
         return []
     text = (
-        f"{where}: {count} strut(s) not spread evenly round the ring. Make two runs, with the disc and without any "
-        "strut: vertical bending is the envelope of both, movement from the run without, strut force from the one with; "
+        f"{where}: {count} strut(s) not spread evenly round the ring. Make two runs, with the disc and without: "
+        "vertical bending is the envelope of both, movement from the run without, strut force from the one with; "
         "horizontal bending of the ring is not in either"
     )
     return [_finding(where, "two_runs", text)]

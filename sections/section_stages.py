@@ -74,21 +74,7 @@ def plan_stages(
     Returns:
         Stages (stage 0 = stress in the ground before work), what was assumed, and what did not fit.
     """
-    from_start = tuple(load for load, stage in loads.items() if stage is None)
-    first = (
-        SectionStage(
-            id="T0",
-            order=0,
-            text="stress in the ground before work",
-            level=dig.ground,
-            loads_on=from_start,
-            water=tuple(line.id for line in water if line.kind == "retained"),
-            assumed=False,
-        ),
-        SectionStage(
-            id="T1", order=1, text="wall installed", level=dig.ground, install=(*walls,), assumed=not site.stages
-        ),
-    )
+    first = _before_digging(site, dig, walls, loads, water)
     if site.stages:
         stages, findings = _given(site.stages, first, dig, props, {k: v for k, v in loads.items() if v})
         stages = _loaded(_drawn_down(stages, water), loads)
@@ -156,6 +142,27 @@ def _untold_water(site: Site, dig: DigProfile, water: Sequence[Water]) -> tuple[
         text = f"The water levels of the stages {', '.join(told)} are not laid out; one level inside holds for all"
         found.append(("stage-water", "stage_water_not_laid_out", text))
     return tuple(Finding(id=name, code=code, severity="check", where="stages", text=text) for name, code, text in found)
+
+
+def _before_digging(
+    site: Site, dig: DigProfile, walls: Sequence[str], loads: Mapping[str, str | None], water: Sequence[Water]
+) -> tuple[SectionStage, ...]:
+    """Stress in the ground, then the wall."""
+    from_start = tuple(load for load, stage in loads.items() if stage is None)
+    return (
+        SectionStage(
+            id="T0",
+            order=0,
+            text="stress in the ground before work",
+            level=dig.ground,
+            loads_on=from_start,
+            water=tuple(line.id for line in water if line.kind == "retained"),
+            assumed=False,
+        ),
+        SectionStage(
+            id="T1", order=1, text="wall installed", level=dig.ground, install=(*walls,), assumed=not site.stages
+        ),
+    )
 
 
 def _template(first: tuple[SectionStage, ...], dig: DigProfile, props: Sequence[Prop]) -> tuple[SectionStage, ...]:

@@ -19,9 +19,6 @@ from sections.smear_checks import ANGLE_TOLERANCE, REFUSE_BETA
 from sections.smear_rows import Smeared, axial_back, smear_corner_strut, smear_support
 from sections.support_drawing import draw_bond, draw_support, from_both_ends
 
-CROSSING = ("strut", "corner_strut")
-"""Roles that press two walls apart, so that either end moves."""
-
 
 def support_members(
     site: Site, cut: Cut, walls: Mapping[str, str]
@@ -69,8 +66,9 @@ def _notes(met: RowAtCut, cut: Cut, limits: Limits) -> list[Finding]:
         return [_finding(met, "corner_strut_not_assessed", text)] if why else []
     if from_both_ends(met, cut):
         text = (
-            f"The far wall of {name} (chainage {met.off_at:.2f}) is not in this section: it is drawn to its middle and "
-            "held there, as if both walls moved alike. Were the far wall still, it would be half as stiff"
+            f"{name} presses on a stretch of wall (chainage {met.off_at:.2f}) that is not in this section: it is drawn "
+            "to its middle and held there, as if both walls moved alike. Were the far wall still, it would be half as "
+            "stiff"
         )
         return [_finding(met, "far_wall_not_in_section", text)]
     if met.role == "raker":

@@ -243,12 +243,13 @@ def test_results_of_one_come_back_with_the_factors_of_the_section(written: Writt
     assert main(["members", *sections, str(results), "--out", str(target), "--quiet"]) == 0
     with target.open() as file:
         found = {
-            (r["section"], r["member"], r["unit"], r["gives"]): float(r["member_value"]) for r in csv.DictReader(file)
+            (r["section"], r["member"], r["quantity"], r["unit"], r["gives"]): float(r["member_value"])
+            for r in csv.DictReader(file)
         }
     for section, member in members(written):
         for back in member["back"]:
-            key = (section["id"], member["id"], back["from_unit"], back["gives"])
-            assert abs(found[key]) == pytest.approx(abs(back["factor"]), rel=1e-6)
+            key = (section["id"], member["id"], back["quantity"], back["from_unit"], back["gives"])
+            assert found[key] == pytest.approx(back["factor"], rel=1e-6)
 
 
 # ---- what each site was made to show --------------------------------------------------------------------------------
@@ -267,7 +268,7 @@ class TestTanneryLane:
         for output in table["outputs"].values():
             assert {output["verdict"][i] for i in near} == {"not_two_dimensional"}
         spans = [s for s in site.proposal["unrepresented"] if s["from"] < 90.0 < s["to"]]
-        assert [s for s in spans if s["from"] <= 78.0 and s["to"] >= 102.0]
+        assert [s for s in spans if s["from"] <= 78.5 and s["to"] >= 101.5]
 
     def test_columns_on_the_raft_are_spread_over_their_spacing_when_it_is_cast(self, site: Written) -> None:
         spread = [(s, load) for s in site.sections for load in s["loads"] if load["kind"] == "point"]
@@ -275,7 +276,11 @@ class TestTanneryLane:
         assert known
         for section, load in known:
             assert load["real"] == {"value": 2400.0, "unit": "kN"}
-            assert load["section"] == {"value": pytest.approx(2400 / 6.0, rel=1e-6), "unit": "kN/m"}  # 6 m apart
+            # Seen from a cut across the rows they are 6 m apart, along the rows the rows are 8 m apart.
+            (x1, y1), (x2, y2) = section["line"]
+            northwards = abs(y2 - y1) > abs(x2 - x1)
+            value = 2400 / (6.0 if northwards else 8.0)
+            assert load["section"] == {"value": pytest.approx(value, rel=1e-6), "unit": "kN/m"}
             assert load["id"] in section["stages"][-1]["loads_on"]
 
     def test_water_inside_stands_as_outside_until_the_dig_goes_below_it(self, site: Written) -> None:
@@ -363,7 +368,7 @@ class TestQuarryRoad:
                     for part, length in ((parts[name], free), (parts[f"{name}-bond"], bond)):
                         (x1, z1), (x2, z2) = part["points"]
                         assert math.hypot(x2 - x1, z2 - z1) == pytest.approx(length, rel=1e-6)
-                        assert math.degrees(math.atan2(z1 - z2, abs(x2 - x1))) == pytest.approx(dip, abs=1e-6)
+                        assert math.degrees(math.atan2(z1 - z2, abs(x2 - x1))) == pytest.approx(dip, abs=1e-4)
         assert seen == set(dips)
 
     def test_a_rail_towards_the_wall_is_a_strip_and_the_road_keeps_its_pressure_at_most(self, site: Written) -> None:

@@ -17,6 +17,7 @@ from export.report.section_tables import (
     stage_table,
 )
 from export.report.section_view import section_drawing
+from export.report.severity_table import severity_table
 from export.report.tables import listing, table
 from export.report.verdict_marks import named_swatch
 from export.report.words import KIND_NAMES, band, criterion_name, fixed, output_name, provisional_mark, stretch
@@ -44,6 +45,8 @@ def section_body(definition: SectionDefinition, proposal: Proposal, site: Site) 
             tag("p", _worth(definition), class_="lead"),
             _figure(definition),
             _verdicts(definition),
+            tag("h3", "How severe its place is (to rank movement and stability by, not for design)"),
+            *(severity_table(one) for one in proposal.sections if one.id == definition.id),
             tag("h3", f"Discrete to section and back ({per})"),
             smear_table(definition),
             back_table(definition),

@@ -14,8 +14,19 @@ INSUNITS: dict[int, str] = {
 }  # fmt: skip
 """Values of $INSUNITS that a site may be drawn in (DXF reference, header variable INSUNITS); 0 is none."""
 CANDIDATES = ("m", "mm", "inch", "foot", "cm")
+METRIC = ("m", "cm", "mm")
 FEET_AND_INCHES = ("3", "4")
 """Values of $LUNITS that show lengths in feet and inches; one drawing unit is then one inch."""
+
+
+@record
+class Declared:
+    """Header variables as the file itself has them, None where it has none."""
+
+    insunits: str | None = None
+    lunits: str | None = None
+    measurement: str | None = None
+    """$MEASUREMENT: 1 for a drawing begun in metric units."""
 
 
 @record
@@ -41,16 +52,13 @@ class Vote:
     doors: bool = False
 
 
-def find_unit(
-    file: str, declared: str | None, length_unit: str | None, shown_as: str | None, measures: Measures
-) -> DrawingUnit:
+def find_unit(file: str, declared: Declared, length_unit: str | None, measures: Measures) -> DrawingUnit:
     """Settle the unit of a drawing.
 
     Args:
         file: File name, for the brief line.
-        declared: Value of $INSUNITS as the file has it, None where it has none.
+        declared: What its header says.
         length_unit: The brief's unit, which overrides everything.
-        shown_as: Value of $LUNITS, None where the file has none.
         measures: Lengths in drawing units.
 
     Returns:
@@ -65,10 +73,11 @@ def find_unit(
         except ValueError as fault:
             raise InputError(file, "length_unit", str(fault), f"use one of {', '.join(METRES)}") from None
         return DrawingUnit(name=name, metres=METRES[name])
-    code = int(declared) if declared and declared.lstrip("-").isdigit() else 0
+    said = declared.insunits or ""
+    code = int(said) if said.lstrip("-").isdigit() else 0
     stated = INSUNITS.get(code)
     votes = sorted(
-        (_vote(unit, measures, shown_as) for unit in dict.fromkeys([*filter(None, [stated]), *CANDIDATES])),
+        (_vote(unit, measures, declared) for unit in dict.fromkeys([*filter(None, [stated]), *CANDIDATES])),
         key=lambda vote: -vote.points,
     )
     best = votes[0]
@@ -95,7 +104,7 @@ def _contradicted(file: str, code: int, own: Vote, votes: list[Vote], measures: 
     written = next((vote for vote in votes if vote.decisive), None)
     others = [vote for vote in votes if vote is not own]
     size = (measures.extent() or 1.0) * METRES[own.unit]
-    clear = others[0].points >= 3 and others[0].points > others[1].points
+    clear = others[0].points >= 3 and others[0].points >= others[1].points + 2
     taken = written or (others[0] if clear and not 1.0 <= size <= 50_000.0 else None)
     if taken is None:
         text = f"{said}; {own.unit} is kept, {others[0].unit} would fit better: {others[0].evidence}"
@@ -122,7 +131,7 @@ def _asked(file: str, unit: str, code: str, text: str, votes: list[Vote]) -> Dra
     )
 
 
-def _vote(unit: str, measures: Measures, shown_as: str | None) -> Vote:
+def _vote(unit: str, measures: Measures, declared: Declared) -> Vote:
     """Points for a unit; the ranges are common practice, no source, but a pit of 5 to 500 m."""
     metre = METRES[unit]
     notes: list[tuple[int, str]] = []
@@ -135,7 +144,9 @@ def _vote(unit: str, measures: Measures, shown_as: str | None) -> Vote:
     notes += _common("letters are then {:.2g} m high", measures.letters, metre, (0.04, 2.0), least=3)
     doors = [radius * metre for radius, count in measures.doors.items() if count > 1 and 0.6 <= radius * metre <= 1.1]
     notes += [(2, f"door swings are then {min(doors):.3g} m")] if doors else []
-    shown = _written(unit, measures, shown_as)
+    if declared.measurement == "1" and unit in METRIC:
+        notes.append((1, "it was begun in metric units"))
+    shown = _written(unit, measures, declared.lunits)
     if shown:
         notes.append((4, shown))
     notes += _dimensions(measures, metre)
@@ -145,13 +156,13 @@ def _vote(unit: str, measures: Measures, shown_as: str | None) -> Vote:
     return Vote(unit=unit, points=points, evidence=", ".join(words), decisive=decisive, doors=bool(doors))
 
 
-def _written(unit: str, measures: Measures, shown_as: str | None) -> str:
+def _written(unit: str, measures: Measures, lunits: str | None) -> str:
     """What the drawing says by the way it shows lengths, "" for nothing."""
     total = sum(measures.shown_in.values())
     if total and measures.shown_in.get(unit, 0) * 2 > total:
         feet = " in feet and inches or" if unit == "inch" else ""
         return f"its dimensions are shown{feet} with the mark of the {unit}"
-    if not total and shown_as in FEET_AND_INCHES and unit == "inch":
+    if not total and lunits in FEET_AND_INCHES and unit == "inch":
         return "it shows lengths in feet and inches"
     return ""
 

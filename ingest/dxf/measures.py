@@ -85,17 +85,24 @@ def _look(
         budget[0] -= 1
         known = vars(entity.dxf)
         kind = entity.dxftype()
-        at = known.get("start") or known.get("center") or known.get("insert") or known.get("location")
         if kind == "INSERT":
             _look_inside(document, entity, matrix, shift, found, budget, path)
             continue
-        if kind == "LWPOLYLINE":
-            for x, y in np.asarray(entity.lwpoints.values).reshape(-1, 5)[:, :2].tolist():
-                _point(found, (x, y, 0.0), matrix, shift)
-        elif at is not None and kind != "POINT":
-            for place in (at, known.get("end") or at):
-                _point(found, (place.x, place.y, place.z), matrix, shift)
+        for place in _places(kind, entity, known):
+            _point(found, place, matrix, shift)
         _sizes(kind, entity, known, scale, found)
+
+
+def _places(kind: str, entity: Any, known: dict[str, Any]) -> list[Point3]:
+    """Points that show how far the drawing reaches; survey points may lie far off."""
+    if kind == "LWPOLYLINE":
+        plan = np.asarray(entity.lwpoints.values).reshape(-1, 5)[:, :2]
+        return [(x, y, 0.0) for x, y in plan.tolist()]
+    if kind == "POLYLINE":
+        found = [vars(vertex.dxf).get("location") for vertex in entity.vertices]
+    else:
+        found = [known.get(name) for name in ("start", "end", "center", "insert")]
+    return [(at.x, at.y, at.z) for at in found if at is not None]
 
 
 def _point(found: Measures, at: Point3, matrix: Matrix, shift: Point3) -> None:

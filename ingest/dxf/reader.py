@@ -9,7 +9,7 @@ from pathlib import Path
 from ingest.dxf.account import list_raw, open_account
 from ingest.dxf.damage import check_bytes, read_bytes
 from ingest.dxf.draw import Drawer
-from ingest.dxf.drawing_unit import find_unit
+from ingest.dxf.drawing_unit import Declared, find_unit
 from ingest.dxf.georeference import describe_georeference
 from ingest.dxf.layers import LayerTable
 from ingest.dxf.leaders import tie_leaders
@@ -63,7 +63,7 @@ def _read(
     account, repeated = open_account(loaded.document, raw), raw.repeated
     del raw
     measures = take_measures(loaded.document, account.space)
-    unit = find_unit(path.name, header.units, length_unit, header.shown_as, measures)
+    unit = find_unit(path.name, header.declared, length_unit, measures)
     layers = LayerTable(loaded.document, ignore_layers)
     drawer = Drawer(path.name, unit.metres, loaded.document, layers)
     # from here on only the account holds the figures, so that memory shrinks while they are drawn
@@ -101,7 +101,10 @@ class _Header:
     """The header variables that matter, from the bytes: the library fills in defaults the file does not have."""
 
     def __init__(self, tags: Tags) -> None:
-        self.units = tags.header("$INSUNITS")
-        self.shown_as = tags.header("$LUNITS")
+        self.declared = Declared(
+            insunits=tags.header("$INSUNITS"),
+            lunits=tags.header("$LUNITS"),
+            measurement=tags.header("$MEASUREMENT"),
+        )
         code = tags.header("$ACADVER") or ""
         self.version = f"{RELEASES.get(code, 'unknown release')} ({code})" if code else "no version given"

@@ -149,7 +149,7 @@ def _syntax_refused(path: Path, data: bytes, log: str, error: str) -> InputError
 
 
 def find_losses(data: bytes, log: str, loaded: int) -> tuple[str, ...]:
-    """Compare the raw text with what was loaded: trailer, number of instances, ids used twice, ids never defined.
+    """Compare the raw text with what was loaded: trailer, instances, open texts, ids used twice or never defined.
 
     Args:
         data: Bytes of the file.
@@ -165,6 +165,8 @@ def find_losses(data: bytes, log: str, loaded: int) -> tuple[str, ...]:
     written = count_instances(data, loaded)
     if written != loaded:
         losses.append(f"{written} instances stand in the text, {loaded} were loaded")
+    if data.count(b"'") % 2 and b"'" in _HIDDEN.sub(b"", data):
+        losses.append("a text is not closed; what follows it was taken for text")
     twice = _TWICE.findall(log)
     if twice:
         losses.append(f"{len(twice)} ids are used twice, the first is #{twice[0]}")

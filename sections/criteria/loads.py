@@ -1,8 +1,8 @@
 """Loads behind the wall that are short along it: endless in the section, ended in truth.
 
 The section hands a load over with its real effect on the wall, the larger of resultant and moment down to formation
-and toe. The others of these effects are then r to 1 times what is handed over. How much of an output a load makes is not known
-without a 2D run with and without it, so the band is [r, 1]. Source: elastic half-space, Boussinesq and Flamant.
+and toe. The others of these effects are then r to 1 times what is handed over. How much of an output a load makes is
+not known without a 2D run with and without it, so the band is [r, 1]. Source: elastic half-space, Boussinesq, Flamant.
 """
 
 from __future__ import annotations

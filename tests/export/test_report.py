@@ -13,9 +13,11 @@ from builders_export import HOSTILE, Job, first_pit_job
 
 from export.report.page import report_page
 from export.report.plan import plan_file
+from export.report.severity_table import INDICES, severity_table
 from export.report.verdict_marks import BEST_FIRST
 from ingest.model import NOTICE
 from sections.model import WORST_FIRST
+from sections.severity import ORDER
 
 SHA = "ab" * 32
 
@@ -207,3 +209,17 @@ def test_words_and_verdicts_stand_out_from_the_paper(scheme: str) -> None:
     assert contrast(colours["soft"], colours["desk"]) >= 4.5
     for name in ("holds", "over", "undecided", "blank", "under", "solid", "ground"):
         assert contrast(colours[name], colours["paper"]) >= 3.0, name
+
+
+def test_the_severity_of_a_place_is_listed_index_by_index(first_pit: Job) -> None:
+    section = first_pit.proposal.sections[0]
+    rows = str(severity_table(replace(section, severity={"excavated_depth": 6.0, "basal_safety": None})))
+    assert re.search(r"Excavated depth.*?6.*?m.*?larger", rows, re.S)
+    assert re.search(r"basal heave.*?not given.*?smaller", rows, re.S)
+    page = report_page(first_pit.proposal, first_pit.definitions, first_pit.site, "0" * 64)
+    assert page.count("Severity of the place of section") == 2
+
+
+def test_indices_of_severity_are_worse_the_way_they_are_ranked() -> None:
+    for name, larger in ORDER:
+        assert INDICES[name][2] is larger

@@ -19,7 +19,7 @@ def draw_pit(scale: float, *, letters: bool = True) -> Any:
 
     def draw(doc: Any, space: Any) -> None:
         corners = [(0, 0), (30, 0), (30, 20), (0, 20)]
-        space.add_lwpolyline([(x * scale, y * scale) for x, y in corners], close=True)
+        space.add_polyline2d([(x * scale, y * scale) for x, y in corners], close=True)
         for k in range(31):
             space.add_circle((k * scale, 0), 0.375 * scale)
         for k in range(4 if letters else 0):
@@ -81,7 +81,7 @@ def test_a_header_without_the_variable_is_a_missing_unit_not_metres(tmp_path: Pa
 
 
 def test_a_drawing_that_shows_nothing_of_known_size_says_so(tmp_path: Path) -> None:
-    found = read(tmp_path, lambda doc, space: space.add_circle((0, 0), 1), units=0)
+    found = read(tmp_path, lambda doc, space: space.add_circle((0, 0), 1), units=None, version="R12")
     assert "nothing in it tells the unit" in found.assumptions[0].basis
     assert len(found.questions[0].readings) > 2
 

@@ -104,6 +104,12 @@ def test_a_reference_that_leads_nowhere_is_a_loss(whole: bytes, tmp_path: Path) 
     assert read.ignored == {"geometry cannot be read": 1}
 
 
+def test_a_text_that_is_not_closed_is_a_loss(whole: bytes, tmp_path: Path) -> None:
+    read = read_ifc(write(tmp_path, whole.replace(b"'P29'", b"'P29")))
+    assert any("not closed" in loss for loss in read.losses)
+    assert read_ifc(write(tmp_path, whole.replace(b"DATA;", b"DATA;\n/* don't ask */"))).losses == ()
+
+
 def test_a_whole_file_has_no_losses(whole: bytes, tmp_path: Path) -> None:
     read = read_ifc(write(tmp_path, whole))
     assert (read.losses, read.findings, len(read.parts)) == ((), (), PILES + 6)

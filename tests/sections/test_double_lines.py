@@ -29,8 +29,10 @@ def grown(by):
 @pytest.mark.parametrize("drawn", ["face", "outline", "hatch"])
 def test_the_two_rings_of_a_wall_give_its_middle_and_thickness(drawn):
     source = {by: Source(file="plan.dxf", item=f"{by}") for by in (0.4, -0.4)}
-    walls = tuple(WallPiece(id=f"r{by}", axis=grown(by), closed=True, drawn=drawn, kind="diaphragm", sources=(source[by],))
-                  for by in source)  # fmt: skip
+    walls = tuple(
+        WallPiece(id=f"r{by}", axis=grown(by), closed=True, drawn=drawn, kind="diaphragm", sources=(mine,))
+        for by, mine in source.items()
+    )
     shape = only(Site(walls=walls))
     assert shape.axis == pytest.approx(np.array(BOX))
     assert shape.runs[0].wall.thickness == pytest.approx(0.8)

@@ -42,14 +42,17 @@ def test_a_strut_to_a_wall_that_is_not_in_the_section_is_not_tied_to_the_one_tha
     supports += [strut((x, 0.0), (x, 20.0), EA=EA) for x in (21.0, 27.0, 33.0)]
     _, cut, _, members, codes = build(ELL, (19.5, -18.0), (19.5, 58.0), [19.5, 100.5], supports=tuple(supports))
     assert [wall.x for wall in cut.walls] == pytest.approx([18.0, 58.0])
-    (member,) = members
+    long, member = members
     assert member.real.length == pytest.approx(20.0)
     assert [end.to for end in member.ends] == ["P1-wall-1", "opposite"]
     # Both walls press alike: the middle of the strut holds still, 10 m from the wall.
     assert run_of(member) == pytest.approx(10.0)
     spacing = member.real.spacing or 0.0
     assert member.section.k_effective_kN_per_m_per_m == pytest.approx(EA / spacing / 10.0)
-    assert codes == ["far_wall_not_in_section"]
+    # The long strut at 17 reaches the cut at the north wall only (its width there ends at the corner, at 20).
+    assert [end.to for end in long.ends] == ["P1-wall-2", "opposite"]
+    assert run_of(long) == pytest.approx(20.0)
+    assert codes == ["far_wall_not_in_section"] * 2
 
 
 def test_a_strut_between_the_two_walls_of_the_section_is_drawn_whole() -> None:
