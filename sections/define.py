@@ -150,7 +150,7 @@ def _ring(site: Site, cut: Cut, names: dict[str, str]) -> _Parts:
         props=parts.props,
         loads=parts.loads,
         implied=parts.implied,
-        assumptions=(),
+        assumptions=parts.assumptions,
         findings=parts.findings,
     )
 

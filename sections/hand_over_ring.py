@@ -47,6 +47,11 @@ def hand_over_ring_footing(q: float, *, r: float, L: float) -> HandedOver:
     return _ring(q, q / ring_over_footing(r, L), "kPa", q)
 
 
+def hand_over_ring_line(q: float, *, r: float, L: float) -> HandedOver:
+    """Hand over a line load q (kN/m) that runs L (m) along the ring at radius r (m): the full ring (upper run)."""
+    return _ring(q, q / ring_over_footing(r, L), "kN/m", q)
+
+
 def _ring(kept: float, mean: float, unit: str, value: float) -> HandedOver:
     rows = (
         Alternative(name="pressure_kept", value=kept, unit=unit, keeps="the load where it is (upper run)",

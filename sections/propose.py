@@ -12,6 +12,7 @@ from ingest.trail import Assumption, Finding, NotAssessed, Question
 from sections.candidates import cut_of
 from sections.choice import Choice, Chosen, choose
 from sections.criteria.screening import variants_of
+from sections.cut import Cut
 from sections.define import Judged, define_section, wall_names
 from sections.definition import SectionDefinition, SupportLoss
 from sections.find import find_pits
@@ -114,17 +115,7 @@ def define_chosen(
 ) -> tuple[ChosenSection, SectionDefinition]:
     """Define one chosen cut and list it as the proposal does."""
     cut = cut_of(chosen.candidate, founds)
-    members = wall_names(cut)
-    walls = tuple(
-        SectionWall(
-            pit=judged.found.pit.id,
-            at=wall.at,
-            side=wall.side,  # type: ignore[arg-type]
-            member=members[wall.side],
-            verdicts=judged.verdicts_at(wall.station),
-        )
-        for wall in cut.walls
-    )
+    walls = _walls(cut, judged)
     scores = [judged.score_at(wall.station) for wall in cut.walls]
     score = None if any(value is None for value in scores) else min(value for value in scores if value is not None)
     verdicts = worst_first(wall.verdicts for wall in walls)
@@ -135,7 +126,11 @@ def define_chosen(
         Judged(
             id=name,
             walls=walls,
-            criteria=tuple(row for wall in cut.walls for row in judged.rows_at(wall.station, members[wall.side])),
+            criteria=tuple(
+                row
+                for met, wall in zip(cut.walls, walls, strict=True)
+                for row in judged.rows_at(met.station, wall.member)
+            ),
             verdicts=verdicts,
             represents=chosen.represents,
             score=score,
@@ -155,6 +150,20 @@ def define_chosen(
         represents=chosen.represents,
     )
     return row, definition
+
+
+def _walls(cut: Cut, judged: JudgedPit) -> tuple[SectionWall, ...]:
+    members = wall_names(cut)
+    return tuple(
+        SectionWall(
+            pit=judged.found.pit.id,
+            at=wall.at,
+            side=wall.side,  # type: ignore[arg-type]
+            member=members[wall.side],
+            verdicts=judged.verdicts_at(wall.station),
+        )
+        for wall in cut.walls
+    )
 
 
 def _losses(site: Site, found: FoundPit) -> tuple[SupportLoss, ...]:

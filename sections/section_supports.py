@@ -73,26 +73,22 @@ def _notes(met: RowAtCut, cut: Cut, limits: Limits) -> list[Finding]:
         return [_finding(met, "far_wall_not_in_section", text)]
     if met.role == "raker":
         text = (
-            f"The foot of {name} is drawn as held at its far end. A foot on the ground gives way: its stiffness in line "
-            "with the raker is not given, and the support lies between about a third and the whole of EA/L (judgement)"
+            f"The foot of {name} is drawn as held. A foot on the ground gives way: its stiffness in line with the raker "
+            "is not given, and the support lies between about a third and the whole of EA/L (judgement)"
         )
         return [_finding(met, "raker_foot", text)]
     return []
 
 
 def _refused(met: RowAtCut) -> Finding:
-    text = (
-        f"{met.row.member.id} leaves the plane of the cut by {met.direction.beta:.1f} degrees (limit {REFUSE_BETA:.0f}):"
-        " not in this section; needs 3D or another cut"
-    )
+    beta = f"{met.direction.beta:.1f} degrees (limit {REFUSE_BETA:.0f})"
+    text = f"{met.row.member.id} leaves the plane of the cut by {beta}: not in this section; needs 3D or another cut"
     return _finding(met, "member_not_smeared", text)
 
 
 def _finding(met: RowAtCut, code: str, text: str) -> Finding:
     name = met.row.member.id
-    return Finding(
-        id=f"{name}-{code}", code=code, severity="check", where=name, text=text, sources=met.support.sources
-    )
+    return Finding(id=f"{name}-{code}", code=code, severity="check", where=name, text=text, sources=met.support.sources)
 
 
 def _real(met: RowAtCut, material: Material | None) -> RealMember:

@@ -29,7 +29,7 @@ def wall_member(site: Site, wall: CutWall, name: str) -> tuple[SectionMember, No
     run = wall.found.pit.runs[run_index]
     material = next((m for m in site.materials if m.id == run.wall.material), None)
     smeared, missing = _smear(site, wall, run, run_index, material)
-    assumptions = () if run.wall.EI_factor is not None or missing else (_uncracked(name),)
+    assumptions = () if run.wall.EI_factor is not None or missing else (uncracked(name),)
     findings = tuple(
         Finding(
             id=f"{name}-{what.replace(' ', '-')}",
@@ -72,7 +72,8 @@ def _ends(points: Curve) -> tuple[End, ...]:
     return End(to="ground", at=points[0], joint="free"), End(to="ground", at=points[1], joint="free")
 
 
-def _uncracked(name: str) -> Assumption:
+def uncracked(name: str) -> Assumption:
+    """The assumption of a wall whose brief gives no EI_factor."""
     return Assumption(
         id=f"{name}-EI",
         code="uncracked_wall",

@@ -13,20 +13,24 @@ from math import pi
 from ingest.errors import require, require_positive
 from sections.bearing_row import shaft_factor
 from sections.definition import AlsoGives, Back, PerRadian, RealMember, SmearParts
-from sections.ring import disc_stiffness
+from sections.ring import disc_stiffness, pair_factor
 from sections.smear import Direction, MemberQuantity, member_parts
 from sections.smear_ring import ALIKE, SmearedRing, ring_spacing
 from sections.smear_rows import SMALL, RowSpec, apply_rows, chain_factor, direction_of
 
 
-def smear_diametral_struts(real: RealMember, *, radius: float, diameters: int, nu: float) -> SmearedRing:
+def smear_diametral_struts(
+    real: RealMember, *, radius: float, diameters: int, nu: float, offset: float = 0.0
+) -> SmearedRing:
     """Smear n struts along diameters, even in angle, as radial springs and as the disc of equal stiffness.
 
     Args:
-        real: One strut, wall to wall; with a chain, k_effective over L_eff = R.
+        real: One strut, drawn from wall axis to wall axis; with a chain, k_effective over L_eff = R.
         radius: Of the wall axis, m.
         diameters: Number of struts n; 2 n ends.
         nu: Poisson's ratio of the disc.
+        offset: Distance of the struts from the axis, m: they are shorter by cos = sqrt(1 - (offset/R)^2), and only
+            cos of their force and of the movement is radial.
 
     Assumes:
         The struts spread evenly. One strut, or a parallel pair, is not axisymmetric: it needs two runs, with the disc
@@ -34,9 +38,10 @@ def smear_diametral_struts(real: RealMember, *, radius: float, diameters: int, n
     """
     R = require_positive(radius, "radius", "m")
     n = require(float(diameters), "number of struts", least=1.0)
-    springs = SmearParts(per_spacing=n / (pi * R), phi=chain_factor(real))
+    radial = pair_factor(offset, R)
+    springs = SmearParts(per_spacing=n / (pi * R), cos_beta_power=radial, phi=chain_factor(real))
     disc = replace(springs, plane_strain=1.0 - require(nu, "Poisson's ratio", least=0.0, below=0.5))
-    ends = SmearParts(per_spacing=n / pi)
+    ends = SmearParts(per_spacing=n / pi, cos_beta_power=radial)
     specs: list[RowSpec] = [
         ("radial stiffness", "EA_kN", "radial_stiffness_kN_per_m_per_rad", springs),
         ("disc", "EA_kN", "disc_Et_kN_per_m", disc),
@@ -44,7 +49,8 @@ def smear_diametral_struts(real: RealMember, *, radius: float, diameters: int, n
         ("limit", "limit_kN", "limit_kN_per_rad", ends),
     ]
     rows, values = apply_rows(real, specs)
-    back = _back_from(("N", 1.0), ("reaction", -1.0), each=pi / n, radius=R, gives="axial force of one strut end")
+    gives = "axial force of one strut end"
+    back = _back_from(("N", 1.0), ("reaction", -1.0), each=pi / n / radial, radius=R, gives=gives)
     return SmearedRing(
         real=real,
         section=PerRadian(**values, nu=nu, resists="compression"),  # type: ignore[arg-type]

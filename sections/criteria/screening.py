@@ -6,7 +6,9 @@ waler) and the band is the hull of them all. Ratios of demands over construction
 
 from __future__ import annotations
 
+from concurrent.futures import ThreadPoolExecutor
 from dataclasses import replace
+from functools import partial
 from typing import Any
 
 import numpy as np
@@ -21,6 +23,8 @@ from sections.screening.scene import BEAM_EI, WALER_EI, Scene, Variant, make_sce
 
 CODE = "screening"
 CARRIES: tuple[Mechanism, ...] = ("corner", "supports", "wall_change", "floor_step", "opposite_wall")
+WORKERS = 2
+"""Readings run side by side; the sparse factorisation lets go of the interpreter while it works."""
 TENTH = 0.1
 """Share of the vertical stiffness that a wall with weak joints may have along itself (judgement)."""
 ROW_FACE = "the retained face of a row of piles peaks at the supports, finer than any model here resolves"
@@ -35,7 +39,8 @@ def screening(site: Site, found: FoundPit, limits: Limits) -> CriterionResult:
     if scene is None:
         silent = Sheet(stations, f"Not computed: {why}.")
         return silent.close(CODE, "corner", basis=BASIS, reference=REFERENCE, settled_by=why)
-    runs = [run_variant(scene, variant) for variant in variants_of(scene)]
+    with ThreadPoolExecutor(max_workers=WORKERS) as pool:
+        runs = list(pool.map(partial(run_variant, scene), variants_of(scene)))
     low, high = hull(scene, runs)
     peak = peak_factor(stations.rows, scene.soil.strength_known)[:, None]
     high = np.where(_near_gap(found)[:, None] & (high > 1), high * peak, high)

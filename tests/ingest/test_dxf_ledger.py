@@ -17,7 +17,6 @@ from hypothesis import strategies as st
 from ingest.dxf import draw
 from ingest.dxf.reader import read_dxf
 from ingest.dxf.tagscan import scan_tags
-from ingest.errors import InputError
 
 RELEASES = ["R12", "R2000", "R2004", "R2007", "R2010", "R2013", "R2018"]
 
@@ -172,12 +171,8 @@ def corpus() -> list[Path]:
 
 @pytest.mark.corpus
 @pytest.mark.parametrize("path", corpus(), ids=lambda path: path.stem)
-def test_real_drawings_are_read_or_refused_and_their_account_closes(path: Path) -> None:
-    try:
-        found = read_dxf(path)
-    except InputError as error:
-        assert error.remedy
-        pytest.fail(f"every drawing of the corpus can be read: {error}")
+def test_real_drawings_are_read_and_their_account_closes(path: Path) -> None:
+    found = read_dxf(path)
     assert_account_closes(found)
     assert found.entities > 0
     assert all(np.isfinite(part.points).all() for part in found.parts)

@@ -231,6 +231,8 @@ class Block:
     def _slots(self, path: Path, column: int, node: int) -> list[int]:
         """Own unknowns of a wall node: turn, slope down (x, y), slope of the turn."""
         count = len(path.nodes) * path.depth_nodes
+        # a closed wall ends on its first column
+        column = 0 if path.nodes[column] == path.nodes[0] else column
         return [path.first + part * count + column * path.depth_nodes + node for part in range(4)]
 
     def _facet(self, path: Path, facet: int, plate: Plate) -> None:

@@ -118,7 +118,7 @@ def _both_ways(a: float, b: float, spacing: float, levels: tuple[float, ...], k:
     )
 
 
-_L = ((0.0, 0.0), (27.0, 0.0), (27.0, 12.0), (12.0, 12.0), (12.0, 27.0), (0.0, 27.0))
+_L = ((0.0, 0.0), (28.0, 0.0), (28.0, 12.0), (12.0, 12.0), (12.0, 28.0), (0.0, 28.0))
 _GAP = (3.0, 9.0, 15.0, 21.0, 33.0, 39.0, 45.0)
 _TRAPEZOID_SURCHARGE = 30.0
 
@@ -148,9 +148,9 @@ SCENES: tuple[Scene, ...] = (
         corners=box(30, 16), dig=((0.0, 4.0),), toe=11.0, wall="monolithic", mirror=(15.0, 8.0), step=1.0,
     ),
     Scene(
-        name="ell", title="L of two legs 12 m wide and 27 m long, panels, monolithic, two levels of level anchors",
-        corners=_L, dig=((0.0, 8.0),), toe=13.0, wall="monolithic", props=anchors(_L, 3.0, (2.0, 5.0), 2.0e4),
-        step=1.5,
+        name="ell", title="L of two legs 12 m wide and 28 m long, panels, monolithic, two levels of level anchors",
+        corners=_L, dig=((0.0, 8.0),), toe=13.0, wall="monolithic", props=anchors(_L, 4.0, (2.0, 5.0), 2.5e4),
+        step=2.0,
     ),
     Scene(
         name="hexagon_panels", title="hexagon of sides 12 m (120 degree corners), panels, two levels of level anchors",

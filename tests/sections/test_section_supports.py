@@ -139,7 +139,7 @@ def test_the_foot_of_a_raker_is_told_to_be_taken_as_held() -> None:
 
 def test_the_preload_of_an_anchor_with_a_bond_length_is_in_the_balance_of_forces() -> None:
     anchors = tuple(
-        anchor((x, 200.0), (0.0, 1.0), -2.0, free_length=8.0, bond_length=6.0, bond_diameter=0.15, EA=1e5, preload=300.0)
+        anchor((x, 200.0), (0.0, 1.0), -2.0, free_length=8.0, bond_length=6.0, bond_diameter=0.15, EA=1e5, preload=300)
         for x in (110.0, 112.0, 114.0, 116.0, 118.0, 120.0)
     )
     _, cut, _, members, _ = build(rectangle(), (115, 182), (115, 238), [15.0], supports=anchors)
@@ -149,7 +149,8 @@ def test_the_preload_of_an_anchor_with_a_bond_length_is_in_the_balance_of_forces
 
 
 def test_the_area_of_a_strut_comes_from_its_section_or_from_its_stiffness_and_material() -> None:
-    supports = tuple(strut((x, 200.0), (x, 220.0), EA=4.2e6, section=None, material="steel") for x in (110.0, 115.0, 120.0))
+    places = (110.0, 115.0, 120.0)
+    supports = tuple(strut((x, 200.0), (x, 220.0), EA=4.2e6, section=None, material="steel") for x in places)
     steel = Material(id="steel", kind="steel", E=210e6)
     _, _, _, members, _ = build(
         rectangle(), (115, 182), (115, 238), [15.0, 65.0], supports=supports, materials=(steel,)

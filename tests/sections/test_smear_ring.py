@@ -274,3 +274,16 @@ def test_physical_nonsense_is_refused_with_the_allowed_range(call, bad):
 def test_a_value_outside_its_range_is_refused(call):
     with pytest.raises(ValueError, match="allowed is"):
         call()
+
+
+def test_a_pair_of_struts_beside_the_axis_is_as_stiff_radially_as_their_cosine():
+    """Offset c: shortened u cos from either end over a length 2 R cos, so N = EA u/R; its radial part is N cos."""
+    EA, R, c, u = 5.0e6, 10.0, 6.0, 1e-3
+    cosine = 0.8
+    made = smear_diametral_struts(RealMember(EA_kN=EA, preload_kN=-500.0), radius=R, diameters=2, nu=0.2, offset=c)
+    assert_rows_hold(made)
+    N = EA * 2 * u * cosine / (2 * R * cosine)
+    per_radian = 4 * N * cosine / (2 * pi)
+    assert made.section.radial_stiffness_kN_per_m_per_rad * u == pytest.approx(per_radian)
+    assert per_radian * back(made, "N", "kN/rad").factor == pytest.approx(N)
+    assert made.section.preload_kN_per_rad * back(made, "N", "kN/rad").factor == pytest.approx(-500.0)
