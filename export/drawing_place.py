@@ -10,6 +10,8 @@ from ingest.dxf.drawing_unit import INSUNITS
 from ingest.model import Registered, Site
 from ingest.units import METRES
 
+IMPERIAL = ("inch", "foot", "yard", "mile")
+
 
 @dataclass(frozen=True)
 class DrawingPlace:
@@ -54,7 +56,7 @@ class DrawingPlace:
         from ezdxf.math import Matrix44
 
         drawing.header["$INSUNITS"] = self.insunits
-        drawing.header["$MEASUREMENT"] = 0 if self.unit in ("inch", "foot", "yard", "mile") else 1
+        drawing.header["$MEASUREMENT"] = 0 if self.unit.removeprefix("us_survey_") in IMPERIAL else 1
         k, (x, y), angle = self.units_per_metre, self.registered.shift, radians(-self.registered.rotation_deg)
         if (k, x, y, angle) == (1.0, 0.0, 0.0, 0.0):
             return

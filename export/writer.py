@@ -20,6 +20,7 @@ from sections.model import Proposal
 
 BIM_FILES = ("issues.bcf", "requirements.ids", "implied.ifc")
 
+
 def write_all(proposal: Proposal, definitions: Sequence[SectionDefinition], site: Site, folder: Path) -> list[str]:
     """Write proposal, sections, report, drawings, tables and the files for the BIM side, whole or not at all.
 

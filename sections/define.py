@@ -9,6 +9,7 @@ from ingest.model import Material, Site
 from ingest.trail import Assumption, Finding, NotAssessed
 from sections.cut import Cut, crossings
 from sections.definition import (
+    Action,
     Ground,
     Implied,
     RingAxis,
@@ -27,7 +28,7 @@ from sections.section_bearing import bearing_members
 from sections.section_frame import borehole_distance, local_point, mirrors, model_extent, receptors_met, world_point
 from sections.section_ground import layers_of_cut, soil_material, surface_line, water_lines
 from sections.section_loads import load_rows, load_stages
-from sections.section_plates import slab_members
+from sections.section_plates import slab_parts
 from sections.section_ring import ring_parts
 from sections.section_stages import DigProfile, Prop, dig_profile, plan_stages
 from sections.section_supports import support_members
@@ -74,6 +75,7 @@ class _Parts:
     implied: tuple[Implied, ...]
     assumptions: tuple[Assumption, ...]
     findings: tuple[Finding, ...]
+    actions: tuple[Action, ...] = ()
 
 
 def define_section(site: Site, cut: Cut, judged: Judged) -> SectionDefinition:
@@ -117,7 +119,7 @@ def define_section(site: Site, cut: Cut, judged: Judged) -> SectionDefinition:
         criteria=judged.criteria,
         balance=balance_section(cut, parts.members, columns, materials, parts.loads, site.water_retained),
         implied=parts.implied,
-        actions_without_twin=list_actions(cut, parts.members),
+        actions_without_twin=(*list_actions(cut, parts.members), *parts.actions),
         losses=tuple(loss for loss in judged.losses if loss.member in {m.id for m in parts.members})[:3],
         receptors=receptors_met(site, cut),
         assumptions=(*parts.assumptions, *staged),
@@ -129,17 +131,18 @@ def define_section(site: Site, cut: Cut, judged: Judged) -> SectionDefinition:
 def _plane(site: Site, cut: Cut, names: dict[str, str], stands_for: float | None) -> _Parts:
     made = [wall_member(site, wall, names[wall.side]) for wall in cut.walls]
     supports, props, refused = support_members(site, cut, names)
-    slabs, slab_props = slab_members(site, cut, names)
+    slabs = slab_parts(site, cut, names)
     piles, pile_notes = bearing_members(site, cut)
     loads, load_notes = load_rows(site, cut, stands_for)
-    members = (*(member for member, _ in made), *supports, *slabs, *piles)
+    members = (*(member for member, _ in made), *supports, *slabs.members, *piles)
     return _Parts(
         members=members,
-        props=(*props, *slab_props),
+        props=(*props, *slabs.props),
         loads=loads,
         implied=imply(members, loads),
+        actions=slabs.actions,
         assumptions=tuple(a for _, (taken, _) in made for a in taken),
-        findings=(*(f for _, (_, seen) in made for f in seen), *refused, *pile_notes, *load_notes),
+        findings=(*(f for _, (_, seen) in made for f in seen), *refused, *slabs.findings, *pile_notes, *load_notes),
     )
 
 

@@ -181,7 +181,7 @@ class JudgedPit:
     def _why_provisional(self, i: int, o: int) -> tuple[str, ...]:
         if not self.provisional[i, o]:
             return ()
-        recalled = [f"{r.code} quotes constants from memory" for r in self.results if r.recalled and r.assessed[i, o]]
+        recalled = [f"{r.code.replace('_', ' ')} quotes constants from memory" for r in self.results if r.recalled and r.assessed[i, o]]
         return (*self.reasons[int(self.unconfirmed[i])], *recalled)
 
     def _unspoken(self, i: int, o: int) -> str:

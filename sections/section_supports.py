@@ -73,7 +73,7 @@ def _notes(met: RowAtCut, cut: Cut, limits: Limits) -> list[Finding]:
         return [_finding(met, "far_wall_not_in_section", text)]
     if met.role == "raker":
         text = (
-            f"The foot of {name} is drawn as held. A foot on the ground gives way: its stiffness in line with the raker "
+            f"The foot of {name} is drawn as held. A foot on the ground gives way: its stiffness along the raker "
             "is not given, and the support lies between about a third and the whole of EA/L (judgement)"
         )
         return [_finding(met, "raker_foot", text)]

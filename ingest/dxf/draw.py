@@ -25,6 +25,7 @@ from ingest.dxf.clip import clip_parts, clipping_outline
 from ingest.dxf.curves import SAGITTA, Floats
 from ingest.dxf.figures import sketch
 from ingest.dxf.layers import LayerTable, LayerUse
+from ingest.dxf.loading import release
 from ingest.dxf.placing import IDENTITY, Placing, place
 from ingest.dxf.sketch import Batch, Left, Sketch, settle
 from ingest.dxf.text import decode
@@ -95,7 +96,7 @@ class Drawer:
             self._draw_chunk(chunk)
             for _, entity in chunk:
                 self._database.discard(entity)
-                vars(entity).clear()
+                release(entity)
             if progress is not None:
                 progress(first + len(items))
             if len(self.drawn.parts) > MOST_PARTS:

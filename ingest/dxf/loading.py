@@ -79,8 +79,16 @@ def load_document(path: Path) -> Loaded:
 def let_go(document: Any) -> None:
     """Take a drawing apart, so that its memory comes back at once and not when the collector finds its circles."""
     for entity in list(document.entitydb.values()):
-        vars(entity).clear()
+        release(entity)
     vars(document).clear()
+
+
+def release(entity: Any) -> None:
+    """Free what one loaded entity holds; it refers to itself, so that nothing else would before the collector comes."""
+    try:
+        entity.destroy()
+    except AttributeError:  # some kinds fail on what they never had
+        vars(entity).clear()
 
 
 def _place(words: str) -> str:

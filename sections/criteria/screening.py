@@ -41,9 +41,7 @@ def screening(site: Site, found: FoundPit, limits: Limits) -> CriterionResult:
         return silent.close(CODE, "corner", basis=BASIS, reference=REFERENCE, settled_by=why)
     with ThreadPoolExecutor(max_workers=WORKERS) as pool:
         runs = list(pool.map(partial(run_variant, scene), variants_of(scene)))
-    low, high = hull(scene, runs)
-    peak = peak_factor(stations.rows, scene.soil.strength_known)[:, None]
-    high = np.where(_near_gap(found)[:, None] & (high > 1), high * peak, high)
+    low, high = band_of(scene, runs, limits_on=scene.soil.strength_known)
     sheet = Sheet(stations, "Not computed here.")
     for o, name in enumerate(WALL_OUTPUTS):
         # The retained face of a row of piles peaks at strut heads that neither model nor oracle resolves.
@@ -106,6 +104,13 @@ def _continuities(scene: Scene) -> tuple[Variant, ...]:
     if bool(np.all(stations.jointed)):
         return (jointed, capped) if beam else (jointed,)
     return (whole, weak, capped, jointed) if beam else (whole, weak, jointed)
+
+
+def band_of(scene: Scene, runs: list[VariantRatios], *, limits_on: bool) -> tuple[Floats, Floats]:
+    """Band (n, 4) at the stations before any margin: the hull of the runs, its peaks beside gaps raised."""
+    low, high = hull(scene, runs)
+    peak = peak_factor(scene.found.stations.rows, limits_on)[:, None]
+    return low, np.where(_near_gap(scene.found)[:, None] & (high > 1), high * peak, high)
 
 
 def hull(scene: Scene, runs: list[VariantRatios]) -> tuple[Floats, Floats]:

@@ -21,6 +21,7 @@ from skfem import (
     BilinearForm,
     ElementHex1,
     ElementLineHermite,
+    ElementLineP1,
     ElementQuad1,
     ElementQuadBFS,
     ElementVector,
@@ -29,6 +30,7 @@ from skfem import (
     MeshLine,
     MeshQuad,
 )
+from skfem.models import laplace
 from skfem.helpers import dd, ddot, eye, sym_grad, trace
 
 Array = np.ndarray
@@ -166,13 +168,18 @@ class Block:
             for basis, turn, share in self._plates(path, facet, plate):
                 self.loads.append((turn.T @ (share * pressed.assemble(basis)), turn))
 
-    def beam(self, path: Path, depth: float, EI: float) -> None:
-        """Add a waler or capping beam along a whole wall."""
-        node = int(np.argmin(abs(self.depth - depth)))
+    def beam(self, path: Path, depth: float, EI: float, EA: float) -> None:
+        """Add a waler or capping beam along a whole wall, bending and stretching, whole round its corners."""
+        node = self._level(depth)
         for facet, length in enumerate(path.lengths):
-            basis = Basis(MeshLine(np.array([0.0, length])), ElementLineHermite(), intorder=4)
-            turn = self._turn(path, facet, basis, lambda p: (int(p[0] > 0), node), ("w", "ws"))
-            self._add_turned(EI * _bend.assemble(basis), turn)
+            mesh = MeshLine(np.array([0.0, length]))
+            for element, kinds, form in (
+                (ElementLineHermite(), ("w", "ws"), _bend),
+                (ElementLineP1(), ("u",), laplace),
+            ):
+                basis = Basis(mesh, element, intorder=4)
+                turn = self._turn(path, facet, basis, lambda p: (int(p[0] > 0), node), kinds)
+                self._add_turned((EA if len(kinds) == 1 else EI) * form.assemble(basis), turn)
 
     def at(self, path: Path, column: int, depth: float, direction: Sequence[float]) -> list[tuple[int, float]]:
         """Unknowns of the plan movement of a wall node along a direction, for `spring`."""

@@ -233,7 +233,7 @@ def _finish(
     block.load(path, lambda f, z: pressure(scene, path.normals[f], dug[f])(z))
     if scene.waler_EI is not None:
         for depth in sorted({p.depth for p in scene.props}):
-            block.beam(path, depth, scene.waler_EI)
+            block.beam(path, depth, scene.waler_EI, scene.waler_EA)
     held = [_hang(scene, block, path, xy, prop) for prop in scene.props]
     block.solve()
     force = np.array([np.nan if h is None else prop.stiffness * h[1] * sum(block.U[u] * w for u, w in h[0])

@@ -57,6 +57,11 @@ class Scene:
     round: bool = False
 
     @property
+    def waler_EA(self) -> float:
+        """EA of the waler, kN: a radius of gyration of 0.25 m."""
+        return 16.0 * (self.waler_EI or 0.0)
+
+    @property
     def rows(self) -> bool:
         return self.wall == "rows"
 
