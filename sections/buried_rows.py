@@ -9,7 +9,7 @@ import numpy as np
 
 from ingest.model import Limits
 from sections.floors import FloorPlan, floor_at_wall
-from sections.model import Floats, PitShape, Step, SupportRow
+from sections.model import Bools, Floats, PitShape, Step, SupportRow
 
 BEYOND = 0.25
 """How far beyond a step the floor is looked up, m."""
@@ -47,7 +47,7 @@ def _trimmed(row: SupportRow, shape: PitShape, at: Floats, floors: Floats, limit
     return replace(row, member=replace(row.member, spacing_range=spread), tributary_head=head, tributary_far=far)
 
 
-def _widths(places: Floats, widths: Floats, shape: PitShape, at: Floats, buried: Floats) -> Floats:
+def _widths(places: Floats, widths: Floats, shape: PitShape, at: Floats, buried: Bools) -> Floats:
     """Widths with the end shares cut at the steps; `buried` (2, k) says so before and behind each step."""
     out = widths.copy()
     met = np.flatnonzero(~np.isnan(places))

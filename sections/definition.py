@@ -163,6 +163,9 @@ class PerMetre:
     contact_kPa: float | None = None
     k_effective_kN_per_m_per_m: float | None = None
     free_strain: float | None = None
+    soil_displaced_m3_per_m2: float | None = None
+    """Of a wall: soil in its place per m2 of elevation. Where the mesh still holds that soil the net weight is
+    weight_kN_per_m2 less the unit weight of the soil times this."""
 
 
 @record
@@ -188,6 +191,27 @@ class PerRadian:
     resists: Literal["both", "compression", "tension"] = "both"
     limit_kN_per_rad: float | None = None
     contact_kPa: float | None = None
+    soil_displaced_m3_per_m2: float | None = None
+
+
+@record
+class BelowFormation:
+    """What posts find below formation, where they are separate piles and no wall; shares are per metre of wall.
+
+    `clay_N_p`: (level, N_p): clay gives at most N_p s_u on the width of a post, times `active_share` per metre of wall.
+    """
+
+    level: float
+    width: float
+    active_share: float
+    """Of active pressure and water, width over spacing."""
+    passive_share_coarse: float
+    """Of the plane-strain passive of coarse soil, min(spacing, 3 width) over spacing."""
+    no_passive_to: float
+    """Level down to which no passive is counted."""
+    clay_N_p: tuple[XZ, ...]
+    how: str
+    basis: str
 
 
 @record
@@ -258,6 +282,8 @@ class SectionMember:
     back: tuple[Back, ...]
     sources: tuple[Source, ...] = ()
     assumptions: tuple[str, ...] = ()
+    below_formation: BelowFormation | None = None
+    """Of king posts; None for every other member."""
 
 
 @record

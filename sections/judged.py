@@ -123,6 +123,10 @@ class JudgedPit:
             reference=result.reference,
             inputs={name: _finite(values[i]) for name, values in result.inputs.items()},
             sentence=self._criterion_sentence(result, i, o),
+            gate=bool(result.gate[i, o]),
+            gap=bool(_missing(result)[i, o]),
+            carries=result.carries,
+            by_class_only=result.by_class_only,
         )
 
     def _criterion_sentence(self, result: CriterionResult, i: int, o: int) -> str:
@@ -169,6 +173,7 @@ class JudgedPit:
             stage=None if word in ("not_assessed", "not_two_dimensional") else self._stage(i, o),
             sentence=build_sentence(said, self.limits),
             margin=None if low is None else (float(c.e_low[i, o]), float(c.e_high[i, o])),
+            margin_measured=not bool(c.not_measured[i, o]),
         )
 
     def _stage(self, i: int, o: int) -> str:
@@ -181,7 +186,11 @@ class JudgedPit:
     def _why_provisional(self, i: int, o: int) -> tuple[str, ...]:
         if not self.provisional[i, o]:
             return ()
-        recalled = [f"{r.code.replace('_', ' ')} quotes constants from memory" for r in self.results if r.recalled and r.assessed[i, o]]
+        recalled = [
+            f"{r.code.replace('_', ' ')} quotes constants from memory"
+            for r in self.results
+            if r.recalled and r.assessed[i, o]
+        ]
         return (*self.reasons[int(self.unconfirmed[i])], *recalled)
 
     def _unspoken(self, i: int, o: int) -> str:

@@ -11,6 +11,7 @@ from math import cos, radians, sin, sqrt
 import numpy as np
 
 from ingest.errors import require, require_positive
+from sections.definition import BelowFormation
 from sections.model import Floats
 
 DEEP_FACTOR, SURFACE_FACTOR = 9.0, 2.0
@@ -87,6 +88,30 @@ def clay_resistance(depth: float, su: float, width: float, spacing: float, *, ig
     start = ignored_depth(width) if ignored is None else require(ignored, "ignored depth", "m", least=0.0)
     area = _ramp_area(depth, width) - _ramp_area(min(start, depth), width)
     return area * su * active_share(width, spacing)
+
+
+def below_formation(level: float, toe: float, width: float, spacing: float) -> BelowFormation:
+    """Numbers that a plane-strain section needs for posts below formation.
+
+    Args:
+        level: Of formation, m.
+        toe: Of the posts, m.
+        width: Flange or encasement, m.
+        spacing: Of the posts, m.
+    """
+    depth = np.array(sorted({0.0, min(WIDTHS_MOBILISED * width, level - toe), level - toe}))
+    factors = clay_factor(depth, width)
+    return BelowFormation(
+        level=level,
+        width=width,
+        active_share=active_share(width, spacing),
+        passive_share_coarse=passive_share(width, spacing),
+        no_passive_to=level - ignored_depth(width),
+        clay_N_p=tuple((level - float(z), float(N)) for z, N in zip(depth, factors, strict=True)),
+        how="springs on the wall limited to these, or ground below formation weakened until its passive equals them; "
+        "never by a factor on wall friction, which leaves far more",
+        basis="width of 3 posts in coarse soil and N_p of a pile in clay, Broms 1964 and design practice (recalled)",
+    )
 
 
 def _ramp_area(depth: float, width: float) -> float:

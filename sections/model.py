@@ -253,6 +253,8 @@ class Verdict:
     sentence: str
     margin: tuple[float, float] | None = None
     """Margin of the model's error that is in the band: low x (1 - first), high x (1 + second)."""
+    margin_measured: bool = True
+    """False where no margin was ever measured: no relief may be claimed."""
 
 
 @record
@@ -365,6 +367,14 @@ class Band:
     reference: str
     inputs: dict[str, str | float | None]
     sentence: str
+    gate: bool = False
+    """No 2D section may be trusted for this output."""
+    gap: bool = False
+    """What it looks at is there and could not be evaluated: no relief may be claimed."""
+    carries: tuple[Mechanism, ...] = ()
+    """Further mechanisms this one computation contains; it stands for their product, their hulls only widen it."""
+    by_class_only: bool = False
+    """The band comes from the class of wall and place alone: never `holds`."""
 
 
 @dataclass(frozen=True, kw_only=True)

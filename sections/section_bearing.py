@@ -35,14 +35,16 @@ def bearing_members(site: Site, cut: Cut) -> tuple[tuple[SectionMember, ...], tu
     pit = cut.walls[0].found.stations.pit
     for number, row in enumerate(_rows(np.asarray(x), piles), start=1):
         name = f"{pit}-bearing_pile-{number}"
-        spacing = _spacing(np.asarray(y)[row])
         first = piles[row[0]]
+        spacing = None if first.diameter is None else _spacing(np.asarray(y)[row], first.diameter)
         if spacing is None or first.diameter is None:
             findings.append(_alone(name, first))
             continue
         findings += check_bearing_row(first.diameter, spacing, name)
         if find_bearing_row(first.diameter, spacing, first.diameter).treat_as != "springs":
             members.append(_member(site, name, [piles[i] for i in row], float(np.mean(np.asarray(x)[row])), spacing))
+            if not members[-1].smear:
+                findings.append(_soft(name, first))
     return tuple(members), tuple(findings)
 
 
@@ -71,10 +73,10 @@ def _rows(x: Floats, piles: Sequence[Pile]) -> list[list[int]]:
     return sorted(rows, key=lambda row: float(x[row[0]]))
 
 
-def _spacing(y: Floats) -> float | None:
-    """Spacing of a row across the cut: the gap that holds the plane, or the nearest to it."""
+def _spacing(y: Floats, diameter: float) -> float | None:
+    """Spacing of a row across the cut, the middle one of its gaps; circles within a diameter are one pile."""
     gaps = np.diff(np.sort(y))
-    gaps = gaps[gaps > 0.05]
+    gaps = gaps[gaps >= diameter - 1e-6]
     return float(np.median(gaps)) if len(gaps) else None
 
 
@@ -85,6 +87,17 @@ def _alone(name: str, pile: Pile) -> Finding:
         severity="note",
         where=name,
         text="A bearing pile near the cut stands in no row across it: no wall is drawn; use a spring or leave it out",
+        sources=pile.sources,
+    )
+
+
+def _soft(name: str, pile: Pile) -> Finding:
+    return Finding(
+        id=f"{name}-stiffness",
+        code="pile_input_missing",
+        severity="check",
+        where=name,
+        text=f"The modulus of {name} is not given: its stiffness is not in the section",
         sources=pile.sources,
     )
 

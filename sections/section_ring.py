@@ -13,7 +13,7 @@ from sections.ring_beams import beams_and_slabs
 from sections.ring_loads import ring_loads
 from sections.ring_supports import ring_supports
 from sections.section_stages import Prop
-from sections.section_walls import uncracked
+from sections.section_walls import displaced, uncracked
 from sections.smear_ring import SmearedRing, ring_spacing, smear_ring_pile_wall, smear_ring_wall
 from sections.wall_rows import round_pile
 
@@ -83,7 +83,7 @@ def _wall(site: Site, wall: CutWall, name: str) -> tuple[SectionMember, tuple[As
         points=points,
         ends=tuple(End(to="ground", at=point, joint="free") for point in points),
         real=smeared.real,
-        section=smeared.section,
+        section=replace(smeared.section, soil_displaced_m3_per_m2=displaced(smeared.real)),
         smear=smeared.smear,
         back=smeared.back,
         sources=run.wall.sources,

@@ -2,10 +2,13 @@
 
 from __future__ import annotations
 
+from dataclasses import replace
+
 from ingest.model import Material, Pile, Site
 from ingest.trail import Assumption, Finding
 from sections.cut import CutWall
-from sections.definition import Curve, End, PerMetre, RealMember, SectionMember
+from sections.definition import BelowFormation, Curve, End, PerMetre, RealMember, SectionMember
+from sections.king_posts import below_formation
 from sections.model import Run, Wall
 from sections.smear_rows import Smeared
 from sections.wall_rows import post, round_pile, smear_continuous_wall, smear_pile_wall
@@ -29,7 +32,9 @@ def wall_member(site: Site, wall: CutWall, name: str) -> tuple[SectionMember, No
     run = wall.found.pit.runs[run_index]
     material = next((m for m in site.materials if m.id == run.wall.material), None)
     smeared, missing = _smear(site, wall, run, run_index, material)
-    assumptions = () if run.wall.EI_factor is not None or missing else (uncracked(name),)
+    below, more = _below(wall, run, smeared)
+    missing = (*missing, *more)
+    assumptions = () if run.wall.EI_factor is not None or not smeared.smear else (uncracked(name),)
     findings = tuple(
         Finding(
             id=f"{name}-{what.replace(' ', '-')}",
@@ -37,7 +42,7 @@ def wall_member(site: Site, wall: CutWall, name: str) -> tuple[SectionMember, No
             severity="check",
             where=name,
             text=f"{what} of the {run.wall.kind} wall at chainage {wall.at:.2f} is not given: "
-            "its stiffness is not in the section",
+            f"its {'resistance below formation' if what in more else 'stiffness'} is not in the section",
             sources=run.wall.sources[:1],
         )
         for what in missing
@@ -52,13 +57,32 @@ def wall_member(site: Site, wall: CutWall, name: str) -> tuple[SectionMember, No
         points=points,
         ends=_ends(points),
         real=smeared.real,
-        section=smeared.section,
+        section=replace(smeared.section, soil_displaced_m3_per_m2=displaced(smeared.real)),
         smear=smeared.smear,
         back=smeared.back,
         sources=run.wall.sources,
         assumptions=tuple(a.id for a in assumptions),
+        below_formation=below,
     )
     return member, (assumptions, findings)
+
+
+def displaced(real: RealMember) -> float | None:
+    """Soil that a wall displaces per m2 of elevation, m: its area per metre run."""
+    if not (real.EA_kN and real.E_kPa):
+        return None
+    return real.EA_kN / real.E_kPa / (real.spacing or 1.0)
+
+
+def _below(wall: CutWall, run: Run, smeared: Smeared) -> tuple[BelowFormation | None, tuple[str, ...]]:
+    """Posts below formation, and what is missing for it."""
+    floor, toe = wall.level["floor"], wall.level["toe"]
+    if run.wall.kind != "king_post" or floor is None or toe is None or toe >= floor:
+        return None, ()
+    width, spacing = smeared.real.thickness, smeared.real.spacing
+    if width is None or spacing is None or width > spacing:
+        return None, ("post width",)
+    return below_formation(floor, toe, width, spacing), ()
 
 
 def _points(wall: CutWall) -> Curve:

@@ -50,6 +50,8 @@ class Combined:
     e_low: Floats
     e_high: Floats
     """Margin that was applied."""
+    not_measured: Bools
+    """True where no margin exists."""
 
 
 def share_weighted(ratio: float, share: float | None) -> tuple[float, float]:
@@ -224,6 +226,7 @@ def combine_results(results: Sequence[CriterionResult], margins: StationMargins,
         missing=missing,
         e_low=e_low,
         e_high=e_high,
+        not_measured=margins.not_measured,
     )
 
 

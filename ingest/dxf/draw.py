@@ -86,7 +86,7 @@ class Drawer:
     def draw(self, account: Account, progress: Callable[[int], None] | None = None) -> Drawn:
         """Draw all entities of the modelspace.
 
-        The account's list of them is emptied on the way, and each is taken out of the drawing, so that memory is given
+        The account's list of them is emptied on the way and what each holds is freed, so that the drawing gives memory
         back while the parts take it.
         """
         account.space.reverse()

@@ -14,34 +14,39 @@ from sections.screening.scene import Scene, Variant, beams_of, members_of, wall_
 from sections.screening.solve import Answer, Factored, answer, factorise
 from sections.screening.strips import Smeared, smear_rows, stage_twins
 from sections.screening.supports import Members, select
-from sections.screening.wall import FoldedWall, load_vector
 
 
 @dataclass(frozen=True)
 class VariantRatios:
-    """Ratios (ns, 4) of one variant for `NAMES`, and the stage that governs in 3D and in the twin, (ns, 4) each."""
+    """Ratios (ns, 4) of one variant for `NAMES`, and the stage that governs in 3D and in the twin, (ns, 4) each.
+
+    `settled` is False where the earth pressures found no balance in some stage: its ratios mean nothing then.
+    """
 
     variant: Variant
     ratio: Floats
     stage_real: Ints
     stage_flat: Ints
+    settled: bool = True
 
 
 def run_variant(scene: Scene, variant: Variant) -> VariantRatios:
     """Run all stages of one variant."""
     members, rows = members_of(scene, variant) if scene.found.rows else (None, ())
     smeared = smear_rows(scene, members, rows) if members is not None else _no_rows(scene)
-    real, flat = [], []
+    real, flat, balanced = [], [], True
     for dig_to, rows_in in scene.stages:
         wall, limits = wall_of(scene, variant, dig_to)
         keep = np.array([rows_in[r] for r in rows], bool)
         here = select(members, keep) if members is not None else _no_members()
-        found = _solve(wall, limits, factorise(wall, here, beams_of(scene, variant, rows_in)))
+        beams = beams_of(scene, variant, rows_in)
+        found, settled = _solve(limits, factorise(wall, here, beams, scene.pattern))
         force = np.full(len(rows), np.nan)
         force[keep] = found.force
         real.append(wall_demands(wall, found, _per_metre(smeared, force)))
         groups, answers, which = stage_twins(wall, limits, smeared, rows_in)
         flat.append(twin_demands(groups, answers, which, len(scene.found.rows)))
+        balanced &= settled and all(twin.settled for twin in answers)
     most_real, where_real = over_stages(real)
     most_flat, where_flat = over_stages(flat)
     piles = scene.found.stations.rows[scene.grid.station]
@@ -50,23 +55,24 @@ def run_variant(scene: Scene, variant: Variant) -> VariantRatios:
         ratios(most_real, most_flat, bay_mean(scene, smeared), piles),
         np.column_stack([where_real[name] for name in NAMES]),
         np.column_stack([where_flat[name] for name in NAMES]),
+        balanced,
     )
 
 
-def _solve(wall: FoldedWall, limits: PressureLimits, model: Factored) -> Answer:
+def _solve(limits: PressureLimits, model: Factored) -> tuple[Answer, bool]:
+    """Answer of a stage, and whether the pressure limits came to rest."""
     if not np.any(np.isfinite(limits.relief)):
-        return answer(model, model.solve(model.load))
+        return answer(model, model.solve(model.load)), True
+    wall = model.wall
+    ends, normals = wall.ends, wall.normals
 
     def movement(over: Floats) -> Floats:
-        U = model.solve(model.load + load_vector(wall, np.where(wall.on[:, :, None], over, 0.0)))
-        value = answer(model, U).value
-        ends, normals = wall.ends, wall.normals
+        value = answer(model, model.solve(model.load + model.press(over))).value
         nodes = sum(np.einsum("sd,sdz->sz", normals, value[ends[:, i], :2]) for i in (0, 1)) / 2
         return at_element_ends(np.asarray(nodes))
 
-    over, _ = settle(lambda e: excess(limits, movement(e)), np.zeros(wall.pressure.shape))
-    U = model.solve(model.load + load_vector(wall, np.where(wall.on[:, :, None], over, 0.0)))
-    return answer(model, U)
+    over, settled = settle(lambda e: excess(limits, movement(e)), np.zeros(wall.pressure.shape))
+    return answer(model, model.solve(model.load + model.press(over))), settled
 
 
 def _per_metre(smeared: Smeared, force: Floats) -> Floats:

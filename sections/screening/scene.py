@@ -4,6 +4,7 @@ from __future__ import annotations
 
 from collections.abc import Sequence
 from dataclasses import dataclass
+from functools import cached_property
 
 import numpy as np
 
@@ -11,6 +12,7 @@ from ingest.model import Material, Site
 from sections.model import Bools, Floats, FoundPit, Ints, SupportRow, Wall
 from sections.screening.grid import Grid, column_at, make_grid, node_at
 from sections.screening.limits import PressureLimits
+from sections.screening.pattern import Pattern, make_pattern
 from sections.screening.soil import Soil, find_limits, read_soil, unbalanced
 from sections.screening.supports import Beams, Members
 from sections.screening.wall import FoldedWall
@@ -56,6 +58,11 @@ class Scene:
     on: Bools
     stages: tuple[tuple[float, tuple[bool, ...]], ...]
     """Per stage the level dug to (no deeper than the floor) and which rows are in."""
+
+    @cached_property
+    def pattern(self) -> Pattern:
+        """Pattern of the matrix, the same in every variant and stage."""
+        return make_pattern(len(self.grid.points), self.grid.closed, len(self.grid.z))
 
 
 def make_scene(site: Site, found: FoundPit) -> tuple[Scene | None, str]:

@@ -5,7 +5,7 @@ A strut ties its wall to the wall at its other end; the section then holds both 
 
 from __future__ import annotations
 
-from dataclasses import dataclass
+from dataclasses import dataclass, replace
 
 import numpy as np
 
@@ -177,5 +177,5 @@ def _solve(wall: FoldedWall, limits: PressureLimits, facets: list[int], props: l
         relief=limits.relief[facets],
         reserve=limits.reserve[facets],
     )
-    over, _ = settle(lambda e: excess(few, model.movement(e)), start)
-    return model.answer(over)
+    over, settled = settle(lambda e: excess(few, model.movement(e)), start)
+    return replace(model.answer(over), settled=settled)

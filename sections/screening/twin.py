@@ -35,6 +35,8 @@ class TwinAnswer:
     w: Floats
     M: Floats
     force: Floats
+    settled: bool = True
+    """Whether the pressure limits came to rest."""
 
 
 @dataclass(frozen=True)

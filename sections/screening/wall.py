@@ -20,6 +20,7 @@ from scipy import sparse
 
 from sections.model import Bools, Floats, Ints
 from sections.screening.hermite import LineMatrices, line_matrices
+from sections.screening.pattern import Pattern
 
 SLIP = 0.05
 """Ground resistance along the wall as a share of that across it (tuned to the block on one L-shaped pit)."""
@@ -122,8 +123,8 @@ def element_unknowns(wall: FoldedWall) -> Ints:
     return np.asarray(index.reshape(len(parts), ne, 24))
 
 
-def assemble(wall: FoldedWall) -> tuple[sparse.coo_matrix, Floats]:
-    """Stiffness of wall, ground and corners, and the load vector; members and walers are added apart."""
+def assemble(wall: FoldedWall, pattern: Pattern) -> sparse.csr_matrix:
+    """Stiffness of wall, ground and corners; members and walers are added apart."""
     lengths = np.hypot(*wall.chords.T)
     along, down = along_matrices(wall, line_matrices(lengths)), line_matrices(np.diff(wall.z))
     on = wall.on.astype(float)
@@ -137,26 +138,27 @@ def assemble(wall: FoldedWall) -> tuple[sparse.coo_matrix, Floats]:
         (ACROSS * wall.spread * on, along["slope"], down.mass),
         (DOWN * wall.spread * on, along["mass"], down.slope),
     )
-    shape = (*on.shape, 6, 4, 6, 4)
-    element = np.zeros(shape)
-    for factor, s_part, z_part in terms:
-        element += np.einsum("se,sij,ekl->seikjl", factor, s_part, z_part, optimize=True)
-    index = element_unknowns(wall)
-    rows, cols = np.repeat(index, 24, -1).ravel(), np.tile(index, (1, 1, 24)).ravel()
-    stiffness = sparse.coo_matrix((element.reshape(-1), (rows, cols)), shape=(wall.size, wall.size))
-    return stiffness + corner_law(wall, down), load_vector(wall, wall.pressure * on[:, :, None])
+    s_parts = np.stack([s_part.reshape(-1, 36) for _, s_part, _ in terms], axis=-1)
+    z_parts = np.stack([z_part.reshape(-1, 16) for _, _, z_part in terms], axis=1)
+    factors = np.stack([factor for factor, _, _ in terms], axis=-1)
+    elements = np.matmul(s_parts[:, None], factors[..., None] * z_parts[None])
+    return pattern.gather(elements) + corner_law(wall, down)
 
 
-def load_vector(wall: FoldedWall, pressure: Floats) -> Floats:
-    """Consistent load of a pressure (ns, ne, 2) that is linear down each element and even along each facet."""
+def load_operator(wall: FoldedWall) -> sparse.csr_matrix:
+    """Matrix (size, ns ne 2) from a pressure that is linear down each element and even along each facet to its load."""
+    ns, ne = wall.on.shape
     down = line_matrices(np.diff(wall.z))
     along = along_matrices(wall, line_matrices(np.hypot(*wall.chords.T)))["load"]
-    depthwise = pressure[:, :, 0, None] * (down.even - down.ramp) + pressure[:, :, 1, None] * down.ramp
-    values = np.einsum("si,sek->seik", along, depthwise).reshape(*pressure.shape[:2], 24)
-    return np.bincount(element_unknowns(wall).ravel(), values.ravel(), wall.size).astype(float)
+    depthwise = np.stack([down.even - down.ramp, down.ramp], axis=-1)
+    values = np.einsum("si,ekp,se->seikp", along, depthwise, wall.on.astype(float))
+    rows = np.broadcast_to(element_unknowns(wall)[..., None], (ns, ne, 24, 2))
+    cols = np.broadcast_to(np.arange(ns * ne * 2).reshape(ns, ne, 1, 2), (ns, ne, 24, 2))
+    entries = (values.ravel(), (rows.ravel(), cols.ravel()))
+    return sparse.csr_matrix(entries, shape=(wall.size, ns * ne * 2))
 
 
-def corner_law(wall: FoldedWall, down: LineMatrices) -> sparse.coo_matrix:
+def corner_law(wall: FoldedWall, down: LineMatrices) -> sparse.csr_matrix:
     """Springs that the ground round an inside corner adds to both walls there: f sqrt(k_r G_r) per metre of depth.
 
     f = t (1 + t) with t = turn / 90 degrees; 0 at re-entrant corners. Own empirical fit to the elastic block, chosen to
@@ -184,4 +186,4 @@ def corner_law(wall: FoldedWall, down: LineMatrices) -> sparse.coo_matrix:
         cols.append(np.tile(index, (1, 1, 8)).ravel())
         values.append(block.ravel())
     shape = (wall.size, wall.size)
-    return sparse.coo_matrix((np.concatenate(values), (np.concatenate(rows), np.concatenate(cols))), shape=shape)
+    return sparse.csr_matrix((np.concatenate(values), (np.concatenate(rows), np.concatenate(cols))), shape=shape)
