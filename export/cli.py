@@ -17,6 +17,7 @@ if TYPE_CHECKING:
     from ingest.errors import InputError
 
 CAUTION = "Screening aid: local codes and a licensed engineer decide."
+MOST_SECONDS = 86_400
 EXIT_CODES = """\
 exit codes:
   0    done
@@ -96,9 +97,20 @@ def _add_files(command: argparse.ArgumentParser) -> None:
     command.add_argument("files", nargs="+", metavar="FILE", help="IFC, DXF or AGS4 file of the site")
     command.add_argument("--brief", metavar="TOML", help="the engineer's brief: what the files do not say")
     command.add_argument(
-        "--read-limit", type=float, metavar="SECONDS", help="time limit for reading one file (default 60 + 3 per MB)"
+        "--read-limit", type=_seconds, metavar="SECONDS", help="time limit for reading one file (default 60 + 3 per MB)"
     )
     command.add_argument("--skip-unreadable", action="store_true", help="go on without a file that cannot be read")
+
+
+def _seconds(text: str) -> float:
+    """A time limit: above zero, at most a day."""
+    try:
+        value = float(text)
+    except ValueError:
+        value = 0.0
+    if not 0 < value <= MOST_SECONDS:
+        raise argparse.ArgumentTypeError(f"{text} is no time limit, give seconds above 0 and at most {MOST_SECONDS}")
+    return value
 
 
 def _add_inspect(command: argparse.ArgumentParser) -> None:

@@ -4,6 +4,8 @@ from __future__ import annotations
 
 import argparse
 import json
+import os
+from collections.abc import Sequence
 from contextlib import AbstractContextManager
 from math import isfinite
 from pathlib import Path
@@ -16,6 +18,8 @@ if TYPE_CHECKING:
     from export.progress import Tell
 
 Answer = tuple[int, str]
+FARTHEST = 1e8
+"""m; no coordinate of a projected system lies farther out, and the brief takes none that does."""
 
 
 def run_inspect(options: argparse.Namespace) -> Answer:
@@ -27,7 +31,7 @@ def run_inspect(options: argparse.Namespace) -> Answer:
     site = _read(options)
     pits = find_pits(site)
     if options.write_brief:
-        Path(options.write_brief).parent.mkdir(parents=True, exist_ok=True)
+        _make_folder(Path(options.write_brief))
         write_starting_brief(site, Path(options.write_brief))
     if options.json:
         return 0, json.dumps(describe_json(site, pits), indent=2, ensure_ascii=False)
@@ -74,8 +78,8 @@ def _line(text: str) -> tuple[Point, Point]:
     except ValueError:
         remedy = "give four numbers in world metres: --line x1,y1,x2,y2"
         raise InputError("", f"--line {text}", "is not four numbers", remedy) from None
-    if not all(isfinite(value) for value in (x1, y1, x2, y2)) or (x1, y1) == (x2, y2):
-        raise InputError("", f"--line {text}", "is no line", "give two different points in world metres")
+    if not all(isfinite(value) and abs(value) <= FARTHEST for value in (x1, y1, x2, y2)) or (x1, y1) == (x2, y2):
+        raise InputError("", f"--line {text}", "is no line", f"give two different points in world metres, within {FARTHEST:g} m")
     return (x1, y1), (x2, y2)
 
 
@@ -98,11 +102,37 @@ def run_members(options: argparse.Namespace) -> Answer:
     if not options.out:
         return 0, text.rstrip("\n")
     target = Path(options.out)
-    target.parent.mkdir(parents=True, exist_ok=True)
-    target.write_text(text, encoding="utf-8", newline="")
     governing = target.with_name(target.name + ".governing.csv")
-    governing.write_text(write_governing(find_governing(forces)), encoding="utf-8", newline="")
+    _spare_inputs((target, governing), [Path(name) for name in (*options.sections, options.results)])
+    _make_folder(target)
+    _write(target, text)
+    _write(governing, write_governing(find_governing(forces)))
     return 0, "" if options.quiet else f"{target}: {len(forces)} member values\n{governing}: governing values"
+
+
+def _spare_inputs(targets: Sequence[Path], inputs: Sequence[Path]) -> None:
+    taken = {os.path.realpath(given) for given in inputs}
+    for target in targets:
+        if os.path.realpath(target) in taken:
+            raise InputError(str(target), "", "is a file this run reads from", "choose another name for --out")
+
+
+def _make_folder(target: Path) -> None:
+    try:
+        target.parent.mkdir(parents=True, exist_ok=True)
+    except OSError as error:
+        raise InputError(
+            str(target), "", f"its folder cannot be made: {error.strerror}", "name a folder you may write to"
+        ) from None
+
+
+def _write(target: Path, text: str) -> None:
+    try:
+        target.write_text(text, encoding="utf-8", newline="")
+    except OSError as error:
+        raise InputError(
+            str(target), "", f"cannot be written: {error.strerror}", "name a file you may write"
+        ) from None
 
 
 def run_schema(options: argparse.Namespace) -> Answer:
@@ -111,6 +141,8 @@ def run_schema(options: argparse.Namespace) -> Answer:
 
     if not options.name:
         return 0, "\n".join(SCHEMAS)
+    if options.name not in SCHEMAS:
+        raise InputError("", f"schema {options.name}", "is not known", f"name one of: {', '.join(SCHEMAS)}")
     return 0, read_schema(options.name)
 
 

@@ -53,9 +53,13 @@ def check_folder(target: Path) -> None:
     Raises:
         InputError: Naming the first files that the tool did not write.
     """
-    place = target.resolve()
-    if not place.exists():
-        return
+    try:
+        place = target.resolve()
+        if not place.exists():
+            return
+    except (OSError, RuntimeError) as error:  # a loop of links is one or the other, by the version of Python
+        reason = getattr(error, "strerror", None) or "the link leads back to itself"
+        raise _refused(target, f"cannot be used: {reason}", "name another folder") from None
     if not place.is_dir():
         raise _refused(place, "is a file, not a folder", "name a folder")
     if place == Path.cwd().resolve() or place in Path.cwd().resolve().parents or os.path.ismount(place):

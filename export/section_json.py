@@ -19,6 +19,7 @@ from export import VERSION
 from export.canonical import canonical_text, sort_free_keys
 from ingest.errors import InputError
 from ingest.model import NOTICE, InputFile
+from ingest.receive import check_readable
 from ingest.record import record
 from sections.definition import SectionDefinition
 from sections.model import Proposal
@@ -191,16 +192,21 @@ def _refuse(word: str) -> float:
 
 def _read(path: Path, document: type[T], schema: str) -> T:
     name, remedy = path.name, "write the file again with `cutworthy propose`, or undo the change made by hand"
+    check_readable(path)
     try:
         text = path.read_text(encoding="utf-8")
-    except (OSError, UnicodeDecodeError) as error:
-        raise InputError(name, "", f"cannot be read as text: {error}", "name a JSON file of this tool") from None
+    except UnicodeDecodeError as error:
+        raise InputError(name, f"byte {error.start}", "is not UTF-8 text", "name a JSON file of this tool") from None
+    except OSError as error:
+        raise InputError(name, "", f"cannot be read: {error.strerror}", "check the file and its rights") from None
     try:
         tree = json.loads(text, parse_constant=_refuse)
     except json.JSONDecodeError as error:
         raise InputError(name, f"line {error.lineno}, column {error.colno}", f"no JSON: {error.msg}", remedy) from None
     except RecursionError:
         raise InputError(name, "", "no JSON of this tool: nested too deeply", remedy) from None
+    except ValueError:  # Python reads no whole number of thousands of digits
+        raise InputError(name, "", "holds a number too long to be one", remedy) from None
     except _NotFiniteError as error:
         raise InputError(name, "", f"{error.word} is not a number of JSON", remedy) from None
     found = tree.get("schema") if isinstance(tree, dict) else None

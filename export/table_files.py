@@ -39,7 +39,7 @@ def csv_text(sheet: Sheet) -> str:
     """
     out = io.StringIO()
     writer = csv.writer(out, lineterminator="\r\n")
-    writer.writerow(sheet.heads)
+    writer.writerow([_csv_cell(head) for head in sheet.heads])
     writer.writerows([[_csv_cell(cell) for cell in row] for row in sheet.rows])
     return out.getvalue()
 

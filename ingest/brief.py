@@ -86,6 +86,8 @@ def read_brief(path: str | Path) -> Brief:
         InputError: With every problem of the file at once, each with its line.
     """
     path = Path(path)
+    if path.exists() and not path.is_dir() and not path.is_file():
+        raise InputError(path.name, "", "is a device or pipe, not a file", "copy its content into a file")
     try:
         raw = path.read_bytes()
     except OSError as error:
@@ -119,6 +121,9 @@ def _parse(name: str, raw: bytes) -> tuple[str, dict[str, Any]]:
         place = where.rstrip(")").replace(" column", " column") if what else ""
         problem = f"is no valid TOML: {what or error}"
         raise InputError(name, place, problem, "texts need quotes, numbers none, every table its brackets") from error
+    except (RecursionError, ValueError) as error:
+        what = "nested too deeply" if isinstance(error, RecursionError) else "a number too long to be one"
+        raise InputError(name, "", f"is no valid TOML: {what}", "write it as the README shows") from None
 
 
 def _as_tuples(value: Any) -> Any:
@@ -140,4 +145,8 @@ def _cross_check(brief: Brief) -> list[tuple[str, str, str]]:
         if used is not None and used not in known:
             remedy = f'add [[materials]] with id = "{used}", or use one of: {", ".join(known) or "none given yet"}'
             found.append((brief.place(table, number, "material"), f'material "{used}" is not in [[materials]]', remedy))
+    ground, formation = brief.site.ground_level, brief.levels.formation
+    if ground is not None and formation is not None and formation >= ground:
+        problem = f"formation {formation:g} m is not below the ground level {ground:g} m: nothing is dug"
+        found.append((brief.place("levels", "formation"), problem, "correct formation or [site] ground_level"))
     return found

@@ -135,6 +135,9 @@ class MaterialTable(Table):
             raise ValueError("give concrete_class or E, not both")
         if self.concrete_class is not None and self.kind != "concrete":
             raise ValueError(f'concrete_class does not fit kind = "{self.kind}"')
+        low, high = v.MODULI[self.kind]
+        if self.E is not None and not low <= self.E <= high:
+            raise ValueError(f"E {self.E:g} kPa is that of no {self.kind}; allowed is {low:g} to {high:g} kPa")
         return self
 
 

@@ -52,6 +52,10 @@ def _shown(value: object) -> str:
     return text if len(text) <= 60 else text[:57] + "..."
 
 
+MODULI = {"concrete": (5e5, 1e8), "steel": (5e7, 2.5e8), "grout": (1e5, 1e8), "timber": (5e5, 5e7)}
+"""Widest range of E by kind of material, kPa, cracked or long-term values included. It catches GPa and MPa written for
+kPa. Common practice, no source."""
+
 Level = Annotated[float, Within(-1000, 9000, "m")]
 Coordinate = Annotated[float, Within(-1e8, 1e8, "m")]
 Angle = Annotated[float, Within(-360, 360, "degrees")]

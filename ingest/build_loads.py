@@ -12,32 +12,36 @@ from ingest.model import Evidence, Load, LoadKind, Part, Point, Receptor
 from ingest.notes import Notes, label
 from ingest.register import Moved
 from ingest.roles import RoleGiven
+from ingest.tie_texts import Tied
 from ingest.trail import Source
 
 UNITS = {"point": "kN", "line": "kN/m", "area": "kPa", "footing": "kPa"}
 _KINDS: dict[str, LoadKind] = {"point": "point", "line": "line", "area": "area"}
 
 
-def build_loads(given: Sequence[RoleGiven], moved: Moved, notes: Notes) -> tuple[Load, ...]:
+def build_loads(given: Sequence[RoleGiven], tied: Tied, moved: Moved, notes: Notes) -> tuple[Load, ...]:
     """Make the loads.
 
     Args:
         given: Parts with role load.
+        tied: Values written beside them.
         moved: World to local, for points of the brief.
         notes: Takes missing values and refused shapes.
     """
-    drawn = (_drawn_load(item, notes) for item in given)
+    drawn = (_drawn_load(item, tied, notes) for item in given)
     stated = (_stated_load(number, entry, moved, notes) for number, entry in enumerate(notes.brief.loads))
     return tuple(load for load in (*drawn, *stated) if load is not None)
 
 
-def _drawn_load(item: RoleGiven, notes: Notes) -> Load | None:
+def _drawn_load(item: RoleGiven, tied: Tied, notes: Notes) -> Load | None:
     part = item.part
     found = find_entry(notes.brief.loads, part)
     entry = found[1] if found else LoadTable.model_construct()
     modelled = part.tags.get("load_kind", "")
     kind = entry.kind or _KINDS.get(modelled) or _kind(part)
     value = entry.value if entry.value is not None or kind != modelled else _modelled_value(part)
+    if value is None:
+        value = _written_value(item, kind, tied, notes)
     points = _load_points(part, kind)
     if points is None:
         notes.refuse(part, f"{kind} load without a fitting shape on plan")
@@ -127,6 +131,15 @@ def _modelled_value(part: Part) -> float | None:
     except ValueError:
         return None
     return value if math.isfinite(value) and value >= 0 else None
+
+
+def _written_value(item: RoleGiven, kind: LoadKind, tied: Tied, notes: Notes) -> float | None:
+    """Value that a note beside the load gives in the unit of its kind."""
+    value = tied.load(item, UNITS[kind])
+    if value is not None:
+        text = f"{kind} load of {value:g} {UNITS[kind]}"
+        notes.assume("load-note", f"{label(item)} {item.part.source.item}", text, "a note beside it says so")
+    return value
 
 
 def _kind(part: Part) -> LoadKind:

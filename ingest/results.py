@@ -94,6 +94,9 @@ def _header(name: str, table: Reader) -> list[str]:
             raise InputError(name, "line 1", f'column "{column}" is missing', remedy)
         if plain.count(column) > 1:
             raise InputError(name, "line 1", f'column "{column}" stands twice', "keep one of them")
+    twice = next((cell for n, cell in enumerate(header) if cell in header[:n]), None)
+    if twice is not None:
+        raise InputError(name, "line 1", f'column "{twice}" stands twice', "keep one of them, or rename it")
     return [low if low in COLUMNS else cell for low, cell in zip(plain, header, strict=True)]
 
 

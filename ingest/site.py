@@ -18,6 +18,7 @@ from ingest.build_walls import build_walls
 from ingest.errors import InputError
 from ingest.guard import READERS, kind_of, read_guarded
 from ingest.ledger import make_ledger
+from ingest.level_order import note_level_order
 from ingest.missing import note_missing
 from ingest.model import FileParts, InputFile, Role, Site
 from ingest.notes import Notes
@@ -94,6 +95,7 @@ def site_of(files: Sequence[FileParts], brief: Brief, notes: Notes | None = None
     notes.questions += [item.question for item in given if item.question is not None]
     site = _records(given, moved, ground, notes)
     note_missing(site, notes)
+    note_level_order(site, notes)
     note_unmatched([item.part for item in given], site, notes)
     questions, assumptions, findings = notes.numbered()
     return replace(
@@ -140,7 +142,7 @@ def _records(given: Sequence[RoleGiven], moved: Moved, ground: float | None, not
         walers=_ordered("waler", build_walers(walers, supports, materials, notes)),
         plates=_ordered("plate", build_plates([i for i in having("slab", "footing") if i.use != "floor"], notes)),
         columns=_ordered("column", build_columns(having("column"), notes)),
-        loads=_ordered("load", build_loads(having("load"), moved, notes)),
+        loads=_ordered("load", build_loads(having("load"), tied, moved, notes)),
         receptors=_ordered("receptor", build_receptors(having("receptor"), moved, notes)),
         boreholes=tuple(sorted((hole for file in moved.files for hole in file.boreholes), key=lambda hole: hole.id)),
         strata=build_strata(brief),

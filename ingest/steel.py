@@ -28,6 +28,9 @@ DENSITY = 7850.0
 UNIT_WEIGHT = DENSITY * 9.81 / 1000
 """kN/m3; EN 1991-1-1 Annex A gives 77.0 to 78.5 (recalled)."""
 
+WIDEST = 5.0
+"""m; wider than any steel tube of a dig. Common practice, no source."""
+
 HOLLOW = {"CHS": "CHS 508x16", "SHS": "SHS 300x12.5", "RHS": "RHS 400x200x10"}
 """Hollow sections are worked out from any size; an example of each."""
 
@@ -51,7 +54,7 @@ def tube(diameter: float, wall: float) -> SteelShape:
     Raises:
         ValueError: The wall is not above 0 and below half the diameter.
     """
-    require_positive(diameter, "tube diameter", "m")
+    require(diameter, "tube diameter", "m", above=0.0, most=WIDEST)
     require(wall, "tube wall", "m", above=0.0, below=diameter / 2)
     inner = diameter - 2 * wall
     I = pi * (diameter**4 - inner**4) / 64  # noqa: E741  the trade's symbol
@@ -69,8 +72,8 @@ def box(depth: float, width: float, wall: float) -> SteelShape:
     Raises:
         ValueError: The wall is not above 0 and below a third of the shorter side.
     """
-    require_positive(depth, "box depth", "m")
-    require_positive(width, "box width", "m")
+    require(depth, "box depth", "m", above=0.0, most=WIDEST)
+    require(width, "box width", "m", above=0.0, most=WIDEST)
     require(wall, "box wall", "m", above=0.0, below=min(depth, width) / 3)
     inner = (depth - 2 * wall, width - 2 * wall)
     solid, hole = _rounded(depth, width, 1.5 * wall), _rounded(*inner, wall)
@@ -107,6 +110,8 @@ def find_shape(designation: str) -> SteelShape:
     Raises:
         ValueError: Unknown designation, named with the nearest known one; or a size that cannot be.
     """
+    if re.search(r"(?:^|[\s,x×])-\s*\d", designation, re.IGNORECASE):
+        raise ValueError(f"steel section {designation!r} has a negative size")
     kind, sizes = _split(designation)
     numbers = [float(size) / 1000 for size in sizes]
     if kind == "CHS" and len(numbers) == 2:

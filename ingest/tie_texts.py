@@ -10,7 +10,7 @@ from typing import TYPE_CHECKING
 
 import numpy as np
 
-from ingest.figures import plan
+from ingest.figures import outline_of, plan
 from ingest.model import Part, Point
 from ingest.notes import Notes, label
 from ingest.roles import RoleGiven
@@ -21,7 +21,7 @@ from ingest.words import find_meanings
 if TYPE_CHECKING:
     from shapely.geometry.base import BaseGeometry
 
-MEMBERS = ("wall", "bearing_pile", "strut", "corner_strut", "raker", "anchor", "waler", "slab", "footing")
+MEMBERS = ("wall", "bearing_pile", "strut", "corner_strut", "raker", "anchor", "waler", "slab", "footing", "load")
 TIP_REACH = 1.0
 """A leader names the member within this of its point, m (judgement)."""
 LETTERS = 4.0
@@ -44,6 +44,12 @@ class Tied:
         if said and max(said) - min(said) <= SAME:
             return float(said[0])
         return self.common.get((label(item), name))
+
+    def load(self, item: RoleGiven, unit: str) -> float | None:
+        """The load in one unit that notes give to this member; None when they give none, or several."""
+        own = self.own.get(id(item.part), ())
+        said = {note.load for note in own if note.load is not None and note.load_unit == unit}
+        return said.pop() if len(said) == 1 else None
 
 
 def tie_texts(given: Sequence[RoleGiven], notes: Notes) -> Tied:
@@ -85,10 +91,17 @@ def _places(text: Part) -> list[tuple[Point, float]]:
 
 def _speaks_of(text: Part, member: RoleGiven, note: Note) -> bool:
     """A bare level beside a member may be the ground's; it is the member's by leader, layer or wording only."""
+    if _is_load(note):
+        return True
     if note.toe is not None or note.top is not None or note.level is None or text.tags.get("leader"):
         return True
     meant = {meaning.role for name in (text.layer, text.text) for meaning in find_meanings(name)}
     return text.layer == member.part.layer or member.role in meant
+
+
+def _is_load(note: Note) -> bool:
+    """Whether a note gives a load and not the capacity of a pile or the force in a support."""
+    return note.load is not None and note.diameter is None and note.spacing is None and note.count is None
 
 
 def _agree(members: Sequence[RoleGiven], tied: Tied, notes: Notes) -> None:
@@ -147,29 +160,34 @@ def _compare_spacing(members: Sequence[RoleGiven], tied: Tied, notes: Notes) -> 
 
 
 class _Nearest:
-    """The member nearest to a point; a note on toe or top speaks of a wall or pile only."""
+    """The member nearest to a point; a note on toe or top speaks of a wall or pile only, a load of a load only."""
 
     def __init__(self, members: Sequence[RoleGiven]) -> None:
         from shapely import STRtree
 
         self._members = list(members)
-        self._tree = STRtree([_shape(item.part) for item in members])
+        self._tree = STRtree([_shape(item) for item in members])
 
     def __call__(self, point: Point, reach: float, note: Note) -> RoleGiven | None:
         from shapely import Point as At
 
         at = At(point)
         near = sorted(int(n) for n in self._tree.query(at, predicate="dwithin", distance=reach))
+        near = [n for n in near if (self._members[n].role == "load") == _is_load(note)]
         upright = note.toe is not None or note.top is not None or note.diameter is not None
         fit = [self._members[n] for n in near if not upright or self._members[n].role in ("wall", "bearing_pile")]
-        return min(fit, key=lambda item: float(_shape(item.part).distance(at)), default=None)
+        return min(fit, key=lambda item: float(_shape(item).distance(at)), default=None)
 
 
-def _shape(part: Part) -> BaseGeometry:
-    from shapely import LineString
+def _shape(item: RoleGiven) -> BaseGeometry:
+    """Line, disc or, for a load, area that a note may stand by; a note within a load is its own."""
+    from shapely import LineString, Polygon
     from shapely import Point as At
 
+    part = item.part
     line = plan(part.points)
+    if item.role == "load" and (ring := outline_of(part)):
+        return Polygon(ring)
     if len(line) < 2:
         return At(line[0]).buffer(part.radius) if part.radius else At(line[0])
     return LineString((*line, line[0]) if part.closed or part.form in ("outline", "prism") else line)

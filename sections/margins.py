@@ -21,6 +21,7 @@ from sections.wall_changes import changes_of
 Class = Literal["far", "near", "change", "unlike", "rows"]
 
 MEASURED = "first measured set: fifteen scenes of an elastic block against the folded wall, 768 stations"
+OWN_ORACLE = "own oracle, 2026-12-01, fourteen scenes of the second block; high ends lay inside the first set and stay"
 AS_DEFLECTION = "taken as for wall deflection (judgement): a trough is scaled on the wall's movement"
 FAR = 3.0
 """Reach of corners, steps, gaps and changes along the wall, in excavated depths (judgement)."""
@@ -37,25 +38,39 @@ class Margin:
     source: str
 
 
-def _rows(of: Class, values: dict[str, tuple[float, float]]) -> tuple[Margin, ...]:
+def _rows(of: Class, values: dict[str, tuple[float, float]], *again: str) -> tuple[Margin, ...]:
+    """Margins of one class; `again` names the outputs whose low end the second block widened."""
     return tuple(
-        Margin(of=of, output=name, e_low=low, e_high=high, source=AS_DEFLECTION if name == "settlement" else MEASURED)
+        Margin(of=of, output=name, e_low=low, e_high=high, source=_source(name, again))
         for name, (low, high) in values.items()
     )
+
+
+def _source(name: str, again: tuple[str, ...]) -> str:
+    if name == "settlement":
+        return AS_DEFLECTION
+    return OWN_ORACLE if name in again else MEASURED
 
 
 _DEFLECTION, _EXCAVATED, _RETAINED, _FORCE, _SETTLEMENT = OUTPUTS[:5]
 
 MARGINS: tuple[Margin, ...] = (
-    *_rows("far", dict.fromkeys(OUTPUTS[:5], (0.03, 0.05))),
+    *_rows(
+        "far",
+        {**dict.fromkeys(OUTPUTS[:5], (0.03, 0.05)), _EXCAVATED: (0.06, 0.05), _RETAINED: (0.06, 0.05)},
+        _EXCAVATED,
+        _RETAINED,
+    ),
     *_rows(
         "near",
         {
-            _DEFLECTION: (0.06, 0.13), _EXCAVATED: (0.05, 0.10), _RETAINED: (0.10, 0.27), _FORCE: (0.06, 0.13),
+            _DEFLECTION: (0.06, 0.13), _EXCAVATED: (0.09, 0.10), _RETAINED: (0.41, 0.27), _FORCE: (0.06, 0.13),
             _SETTLEMENT: (0.06, 0.13),
         },
+        _EXCAVATED,
+        _RETAINED,
     ),
-    *_rows("change", {_RETAINED: (0.10, 0.70)}),
+    *_rows("change", {_RETAINED: (0.43, 0.70)}, _RETAINED),
     *_rows("unlike", {_DEFLECTION: (0.06, 0.27), _FORCE: (0.06, 0.27), _SETTLEMENT: (0.06, 0.27)}),
     *_rows(
         "rows",

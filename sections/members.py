@@ -4,6 +4,7 @@ from __future__ import annotations
 
 from collections.abc import Iterable, Mapping
 from difflib import get_close_matches
+from math import isfinite
 from typing import TypeVar
 
 from ingest.errors import InputError
@@ -63,7 +64,11 @@ def member_actions(definitions: Iterable[SectionDefinition], results: Iterable[R
     Raises:
         InputError: Unknown section, stage, member, quantity or unit, with the line of the row.
     """
-    by_id = {definition.id: definition for definition in definitions}
+    by_id: dict[str, SectionDefinition] = {}
+    for definition in definitions:
+        if by_id.setdefault(definition.id, definition) != definition:
+            remedy = "name the section files of one run only"
+            raise InputError("", f"section {definition.id}", "two different section files bear this id", remedy)
     forces: list[MemberForce] = []
     for row in results:
         definition = _named(row, "section", row.section, by_id)
@@ -151,10 +156,14 @@ def _force(row: ResultRow, factor: float, unit: str, gives: str, verdict: Verdic
         word, caution = "not_assessed", "no ratio of real to 2D demand is worked out for this quantity"
     else:
         word, caution = verdict.verdict, verdict.sentence
+    value = row.value * factor
+    if not isfinite(value):
+        problem = f"value {row.value:g} {row.unit} times factor {factor:g} is too large for a number"
+        raise InputError("", f"line {row.line}", problem, "check the value and the section file")
     return MemberForce(
         row=row,
         factor=factor,
-        value=row.value * factor,
+        value=value,
         unit=unit,
         gives=gives,
         ratio_low=verdict.low if verdict else None,

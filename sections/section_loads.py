@@ -126,7 +126,7 @@ def _row(name: str, load: Load, wall: CutWall, cut: Cut, stands_for: float | Non
         id=name,
         kind=load.kind,
         direction="down",
-        at=_drawn(wall, load, seen, value.unit),
+        at=_drawn(cut, wall, load, seen, value.unit),
         real=LoadValue(value=load.value, unit=UNITS[load.kind]),
         section=value,
         alternatives=handed.alternatives if handed else (),
@@ -142,9 +142,11 @@ def _hand_over(
     near, far = seen.back
     y1, y2 = seen.along
     x = (near + far) / 2
+    # a load longer than the wall the section stands for has no more than its own pressure there
+    whole = None if stands_for is None else max(stands_for, y2 - y1)
     if load.kind in ("area", "footing"):
         return hand_over_area(
-            given, x1=max(near, 0.0), x2=far, b1=y2, b2=-y1, depths=seen.heights, stands_for=stands_for
+            given, x1=max(near, 0.0), x2=far, b1=y2, b2=-y1, depths=seen.heights, stands_for=whole
         ), ""
     if near < NEAREST:
         return None, f"load {name} stands on the wall: its effect is not assessed"
@@ -152,14 +154,15 @@ def _hand_over(
         return hand_over_point(given, x=x, y=(y1 + y2) / 2, depths=seen.heights, stands_for=stands_for), ""
     if far - near > y2 - y1:  # runs towards the wall: an area load in the section
         return hand_over_perpendicular_line(given, x1=near, x2=far, depths=seen.heights, stands_for=stands_for), ""
-    return hand_over_line(given, x=x, b1=y2, b2=-y1, depths=seen.heights, stands_for=stands_for), ""
+    return hand_over_line(given, x=x, b1=y2, b2=-y1, depths=seen.heights, stands_for=whole), ""
 
 
-def _drawn(wall: CutWall, load: Load, seen: Seen, unit: str) -> Curve:
+def _drawn(cut: Cut, wall: CutWall, load: Load, seen: Seen, unit: str) -> Curve:
+    """Where the section carries the load, within the model."""
     sign = -1.0 if wall.side == "left" else 1.0
     level = load.level if load.level is not None else wall.level["ground"]
     z = 0.0 if level is None else level
     spots = sorted({wall.x + sign * seen.back[0], wall.x + sign * seen.back[1]})
     if unit in ("kN", "kN/m"):
         return ((sum(spots) / len(spots), z),)
-    return tuple((x, z) for x in spots)
+    return tuple((min(max(x, 0.0), cut.length), z) for x in spots)

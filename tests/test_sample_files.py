@@ -376,4 +376,9 @@ class TestQuarryRoad:
         assert {load["kind"] for load in loads} == {"area", "line"}
         for load in loads:
             assert load["section"]["unit"] == "kPa"
-            assert 0.0 < load["section"]["value"] <= (20.0 + 1e-6 if load["kind"] == "area" else 85.0)
+            most = 20.0 + 1e-6 if load["kind"] == "area" else 85.0
+            values = [load["section"]["value"], *(other["value"] for other in load["alternatives"])]
+            assert all(0.0 <= value <= most for value in values if value is not None)
+        for section in site.sections:
+            for load in section["loads"]:
+                assert all(section["extent"]["x"][0] <= x <= section["extent"]["x"][1] for x, _ in load["at"])

@@ -35,6 +35,28 @@ from ingest.trail import Source
         ("-6000", Note(level=-6.0)),
         ("TOE LEVEL -12.00", Note(toe=-12.0)),
         ("UK -12,50 / OK +0.35", Note(toe=-12.5, top=0.35)),
+        ("12 Stk. Bohrpfähle Ø 88 cm, a = 1,00 m", Note(count=12, diameter=0.88, spacing=1.0)),
+        ("pilotes Ø800 cada 1,50 m", Note(diameter=0.8, spacing=1.5)),
+        ("15 palen rond 600 h.o.h. 1200", Note(count=15, diameter=0.6, spacing=1.2)),
+        ("10 pale fi 600 co 75 cm", Note(count=10, diameter=0.6, spacing=0.75)),
+        ("12 pali Ø800 int. 1.00", Note(count=12, diameter=0.8, spacing=1.0)),
+        ("12 estacas Ø600 afast. 0.75 m", Note(count=12, diameter=0.6, spacing=0.75)),
+        ("900Ø @ 1,050 c/c", Note(diameter=0.9, spacing=1.05)),
+        ("34.20 mOD", Note(level=34.2)),
+        ("45,20 m ü. NN", Note(level=45.2)),
+        ("Ø88", Note()),
+        ("Ø12/15", Note()),
+        ("T16@200", Note()),
+        ("150 kPa", Note(load=150.0, load_unit="kPa")),
+        ("q = 20 kN/m²", Note(load=20.0, load_unit="kPa")),
+        ("50 kN/m", Note(load=50.0, load_unit="kN/m")),
+        ("P=400kN", Note(load=400.0, load_unit="kN")),
+        ("2,5 MN", Note(load=2500.0, load_unit="kN")),
+        ("γ = 18 kN/m³", Note()),
+        ("M = 40 kNm", Note()),
+        ("su = 75 kPa", Note()),
+        ("1,200 kN", Note()),
+        ("1 200 kN", Note()),
         ("TOP OF WALL +2.00\nTOE -14.00", Note(top=2.0, toe=-14.0)),
     ],
 )
@@ -111,6 +133,30 @@ def test_levels_that_differ_hold_for_their_own_member_only() -> None:
 def test_toe_and_top_are_read_from_a_note_beside_the_wall() -> None:
     site = site_from(*PILES, text_at(3.0, 0.8, "TOP +1.00 TOE -12.00", "t"))
     assert {(pile.top, pile.toe) for pile in site.piles} == {(1.0, -12.0)}
+
+
+CRANE = part(
+    "path",
+    (20.0, 5.0, 0.0),
+    (24.0, 5.0, 0.0),
+    (24.0, 8.0, 0.0),
+    (20.0, 8.0, 0.0),
+    item="l",
+    layer="SURCHARGE",
+    closed=True,
+)
+
+
+def test_a_load_written_on_it_is_its_value_and_assumed() -> None:
+    site = site_from(*PILES, CRANE, text_at(22.0, 6.0, "q = 20 kN/m²", "t"))
+    assert [(load.kind, load.value) for load in site.loads] == [("area", 20.0)]
+    assert "load-note" in {assumption.code for assumption in site.assumptions}
+
+
+@pytest.mark.parametrize("words", ["50 kN/m", "su = 75 kPa", "-2.50"])
+def test_what_is_no_load_of_its_kind_gives_it_no_value(words: str) -> None:
+    site = site_from(*PILES, CRANE, text_at(22.0, 6.0, words, "t"))
+    assert [load.value for load in site.loads] == [None]
 
 
 @pytest.mark.parametrize(("words", "code"), [("600 DIA", "diameter-differs"), ("750 DIA @ 900 C/C", "spacing-differs")])

@@ -42,8 +42,8 @@ def fill(marks: Sequence[float], step: float) -> Array:
 
 
 def depth_lines(scene: Scene, step: float = 1.0) -> Array:
-    marks = [0.0, scene.toe, *(p.depth for p in scene.props), *(d for _, d in scene.dig)]
-    return np.concatenate([fill(marks, step), grade(scene.toe, 3.5 * scene.deepest - scene.toe, 6, 1.5)])
+    marks = [0.0, scene.toe, *(p.depth for p in scene.props), *(d for _, d in scene.dig), *scene.levels]
+    return np.concatenate([fill(marks, step), grade(scene.toe, 3.5 * max((scene.deepest, *scene.levels)) - scene.toe, 6, 1.5)])
 
 
 @dataclass(frozen=True)
@@ -118,7 +118,8 @@ def pressure(scene: Scene, normal: Array, dug: float) -> Callable[[Array], Array
 
 def tensor_model(scene: Scene, refine: float = 1.0) -> Model:
     """Block of a pit with sides along x and y, cut at its mirror planes."""
-    far = REACH * scene.deepest
+    deepest = max((scene.deepest, *scene.levels))
+    far = REACH * deepest
     marks = [[c[k] for c in scene.corners] + [p.head[k] for p in scene.props if p.tie or _on_side(scene, p, k)]
              for k in (0, 1)]  # fmt: skip
     marks[0] += [x for x, _ in scene.dig]

@@ -2,7 +2,8 @@
 
 from __future__ import annotations
 
-from dataclasses import dataclass
+from collections.abc import Sequence
+from dataclasses import dataclass, replace
 
 import numpy as np
 
@@ -23,7 +24,18 @@ class Ratios:
     unknowns: int
 
 
-def oracle_ratios(scene: Scene, refine: float = 1.0) -> Ratios:
+@dataclass(frozen=True)
+class Demands:
+    """Per facet deflection and both moments, of the block (bay means where they count) and of its slice, (n, 3)."""
+
+    model: Model
+    real: Array
+    flat: Array
+    near: list[list[End]]
+    slices: list[Slice]
+
+
+def demands(scene: Scene, refine: float = 1.0) -> Demands:
     """Solve the block of a scene and its slices."""
     model = (sector_model if scene.sectors else tensor_model)(scene, refine)
     facets = range(len(model.path.lengths))
@@ -35,10 +47,32 @@ def oracle_ratios(scene: Scene, refine: float = 1.0) -> Ratios:
     bay = np.array([_bay_mean(scene, model, real[:, k], width) for k in range(3)]).T
     use = bay if scene.rows else np.column_stack([real[:, :2], bay[:, 2]])
     flat = np.array([(s.deflection, s.excavated, s.retained) for s in slices])
+    return Demands(model, use, flat, near, slices)
+
+
+def floored(flat: Array) -> Array:
+    """2D demands as they are divided by: a face moment never below a quarter of the section's largest."""
     largest = flat[:, 1:].max(axis=1)
-    flat[:, 1:] = np.maximum(flat[:, 1:], FLOOR * largest[:, None])
-    support = [_support(scene, model, n, s) for n, s in zip(near, slices, strict=True)]
-    return Ratios(model.points, model.side, np.column_stack([use / flat, support]), model.block.unknowns)
+    return np.column_stack([flat[:, 0], np.maximum(flat[:, 1:], FLOOR * largest[:, None])])
+
+
+def oracle_ratios(scene: Scene, refine: float = 1.0) -> Ratios:
+    """Ratios of one stage."""
+    d = demands(scene, refine)
+    support = [_support(scene, d.model, n, s) for n, s in zip(d.near, d.slices, strict=True)]
+    ratio = np.column_stack([d.real / floored(d.flat), support])
+    return Ratios(d.model.points, d.model.side, ratio, d.model.block.unknowns)
+
+
+def staged_ratios(scene: Scene, digs: Sequence[float]) -> Ratios:
+    """Ratios of the maxima over stages, without support forces; each stage is a block of its own."""
+    levels = tuple(sorted({*scene.levels, *digs}))
+    stages = [demands(replace(scene, levels=levels).stage(dug)) for dug in digs]
+    real = np.max([d.real for d in stages], axis=0)
+    flat = np.max([d.flat for d in stages], axis=0)
+    first = stages[-1].model
+    ratio = np.column_stack([real / floored(flat), np.full(len(real), np.nan)])
+    return Ratios(first.points, first.side, ratio, sum(d.model.block.unknowns for d in stages))
 
 
 def _real(model: Model, facet: int) -> tuple[float, float, float]:

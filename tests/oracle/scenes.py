@@ -5,7 +5,7 @@ Ground everywhere: E = 10 + 3 z MPa, nu 0.3, 19 kN/m3, K0 0.5, dry. Depths are b
 
 from __future__ import annotations
 
-from dataclasses import dataclass
+from dataclasses import dataclass, replace
 
 import numpy as np
 
@@ -39,6 +39,7 @@ class Scene:
         mirror: (x, y) of mirror planes; the block keeps what lies beyond them (x above, y below), None = none.
         step: Largest spacing of plan nodes along the wall, m.
         surcharge: kPa on the ground behind the southern wall.
+        levels: Further depths that need a node.
         sectors: 0, or the number of like sectors of a regular polygon whose corners are given.
     """
 
@@ -55,6 +56,7 @@ class Scene:
     surcharge: float = 0.0
     sectors: int = 0
     round: bool = False
+    levels: tuple[float, ...] = ()
 
     @property
     def waler_EA(self) -> float:
@@ -68,6 +70,12 @@ class Scene:
     @property
     def deepest(self) -> float:
         return max(depth for _, depth in self.dig)
+
+    def stage(self, dug: float) -> Scene:
+        """The scene dug evenly to a depth, with the supports above it in place; those below weigh nothing."""
+        props = tuple(replace(p, stiffness=p.stiffness if p.depth < dug else 0.0) for p in self.props)
+        depths = tuple(d for _, d in self.dig)
+        return replace(self, dig=((0.0, dug),), props=props, levels=(*self.levels, *depths))
 
     def dig_at(self, x: float) -> float:
         return [depth for start, depth in self.dig if start <= x + 1e-9][-1]
@@ -197,4 +205,6 @@ SCENES: tuple[Scene, ...] = (
         props=anchors(polygon(48, radius=8.0), 1.0467, (2.0,), 1.0e4),
     ),
 )  # fmt: skip
+STAGED = {"square_panels": (1.5, 5.5, 8.0)}
+"""Scenes also solved stage by stage: a dig 0.5 m below each level before its struts are in, then the whole depth."""
 BY_NAME = {scene.name: scene for scene in SCENES}

@@ -246,11 +246,11 @@ def test_the_margin_follows_the_class_of_the_station() -> None:
     _, found = polygon_pit(long, wall=diaphragm())
     assert margin(found, 50.0, W) == (0.03, 0.05)  # beyond 3 He (18 m) of everything, like wall opposite
     assert margin(found, 10.0, W) == (0.06, 0.13)
-    assert margin(found, 10.0, EXC) == (0.05, 0.10)
-    assert margin(found, 10.0, RET) == (0.10, 0.27)
+    assert margin(found, 10.0, EXC) == (0.09, 0.10)
+    assert margin(found, 10.0, RET) == (0.41, 0.27)
     _, unlike = polygon_pit(long, wall=diaphragm(), facing_like=False)
     assert margin(unlike, 50.0, W) == (0.06, 0.27)
-    assert margin(unlike, 50.0, EXC) == (0.05, 0.10)
+    assert margin(unlike, 50.0, EXC) == (0.09, 0.10)
     _, row = polygon_pit(long, wall=piles())
     assert margin(row, 50.0, W) == (0.10, 0.37)
     assert margin(row, 50.0, EXC) == (0.20, 0.24)
@@ -258,7 +258,7 @@ def test_the_margin_follows_the_class_of_the_station() -> None:
     assert margins_at(row).not_measured[:, column(RET)].all()
     gap = (struts_across([10.0, 20.0, 30.0, 50.0, 60.0, 70.0, 80.0, 90.0], (0.0, 30.0)),)
     _, gapped = polygon_pit(long, wall=diaphragm(), rows=gap)
-    assert margin(gapped, 40.0, RET) == (0.10, 0.70)
+    assert margin(gapped, 40.0, RET) == (0.43, 0.70)
     assert margin(found, 50.0, "heave_utilisation") == (0.0, 0.0)
 
 

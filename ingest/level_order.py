@@ -1,0 +1,78 @@
+"""Levels that cannot all be true: they are used as given, and pointed out before anybody relies on them."""
+
+from __future__ import annotations
+
+from itertools import pairwise
+
+from ingest.model import Site
+from ingest.notes import Notes
+
+SLACK = 0.01
+"""m; levels closer than this count as equal."""
+FLOOD = 10.0
+"""m; water standing this far above the ground is a slip, not a flood. Common practice, no source."""
+
+
+def note_level_order(site: Site, notes: Notes) -> None:
+    """Point out walls that end above the dig, supports beside the wall, water far above ground, strata out of order.
+
+    Args:
+        site: The site as built.
+        notes: Takes the findings, severity `check`.
+    """
+    _check_toes(site, notes)
+    _check_supports(site, notes)
+    _check_water(site, notes)
+    _check_strata(site, notes)
+
+
+def _dig_levels(site: Site) -> list[float]:
+    levels = [floor.level for floor in site.floors if floor.level is not None]
+    return levels if site.formation is None else [*levels, site.formation]
+
+
+def _check_toes(site: Site, notes: Notes) -> None:
+    dig = max(_dig_levels(site), default=None)  # beside the shallowest of several floors a short wall may do
+    held = [(pile.toe, pile.kind) for pile in site.piles if not pile.bearing]
+    toes = [toe for toe, kind in (*held, *((w.toe, w.kind) for w in site.walls)) if toe is not None]
+    if dig is None or not toes or max(toes) <= dig + SLACK:
+        return
+    posts = any(kind == "king_post" for _, kind in held)
+    if posts and min(toes) <= dig + SLACK:
+        return  # lagging between the posts goes no deeper than the dig
+    text = f"the toe of a wall at {max(toes):g} m lies above the dig level at {dig:g} m: it holds no ground below it"
+    notes.see("toe-above-dig", "check", "levels of the wall", text)
+
+
+def _check_supports(site: Site, notes: Notes) -> None:
+    dig, top = min(_dig_levels(site), default=None), site.wall_top
+    if top is None:
+        tops = [item.top for item in (*site.walls, *site.piles) if item.top is not None]
+        top = max(tops, default=None)
+    for group in sorted({support.group for support in site.supports}):
+        heads = [s.head[2] for s in site.supports if s.group == group and s.level_given]
+        if heads and top is not None and max(heads) > top + SLACK:
+            text = f"a support at {max(heads):g} m lies above the top of the wall at {top:g} m"
+            notes.see("support-above-wall", "check", group, text)
+        if heads and dig is not None and min(heads) < dig - SLACK:
+            text = f"a support at {min(heads):g} m lies below the dig level at {dig:g} m"
+            notes.see("support-below-dig", "check", group, text)
+
+
+def _check_water(site: Site, notes: Notes) -> None:
+    for name, level in (("water_retained", site.water_retained), ("water_excavated", site.water_excavated)):
+        if level is not None and site.ground_level is not None and level > site.ground_level + FLOOD:
+            text = f"{name} at {level:g} m stands {level - site.ground_level:g} m above the ground"
+            notes.see("water-above-ground", "check", "water level", text)
+
+
+def _check_strata(site: Site, notes: Notes) -> None:
+    given = [layer for layer in site.strata if layer.top_level is not None]
+    for upper, lower in pairwise(given):
+        assert upper.top_level is not None and lower.top_level is not None
+        if lower.top_level >= upper.top_level:
+            text = (
+                f'the top of "{lower.name}" at {lower.top_level:g} m does not lie below that of "{upper.name}" at '
+                f"{upper.top_level:g} m, which the brief lists before it"
+            )
+            notes.see("strata-order", "check", "strata", text)
