@@ -3,6 +3,7 @@
 from __future__ import annotations
 
 from collections.abc import Callable, Sequence
+from dataclasses import replace
 from typing import TypeVar
 
 import numpy as np
@@ -192,10 +193,13 @@ def _listed(values: Floats) -> tuple[float | None, ...]:
 
 
 def _by_id(rows: Sequence[Row]) -> tuple[Row, ...]:
-    """Rows once each, the first of an id kept; rows without an id are all kept."""
+    """Rows once each; different rows under one id get numbers, so that no section's row hides another's."""
     seen: dict[str, Row] = {}
-    for number, row in enumerate(rows):
-        seen.setdefault(row.id or f"row-{number}", row)
+    for row in rows:
+        name, number = row.id or f"note-{len(seen) + 1}", 1
+        while (key := name if number == 1 else f"{name}-{number}") in seen and seen[key] != replace(row, id=key):
+            number += 1
+        seen.setdefault(key, replace(row, id=key))
     return tuple(seen.values())
 
 

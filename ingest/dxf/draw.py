@@ -80,7 +80,6 @@ class Drawer:
         self.file, self.scale, self.layers = file, scale, layers
         self.book = BlockBook(document, SAGITTA / scale, layers)
         self.drawn = Drawn()
-        self._database = document.entitydb
         self._world = Placing(scaled(IDENTITY, scale), (0.0, 0.0, 0.0))
 
     def draw(self, account: Account, progress: Callable[[int], None] | None = None) -> Drawn:
@@ -95,7 +94,6 @@ class Drawer:
             chunk = [(item, account.space.pop()) for item in items]
             self._draw_chunk(chunk)
             for _, entity in chunk:
-                self._database.discard(entity)
                 release(entity)
             if progress is not None:
                 progress(first + len(items))

@@ -6,7 +6,7 @@ import gc
 import logging
 import re
 from collections.abc import Iterator
-from contextlib import contextmanager
+from contextlib import contextmanager, suppress
 from dataclasses import dataclass
 from pathlib import Path
 from typing import Any
@@ -85,10 +85,9 @@ def let_go(document: Any) -> None:
 
 def release(entity: Any) -> None:
     """Free what one loaded entity holds; it refers to itself, so that nothing else would before the collector comes."""
-    try:
+    with suppress(AttributeError):  # some kinds fail on what they never had
         entity.destroy()
-    except AttributeError:  # some kinds fail on what they never had
-        vars(entity).clear()
+    vars(entity).clear()
 
 
 def _place(words: str) -> str:
