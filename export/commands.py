@@ -79,7 +79,7 @@ def _line(text: str) -> tuple[Point, Point]:
         remedy = "give four numbers in world metres: --line x1,y1,x2,y2"
         raise InputError("", f"--line {text}", "is not four numbers", remedy) from None
     if not all(isfinite(value) and abs(value) <= FARTHEST for value in (x1, y1, x2, y2)) or (x1, y1) == (x2, y2):
-        raise InputError("", f"--line {text}", "is no line", f"give two different points in world metres, within {FARTHEST:g} m")
+        raise InputError("", f"--line {text}", "is no line", f"give two points in world metres, within {FARTHEST:g}")
     return (x1, y1), (x2, y2)
 
 
@@ -130,9 +130,7 @@ def _write(target: Path, text: str) -> None:
     try:
         target.write_text(text, encoding="utf-8", newline="")
     except OSError as error:
-        raise InputError(
-            str(target), "", f"cannot be written: {error.strerror}", "name a file you may write"
-        ) from None
+        raise InputError(str(target), "", f"cannot be written: {error.strerror}", "name a file you may write") from None
 
 
 def run_schema(options: argparse.Namespace) -> Answer:

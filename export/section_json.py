@@ -19,7 +19,7 @@ from export import VERSION
 from export.canonical import canonical_text, sort_free_keys
 from ingest.errors import InputError
 from ingest.model import NOTICE, InputFile
-from ingest.receive import check_readable
+from ingest.receive import refuse_device
 from ingest.record import record
 from sections.definition import SectionDefinition
 from sections.model import Proposal
@@ -190,15 +190,19 @@ def _refuse(word: str) -> float:
     raise _NotFiniteError(word)
 
 
+def _text_of(path: Path) -> str:
+    try:
+        refuse_device(path)
+        return path.read_text(encoding="utf-8")
+    except (OSError, UnicodeDecodeError) as error:
+        reason = error.strerror if isinstance(error, OSError) else f"no UTF-8 at byte {error.start}"
+        problem = f"cannot be read as text: {reason}"
+        raise InputError(path.name, "", problem, "name a JSON file of this tool") from None
+
+
 def _read(path: Path, document: type[T], schema: str) -> T:
     name, remedy = path.name, "write the file again with `cutworthy propose`, or undo the change made by hand"
-    check_readable(path)
-    try:
-        text = path.read_text(encoding="utf-8")
-    except UnicodeDecodeError as error:
-        raise InputError(name, f"byte {error.start}", "is not UTF-8 text", "name a JSON file of this tool") from None
-    except OSError as error:
-        raise InputError(name, "", f"cannot be read: {error.strerror}", "check the file and its rights") from None
+    text = _text_of(path)
     try:
         tree = json.loads(text, parse_constant=_refuse)
     except json.JSONDecodeError as error:

@@ -29,6 +29,7 @@ from ingest.brief_tables import (
     WallTable,
 )
 from ingest.errors import InputError
+from ingest.receive import refuse_device
 
 
 class Brief(Table):
@@ -86,9 +87,8 @@ def read_brief(path: str | Path) -> Brief:
         InputError: With every problem of the file at once, each with its line.
     """
     path = Path(path)
-    if path.exists() and not path.is_dir() and not path.is_file():
-        raise InputError(path.name, "", "is a device or pipe, not a file", "copy its content into a file")
     try:
+        refuse_device(path)
         raw = path.read_bytes()
     except OSError as error:
         reason = error.strerror or "it cannot be opened"

@@ -135,9 +135,7 @@ class MaterialTable(Table):
             raise ValueError("give concrete_class or E, not both")
         if self.concrete_class is not None and self.kind != "concrete":
             raise ValueError(f'concrete_class does not fit kind = "{self.kind}"')
-        low, high = v.MODULI[self.kind]
-        if self.E is not None and not low <= self.E <= high:
-            raise ValueError(f"E {self.E:g} kPa is that of no {self.kind}; allowed is {low:g} to {high:g} kPa")
+        v.check_modulus(self.kind, self.E)
         return self
 
 
@@ -297,7 +295,6 @@ class LimitTable(Table):
 
     @model_validator(mode="after")
     def _known_outputs(self) -> LimitTable:
-        for name in self.governing or ():
-            if name not in RING_OUTPUTS:
-                raise ValueError(f'governing: "{name}" is no output; known are {", ".join(RING_OUTPUTS)}')
+        for name in (name for name in self.governing or () if name not in RING_OUTPUTS):
+            raise ValueError(f'governing: "{name}" is no output; known are {", ".join(RING_OUTPUTS)}')
         return self

@@ -43,6 +43,13 @@ class Within:
         return ""
 
 
+def check_modulus(kind: str, E: float | None) -> None:
+    """Refuse a modulus that no such material has, kPa: `ValueError` with the allowed range."""
+    low, high = MODULI[kind]
+    if E is not None and not low <= E <= high:
+        raise ValueError(f"E {E:g} kPa is that of no {kind}; allowed is {low:g} to {high:g} kPa")
+
+
 def _refused(message: str) -> PydanticCustomError:
     return PydanticCustomError("value", "{message}", {"message": message})
 

@@ -14,12 +14,13 @@ FLOOD = 10.0
 
 
 def note_level_order(site: Site, notes: Notes) -> None:
-    """Point out walls that end above the dig, supports beside the wall, water far above ground, strata out of order.
+    """Point out digs above ground, walls ending above the dig, supports off the wall, high water, strata out of order.
 
     Args:
         site: The site as built.
         notes: Takes the findings, severity `check`.
     """
+    _check_dig(site, notes)
     _check_toes(site, notes)
     _check_supports(site, notes)
     _check_water(site, notes)
@@ -29,6 +30,13 @@ def note_level_order(site: Site, notes: Notes) -> None:
 def _dig_levels(site: Site) -> list[float]:
     levels = [floor.level for floor in site.floors if floor.level is not None]
     return levels if site.formation is None else [*levels, site.formation]
+
+
+def _check_dig(site: Site, notes: Notes) -> None:
+    high = max(_dig_levels(site), default=None)
+    if high is not None and site.ground_level is not None and high >= site.ground_level:
+        text = f"a dig level at {high:g} m is not below the ground at {site.ground_level:g} m: nothing is dug there"
+        notes.see("dig-above-ground", "check", "dig level", text)
 
 
 def _check_toes(site: Site, notes: Notes) -> None:
@@ -47,7 +55,7 @@ def _check_toes(site: Site, notes: Notes) -> None:
 def _check_supports(site: Site, notes: Notes) -> None:
     dig, top = min(_dig_levels(site), default=None), site.wall_top
     if top is None:
-        tops = [item.top for item in (*site.walls, *site.piles) if item.top is not None]
+        tops = [top for top in (*(w.top for w in site.walls), *(p.top for p in site.piles)) if top is not None]
         top = max(tops, default=None)
     for group in sorted({support.group for support in site.supports}):
         heads = [s.head[2] for s in site.supports if s.group == group and s.level_given]
@@ -67,12 +75,11 @@ def _check_water(site: Site, notes: Notes) -> None:
 
 
 def _check_strata(site: Site, notes: Notes) -> None:
-    given = [layer for layer in site.strata if layer.top_level is not None]
-    for upper, lower in pairwise(given):
-        assert upper.top_level is not None and lower.top_level is not None
-        if lower.top_level >= upper.top_level:
+    given = [(layer.name, layer.top_level) for layer in site.strata if layer.top_level is not None]
+    for (upper, upper_top), (lower, lower_top) in pairwise(given):
+        if lower_top >= upper_top:
             text = (
-                f'the top of "{lower.name}" at {lower.top_level:g} m does not lie below that of "{upper.name}" at '
-                f"{upper.top_level:g} m, which the brief lists before it"
+                f'the top of "{lower}" at {lower_top:g} m does not lie below that of "{upper}" at '
+                f"{upper_top:g} m, which the brief lists before it"
             )
             notes.see("strata-order", "check", "strata", text)

@@ -66,6 +66,16 @@ def check_readable(path: Path) -> int:
     return found.st_size
 
 
+def refuse_device(path: Path) -> None:
+    """Refuse what is there but no file and no folder: reading a pipe would never end.
+
+    Raises:
+        InputError: A device or pipe.
+    """
+    if path.exists() and not path.is_dir() and not path.is_file():
+        raise InputError(shown(path.name), "", "is a device or pipe, not a file", "copy its content into a file")
+
+
 def kind_of(path: Path) -> Kind:
     """Tell the kind of a file by its content; the extension only decides what to say.
 

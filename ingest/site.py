@@ -22,6 +22,7 @@ from ingest.level_order import note_level_order
 from ingest.missing import note_missing
 from ingest.model import FileParts, InputFile, Role, Site
 from ingest.notes import Notes
+from ingest.plausible_size import check_sizes
 from ingest.register import Moved, check_registration, lay_files, model_places
 from ingest.roles import RoleGiven, find_roles
 from ingest.starting_brief import write_starting_brief
@@ -95,6 +96,7 @@ def site_of(files: Sequence[FileParts], brief: Brief, notes: Notes | None = None
     notes.questions += [item.question for item in given if item.question is not None]
     site = _records(given, moved, ground, notes)
     note_missing(site, notes)
+    check_sizes(site, notes)
     note_level_order(site, notes)
     note_unmatched([item.part for item in given], site, notes)
     questions, assumptions, findings = notes.numbered()

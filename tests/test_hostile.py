@@ -207,3 +207,27 @@ def test_levels_the_wrong_way_round_are_pointed_out(
 def test_levels_in_order_draw_no_remark(brief: Brief, capsys: Capture) -> None:
     assert main(["inspect", DRAWING, "--brief", str(brief())]) == 0
     assert "Findings" not in capsys.readouterr().out
+
+
+def _ring(path: Path, scale: float, wall: str) -> Path:
+    import ezdxf
+
+    drawing = ezdxf.new("R2010")
+    drawing.header["$INSUNITS"] = 6
+    space = drawing.modelspace()
+    corners = [(0.0, 0.0), (30 * scale, 0.0), (30 * scale, 20 * scale), (0.0, 20 * scale)]
+    if wall == "piles":
+        for n in range(30):
+            space.add_circle((n * scale, 0.0), 0.375 * scale, dxfattribs={"layer": "WALL-PILES-CONTIGUOUS"})
+    else:
+        space.add_lwpolyline(corners, close=True, dxfattribs={"layer": "DIAPHRAGM WALL"})
+    drawing.saveas(path)
+    return path
+
+
+@pytest.mark.parametrize(("wall", "scale"), [("line", 1000.0), ("piles", 1000.0), ("piles", 0.001)])
+def test_a_drawing_in_the_wrong_unit_is_refused_at_once(
+    wall: str, scale: float, tmp_path: Path, capsys: Capture
+) -> None:
+    # 100 km of wall in place of 100 m; piles of 750 m or 0.75 mm in place of 0.75 m
+    assert "unit" in refused(capsys, "inspect", _ring(tmp_path / "unit.dxf", scale, wall))

@@ -72,9 +72,8 @@ def _values(tags: Tags, a: int, b: int, code: int) -> dict[int, bytes]:
     at = np.flatnonzero(tags.codes[first:last] == code) + first
     owners = np.searchsorted(tags.zeros, at, side="right") - 1
     found: dict[int, bytes] = {}
-    for owner, index in zip(owners.tolist(), at.tolist(), strict=True):
-        if owner not in found:
-            found[owner] = tags.value(index)
+    for owner, value in zip(owners.tolist(), tags.values(at), strict=True):
+        found.setdefault(owner, value)
     return found
 
 

@@ -6,7 +6,7 @@ import gc
 import logging
 import re
 from collections.abc import Iterator
-from contextlib import contextmanager, suppress
+from contextlib import contextmanager
 from dataclasses import dataclass
 from pathlib import Path
 from typing import Any
@@ -85,8 +85,10 @@ def let_go(document: Any) -> None:
 
 def release(entity: Any) -> None:
     """Free what one loaded entity holds; it refers to itself, so that nothing else would before the collector comes."""
-    with suppress(AttributeError):  # some kinds fail on what they never had
+    try:  # noqa: SIM105  a context costs more than the work, 200,000 times
         entity.destroy()
+    except AttributeError:  # some kinds fail on what they never had
+        pass
     vars(entity).clear()
 
 

@@ -50,6 +50,12 @@ class Tags:
         """The bytes of a value."""
         return self.data[self.starts[index] : self.stops[index]]
 
+    def values(self, indices: Ints) -> list[bytes]:
+        """The bytes of many values."""
+        data = self.data
+        spans = zip(self.starts[indices].tolist(), self.stops[indices].tolist(), strict=True)
+        return [data[a:b] for a, b in spans]
+
     def place(self, index: int) -> str:
         """Where a value stands: its line in a text file, its byte in a binary one."""
         if not self.binary:
@@ -95,7 +101,9 @@ def scan_tags(data: bytes) -> Tags:
     """
     tags = _scan_binary(data) if data.startswith(BINARY_MARK) else _scan_text(data)
     tags.zeros = np.flatnonzero(tags.codes == 0)
-    tags.names = [sys.intern(tags.value(z).decode("latin-1")) for z in tags.zeros.tolist()]
+    words = tags.values(tags.zeros)
+    known = {word: sys.intern(word.decode("latin-1")) for word in set(words)}
+    tags.names = [known[word] for word in words]
     _find_sections(tags)
     return tags
 

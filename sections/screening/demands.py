@@ -28,8 +28,23 @@ class Demands:
     support: Floats
 
 
-def wall_demands(wall: FoldedWall, answer: Answer, support: Floats) -> Demands:
-    """Demands of the three-dimensional answer at the middle of each facet; `support` is (ns, rows) kN/m."""
+def wall_demands(
+    wall: FoldedWall,
+    answer: Answer,
+    support: Floats,
+    smooth: Callable[[Floats], Floats] | None = None,
+    rows: Bools | None = None,
+) -> Demands:
+    """Demands of the three-dimensional answer at the middle of each facet.
+
+    Args:
+        wall, answer: The wall and how it moves.
+        support: (ns, rows) kN per metre of wall.
+        smooth: Mean over one bay of supports along the wall, of (ns, nz) values. The moment on the retained face peaks
+            at the heads of supports: it is averaged at each depth before the largest is taken, so that supports at an
+            even spacing alone make no difference to 2D.
+        rows: (ns,) True for rows of piles, whose movement and moment on the excavated face are such means too.
+    """
     ends, normals, length = wall.ends, wall.normals, np.hypot(*wall.chords.T)
     w = [np.einsum("sd,sdz->sz", normals, answer.value[ends[:, i], :2]) for i in (0, 1)]
     slope = [np.einsum("sd,sdz->sz", normals, answer.slope[ends[:, i], :2]) for i in (0, 1)]
@@ -39,7 +54,12 @@ def wall_demands(wall: FoldedWall, answer: Answer, support: Floats) -> Demands:
     middle = (w[0] + w[1]) / 2 + length[:, None] / 8 * (turn[0] - turn[1])
     middle_slope = (slope[0] + slope[1]) / 2 + length[:, None] / 8 * (turn_slope[0] - turn_slope[1])
     M = moments(wall.z, middle, middle_slope, np.where(wall.on, wall.Dv[:, None], 0.0))
-    return Demands(_largest(middle), _largest(M), _largest(-M), support)
+    bay = smooth or (lambda values: values)
+    meant = np.zeros(len(M), bool) if rows is None else rows
+    movement, tension = middle, M
+    if np.any(meant):
+        movement, tension = np.where(meant[:, None], bay(middle), middle), np.where(meant[:, None], bay(M), M)
+    return Demands(_largest(movement), _largest(tension), _largest(-bay(M)), support)
 
 
 def twin_demands(groups: Ints, answers: Sequence[TwinAnswer], rows: Sequence[Sequence[int]], count: int) -> Demands:
@@ -75,26 +95,17 @@ def over_stages(stages: Sequence[Demands]) -> tuple[Demands, dict[str, Ints]]:
     return Demands(**out), where
 
 
-def ratios(real: Demands, flat: Demands, smooth: Callable[[Floats], Floats], rows: Bools) -> Floats:
-    """(ns, 4) real over flat for `NAMES`; nan where the flat demand is nothing.
-
-    Args:
-        real: Demands of the folded wall, over stages.
-        flat: Demands of the twins, over stages.
-        smooth: Mean over one bay of supports along the wall.
-        rows: (ns,) True for rows of piles, whose every output is the mean over a bay.
-    """
-    largest = np.maximum(flat.excavated, flat.retained)
-    floor = FLOOR_OF_MOMENT * largest
-    out = np.column_stack(
+def ratios(real: Demands, flat: Demands) -> Floats:
+    """(ns, 4) real over flat for `NAMES`, both over stages; nan where the flat demand is nothing."""
+    floor = FLOOR_OF_MOMENT * np.maximum(flat.excavated, flat.retained)
+    return np.column_stack(
         [
-            _over(np.where(rows, smooth(real.deflection), real.deflection), flat.deflection),
-            _over(np.where(rows, smooth(real.excavated), real.excavated), np.maximum(flat.excavated, floor)),
-            _over(smooth(real.retained), np.maximum(flat.retained, floor)),
+            _over(real.deflection, flat.deflection),
+            _over(real.excavated, np.maximum(flat.excavated, floor)),
+            _over(real.retained, np.maximum(flat.retained, floor)),
             _support_ratio(real.support, flat.support),
         ]
     )
-    return np.asarray(out)
 
 
 def _support_ratio(real: Floats, flat: Floats) -> Floats:

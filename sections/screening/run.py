@@ -34,6 +34,7 @@ def run_variant(scene: Scene, variant: Variant) -> VariantRatios:
     """Run all stages of one variant."""
     members, rows = members_of(scene, variant) if scene.found.rows else (None, ())
     smeared = smear_rows(scene, members, rows) if members is not None else _no_rows(scene)
+    smooth, piles = bay_mean(scene, smeared), scene.found.stations.rows[scene.grid.station]
     real, flat, balanced = [], [], True
     for dig_to, rows_in in scene.stages:
         wall, limits = wall_of(scene, variant, dig_to)
@@ -43,16 +44,15 @@ def run_variant(scene: Scene, variant: Variant) -> VariantRatios:
         found, settled = _solve(limits, factorise(wall, here, beams, scene.pattern))
         force = np.full(len(rows), np.nan)
         force[keep] = found.force
-        real.append(wall_demands(wall, found, _per_metre(smeared, force)))
+        real.append(wall_demands(wall, found, _per_metre(smeared, force), smooth, piles))
         groups, answers, which = stage_twins(wall, limits, smeared, rows_in)
         flat.append(twin_demands(groups, answers, which, len(scene.found.rows)))
         balanced &= settled and all(twin.settled for twin in answers)
     most_real, where_real = over_stages(real)
     most_flat, where_flat = over_stages(flat)
-    piles = scene.found.stations.rows[scene.grid.station]
     return VariantRatios(
         variant,
-        ratios(most_real, most_flat, bay_mean(scene, smeared), piles),
+        ratios(most_real, most_flat),
         np.column_stack([where_real[name] for name in NAMES]),
         np.column_stack([where_flat[name] for name in NAMES]),
         balanced,
@@ -84,26 +84,42 @@ def _per_metre(smeared: Smeared, force: Floats) -> Floats:
 
 
 def bay_mean(scene: Scene, smeared: Smeared) -> Callable[[Floats], Floats]:
-    """Mean over one bay of supports centred at each facet, within its side; the value itself where there is no row."""
-    lengths = np.hypot(*np.diff(np.vstack([scene.grid.points, scene.grid.points[:1]]), axis=0).T)[: len(scene.EI)]
+    """Mean over one bay of supports centred at each facet, within its side; the value itself where there is no row.
+
+    The function takes (ns, ...) values. A ring has one side and goes on behind its start.
+    """
+    ends = np.vstack([scene.grid.points, scene.grid.points[:1]])
+    lengths = np.hypot(*np.diff(ends, axis=0).T)[: len(scene.EI)]
     sides = scene.found.stations.side[scene.grid.station]
-    widths = np.full(len(scene.EI), 0.0)
+    widths = np.zeros(len(scene.EI))
     if len(smeared.tributary):
         widths = np.nan_to_num(np.max(np.nan_to_num(smeared.tributary), axis=0))
+    groups = [np.flatnonzero(sides == side) for side in np.unique(sides)]
+    loop = scene.grid.closed and len(groups) == 1 and not scene.found.shape.corners
+    weights = [(here, _bay_weights(lengths[here], widths[here], loop=loop)) for here in groups]
 
     def mean(values: Floats) -> Floats:
-        out = values.copy()
-        for side in np.unique(sides):
-            here = np.flatnonzero(sides == side)
-            edges = np.concatenate([[0.0], np.cumsum(lengths[here])])
-            total = np.concatenate([[0.0], np.cumsum(values[here] * lengths[here])])
-            middle = (edges[1:] + edges[:-1]) / 2
-            half = np.maximum(widths[here] / 2, lengths[here] / 2)
-            low, high = np.maximum(middle - half, 0.0), np.minimum(middle + half, edges[-1])
-            out[here] = (np.interp(high, edges, total) - np.interp(low, edges, total)) / (high - low)
-        return np.asarray(out)
+        out = np.empty_like(values)
+        for here, weight in weights:
+            out[here] = weight @ values[here]
+        return out
 
     return mean
+
+
+def _bay_weights(lengths: Floats, widths: Floats, *, loop: bool) -> Floats:
+    """(n, n) share of each facet of one side in the mean around each."""
+    edges = np.concatenate([[0.0], np.cumsum(lengths)])
+    middle, total = (edges[1:] + edges[:-1]) / 2, edges[-1]
+    half = np.maximum(widths, lengths) / 2
+    low, high = middle - half, middle + half
+    if not loop:
+        low, high = np.maximum(low, 0.0), np.minimum(high, total)
+    share = np.zeros((len(lengths), len(lengths)))
+    for turn in (-total, 0.0, total) if loop else (0.0,):
+        upper = np.minimum(high[:, None], edges[None, 1:] + turn)
+        share += np.maximum(upper - np.maximum(low[:, None], edges[None, :-1] + turn), 0.0)
+    return np.asarray(share / share.sum(axis=1, keepdims=True))
 
 
 def _no_members() -> Members:

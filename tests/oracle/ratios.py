@@ -41,11 +41,13 @@ def demands(scene: Scene, refine: float = 1.0) -> Demands:
     facets = range(len(model.path.lengths))
     slices = [model.cut(f) for f in facets]
     ends = ends_of(scene)
-    real = np.array([_real(model, f) for f in facets])
+    w, M = (np.array(part) for part in zip(*[_profiles(model, f) for f in facets], strict=True))
     near = [nearest_ends(scene, ends, int(model.side[f]), float(model.place[f])) for f in facets]
     width = np.array([max((e.width for e in n), default=0.0) for n in near])
-    bay = np.array([_bay_mean(scene, model, real[:, k], width) for k in range(3)]).T
-    use = bay if scene.rows else np.column_stack([real[:, :2], bay[:, 2]])
+    meant = _bay_mean(scene, model, M, width)
+    if scene.rows:
+        w, M = _bay_mean(scene, model, w, width), meant
+    use = np.column_stack([w.max(axis=1), np.maximum(M.max(axis=1), 0.0), np.maximum(-meant.min(axis=1), 0.0)])
     flat = np.array([(s.deflection, s.excavated, s.retained) for s in slices])
     return Demands(model, use, flat, near, slices)
 
@@ -75,15 +77,15 @@ def staged_ratios(scene: Scene, digs: Sequence[float]) -> Ratios:
     return Ratios(first.points, first.side, ratio, sum(d.model.block.unknowns for d in stages))
 
 
-def _real(model: Model, facet: int) -> tuple[float, float, float]:
-    """Largest deflection and moments in the middle of a facet."""
+def _profiles(model: Model, facet: int) -> tuple[Array, Array]:
+    """Deflection and moment down the middle of a facet."""
     w = sum(model.block.deflection(model.path, facet + e, facet) for e in (0, 1)) / 2
     M = sum(model.block.moment(model.path, facet + e, facet) for e in (0, 1)) / 2
-    return float(max(w.max(), 0.0)), float(max(M.max(), 0.0)), float(max(-M.min(), 0.0))
+    return np.asarray(w), np.asarray(M)
 
 
 def _bay_mean(scene: Scene, model: Model, values: Array, width: Array) -> Array:
-    """Mean over one bay centred at each facet, within its side; a mirror plane shows what lies behind it."""
+    """Mean of profiles (n, nz) over one bay round each facet, within its side; mirror planes show what lies behind."""
     out = values.copy()
     corners = np.array(scene.corners)
     side_length = np.hypot(*(np.roll(corners, -1, axis=0) - corners).T)
@@ -97,12 +99,12 @@ def _bay_mean(scene: Scene, model: Model, values: Array, width: Array) -> Array:
             order = np.argsort(place)
             place, value = place[order], np.concatenate([value, value[::-1]])[order]
         edges = np.concatenate([[0.0], np.cumsum(_lengths(place))])
-        sums = np.concatenate([[0.0], np.cumsum(value * np.diff(edges))])
+        sums = np.vstack([np.zeros(values.shape[1]), np.cumsum(value * np.diff(edges)[:, None], axis=0)])
         low = np.maximum(model.place[here] - width[here] / 2, 0.0)
         high = np.minimum(model.place[here] + width[here] / 2, total)
         wide = high - low > 1e-9
-        mean = (np.interp(high, edges, sums) - np.interp(low, edges, sums)) / np.where(wide, high - low, 1.0)
-        out[here] = np.where(wide, mean, values[here])
+        gained = np.array([np.interp(high, edges, part) - np.interp(low, edges, part) for part in sums.T]).T
+        out[here] = np.where(wide[:, None], gained / np.where(wide, high - low, 1.0)[:, None], values[here])
     return out
 
 

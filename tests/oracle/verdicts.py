@@ -24,8 +24,8 @@ from sections.verdict import combine_arrays, words_of
 
 FIGURES = json.loads(Path(__file__).with_name("figures.json").read_text())
 NAMES = OUTPUTS[:4]
-MESH = {"wall_deflection": 0.03, "wall_moment_excavated_face": 0.03, "wall_moment_retained_face": 0.10,
-        "support_force": 0.03}  # fmt: skip
+MESH = {"wall_deflection": 0.03, "wall_moment_excavated_face": 0.03, "wall_moment_retained_face": 0.06,
+        "support_force": 0.01}  # fmt: skip
 """Error of the block's mesh, from the scenes solved on a finer one (`test_the_mesh_error_is_as_stated`)."""
 RETAINED = NAMES.index("wall_moment_retained_face")
 NEAR_HEAD = 0.8
@@ -56,6 +56,14 @@ class Compared:
     high: Floats
     word: list[list[str]]
     found: Screening
+
+    @property
+    def inner(self) -> Bools:
+        """(n,) True beyond a fifth of the depth from every corner: nearer the block has no sharp answer itself."""
+        if self.scene.round:
+            return np.ones(len(self.points), bool)
+        gaps = np.linalg.norm(self.points[:, None] - np.array(self.scene.corners)[None], axis=2)
+        return np.asarray(gaps.min(axis=1) >= 0.2 * self.scene.deepest)
 
     @property
     def dangerous(self) -> Bools:
