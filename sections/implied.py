@@ -3,9 +3,10 @@
 from __future__ import annotations
 
 from collections.abc import Sequence
-from math import pi
+from math import hypot, pi
 
 from sections.definition import Implied, PerMetre, SectionLoad, SectionMember
+from sections.smear import Direction
 
 FAIR, CARE = 0.1, 0.5
 """Grades by |ratio - 1|: fair within 0.1, care within 0.5, serious beyond (judgement)."""
@@ -83,18 +84,55 @@ def _bar_rows(member: SectionMember, section: PerMetre) -> list[Implied]:
             f"multiply back by {_back(member):.3f}; between members the wall moves more than the section shows",
         )
     )
-    if real.EA_kN and section.EA_kN_per_m:
+    stiffness = in_plane(member)
+    if stiffness and section.k_effective_kN_per_m_per_m:
         rows.append(
             _row(
                 member.id,
                 "stiffness",
-                real.EA_kN / real.spacing,
-                section.EA_kN_per_m,
-                "the true projection of a skewed member is in the factor: do not divide by the spacing again",
+                stiffness,
+                section.k_effective_kN_per_m_per_m,
+                "the section's value holds the spacing and the projection of a skewed member: divide by neither again",
                 "the along-wall part of the force is lost; see actions without a 2D twin",
             )
         )
-    return rows
+    return rows + _volume_rows(member, section)
+
+
+def in_plane(member: SectionMember) -> float | None:
+    """Stiffness of the real row along the member as drawn, kN/m per m: k cos^2(beta)/s, both ends as they really move.
+
+    Source: a bar whose wall end moves in the plane of the cut only.
+    """
+    real = member.real
+    length = real.length if member.side == "both" else real.L_eff or real.free_length or real.length
+    if not (real.EA_kN and real.spacing and length):
+        return None
+    k = real.EA_kN / length
+    if real.k_effective_kN_per_m and real.L_eff:
+        k = real.k_effective_kN_per_m * real.L_eff / length
+    direction = Direction(skew=real.skew or 0.0, inclination=real.inclination or 0.0)
+    return k * direction.cos_beta**2 / real.spacing
+
+
+def _volume_rows(member: SectionMember, section: PerMetre) -> list[Implied]:
+    """Body of the row per metre run of wall against that of the sheet with the section's axial rigidity."""
+    real = member.real
+    length = real.length if member.side == "both" else real.L_eff or real.free_length or real.length
+    if not (real.A_m2 and real.EA_kN and real.spacing and length and section.EA_kN_per_m):
+        return []
+    (x1, z1), (x2, z2) = member.points[0], member.points[-1]
+    sheet = section.EA_kN_per_m * real.A_m2 / real.EA_kN * hypot(x2 - x1, z2 - z1)
+    return [
+        _row(
+            member.id,
+            "volume",
+            real.A_m2 * length / real.spacing,
+            sheet,
+            "hand over the weight of the real members, not that of a sheet",
+            "a sheet has no gaps between the members: nothing passes it in the section",
+        )
+    ]
 
 
 def _bond_rows(member: SectionMember) -> list[Implied]:

@@ -144,13 +144,13 @@ def _vertical(members: Sequence[SectionMember]) -> list[BalanceLine]:
 
 
 def _dip_line(member: SectionMember, dip: float) -> BalanceLine:
-    down = member.role == "anchor"
+    down = (member.role == "anchor") == (dip > 0)
     word = "pulls the wall down" if down else "lifts the wall"
     preload, spacing = member.real.preload_kN, member.real.spacing
     if preload is None or spacing is None:
-        text = f"{member.id} {word} by {sin(radians(dip)):.3f} of its force; preload not given"
+        text = f"{member.id} {word} by {sin(radians(abs(dip))):.3f} of its force; preload not given"
         return BalanceLine(text=text, value=None, unit="kN/m")
-    value = abs(preload) * sin(radians(dip)) / spacing
+    value = abs(preload) * sin(radians(abs(dip))) / spacing
     return BalanceLine(text=f"preload of {member.id} {word}", value=value if down else -value, unit="kN/m")
 
 
@@ -162,9 +162,12 @@ def list_actions(cut: Cut, members: Sequence[SectionMember]) -> tuple[Action, ..
         across = cos(radians(dip)) * sin(radians(abs(skew)))
         if member.form == "bar" and across > 1e-6 and member.role != "waler":
             force = member.real.preload_kN
+            text = f"thrust along the wall from each {member.id}: {across:.3f} of its force"
+            if member.role == "corner_strut":
+                text += f", away from the corner; {member.real.count} of them add up to the first shear stop"
             actions.append(
                 Action(
-                    name=f"thrust along the wall from each {member.id}: {across:.3f} of its force",
+                    name=text,
                     size=None if force is None else abs(force) * across,
                     unit="kN per member at its preload",
                     at=member.id,

@@ -3,6 +3,7 @@
 from __future__ import annotations
 
 from collections import Counter
+from collections.abc import Iterable
 from dataclasses import dataclass, field
 from typing import Any
 
@@ -10,6 +11,8 @@ import numpy as np
 
 from ingest.dxf.tagscan import SUBENTITIES, Tags
 
+_PLAIN = frozenset({"LINE", "LWPOLYLINE", "CIRCLE", "TEXT", "ARC"})
+"""Kinds that never draw a block; most entities are of these."""
 _LAYOUTS = ("*model_space", "*paper_space")
 
 
@@ -101,7 +104,6 @@ class Account:
     aside: Counter[str]
     lost: Counter[str]
     """Entities the bytes hold and the loaded drawing does not, by type; those inside inserted blocks too."""
-    unused_blocks: tuple[str, ...] = ()
 
     @property
     def entities(self) -> int:
@@ -132,14 +134,13 @@ def open_account(document: Any, raw: RawFigures) -> Account:
     for kind, count in (expected - in_layouts).items():
         aside[f"lost in reading: {kind}"] += count
     own = {name.lower() for name in raw.blocks}
-    reached = _reached(document)
+    drawing = [entity for entity, kind in zip(space, kinds, strict=True) if kind not in _PLAIN]
+    reached = _reached(document, [*drawing, *(entity for sheet in sheets for entity in sheet)])
     blocks = [block for block in document.blocks if not block.name.lower().startswith(_LAYOUTS)]
     unused = [block for block in blocks if block.name.lower() in own - reached and len(block)]
     aside["block never inserted"] = sum(len(block) for block in unused)
     loaded = in_layouts + Counter(e.dxftype() for block in blocks for e in block)
-    return Account(
-        _names(space, kinds, raw), space, +aside, raw.total() - loaded, tuple(sorted(block.name for block in unused))
-    )
+    return Account(_names(space, kinds, raw), space, +aside, raw.total() - loaded)
 
 
 def _names(space: list[Any], kinds: list[str], raw: RawFigures) -> list[str]:
@@ -156,19 +157,17 @@ def _names(space: list[Any], kinds: list[str], raw: RawFigures) -> list[str]:
     return names
 
 
-def _reached(document: Any) -> set[str]:
-    """Lower-case names of the blocks that some layout draws, directly or through other blocks."""
+def _reached(document: Any, entities: list[Any]) -> set[str]:
+    """Lower-case names of the blocks that these entities draw, directly or through other blocks."""
     by_handle = {block.block_record_handle: block.name.lower() for block in document.blocks}
-    todo = list(document.layouts)
+    todo: list[Iterable[Any]] = [entities]
     reached: set[str] = set()
     while todo:
-        layout = todo.pop()
-        for entity in layout:
+        for entity in todo.pop():
             for name in _drawn_by(entity, by_handle):
                 if name not in reached:
                     reached.add(name)
-                    block = document.blocks.get(name)
-                    todo += [block] if block is not None else []
+                    todo.append(document.blocks.get(name) or ())
     return reached
 
 
@@ -177,7 +176,7 @@ def _drawn_by(entity: Any, by_handle: dict[str, str]) -> list[str]:
     kind = entity.dxftype()
     if kind == "INSERT":
         return [str(vars(entity.dxf).get("name", "")).lower()]
-    if kind in ("LINE", "LWPOLYLINE", "CIRCLE", "TEXT", "ARC"):
+    if kind in _PLAIN:
         return []
     known = vars(entity.dxf)
     names = [str(known["geometry"]).lower()] if known.get("geometry") else []

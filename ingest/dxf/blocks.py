@@ -172,11 +172,12 @@ class BlockBook:
             layer = self._layers.use(layer_of(known))
             if layer.left_out or known.get("invisible", 0):
                 continue
-            if entity.dxftype() == "INSERT":
+            kind = entity.dxftype()
+            if kind == "INSERT":
                 sketches += self._nested(entity, self.sagitta / sagitta, left)
                 continue
-            fixed = entity.dxftype() == "ATTDEF" and known.get("flags", 0) & _CONSTANT
-            figures = sketch_text(entity, sagitta) if fixed else sketch(entity, sagitta)
+            fixed = kind == "ATTDEF" and known.get("flags", 0) & _CONSTANT
+            figures = sketch_text(entity, sagitta) if fixed else sketch(kind, entity, sagitta)
             if isinstance(figures, Left):
                 left[figures.reason] += 1
                 continue

@@ -3,7 +3,7 @@
 from __future__ import annotations
 
 from collections import Counter
-from collections.abc import Callable, Iterator
+from collections.abc import Callable
 from dataclasses import dataclass, field
 from typing import Any
 
@@ -108,7 +108,7 @@ class Drawer:
             left = self._one(item, entity, chunk)
             if left is not None:
                 chunk.why[item] = left
-        parts = list(self._place_all(chunk))
+        parts = self._place_all(chunk)
         for item, (outline, hidden_inside) in chunk.clipped.items():
             shown = clip_parts((part for part in parts if part.source.item == item), outline, hidden_inside)
             parts = [part for part in parts if part.source.item != item] + shown
@@ -120,7 +120,8 @@ class Drawer:
                 self.drawn.aside[kind][reason] += 1
                 self.drawn.examples.setdefault(reason, item)
 
-    def _place_all(self, chunk: _Chunk) -> Iterator[Part]:
+    def _place_all(self, chunk: _Chunk) -> list[Part]:
+        parts: list[Part] = []
         plain = settle(chunk.plain, self.book.sagitta)
         for figure, why in plain.dropped:
             chunk.why.setdefault(figure.item, Left("ignored", why))
@@ -128,9 +129,10 @@ class Drawer:
             placed = place(batch, places, self.file)
             for item, why in placed.empty:
                 chunk.why.setdefault(item, Left("ignored", why))
-            for part in placed.parts:
-                if part.form == "text" or part.source.item not in chunk.tables:
-                    yield part
+            parts += placed.parts
+        if chunk.tables:  # their rules are annotation
+            parts = [part for part in parts if part.form == "text" or part.source.item not in chunk.tables]
+        return parts
 
     def _one(self, item: str, entity: Any, chunk: _Chunk) -> Left | None:
         known = vars(entity.dxf)
@@ -147,7 +149,7 @@ class Drawer:
             if leader is not None:
                 self.drawn.leaders.append(leader)
             return Left("context", "leader line")
-        figures = sketch(entity, self.book.sagitta)
+        figures = sketch(kind, entity, self.book.sagitta)
         if isinstance(figures, Left):
             return figures
         chunk.add(figures, item, layer)

@@ -73,17 +73,17 @@ ASIDE: dict[str, Left] = {
 }
 
 
-def sketch(entity: Any, sagitta: float) -> list[Sketch] | Left:
+def sketch(kind: str, entity: Any, sagitta: float) -> list[Sketch] | Left:
     """Draw one entity that is not an insert.
 
     Args:
+        kind: Its type in the file.
         entity: As the library loaded it; not one that is hidden.
         sagitta: Allowed distance between arcs and chords, drawing units.
 
     Returns:
         Its figures, or why there are none. A fault in one entity never ends the reading of the others.
     """
-    kind = entity.dxftype()
     sketcher = SKETCHERS.get(kind)
     if sketcher is None:
         return ASIDE.get(kind) or Left("ignored", f"unreadable object of another program: {kind}")

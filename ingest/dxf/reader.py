@@ -7,6 +7,7 @@ from collections.abc import Callable
 from pathlib import Path
 
 from ingest.dxf.account import list_raw, open_account
+from ingest.dxf.consistency import find_contradictions
 from ingest.dxf.damage import check_bytes, read_bytes
 from ingest.dxf.draw import Drawer
 from ingest.dxf.drawing_unit import Declared, find_unit
@@ -57,6 +58,7 @@ def _read(
     data = read_bytes(path)
     tags = check_bytes(data, path.name)
     raw, header = list_raw(tags), _Header(tags)
+    contradictions = find_contradictions(tags)
     sha256 = hashlib.sha256(data).hexdigest()
     del data, tags
     loaded = load_document(path)
@@ -72,9 +74,9 @@ def _read(
     drawn.aside["ignored"].update(account.aside)
     place = describe_georeference(loaded.document)
     let_go(loaded.document)
-    losses = report_losses(account, loaded, drawn, drawer.book)
+    losses = report_losses(account, loaded, drawn, drawer.book, contradictions)
     report = Report(path.name)
-    report.see_loading(account, repeated, loaded)
+    report.see_loading(account, repeated, loaded, contradictions)
     report.see_unread(drawn, drawer.book)
     report.see_layers(drawn, layers)
     if place:

@@ -28,9 +28,12 @@ _UNREAD = (
 )
 
 
-def report_losses(account: Account, loaded: Loaded, drawn: Drawn, book: BlockBook) -> tuple[str, ...]:
+def report_losses(
+    account: Account, loaded: Loaded, drawn: Drawn, book: BlockBook, contradictions: Sequence[str]
+) -> tuple[str, ...]:
     """What was lost on the way, one line each, for the ledger."""
     losses = [f"{count} {kind} lost in reading" for kind, count in sorted(account.lost.items())]
+    losses += [f"perhaps lost around it: {words}" for words in contradictions[:5]]
     losses += [f"recovery: {words}" for words in loaded.repairs[:5]]
     if len(loaded.repairs) > 5:
         losses.append(f"recovery: {len(loaded.repairs) - 5} more repairs")
@@ -62,7 +65,9 @@ class Report:
         )
         self.found.append(finding)
 
-    def see_loading(self, account: Account, repeated: Sequence[str], loaded: Loaded) -> None:
+    def see_loading(
+        self, account: Account, repeated: Sequence[str], loaded: Loaded, contradictions: Sequence[str]
+    ) -> None:
         """How the file was got open, and what the library dropped."""
         if loaded.recovered:
             words = f"read in recovery mode ({loaded.recovered}); compare the counts with the drawing"
@@ -73,6 +78,10 @@ class Report:
         if repeated:
             words = f"{len(repeated)} handles stand at more than one entity ({', '.join(repeated[:3])})"
             self.see("handle-twice", "check", words, repeated[:3])
+        if contradictions:
+            count = len(contradictions)
+            words = f"{count} entities contradict themselves ({contradictions[0]}): pieces of the file may be lost"
+            self.see("entity-contradicts-itself", "check", words)
         paper = account.aside.get("paper space", 0)
         if paper:
             self.see("paper-space", "note", f"{paper} entities on layout sheets (paper space) are not read")

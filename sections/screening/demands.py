@@ -45,21 +45,26 @@ def wall_demands(
             even spacing alone make no difference to 2D.
         rows: (ns,) True for rows of piles, whose movement and moment on the excavated face are such means too.
     """
+    # A cubic between columns: its middle is the mean of its ends plus h/8, its own mean h/12, of the change of turn.
+    movement, tension = _profiles(wall, answer, 1 / 8)
+    mean_movement, mean_tension = _profiles(wall, answer, 1 / 12)
+    bay = smooth or (lambda values: values)
+    mean_tension = bay(mean_tension)
+    if rows is not None and np.any(rows):
+        movement = np.where(rows[:, None], bay(mean_movement), movement)
+        tension = np.where(rows[:, None], mean_tension, tension)
+    return Demands(_largest(movement), _largest(tension), _largest(-mean_tension), support)
+
+
+def _profiles(wall: FoldedWall, answer: Answer, share: float) -> tuple[Floats, Floats]:
+    """Deflection and moment down each facet (ns, nz): the mean of its ends plus a share of h times the change of turn."""
     ends, normals, length = wall.ends, wall.normals, np.hypot(*wall.chords.T)
     w = [np.einsum("sd,sdz->sz", normals, answer.value[ends[:, i], :2]) for i in (0, 1)]
     slope = [np.einsum("sd,sdz->sz", normals, answer.slope[ends[:, i], :2]) for i in (0, 1)]
-    turn = [answer.value[ends[:, i], 2] for i in (0, 1)]
-    turn_slope = [answer.slope[ends[:, i], 2] for i in (0, 1)]
-    # Cubic between columns: the middle is the mean plus h/8 of the change of slope.
-    middle = (w[0] + w[1]) / 2 + length[:, None] / 8 * (turn[0] - turn[1])
-    middle_slope = (slope[0] + slope[1]) / 2 + length[:, None] / 8 * (turn_slope[0] - turn_slope[1])
-    M = moments(wall.z, middle, middle_slope, np.where(wall.on, wall.Dv[:, None], 0.0))
-    bay = smooth or (lambda values: values)
-    meant = np.zeros(len(M), bool) if rows is None else rows
-    movement, tension = middle, M
-    if np.any(meant):
-        movement, tension = np.where(meant[:, None], bay(middle), middle), np.where(meant[:, None], bay(M), M)
-    return Demands(_largest(movement), _largest(tension), _largest(-bay(M)), support)
+    by = share * length[:, None]
+    profile = (w[0] + w[1]) / 2 + by * (answer.value[ends[:, 0], 2] - answer.value[ends[:, 1], 2])
+    steep = (slope[0] + slope[1]) / 2 + by * (answer.slope[ends[:, 0], 2] - answer.slope[ends[:, 1], 2])
+    return profile, moments(wall.z, profile, steep, np.where(wall.on, wall.Dv[:, None], 0.0))
 
 
 def twin_demands(groups: Ints, answers: Sequence[TwinAnswer], rows: Sequence[Sequence[int]], count: int) -> Demands:

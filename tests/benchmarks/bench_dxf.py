@@ -65,6 +65,11 @@ def measure(what: str, path: Path) -> tuple[float, float]:
     return min(float(run[0]) for run in runs), min(float(run[1]) for run in runs)
 
 
+def say(line: str) -> None:
+    """Write a line."""
+    sys.stdout.write(line + "\n")
+
+
 def main() -> None:
     """Print the table."""
     counts = [int(word) for word in sys.argv[1:]] or [20_000, 200_000]
@@ -75,13 +80,13 @@ def main() -> None:
             make(path, count)
             (bare, bare_memory), (ours, our_memory) = measure("bare", path), measure("read", path)
             times.append(ours)
-            print(
+            say(
                 f"{count} entities, {path.stat().st_size / 1e6:.0f} MB: readfile {bare:.2f} s, {bare_memory:.0f} MB; "
                 f"reader {ours / bare:.2f} x its time, {our_memory / bare_memory:.2f} x its memory"
             )
     if len(times) > 1:
         growth = math.log(times[-1] / times[0]) / math.log(counts[-1] / counts[0])
-        print(f"time grows with the number of entities to the power {growth:.2f}")
+        say(f"time grows with the number of entities to the power {growth:.2f}")
 
 
 if __name__ == "__main__":

@@ -1,7 +1,7 @@
 """A small frame of bars and beams in space by the direct stiffness method, for checks of what a section hands over.
 
-Textbook structural mechanics (Euler-Bernoulli beams, pin-ended bars, springs), written for these tests; no import of the
-tool. Unknowns of a node: three movements, three turns.
+Textbook structural mechanics (Euler-Bernoulli beams, pin-ended bars, springs), written for these tests; it imports
+nothing of the tool. Unknowns of a node: three movements, three turns.
 """
 
 from __future__ import annotations

@@ -81,7 +81,7 @@ def test_ground_at_rest_that_nobody_digs_does_not_move() -> None:
     assert PlaneModel(section).solve().movement < 1e-9
 
 
-# ---- real members in space against the smeared section -----------------------------------------------------------------
+# ---- real members in space against the smeared section ---------------------------------------------------------------
 
 
 def make_section(
@@ -251,7 +251,7 @@ def test_a_corner_strut_between_two_walls_in_space_carries_what_the_section_give
     assert thrust * answer.forces[member["id"]] == pytest.approx(force * sin(radians(45.0)), rel=1e-6)
 
 
-# ---- the ring ------------------------------------------------------------------------------------------------------------
+# ---- the ring --------------------------------------------------------------------------------------------------------
 
 
 def ring_section(supports: Sequence[Support] = ()) -> Json:
@@ -266,7 +266,7 @@ def ring_section(supports: Sequence[Support] = ()) -> Json:
 
 
 def test_a_ring_under_even_pressure_moves_by_p_R2_over_E_t_and_carries_p_R() -> None:
-    """Thin ring: u = p R^2/(E t), hoop force p R per metre of depth (statics); E 33e6, t 0.8, R 12.5, p 200: 1.1837 mm."""
+    """Thin ring (statics): u = p R^2/(E t), hoop p R per metre of depth; E 33e6, t 0.8, R 12.5, p 200: 1.1837 mm."""
     section = ring_section()
     answer = FrameModel(section, ground=False, pressure=200.0).solve()
     (wall,) = walls_in(section)

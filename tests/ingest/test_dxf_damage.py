@@ -255,6 +255,29 @@ def test_a_handle_given_twice_is_told_and_both_entities_are_kept(drawing: Path) 
     assert "handle-twice" in {finding.code for finding in found.findings}
 
 
+@pytest.mark.parametrize(
+    ("kind", "drop", "words"),
+    [
+        ("LWPOLYLINE", r" 10\n.*\n 20\n.*\n", "says 2 vertices and has 1"),
+        ("LINE", r"  5\n.*\n", "lacks its handle"),
+        ("CIRCLE", r"100\nAcDbEntity\n(?:.*\n)*?100\nAcDbCircle\n", "lacks its handle or subclass mark"),
+        ("LINE", r"(?<=STRUTS\n)(?:.*\n)*?  0\nTEXT\n", "has two handles"),
+    ],
+)
+def test_an_entity_that_contradicts_itself_shows_a_piece_is_lost(
+    drawing: Path, kind: str, drop: str, words: str
+) -> None:
+    text = drawing.read_text(encoding="utf-8")
+    at = text.index(f"\n{kind}\n", text.index("BLOCKS" if kind != "LINE" else "ENTITIES"))
+    text, count = text[:at] + re.sub(drop, "", text[at:], count=1), len(text)
+    assert len(text) < count
+    drawing.write_text(text, encoding="utf-8")
+    found = read_dxf(drawing)
+    (finding,) = [f for f in found.findings if f.code == "entity-contradicts-itself"]
+    assert words in finding.text
+    assert any("perhaps lost around it" in loss for loss in found.losses)
+
+
 def cut(data: bytes, rng: random.Random) -> bytes:
     return data[: rng.randrange(len(data))]
 

@@ -214,13 +214,13 @@ class Block:
         self.unknowns = len(ids)
         return self
 
-    def deflection(self, path: Path, column: int, facet: int) -> Array:
-        """Movement into the pit down a column, square to a facet, m."""
-        return self._down(path, column, facet)[0]
+    def deflection(self, path: Path, facet: int) -> Array:
+        """Mean movement into the pit down a facet, square to it, m."""
+        return self._down(path, facet)[0]
 
-    def moment(self, path: Path, column: int, facet: int) -> Array:
-        """Vertical bending moment down a column, tension on the excavated face positive, kNm/m."""
-        w, t = self._down(path, column, facet)
+    def moment(self, path: Path, facet: int) -> Array:
+        """Mean vertical bending moment down a facet, tension on the excavated face positive, kNm/m."""
+        w, t = self._down(path, facet)
         h = np.diff(self.depth[: path.depth_nodes])
         top = (6 * (w[1:] - w[:-1]) / h - 4 * t[:-1] - 2 * t[1:]) / h
         base = (6 * (w[:-1] - w[1:]) / h + 2 * t[:-1] + 4 * t[1:]) / h
@@ -228,12 +228,19 @@ class Block:
         curve[1:-1] = (top[1:] + base[:-1]) / 2
         return -path.plates[facet].Dv * curve
 
-    def _down(self, path: Path, column: int, facet: int) -> tuple[Array, Array]:
-        i, j = path.nodes[column]
-        nodes = self.vertex[i, j, : path.depth_nodes]
-        slots = np.array([self._slots(path, column, k) for k in range(path.depth_nodes)])
+    def _down(self, path: Path, facet: int) -> tuple[Array, Array]:
+        """Mean deflection and slope along a facet: of its ends and, for a plate, h/12 of the change of turn."""
         n = path.normals[facet]
-        return n @ self.U[self.dofs[:2, nodes]], n @ self.U[slots[:, 1:3].T]
+        values = []
+        for column in (facet, facet + 1):
+            i, j = path.nodes[column]
+            nodes = self.vertex[i, j, : path.depth_nodes]
+            slots = np.array([self._slots(path, column, k) for k in range(path.depth_nodes)])
+            plan, slope = self.U[self.dofs[:2, nodes]], self.U[slots[:, 1:3].T]
+            values.append((n @ plan, n @ slope, self.U[slots[:, 0]], self.U[slots[:, 3]]))
+        (w0, t0, r0, q0), (w1, t1, r1, q1) = values
+        by = path.lengths[facet] / 12 * bool(path.plates[facet].Dh)
+        return (w0 + w1) / 2 + by * (r0 - r1), (t0 + t1) / 2 + by * (q0 - q1)
 
     def _slots(self, path: Path, column: int, node: int) -> list[int]:
         """Own unknowns of a wall node: turn, slope down (x, y), slope of the turn."""

@@ -339,6 +339,6 @@ def solve_slice(
             spring = block.at(walls[1], c, scene.props[e.prop].depth, (0, 1))
             block.spring(spring, scene.props[e.prop].stiffness / e.width / 2)
     block.solve()
-    w, M = block.deflection(walls[0], 0, 0), block.moment(walls[0], 0, 0)
+    w, M = block.deflection(walls[0], 0), block.moment(walls[0], 0)
     force = {z: k * sum(block.U[u] * v for u, v in own[0]) for z, own, k in hung}
     return Slice(float(w.max()), float(max(M.max(), 0.0)), float(max(-M.min(), 0.0)), force)

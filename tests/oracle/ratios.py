@@ -78,10 +78,8 @@ def staged_ratios(scene: Scene, digs: Sequence[float]) -> Ratios:
 
 
 def _profiles(model: Model, facet: int) -> tuple[Array, Array]:
-    """Deflection and moment down the middle of a facet."""
-    w = sum(model.block.deflection(model.path, facet + e, facet) for e in (0, 1)) / 2
-    M = sum(model.block.moment(model.path, facet + e, facet) for e in (0, 1)) / 2
-    return np.asarray(w), np.asarray(M)
+    """Deflection and moment down a facet."""
+    return model.block.deflection(model.path, facet), model.block.moment(model.path, facet)
 
 
 def _bay_mean(scene: Scene, model: Model, values: Array, width: Array) -> Array:

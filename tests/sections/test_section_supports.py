@@ -10,7 +10,7 @@ from pit_sites import PANEL, PILES, anchor, footing, found, rectangle, shape_of,
 
 from ingest.model import Material, Point, Site, Support
 from sections.cut import Cut
-from sections.definition import SectionMember
+from sections.definition import PerMetre, RealMember, SectionMember
 from sections.model import FoundPit
 from sections.section_balance import balance_section
 from sections.section_supports import support_members
@@ -156,3 +156,21 @@ def test_the_area_of_a_strut_comes_from_its_section_or_from_its_stiffness_and_ma
         rectangle(), (115, 182), (115, 238), [15.0, 65.0], supports=supports, materials=(steel,)
     )
     assert members[0].real.A_m2 == pytest.approx(0.02)
+
+
+SLOPES = [("anchor", 20.0, 1), ("anchor", -20.0, -1), ("raker", 30.0, -1), ("raker", -30.0, 1)]
+
+
+@pytest.mark.parametrize(("role", "dip", "sign"), SLOPES)
+def test_an_inclined_member_pulls_the_wall_down_or_lifts_it_by_its_slope(role: str, dip: float, sign: int) -> None:
+    """Tension towards a lower end pulls down, compression from a lower end lifts; P sin(dip)/s, down positive."""
+    preload, s = (300.0 if role == "anchor" else -300.0), 2.0
+    real = RealMember(spacing=s, inclination=dip, skew=0.0, preload_kN=preload)
+    bar = SectionMember(
+        id="A", role=role, side="left", material=None, form="bar", points=((0.0, 0.0), (5.0, -2.0)), ends=(),  # type: ignore[arg-type]
+        real=real, section=PerMetre(preload_kN_per_m=preload / s), smear=(), back=(),
+    )  # fmt: skip
+    cut = Cut(kind="plane_strain", start=(0.0, 0.0), end=(9.0, 0.0), walls=())
+    (line,) = balance_section(cut, [bar], {}, {}, (), None).vertical
+    assert line.value == pytest.approx(sign * 300.0 * sin(radians(abs(dip))) / s)
+    assert ("down" in line.text) == (sign > 0)
