@@ -47,7 +47,7 @@ def run_propose(options: argparse.Namespace) -> Answer:
 
     folder = Path(options.out)
     check_folder(folder)
-    site = _read(options)
+    site = _read_to_judge(options)
     with _progress(options) as tell:
         proposal, definitions = propose(site, progress=tell)
         tell("write", 0, 1)
@@ -64,7 +64,7 @@ def run_judge(options: argparse.Namespace) -> Answer:
     from sections.judge_line import judge_line
 
     line = _line(options.line)
-    site = _read(options)
+    site = _read_to_judge(options)
     judged = judge_line(site, line)
     if options.json:
         return 0, json.dumps(line_json(judged), indent=2, ensure_ascii=False)
@@ -142,6 +142,17 @@ def run_schema(options: argparse.Namespace) -> Answer:
     if options.name not in SCHEMAS:
         raise InputError("", f"schema {options.name}", "is not known", f"name one of: {', '.join(SCHEMAS)}")
     return 0, read_schema(options.name)
+
+
+def _read_to_judge(options: argparse.Namespace) -> Site:
+    """Read the files; a finding that stops the run ends it here, while `inspect` still shows everything."""
+    site = _read(options)
+    for finding in site.findings:
+        if finding.severity == "stop":
+            raise InputError(
+                finding.where, "", finding.text, "see the questions of `cutworthy inspect`, answer in the brief"
+            )
+    return site
 
 
 def _read(options: argparse.Namespace) -> Site:

@@ -25,9 +25,17 @@ def check_sizes(site: Site, notes: Notes) -> None:
     Raises:
         InputError: A wall longer than `LONGEST`, or half of a file's wall piles too thin or too thick.
     """
+    apart = any(finding.code == "files-apart" for finding in notes.findings)
     total: dict[str, float] = {}
     for wall in site.walls:
         length = sum(dist(a, b) for a, b in zip(wall.axis, wall.axis[1:], strict=False))
+        if length > LONGEST and apart:
+            # Which unit is right is asked already, from the other file: `inspect` must be able to show it.
+            where = wall.sources[0].file if wall.sources else wall.id
+            notes.see(
+                "wall-size", "stop", where, f"a wall {length:.0f} m long, longer than any: answer the question first"
+            )
+            return
         if length > LONGEST:
             raise _refused(wall.sources, f"is a wall {length:.0f} m long, longer than any: the unit may be wrong")
         file = wall.sources[0].file if wall.sources else ""

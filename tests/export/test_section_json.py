@@ -55,6 +55,7 @@ def test_every_key_is_written_and_null_means_not_given(first_pit: Job) -> None:
         "limit_kN_per_m",
         "contact_kPa",
         "k_effective_kN_per_m_per_m",
+        "soil_displaced_m3_per_m2",
         "free_strain",
     }
 
