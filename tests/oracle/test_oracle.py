@@ -21,9 +21,9 @@ from sections.screening.run import run_variant
 from sections.screening.scene import make_scene
 
 # (rms of screening less block, largest of block above screening) by output: deflection, excavated, retained, force
-PANELS = ((0.03, 0.05), (0.09, 0.10), (0.32, 0.27), (0.03, 0.07))
-ROWS = ((0.075, 0.22), (0.10, 0.08), (0.25, 0.50), (0.06, 0.10))
-CORNERED = ((0.045, 0.09), (0.06, 0.06), (0.12, 0.18), (0.04, 0.06))
+PANELS = ((0.03, 0.05), (0.05, 0.10), (0.35, 0.26), (0.03, 0.03))
+ROWS = ((0.08, 0.21), (0.05, 0.04), (0.20, 0.45), (0.05, 0.01))
+CORNERED = ((0.045, 0.07), (0.05, 0.06), (0.12, 0.18), (0.04, 0.05))
 BOUNDS = {scene.name: ROWS if scene.rows else PANELS for scene in SCENES} | {"ell": CORNERED}
 
 

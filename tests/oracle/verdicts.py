@@ -24,7 +24,7 @@ from sections.verdict import combine_arrays, words_of
 
 FIGURES = json.loads(Path(__file__).with_name("figures.json").read_text())
 NAMES = OUTPUTS[:4]
-MESH = {"wall_deflection": 0.03, "wall_moment_excavated_face": 0.03, "wall_moment_retained_face": 0.06,
+MESH = {"wall_deflection": 0.03, "wall_moment_excavated_face": 0.03, "wall_moment_retained_face": 0.07,
         "support_force": 0.01}  # fmt: skip
 """Error of the block's mesh, from the scenes solved on a finer one (`test_the_mesh_error_is_as_stated`)."""
 RETAINED = NAMES.index("wall_moment_retained_face")
