@@ -17,7 +17,7 @@ from ingest.model import OUTPUTS, Limits, Site
 from sections.along import distance_along, gaps_of
 from sections.criteria.sheet import WALL_OUTPUTS, Sheet
 from sections.margins import peak_factor
-from sections.model import Bools, CriterionResult, Floats, FoundPit, Ints, Mechanism
+from sections.model import Bools, CriterionResult, Floats, FoundPit, Ints, Mechanism, Stations
 from sections.screening.run import VariantRatios, run_variant
 from sections.screening.scene import BEAM_EI, WALER_EI, Scene, Variant, make_scene
 
@@ -37,10 +37,12 @@ def screening(site: Site, found: FoundPit, limits: Limits) -> CriterionResult:
     stations = found.stations
     scene, why = make_scene(site, found)
     if scene is None:
-        silent = Sheet(stations, f"Not computed: {why}.")
-        return silent.close(CODE, "corner", basis=BASIS, reference=REFERENCE, settled_by=why)
+        return _silent(stations, why)
     with ThreadPoolExecutor(max_workers=WORKERS) as pool:
         runs = list(pool.map(partial(run_variant, scene), variants_of(scene)))
+    restless = [run.variant.name for run in runs if not run.settled]
+    if restless:
+        return _silent(stations, f"earth pressures found no balance with {restless[0]}: the wall may not stand")
     low, high = band_of(scene, runs, limits_on=scene.soil.strength_known)
     sheet = Sheet(stations, "Not computed here.")
     for o, name in enumerate(WALL_OUTPUTS):
@@ -60,6 +62,11 @@ def screening(site: Site, found: FoundPit, limits: Limits) -> CriterionResult:
         silence={"wall_moment_retained_face": ROW_FACE},
         stages=_stages(scene, runs[0]),
     )
+
+
+def _silent(stations: Stations, why: str) -> CriterionResult:
+    sheet = Sheet(stations, f"Not computed: {why}.")
+    return sheet.close(CODE, "corner", basis=BASIS, reference=REFERENCE, settled_by=why)
 
 
 def _stages(scene: Scene, base: VariantRatios) -> tuple[tuple[str, ...], Ints]:

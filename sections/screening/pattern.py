@@ -13,7 +13,7 @@ from scipy import sparse
 
 from sections.model import Floats, Ints
 
-LEAF = 96
+LEAF = 8
 """Nodes below which a piece of the wall is not cut further."""
 
 

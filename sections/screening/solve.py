@@ -52,7 +52,9 @@ def factorise(wall: FoldedWall, members: Members, beams: Beams, pattern: Pattern
     """
     pattern = pattern or make_pattern(len(wall.columns), wall.closed, len(wall.z))
     vectors = member_vectors(wall, members)
-    total = assemble(wall, pattern) + beam_stiffness(wall, beams) + vectors.T @ sparse.diags(members.stiffness) @ vectors
+    total = (
+        assemble(wall, pattern) + beam_stiffness(wall, beams) + vectors.T @ sparse.diags(members.stiffness) @ vectors
+    )
     # A node no element touches has no stiffness of its own; a member alone cannot hold it.
     touched = np.zeros(wall.size, bool)
     touched[element_unknowns(wall)[wall.on]] = True

@@ -142,7 +142,7 @@ def assemble(wall: FoldedWall, pattern: Pattern) -> sparse.csr_matrix:
     z_parts = np.stack([z_part.reshape(-1, 16) for _, _, z_part in terms], axis=1)
     factors = np.stack([factor for factor, _, _ in terms], axis=-1)
     elements = np.matmul(s_parts[:, None], factors[..., None] * z_parts[None])
-    return pattern.gather(elements) + corner_law(wall, down)
+    return sparse.csr_matrix(pattern.gather(elements) + corner_law(wall, down))
 
 
 def load_operator(wall: FoldedWall) -> sparse.csr_matrix:

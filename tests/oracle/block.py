@@ -11,9 +11,9 @@ Simplified: columns, ground and wall meet at nodes only; arcs are chords; the wa
 from __future__ import annotations
 
 from collections.abc import Callable, Sequence
-from dataclasses import dataclass
 
 import numpy as np
+from elements import Array, Path, Plate, bend, dissect, membrane_form, plate_form
 from scipy import sparse
 from scipy.sparse.linalg import splu
 from skfem import (
@@ -30,58 +30,11 @@ from skfem import (
     MeshLine,
     MeshQuad,
 )
+from skfem.helpers import ddot, eye, sym_grad, trace
 from skfem.models import laplace
-from skfem.helpers import dd, ddot, eye, sym_grad, trace
 
-Array = np.ndarray
-HELD = 1e12
-"""Spring for symmetry planes that do not follow an axis, kN/m."""
-
-
-@dataclass(frozen=True, kw_only=True)
-class Plate:
-    """Wall per metre: stiffness down, along, in twist (kNm2/m); membrane along, down (kN/m) and in shear."""
-
-    Dv: float
-    Dh: float = 0.0
-    Dk: float = 0.0
-    Eh: float = 0.0
-    Ev: float = 0.0
-    G: float = 0.0
-
-
-@dataclass(frozen=True)
-class Path:
-    """A wall in the block: its plan nodes (i, j) in order, excavated side on the left; `first` its first unknown."""
-
-    nodes: tuple[tuple[int, int], ...]
-    first: int
-    depth_nodes: int
-    plates: tuple[Plate, ...]
-    normals: Array
-    tangents: Array
-    lengths: Array
-
-
-def dissect(index: Array, leaf: int = 300) -> Array:
-    """Order points by nested dissection of their grid indices (n, 3): halves first, the plane between them last."""
-    order: list[Array] = []
-
-    def part(ids: Array) -> None:
-        where = index[ids]
-        spans = np.ptp(where, axis=0)
-        axis = int(np.argmax(spans))
-        if len(ids) <= leaf or spans[axis] < 2:
-            order.append(ids)
-            return
-        cut = np.sort(where[:, axis])[len(ids) // 2]
-        cut = min(max(cut, where[:, axis].min() + 1), where[:, axis].max() - 1)
-        part(ids[where[:, axis] < cut])
-        part(ids[where[:, axis] > cut])
-        order.append(ids[where[:, axis] == cut])
-
-    part(np.arange(len(index)))
-    return np.concatenate(order)
+HELD = 1e10
+"""Spring for symmetry planes that do not follow an axis, kN/m: stiffer ones lose digits."""
 
 
 class Block:
@@ -174,7 +127,7 @@ class Block:
         for facet, length in enumerate(path.lengths):
             mesh = MeshLine(np.array([0.0, length]))
             for element, kinds, form in (
-                (ElementLineHermite(), ("w", "ws"), _bend),
+                (ElementLineHermite(), ("w", "ws"), bend),
                 (ElementLineP1(), ("u",), laplace),
             ):
                 basis = Basis(mesh, element, intorder=4)
@@ -196,7 +149,9 @@ class Block:
 
     def solve(self) -> Block:
         """Assemble and solve directly; answers by `deflection` and `moment`."""
-        rows, cols, values = (np.concatenate(a) for a in zip(*[(p.row, p.col, p.data) for p in self.parts], strict=True))
+        rows, cols, values = (
+            np.concatenate(a) for a in zip(*[(p.row, p.col, p.data) for p in self.parts], strict=True)
+        )
         K = sparse.coo_matrix((values, (rows, cols)), (self.size, self.size)).tocsr()
         F = np.zeros(self.size)
         for values, _ in self.loads:
@@ -208,7 +163,9 @@ class Block:
         ids = ids[dissect(self.place[ids])]
         scale = 1 / np.sqrt(diagonal[ids])
         D = sparse.diags(scale)
-        factors = splu((D @ K[ids][:, ids] @ D).tocsc(), "NATURAL", diag_pivot_thresh=0.0, options={"SymmetricMode": True})
+        factors = splu(
+            (D @ K[ids][:, ids] @ D).tocsc(), "NATURAL", diag_pivot_thresh=0.0, options={"SymmetricMode": True}
+        )
         self.U = np.zeros(self.size)
         self.U[ids] = scale * factors.solve(scale * F[ids])
         self.unknowns = len(ids)
@@ -251,12 +208,12 @@ class Block:
 
     def _facet(self, path: Path, facet: int, plate: Plate) -> None:
         for basis, turn, share in self._plates(path, facet, plate):
-            form = _plate_form(plate) if plate.Dh else _bend
+            form = plate_form(plate) if plate.Dh else bend
             self._add_turned(share * (1.0 if plate.Dh else plate.Dv) * form.assemble(basis), turn)
         if plate.Eh or plate.Ev:
             basis = Basis(self._sheet(path, facet), ElementVector(ElementQuad1()))
             turn = self._turn(path, facet, basis, self._spot(path, facet), ("u", "v"))
-            self._add_turned(_membrane_form(plate).assemble(basis), turn)
+            self._add_turned(membrane_form(plate).assemble(basis), turn)
 
     def _plates(self, path: Path, facet: int, plate: Plate) -> list[tuple[Basis, sparse.csr_matrix, float]]:
         """Bases of the bending elements of a facet, how they hang on the unknowns, and the share of each."""
@@ -306,30 +263,3 @@ class Block:
 
     def _add_turned(self, element: sparse.csr_matrix, turn: sparse.csr_matrix) -> None:
         self.parts.append((turn.T @ element @ turn).tocoo())
-
-
-@BilinearForm
-def _bend(u: Array, v: Array, _: Array) -> Array:
-    return ddot(dd(u), dd(v))
-
-
-def _plate_form(plate: Plate) -> BilinearForm:
-    @BilinearForm
-    def bending(u: Array, v: Array, _: Array) -> Array:
-        a, b = dd(u), dd(v)
-        along, down, twist = a[0, 0] * b[0, 0], a[1, 1] * b[1, 1], a[0, 1] * b[0, 1]
-        return plate.Dh * along + plate.Dv * down + 4 * plate.Dk * twist
-
-    return bending
-
-
-def _membrane_form(plate: Plate) -> BilinearForm:
-    @BilinearForm
-    def stretching(u: Array, v: Array, _: Array) -> Array:
-        e, f = sym_grad(u), sym_grad(v)
-        return plate.Eh * e[0, 0] * f[0, 0] + plate.Ev * e[1, 1] * f[1, 1] + 4 * plate.G * e[0, 1] * f[0, 1]
-
-    return stretching
-
-
-__all__ = ["Block", "Path", "Plate", "dissect"]

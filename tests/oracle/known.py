@@ -5,8 +5,9 @@ from __future__ import annotations
 import dataclasses
 
 import numpy as np
+from block import Block
+from elements import Plate
 
-from block import Block, Plate
 from sections.model import Floats
 from sections.screening.hermite import moments
 from sections.screening.solve import Answer, answer, factorise

@@ -7,26 +7,14 @@ from dataclasses import dataclass
 
 import numpy as np
 import shapely
+from block import Block
+from elements import Array, Path
+from props import ends_of, near_opposite, nearest_ends, side_of
+from scenes import NU, Prop, Scene
+from slices import Slice, modulus, plate_of, pressure, solve_slice
 
-from block import Array, Block, Path, Plate
-from scenes import CENTRES, DIAMETER, E_WALL, NU, REST, THICKNESS, WEIGHT, Prop, Scene
-
-FLOOR = 0.25
-"""A demand is taken against at least this share of the section's largest of its kind."""
 REACH = 4.0
 """Ground beyond the wall and depth of the base below the surface, in excavated depths (base: 3.5)."""
-
-
-def modulus(depth: Array) -> Array:
-    return 10e3 + 3e3 * depth
-
-
-def plate_of(scene: Scene) -> Plate:
-    if scene.rows:
-        # piles carry nothing along the wall; their axial stiffness holds the ground up
-        return Plate(Dv=E_WALL * np.pi * DIAMETER**4 / 64 / CENTRES, Ev=E_WALL * DIAMETER / 2)
-    EI, EA = E_WALL * THICKNESS**3 / 12, E_WALL * THICKNESS
-    return Plate(Dv=EI, Dh=EI, Dk=EI / 2, Eh=EA, Ev=EA, G=EA / 2.4)
 
 
 def grade(start: float, length: float, count: int, ratio: float) -> Array:
@@ -43,47 +31,9 @@ def fill(marks: Sequence[float], step: float) -> Array:
 
 def depth_lines(scene: Scene, step: float = 1.0) -> Array:
     marks = [0.0, scene.toe, *(p.depth for p in scene.props), *(d for _, d in scene.dig), *scene.levels]
-    return np.concatenate([fill(marks, step), grade(scene.toe, 3.5 * max((scene.deepest, *scene.levels)) - scene.toe, 6, 1.5)])
-
-
-@dataclass(frozen=True)
-class End:
-    """One end of a prop on one side of the wall: place along the side, the width it stands for."""
-
-    prop: int
-    side: int
-    place: float
-    width: float
-
-
-def ends_of(scene: Scene) -> list[End]:
-    """Ends of all props on the sides of the pit, with the rule of half gaps, to the end of the side at its ends."""
-    corners = np.array(scene.corners)
-    found: list[tuple[int, int, float]] = []
-    lengths = np.hypot(*(np.roll(corners, -1, axis=0) - corners).T)
-    for number, prop in enumerate(scene.props):
-        for point in (prop.head, prop.far) if prop.tie else (prop.head,):
-            side, place = _side_of(corners, np.array(point))
-            found.append((number, side, place))
-    ends = []
-    for number, side, place in found:
-        depth = scene.props[number].depth
-        level = sorted(p for n, s, p in found if s == side and scene.props[n].depth == depth)
-        i = level.index(place)
-        low = (level[i - 1] + place) / 2 if i else 0.0
-        high = (level[i + 1] + place) / 2 if i + 1 < len(level) else float(lengths[side])
-        ends.append(End(number, side, place, high - low))
-    return ends
-
-
-def _side_of(corners: Array, point: Array) -> tuple[int, float]:
-    chord = np.roll(corners, -1, axis=0) - corners
-    length = np.hypot(*chord.T)
-    along = np.einsum("sd,sd->s", point - corners, chord) / length
-    off = abs(chord[:, 0] * (point - corners)[:, 1] - chord[:, 1] * (point - corners)[:, 0]) / length
-    off = np.where((along > -1e-6) & (along < length + 1e-6), off, np.inf)
-    side = int(np.argmin(off))
-    return side, float(along[side])
+    return np.concatenate(
+        [fill(marks, step), grade(scene.toe, 3.5 * max((scene.deepest, *scene.levels)) - scene.toe, 6, 1.5)]
+    )
 
 
 @dataclass(frozen=True)
@@ -98,22 +48,6 @@ class Model:
     force: Array
     """(props,) compression, nan outside the model, kN."""
     cut: Callable[[int], Slice]
-
-
-@dataclass(frozen=True)
-class Slice:
-    """Demands of the plane slice at a facet: wall deflection, moments, force per metre by level."""
-
-    deflection: float
-    excavated: float
-    retained: float
-    force: dict[float, float]
-
-
-def pressure(scene: Scene, normal: Array, dug: float) -> Callable[[Array], Array]:
-    """Pressure at rest that the dig releases, kPa; the surcharge stands behind the southern wall."""
-    q = scene.surcharge if normal[1] > 0.9 else 0.0
-    return lambda z: np.where(z < dug, REST * (WEIGHT * z + q), 0.0)
 
 
 def tensor_model(scene: Scene, refine: float = 1.0) -> Model:
@@ -240,7 +174,7 @@ def _finish(
     force = np.array([np.nan if h is None else prop.stiffness * h[1] * sum(block.U[u] * w for u, w in h[0])
                       for h, prop in zip(held, scene.props, strict=True)])  # fmt: skip
     middles = (xy[1:] + xy[:-1]) / 2
-    where = [_side_of(np.array(scene.corners), m) for m in middles]
+    where = [side_of(np.array(scene.corners), m) for m in middles]
     side, place = np.array([w[0] for w in where]), np.array([w[1] for w in where])
     ends, cache = ends_of(scene), {}
 
@@ -282,63 +216,3 @@ def _hang(
     # a strut cut by the plane across it is twice as stiff on what is left of it
     block.spring(unknowns, share * prop.stiffness * (2.0 if prop.tie else 1.0))
     return unknowns, 2.0 if prop.tie else 1.0
-
-
-def nearest_ends(scene: Scene, ends: Sequence[End], side: int, place: float) -> list[End]:
-    """Per level the prop end of a side nearest to a place on it."""
-    here = [e for e in ends if e.side == side]
-    levels = sorted({scene.props[e.prop].depth for e in here})
-    return [min((e for e in here if scene.props[e.prop].depth == z), key=lambda e: abs(e.place - place))
-            for z in levels]  # fmt: skip
-
-
-def near_opposite(scene: Scene, ends: Sequence[End], near: Sequence[End], point: Array, normal: Array) -> list[End]:
-    """Prop ends of the wall across that are held still at their other end."""
-    corners = np.array(scene.corners)
-    ray = shapely.LineString([point + 0.01 * normal, point + 200 * normal])
-    hit = shapely.intersection(ray, shapely.Polygon(corners).exterior)
-    if hit.is_empty:
-        return []
-    spot = min((np.array(p.coords[0]) for p in getattr(hit, "geoms", [hit])), key=lambda p: np.hypot(*(p - point)))
-    side, place = _side_of(corners, spot)
-    return [e for e in nearest_ends(scene, ends, side, place) if not scene.props[e.prop].tie]
-
-
-def solve_slice(
-    scene: Scene, lines: Array, strips: Array, at: float, normal: Array, near: Sequence[End], across: Sequence[End],
-    depth: Array,
-) -> Slice:  # fmt: skip
-    """One element of the section, in plane strain, with the far wall where the model holds it; supports smeared."""
-    unit = np.array([0.0, 1.0])
-    block = Block((unit, lines, depth), strips[None, :], modulus, NU)
-    for plane, way in ((block.vertex[0], (1, 0)), (block.vertex[-1], (1, 0)), (block.vertex[:, 0], (0, 1)),
-                       (block.vertex[:, -1], (0, 1))):  # fmt: skip
-        block.roll(plane, way)
-    spot = int(np.argmin(abs(lines - at)))
-    end = next((j for j in range(spot, len(strips)) if strips[j] == 0), None)
-    walls = [block.wall([(0, spot), (1, spot)], [plate_of(scene)], scene.toe)]
-    block.load(walls[0], lambda f, z: pressure(scene, normal, float(strips[spot]))(z))
-    if end is not None:
-        walls.append(block.wall([(1, end), (0, end)], [plate_of(scene)], scene.toe))
-        block.load(walls[1], lambda f, z: pressure(scene, -normal, float(strips[end - 1]))(z))
-    for wall in walls:
-        block.hold_turn(wall, 0, (1, 0))
-        block.hold_turn(wall, 1, (1, 0))
-    hung = []
-    for e in near:
-        prop = scene.props[e.prop]
-        own = [block.at(walls[0], c, prop.depth, (0, 1)) for c in (0, 1)]
-        if prop.tie and end is not None:
-            own = [o + block.at(walls[1], 1 - c, prop.depth, (0, -1)) for c, o in enumerate(own)]
-        times = 2.0 if prop.tie and end is None else 1.0
-        for unknowns in own:
-            block.spring(unknowns, times * prop.stiffness / e.width / 2)
-        hung.append((prop.depth, own, times * prop.stiffness / e.width))
-    for e in across if end is not None else ():
-        for c in (0, 1):
-            spring = block.at(walls[1], c, scene.props[e.prop].depth, (0, 1))
-            block.spring(spring, scene.props[e.prop].stiffness / e.width / 2)
-    block.solve()
-    w, M = block.deflection(walls[0], 0), block.moment(walls[0], 0)
-    force = {z: k * sum(block.U[u] * v for u, v in own[0]) for z, own, k in hung}
-    return Slice(float(w.max()), float(max(M.max(), 0.0)), float(max(-M.min(), 0.0)), force)

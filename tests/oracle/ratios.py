@@ -6,12 +6,16 @@ from collections.abc import Sequence
 from dataclasses import dataclass, replace
 
 import numpy as np
-
-from block import Array
-from pits import FLOOR, End, Model, Slice, ends_of, nearest_ends, sector_model, tensor_model
+from elements import Array
+from pits import Model, sector_model, tensor_model
+from props import End, ends_of, nearest_ends
 from scenes import Scene
+from slices import Slice
 
 OUTPUTS = ("wall_deflection", "wall_moment_excavated_face", "wall_moment_retained_face", "support_force")
+
+FLOOR = 0.25
+"""A demand is taken against at least this share of the section's largest of its kind."""
 
 
 @dataclass(frozen=True)

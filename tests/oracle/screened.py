@@ -7,9 +7,9 @@ from dataclasses import dataclass, replace
 from pathlib import Path
 
 import numpy as np
+from scenes import CENTRES, DIAMETER, E_WALL, NU, REST, THICKNESS, WEIGHT, Scene
 
 from ingest.model import Floor, Load, Material, Site, Stratum, Support
-from scenes import CENTRES, DIAMETER, E_WALL, NU, REST, THICKNESS, WEIGHT, Scene
 from sections.find import describe_pits
 from sections.model import Circle, Floats, FoundPit, Structural, Wall
 from sections.screening.run import run_variant
@@ -37,9 +37,15 @@ def supports_of(scene: Scene) -> tuple[Support, ...]:
         length = float(np.hypot(prop.far[0] - prop.head[0], prop.far[1] - prop.head[1]))
         out.append(
             Support(
-                id=f"{i}", name=f"{i}", role="strut" if prop.tie else "anchor", head=(*prop.head, -prop.depth),
-                far=(*prop.far, -prop.depth), EA=prop.stiffness * length, free_length=None if prop.tie else length,
-                waler=scene.waler_EI is not None, waler_EI=scene.waler_EI,
+                id=f"{i}",
+                name=f"{i}",
+                role="strut" if prop.tie else "anchor",
+                head=(*prop.head, -prop.depth),
+                far=(*prop.far, -prop.depth),
+                EA=prop.stiffness * length,
+                free_length=None if prop.tie else length,
+                waler=scene.waler_EI is not None,
+                waler_EI=scene.waler_EI,
             )  # fmt: skip
         )
     return tuple(out)

@@ -117,3 +117,17 @@ def test_the_frozen_figures_say_what_made_them() -> None:
     stored = json.loads(Path(__file__).with_name("figures.json").read_text())
     assert set(stored["scenes"]) == set(BY_NAME)
     assert stored["command"].startswith("python tests/oracle/make_figures.py")
+
+
+def test_the_written_verification_holds_today_figures() -> None:
+    page = Path(__file__).parents[1].joinpath("VERIFICATION.md").read_text()
+    rows = [
+        line.split("|") for line in page.splitlines() if line.count("|") == 8 and line.split("|")[1].strip() in BY_NAME
+    ]
+    assert len(rows) > 40
+    for row in rows:
+        name, output, gaps = row[1].strip(), row[2].strip(), [float(v) for v in row[5].split(",")]
+        c, k = compared(name), NAMES.index(output)
+        gap = (c.screening - c.block)[c.inner, k]
+        gap = gap[~np.isnan(gap)]
+        assert gaps == pytest.approx([gap.mean(), np.sqrt(np.mean(gap**2)), gap.min(), gap.max()], abs=0.002), row

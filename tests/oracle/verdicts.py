@@ -12,10 +12,10 @@ from dataclasses import dataclass
 from pathlib import Path
 
 import numpy as np
-
-from ingest.model import OUTPUTS, Limits
 from scenes import SCENES, Scene
 from screened import Screening, base_variant, chainages, screen
+
+from ingest.model import OUTPUTS, Limits
 from sections.criteria.screening import band_of, variants_of
 from sections.margins import margins_at
 from sections.model import WORST_FIRST, Bools, Floats

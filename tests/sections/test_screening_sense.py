@@ -1,4 +1,4 @@
-"""Checks of sense on whole pits: what must be 1 is 1, what is symmetric stays so, and how a pit is drawn changes nothing."""
+"""Checks of sense on whole pits: what must be 1 is 1, symmetry stays, and how a pit is drawn changes nothing."""
 
 from __future__ import annotations
 
@@ -10,7 +10,8 @@ from hypothesis import Phase, given, settings
 from hypothesis import strategies as st
 from pit_sites import anchor, box, moved, moved_support, rectangle, shape_of, strut
 
-from ingest.model import Load, Material, Point, Site, Stratum, Support
+from ingest.model import OUTPUTS, Limits, Load, Material, Point, Site, Stratum, Support
+from sections.criteria.screening import screening
 from sections.find import describe_pits
 from sections.model import FoundPit, Wall
 from sections.screening.run import VariantRatios, run_variant
@@ -67,7 +68,9 @@ def even_struts(
     return tuple(strut((float(x), 0.0), (float(x), width), level, f"S{x}", EA=EA) for x in places)
 
 
-def even_anchors(length: float, y: float, inward: Point, level: float, EA: float = 2e5, **more: float) -> tuple[Support, ...]:  # fmt: skip
+def even_anchors(
+    length: float, y: float, inward: Point, level: float, EA: float = 2e5, **more: float
+) -> tuple[Support, ...]:
     places = np.arange(1.0, length, 2.0)
     return tuple(anchor((float(x), y), inward, level, free_length=15.0, EA=EA, **more) for x in places)
 
@@ -157,3 +160,14 @@ def test_turning_moving_and_splitting_a_pit_changes_no_ratio(angle: float, shift
         away = np.min(np.abs(scene.grid.middles[:, None] - doubt), axis=1) > 1.0
         here = away & ~np.isnan(run.ratio[:, k])
         assert read[here] == pytest.approx(run.ratio[here, k], abs=0.02)
+
+
+def test_earth_pressures_that_find_no_balance_leave_every_output_not_assessed(monkeypatch: pytest.MonkeyPatch) -> None:
+    one = site(even_anchors(30.0, 0.0, (0.0, 1.0), -2.0), replace(STRONG, phi=20.0))
+    found, _, run = screened(one, [(0.0, 0.0), (30.0, 0.0)], whole(30.0), closed=False)
+    assert run.settled
+    assert screening(one, found, Limits()).assessed[:, : len(OUTPUTS[:4])].all()
+    monkeypatch.setattr("sections.screening.limits.MOST_STEPS", 1)
+    said = screening(one, found, Limits())
+    assert not said.assessed.any()
+    assert "no balance" in said.sentence[0]
