@@ -18,9 +18,10 @@ from export.canonical import round_number
 from export.model_frame import ModelFrame
 from export.report.markup import clean
 from export.stamp import Stamp
-from ingest.model import NOTICE, Point3, Site
+from ingest.members import Point3
+from ingest.model import NOTICE, Site
 from sections.definition import SectionDefinition
-from sections.model import Proposal
+from sections.proposal import Proposal
 
 AUTHOR = f"cutworthy {VERSION}"
 KINDS = ("Question", "Finding", "Assumption")

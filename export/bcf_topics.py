@@ -13,7 +13,7 @@ from typing import Any, Literal
 from ingest.model import Site
 from ingest.trail import Assumption, Finding, Question, Source
 from sections.definition import SectionDefinition
-from sections.model import Proposal
+from sections.proposal import Proposal
 
 TopicKind = Literal["Question", "Finding", "Assumption"]
 GLOBAL_ID = re.compile(r"[0-3][0-9A-Za-z_$]{21}")

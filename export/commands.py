@@ -12,7 +12,8 @@ from pathlib import Path
 from typing import TYPE_CHECKING
 
 from ingest.errors import InputError
-from ingest.model import Point, Site
+from ingest.members import Point
+from ingest.model import Site
 
 if TYPE_CHECKING:
     from export.progress import Tell
@@ -26,7 +27,7 @@ def run_inspect(options: argparse.Namespace) -> Answer:
     """Read the files and tell what was found, what is missing and what is in doubt."""
     from export.inventory import describe, describe_json
     from ingest.site import write_starting_brief
-    from sections.find import find_pits
+    from sections.pit.find import find_pits
 
     site = _read(options)
     pits = find_pits(site)
@@ -61,7 +62,7 @@ def run_propose(options: argparse.Namespace) -> Answer:
 def run_judge(options: argparse.Namespace) -> Answer:
     """Judge an engineer's own line."""
     from export.inventory import describe_line, line_json
-    from sections.judge_line import judge_line
+    from sections.verdicts.judge_line import judge_line
 
     line = _line(options.line)
     site = _read_to_judge(options)
@@ -88,7 +89,7 @@ def run_members(options: argparse.Namespace) -> Answer:
     from export.member_table import members_json, write_governing, write_members
     from export.section_json import read_section
     from ingest.results import read_results
-    from sections.members import find_governing, member_actions
+    from sections.section.members import find_governing, member_actions
 
     definitions = [read_section(Path(name)) for name in options.sections]
     rows = read_results(Path(options.results))

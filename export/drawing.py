@@ -19,7 +19,7 @@ from export.drawing_section import draw_section
 from export.drawing_style import new_drawing
 from ingest.model import Site
 from sections.definition import SectionDefinition
-from sections.model import Proposal
+from sections.proposal import Proposal
 
 
 def write_drawings(

@@ -9,8 +9,10 @@ from export.drawing_style import LETTERS, layer, polyline, words
 from export.report.along import Perimeter, stations_of, stretches, worst_words
 from export.report.plan_site import load_words, member_words, to_world
 from export.report.words import fixed
-from ingest.model import NOTICE, Point, Site
-from sections.model import ChosenSection, Pit, Proposal
+from ingest.members import Point
+from ingest.model import NOTICE, Site
+from sections.model import Pit
+from sections.proposal import ChosenSection, Proposal
 
 VERDICT_OFF, STANDS_OFF = 0.6, 1.1
 

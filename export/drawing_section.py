@@ -11,8 +11,9 @@ from export.report.section_marks import levels_of
 from export.report.section_members import THIN, member_about, thickness
 from export.report.words import KIND_NAMES, figure, level
 from export.section_json import SECTION_NOTICE
-from ingest.model import Point
-from sections.definition import SectionDefinition, SectionLoad, SectionMember
+from ingest.members import Point
+from sections.definition import SectionDefinition, SectionLoad
+from sections.member import SectionMember
 
 HatchLine = tuple[float, tuple[float, float], tuple[float, float], list[float]]
 HATCHES: dict[str, list[HatchLine]] = {

@@ -5,7 +5,7 @@ from __future__ import annotations
 from typing import Any
 
 from export.report.markup import clean
-from ingest.model import Point
+from ingest.members import Point
 
 METRES = 6
 LETTERS = 0.25

@@ -16,7 +16,7 @@ from export.report.markup import clean
 from export.report.words import KIND_OF_WALL, ROLE_NAMES
 from export.stamp import Stamp
 from ingest.model import NOTICE, Site
-from sections.model import Proposal
+from sections.proposal import Proposal
 
 NAMESPACE = "http://standards.buildingsmart.org/IDS"
 XSD = "http://www.w3.org/2001/XMLSchema"

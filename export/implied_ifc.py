@@ -18,11 +18,13 @@ from export.implied_solids import Body, bay_of, load_body, member_body
 from export.model_frame import PLACES, ModelFrame
 from export.report.markup import clean
 from export.stamp import Stamp
-from ingest.model import NOTICE, Point3, Site
+from ingest.members import Point3
+from ingest.model import NOTICE, Site
 from ingest.trail import Source
 from ingest.words import OWN_AGENT
-from sections.definition import SectionDefinition, SectionLoad, SectionMember
-from sections.model import Proposal
+from sections.definition import SectionDefinition, SectionLoad
+from sections.member import SectionMember
+from sections.proposal import Proposal
 
 Entity = Any
 LAYER = f"{OWN_AGENT}IMPLIEE-"

@@ -7,8 +7,9 @@ from dataclasses import dataclass
 from math import hypot, sqrt
 
 from export.report.solids import thick_line
-from ingest.model import Point
-from sections.definition import PerMetre, SectionDefinition, SectionLoad, SectionMember
+from ingest.members import Point
+from sections.definition import SectionDefinition, SectionLoad
+from sections.member import PerMetre, SectionMember
 
 NOMINAL = 0.10
 """Drawn size of a body that the section gives none, m; said in its properties."""

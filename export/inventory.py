@@ -11,8 +11,10 @@ from pydantic import TypeAdapter
 
 from ingest.model import NOTICE, Site
 from ingest.trail import Finding, Question
-from sections.judge_line import JudgedLine
-from sections.model import FoundPit, Pit, Proposal, Run, Verdict
+from sections.found import FoundPit
+from sections.model import Pit, Run
+from sections.proposal import Proposal, Verdict
+from sections.verdicts.judge_line import JudgedLine
 
 
 def describe(site: Site, found: Sequence[FoundPit]) -> str:

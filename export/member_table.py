@@ -7,7 +7,7 @@ from collections.abc import Sequence
 from export.canonical import canonical_text
 from export.table_files import Cell, Sheet, csv_text
 from ingest.model import NOTICE
-from sections.members import Governing, MemberForce
+from sections.section.members import Governing, MemberForce
 
 COLUMNS = ("section", "stage", "member", "quantity", "value", "unit")
 ADDED = ("factor", "member_value", "member_unit", "gives", "ratio_low", "ratio_high", "verdict", "caution")

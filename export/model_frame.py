@@ -5,8 +5,9 @@ from __future__ import annotations
 from dataclasses import dataclass
 from math import cos, floor, radians, sin
 
-from ingest.model import ModelPlace, Point3, Site
-from sections.model import ProposalFrame
+from ingest.members import Point3
+from ingest.model import ModelPlace, Site
+from sections.proposal import ProposalFrame
 
 NEAR, ROUND = 10_000.0, 1000.0
 """Coordinates farther out than NEAR get a base, rounded down to ROUND, m: viewers count in single precision."""

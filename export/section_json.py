@@ -22,7 +22,7 @@ from ingest.model import NOTICE, InputFile
 from ingest.receive import refuse_device
 from ingest.record import record
 from sections.definition import SectionDefinition
-from sections.model import Proposal
+from sections.proposal import Proposal
 
 PROPOSAL_SCHEMA = "cutworthy/proposal/1"
 SECTION_SCHEMA = "cutworthy/section/1"

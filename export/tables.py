@@ -9,8 +9,9 @@ from export.canonical import round_number
 from export.table_files import Cell, Sheet, csv_text, write_workbook
 from ingest.model import NOTICE
 from ingest.trail import Assumption, Source
-from sections.definition import SectionDefinition, SectionMember
-from sections.model import Proposal
+from sections.definition import SectionDefinition
+from sections.member import SectionMember
+from sections.proposal import Proposal
 
 WORKBOOK = "tables.xlsx"
 

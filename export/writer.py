@@ -16,7 +16,7 @@ from export.section_json import write_proposal, write_section
 from export.tables import write_tables
 from ingest.model import Site
 from sections.definition import SectionDefinition
-from sections.model import Proposal
+from sections.proposal import Proposal
 
 BIM_FILES = ("issues.bcf", "requirements.ids", "implied.ifc")
 

@@ -7,7 +7,9 @@ from collections import Counter
 from pathlib import Path
 
 from ingest.ags_rows import Row, Rows, each, read_rows
-from ingest.model import Borehole, FileParts, Layer, Part, Point3
+from ingest.members import Point3
+from ingest.model import Borehole, Layer
+from ingest.parts import FileParts, Part
 from ingest.trail import Finding, Source
 
 WATER_DEPTH = {"WSTG": "WSTG_DPTH", "WSTD": "WSTD_POST"}

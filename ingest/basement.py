@@ -9,8 +9,9 @@ import numpy as np
 
 from ingest.brief import Brief
 from ingest.matching import match_line
-from ingest.model import Evidence, FileParts, Part
+from ingest.members import Evidence
 from ingest.notes import Notes, label
+from ingest.parts import FileParts, Part
 from ingest.roles import RoleGiven
 from ingest.trail import Source
 

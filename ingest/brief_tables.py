@@ -11,7 +11,8 @@ from typing import Annotated, Literal
 from pydantic import AfterValidator, BaseModel, BeforeValidator, ConfigDict, Field, model_validator
 
 from ingest import brief_values as v
-from ingest.model import RING_OUTPUTS, Continuity, LoadKind, Role, WallKind
+from ingest.members import Continuity, LoadKind, Role, WallKind
+from ingest.model import RING_OUTPUTS
 from ingest.units import unit_name
 
 XY = tuple[v.Coordinate, v.Coordinate]

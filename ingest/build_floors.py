@@ -7,8 +7,10 @@ from collections.abc import Sequence
 from ingest.brief_tables import FloorTable
 from ingest.figures import centroid, extent, outline_of, plan
 from ingest.matching import find_entry, match_line
-from ingest.model import Column, Floor, Part, Plate, Point
+from ingest.members import Column, Plate, Point
+from ingest.model import Floor
 from ingest.notes import Notes, label
+from ingest.parts import Part
 from ingest.roles import RoleGiven
 from ingest.trail import Source
 

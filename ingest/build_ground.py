@@ -7,7 +7,8 @@ from typing import Literal
 from ingest.brief import Brief
 from ingest.brief_tables import CutTable
 from ingest.concrete import concrete_material
-from ingest.model import Limits, LineDecision, Material, Point, Stage, Stratum
+from ingest.members import Material, Point
+from ingest.model import Limits, LineDecision, Stage, Stratum
 from ingest.notes import Notes
 from ingest.register import Moved
 from ingest.trail import Source

@@ -8,8 +8,9 @@ from collections.abc import Sequence
 from ingest.brief_tables import LoadTable, ReceptorTable
 from ingest.figures import centroid, outline_of, plan
 from ingest.matching import find_entry, match_line
-from ingest.model import Evidence, Load, LoadKind, Part, Point, Receptor
+from ingest.members import Evidence, Load, LoadKind, Point, Receptor
 from ingest.notes import Notes, label
+from ingest.parts import Part
 from ingest.register import Moved
 from ingest.roles import RoleGiven
 from ingest.tie_texts import Tied

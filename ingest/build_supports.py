@@ -10,8 +10,9 @@ from ingest.brief_tables import SupportTable
 from ingest.figures import NearLines, ends_of, plan
 from ingest.matching import fits
 from ingest.member_properties import read_property
-from ingest.model import BarSection, Material, Part, Pile, Point3, Support, Waler, WallPiece
+from ingest.members import BarSection, Material, Pile, Point3, Support, Waler, WallPiece
 from ingest.notes import Notes, label
+from ingest.parts import Part
 from ingest.rigidity import find_rigidity
 from ingest.roles import RoleGiven
 from ingest.tie_texts import Tied

@@ -10,8 +10,9 @@ from ingest.errors import InputError
 from ingest.faces import THICKEST, find_faces
 from ingest.figures import NearLines, centre_line, centroid, extent, outline_of, plan, sides_of
 from ingest.matching import fits
-from ingest.model import BarSection, Continuity, Part, Pile, Point, WallKind, WallPiece
+from ingest.members import BarSection, Continuity, Pile, Point, WallKind, WallPiece
 from ingest.notes import Notes, label
+from ingest.parts import Part
 from ingest.record import record
 from ingest.roles import RoleGiven
 from ingest.steel import find_section

@@ -7,7 +7,7 @@ from math import log
 from typing import Literal
 
 from ingest.errors import require_positive
-from ingest.model import Material
+from ingest.members import Material
 from ingest.record import record
 
 Aggregate = Literal["quartzite", "limestone", "sandstone", "basalt"]

@@ -9,7 +9,7 @@ import numpy as np
 from numpy.typing import NDArray
 
 from ingest.figures import outline_of, plan
-from ingest.model import Part
+from ingest.parts import Part
 
 Floats = NDArray[np.float64]
 Ints = NDArray[np.int64]

@@ -7,7 +7,8 @@ from collections.abc import Sequence
 from functools import cached_property
 from typing import TYPE_CHECKING
 
-from ingest.model import Part, Point, Point3
+from ingest.members import Point, Point3
+from ingest.parts import Part
 
 if TYPE_CHECKING:
     from shapely import STRtree

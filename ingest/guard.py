@@ -20,7 +20,7 @@ from ingest.errors import InputError
 from ingest.receive import Kind, check_readable, kind_of, shown
 
 if TYPE_CHECKING:
-    from ingest.model import FileParts
+    from ingest.parts import FileParts
 
 __all__ = ["READERS", "kind_of", "read_guarded", "read_here"]
 
@@ -107,7 +107,7 @@ def _environment() -> dict[str, str]:
 def _parts(answer: bytes, code: int, path: Path, memory: int) -> FileParts:
     from pydantic import TypeAdapter, ValidationError
 
-    from ingest.model import FileParts
+    from ingest.parts import FileParts
 
     name = shown(path.name)
     again = "export the file again; with --skip-unreadable the run goes on without it"
@@ -141,7 +141,7 @@ def _limit_memory(size: int) -> None:
 def _answer(kind: Kind, path: str, options: Mapping[str, Any]) -> bytes:
     from pydantic import TypeAdapter
 
-    from ingest.model import FileParts
+    from ingest.parts import FileParts
 
     try:
         return TypeAdapter(FileParts).dump_json(read_here(Path(path), kind, options), by_alias=True)

@@ -5,8 +5,8 @@ from __future__ import annotations
 from collections import Counter
 from collections.abc import Sequence
 
-from ingest.model import FileParts
 from ingest.notes import Notes
+from ingest.parts import FileParts
 from ingest.roles import RoleGiven
 from ingest.trail import LedgerEntry
 

@@ -10,7 +10,7 @@ from typing import Protocol, TypeVar
 
 from ingest.brief_lines import quoted
 from ingest.brief_tables import Match
-from ingest.model import Part
+from ingest.parts import Part
 
 
 class HasMatch(Protocol):

@@ -8,8 +8,8 @@ from functools import cache
 from importlib.resources import files
 from typing import Any
 
-from ingest.model import Part
 from ingest.notes import Notes
+from ingest.parts import Part
 
 
 def read_property(part: Part, field: str, about: str, notes: Notes) -> float | None:

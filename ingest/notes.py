@@ -9,7 +9,7 @@ from dataclasses import dataclass, field, replace
 from ingest.brief import Brief
 from ingest.errors import InputError
 from ingest.matching import alike
-from ingest.model import Part
+from ingest.parts import Part
 from ingest.roles import RoleGiven
 from ingest.trail import Assumption, Finding, NotAssessed, Question, Reading, Severity, Source
 

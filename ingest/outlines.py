@@ -9,7 +9,7 @@ from dataclasses import dataclass
 import numpy as np
 from numpy.typing import NDArray
 
-from ingest.model import Point
+from ingest.members import Point
 from ingest.roles import RoleGiven
 
 Floats = NDArray[np.float64]

@@ -6,7 +6,8 @@ from math import dist
 from statistics import median
 
 from ingest.errors import InputError
-from ingest.model import Pile, Site
+from ingest.members import Pile
+from ingest.model import Site
 from ingest.notes import Notes
 from ingest.trail import Source
 

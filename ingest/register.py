@@ -11,9 +11,11 @@ import numpy as np
 
 from ingest.brief import Brief
 from ingest.brief_lines import one_line, quoted
-from ingest.model import FileParts, Frame, ModelPlace, Part, Point, Point3, Registered
+from ingest.members import Point, Point3
+from ingest.model import Frame, ModelPlace, Registered
 from ingest.notes import Notes
 from ingest.outlines import FITS, SLIPS, Placement, distance_between, find_placements, outline_points
+from ingest.parts import FileParts, Part
 from ingest.roles import RoleGiven
 from ingest.surroundings import upright
 from ingest.trail import Source

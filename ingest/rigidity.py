@@ -6,8 +6,9 @@ import re
 from collections.abc import Sequence
 from typing import Any
 
-from ingest.model import BarSection, Material, Part
+from ingest.members import BarSection, Material
 from ingest.notes import Notes
+from ingest.parts import Part
 from ingest.steel import E_STEEL, bar_weight, find_section
 
 Rigidity = tuple[BarSection | None, float | None, float | None, float | None]

@@ -11,7 +11,8 @@ from typing import Any, get_args
 
 from ingest.brief import Brief
 from ingest.matching import alike, find_entry, match_line
-from ingest.model import Evidence, Part, Role, WallKind
+from ingest.members import Evidence, Role, WallKind
+from ingest.parts import Part
 from ingest.record import record
 from ingest.surroundings import WALL_ROW, Place, find_places, straight, upright
 from ingest.trail import Question, Reading

@@ -19,9 +19,11 @@ from ingest.errors import InputError
 from ingest.guard import READERS, kind_of, read_guarded
 from ingest.ledger import make_ledger
 from ingest.level_order import note_level_order
+from ingest.members import Role
 from ingest.missing import note_missing
-from ingest.model import FileParts, InputFile, Role, Site
+from ingest.model import InputFile, Site
 from ingest.notes import Notes
+from ingest.parts import FileParts
 from ingest.plausible_size import check_sizes
 from ingest.register import Moved, check_registration, lay_files, model_places
 from ingest.roles import RoleGiven, find_roles

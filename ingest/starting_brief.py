@@ -8,7 +8,8 @@ from pathlib import Path
 from ingest.brief_lines import one_line, quoted
 from ingest.errors import InputError
 from ingest.matching import match_line
-from ingest.model import NOTICE, Column, Load, Pile, Plate, Receptor, Site, Support, Waler, WallPiece
+from ingest.members import Column, Load, Pile, Plate, Receptor, Support, Waler, WallPiece
+from ingest.model import NOTICE, Site
 from ingest.receive import shown
 
 Recorded = WallPiece | Pile | Support | Waler | Plate | Column | Load | Receptor

@@ -14,7 +14,7 @@ from math import pi
 from typing import Literal
 
 from ingest.errors import require, require_positive
-from ingest.model import BarSection
+from ingest.members import BarSection
 from ingest.record import record
 
 E_STEEL, G_STEEL, NU_STEEL = 210.0e6, 81.0e6, 0.3

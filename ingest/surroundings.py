@@ -10,7 +10,8 @@ import numpy as np
 from numpy.typing import NDArray
 
 from ingest.figures import NearLines, plan
-from ingest.model import Part, Point, Point3
+from ingest.members import Point, Point3
+from ingest.parts import Part
 
 Floats = NDArray[np.float64]
 

@@ -11,8 +11,9 @@ from typing import TYPE_CHECKING
 import numpy as np
 
 from ingest.figures import outline_of, plan
-from ingest.model import Part, Point
+from ingest.members import Point
 from ingest.notes import Notes, label
+from ingest.parts import Part
 from ingest.roles import RoleGiven
 from ingest.surroundings import upright
 from ingest.texts import Note, read_note

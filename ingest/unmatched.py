@@ -7,8 +7,9 @@ from difflib import get_close_matches
 
 from ingest.brief_tables import Match
 from ingest.matching import fits
-from ingest.model import Part, Site
+from ingest.model import Site
 from ingest.notes import Notes
+from ingest.parts import Part
 
 TABLES = ("roles", "floors", "walls", "supports", "loads", "receptors")
 

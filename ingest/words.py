@@ -10,7 +10,7 @@ from functools import cache, lru_cache
 from importlib.resources import files
 from typing import Any, cast
 
-from ingest.model import Role, WallKind
+from ingest.members import Role, WallKind
 from ingest.record import record
 
 Phrase = tuple[str, ...]

@@ -10,28 +10,22 @@ import numpy as np
 
 from ingest.model import Site
 from ingest.trail import Assumption, Finding, NotAssessed, Question
-from sections.candidates import cut_of
-from sections.choice import Choice, Chosen, choose
 from sections.criteria.screening import variants_of
-from sections.cut import Cut
-from sections.define import Judged, define_section, wall_names
 from sections.definition import SectionDefinition, SupportLoss
-from sections.find import find_pits
-from sections.judged import JudgedPit, judge_stations
-from sections.model import (
-    ChosenSection,
-    Floats,
-    FoundPit,
-    Proposal,
-    ProposalFrame,
-    SectionWall,
-    StationTable,
-)
-from sections.perimeter import find_shapes
+from sections.found import FoundPit
+from sections.model import Floats
+from sections.perimeter.perimeter import find_shapes
+from sections.pit.find import find_pits
+from sections.proposal import ChosenSection, Proposal, ProposalFrame, SectionWall, StationTable
 from sections.screening.losses import find_losses
 from sections.screening.scene import make_scene
-from sections.severity import find_severity, severity_at
-from sections.verdict import worst_first
+from sections.section.cut import Cut
+from sections.section.define import Judged, define_section, wall_names
+from sections.verdicts.candidates import cut_of
+from sections.verdicts.choice import Choice, Chosen, choose
+from sections.verdicts.judged import JudgedPit, judge_stations
+from sections.verdicts.severity import find_severity, severity_at
+from sections.verdicts.verdict import worst_first
 
 Tell = Callable[[str, int, int], None]
 Row = TypeVar("Row", Assumption, Finding, Question)

@@ -19,8 +19,8 @@ from ingest.model import OUTPUTS
 from ingest.site import read_site
 from sections.criteria import CRITERIA
 from sections.criteria.screening import screening
-from sections.find import find_pits
-from sections.judged import judge_stations
+from sections.pit.find import find_pits
+from sections.verdicts.judged import judge_stations
 
 PIT = Path(__file__).parents[1] / "samples" / "first_pit"
 DRAWING, BRIEF = PIT / "first_pit.dxf", PIT / "brief.toml"

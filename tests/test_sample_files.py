@@ -17,7 +17,7 @@ import pytest
 from export.cli import main
 from ingest.model import OUTPUTS
 from sections.criteria.screening import CARRIES
-from sections.verdict import combine
+from sections.verdicts.verdict import combine
 
 SAMPLES = Path(__file__).parents[1] / "samples"
 SITES = [

@@ -16,9 +16,10 @@ import pytest
 
 from ingest.model import Site
 from ingest.site import read_site
-from sections.find import find_pits
-from sections.ground import find_bedding
-from sections.model import FoundPit, Member, Pit
+from sections.found import FoundPit
+from sections.model import Member, Pit
+from sections.pit.find import find_pits
+from sections.pit.ground import find_bedding
 
 SAMPLES = Path(__file__).parents[1] / "samples"
 SITES = ("tannery_lane", "quarry_road", "weir_shaft")

@@ -10,8 +10,9 @@ from typing import TypeVar
 
 import numpy as np
 
-from ingest.model import Point
-from sections.model import WORST_FIRST, Floats, Pit, Proposal, StationOutput, StationTable, VerdictWord
+from ingest.members import Point
+from sections.model import Floats, Pit
+from sections.proposal import WORST_FIRST, Proposal, StationOutput, StationTable, VerdictWord
 
 T = TypeVar("T")
 LONGEST_MITRE = 2.0

@@ -12,7 +12,7 @@ from export.report.still import HEIGHT, PITCH, WIDTH, YAW, Scale, common_scale, 
 from export.report.words import fixed
 from ingest.model import Site
 from sections.definition import SectionDefinition
-from sections.model import Proposal
+from sections.proposal import Proposal
 
 TURNS = ("left", "right", "up", "down")
 

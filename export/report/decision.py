@@ -18,7 +18,7 @@ from export.report.words import (
     stretch,
 )
 from sections.definition import SectionDefinition
-from sections.model import ChosenSection, Proposal
+from sections.proposal import ChosenSection, Proposal
 
 MOST_LISTED = 8
 

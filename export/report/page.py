@@ -28,7 +28,7 @@ from export.report.words import VERDICT_MEANS
 from export.section_json import SECTION_NOTICE
 from ingest.model import NOTICE, Site
 from sections.definition import SectionDefinition
-from sections.model import Proposal
+from sections.proposal import Proposal
 
 
 def report_page(proposal: Proposal, definitions: Sequence[SectionDefinition], site: Site, proposal_sha256: str) -> str:

@@ -15,8 +15,10 @@ from export.report.scale import WIDTH, View, clip, fit, multiples, round_step
 from export.report.sheet_marks import SMALL, drawing, grid, letters, north, scale_bar
 from export.report.verdict_marks import area_patterns, legend, verdict_line
 from export.report.words import VERDICT_NAMES, band, fixed, output_name, stretch
-from ingest.model import NOTICE, Point, Site
-from sections.model import Pit, Proposal, Represents, StationTable, Unrepresented
+from ingest.members import Point
+from ingest.model import NOTICE, Site
+from sections.model import Pit
+from sections.proposal import Proposal, Represents, StationTable, Unrepresented
 
 HEIGHT = 860.0
 FOOT = 122.0

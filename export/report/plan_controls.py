@@ -7,7 +7,8 @@ import json
 from export.report.along import Perimeter
 from export.report.markup import Html, tag
 from export.report.words import VERDICT_NAMES, output_name, station_sentence
-from sections.model import Pit, Proposal, StationTable
+from sections.model import Pit
+from sections.proposal import Proposal, StationTable
 
 LAYERS = (
     ("supports", "supports"),

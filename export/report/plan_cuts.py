@@ -10,8 +10,8 @@ from export.report.plan_site import named
 from export.report.scale import LETTERS, View, clip
 from export.report.sheet_marks import SMALL, letters
 from export.report.words import KIND_NAMES, fixed
-from ingest.model import Point
-from sections.model import ChosenSection
+from ingest.members import Point
+from sections.proposal import ChosenSection
 
 NAME_ROOM = (34.0, 19.0)
 MOST_STEPS = 6

@@ -10,8 +10,10 @@ from export.report.markup import Html, join, tag
 from export.report.scale import LETTERS, View
 from export.report.sheet_marks import SMALL, letters, readable_turn
 from export.report.words import KIND_OF_WALL, ROLE_NAMES, count, figure, fixed, level, source_tail
-from ingest.model import Point, Site, Support
-from sections.model import Member, Pit, PitLoad, ProposalFrame, Run
+from ingest.members import Point, Support
+from ingest.model import Site
+from sections.model import Member, Pit, PitLoad, Run
+from sections.proposal import ProposalFrame
 
 ToWorld = Callable[[tuple[float, ...]], Point]
 LOAD_UNITS = {"point": "kN", "line": "kN/m", "area": "kPa", "footing": "kPa"}

@@ -12,7 +12,7 @@ from export.report.words import figure, fixed, output_name
 from ingest.model import InputFile, Limits
 from ingest.trail import LedgerEntry
 from sections.definition import SectionDefinition
-from sections.model import Proposal
+from sections.proposal import Proposal
 
 T = TypeVar("T")
 Definitions = Sequence[SectionDefinition]

@@ -11,8 +11,10 @@ from export.report.scale import LETTERS, WIDTH, multiples, path_data, round_step
 from export.report.sheet_marks import SMALL, drawing, letters
 from export.report.verdict_marks import legend
 from export.report.words import VERDICT_NAMES, band, fixed, level, output_name, stretch
-from ingest.model import Limits, Point
-from sections.model import Member, Pit, Proposal, Represents, StationOutput, StationTable, Unrepresented
+from ingest.members import Point
+from ingest.model import Limits
+from sections.model import Member, Pit
+from sections.proposal import Proposal, Represents, StationOutput, StationTable, Unrepresented
 
 GUTTER, RIGHT = 176.0, WIDTH - 22.0
 MOST = 2.0

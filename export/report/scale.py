@@ -7,7 +7,7 @@ from dataclasses import dataclass
 from math import ceil, floor, isfinite, log10
 
 from export.report.markup import number
-from ingest.model import Point
+from ingest.members import Point
 
 UNITS_PER_MM = 1000 / 180
 """A drawing is 1000 units wide and stands for 180 mm of paper, the width between the margins of A4."""

@@ -13,9 +13,12 @@ from export.report.along import Perimeter
 from export.report.plan_site import to_world
 from export.report.section_members import THIN, thickness
 from export.report.solids import Solid, bar, extruded, pile, prism, revolved, thick_line
-from ingest.model import Pile, Point, Point3, Role, Site, Support
-from sections.definition import SectionDefinition, SectionMember
-from sections.model import Pit, Proposal, Run
+from ingest.members import Pile, Point, Point3, Role, Support
+from ingest.model import Site
+from sections.definition import SectionDefinition
+from sections.member import SectionMember
+from sections.model import Pit, Run
+from sections.proposal import Proposal
 
 LEAST_HALF, MOST_HALF = 3.0, 15.0
 PLATE = 0.18

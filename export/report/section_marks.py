@@ -9,7 +9,8 @@ from export.report.plan_site import named
 from export.report.scale import View
 from export.report.sheet_marks import SMALL, dimension, letters
 from export.report.words import figure, fixed, level
-from sections.definition import SectionDefinition, SectionLoad, SectionMember
+from sections.definition import SectionDefinition, SectionLoad
+from sections.member import SectionMember
 
 LEAST_GAP = 17.0
 

@@ -9,8 +9,8 @@ from export.report.plan_site import named
 from export.report.scale import View, path_data
 from export.report.sheet_marks import SMALL, letters, readable_turn
 from export.report.words import fixed, level, source_tail
-from ingest.model import Point
-from sections.definition import PerMetre, SectionMember
+from ingest.members import Point
+from sections.member import PerMetre, SectionMember
 
 THIN = 0.12
 """Least drawn depth of a slab or sheet whose thickness is not given, m."""

@@ -24,7 +24,7 @@ from export.report.words import KIND_NAMES, band, criterion_name, fixed, output_
 from export.section_json import NOT_INCLUDED
 from ingest.model import Site
 from sections.definition import SectionDefinition
-from sections.model import Proposal, SectionWall
+from sections.proposal import Proposal, SectionWall
 
 
 def section_title(definition: SectionDefinition) -> str:

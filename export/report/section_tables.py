@@ -7,8 +7,9 @@ from typing import Any
 from export.report.markup import Html, join, tag
 from export.report.tables import key_words, listing, source_list, table
 from export.report.words import NOT_GIVEN, band, criterion_name, figure, fixed, level, output_name
-from sections.definition import SectionDefinition, SectionMaterial, SmearParts
-from sections.model import Band
+from sections.definition import SectionDefinition, SectionMaterial
+from sections.member import SmearParts
+from sections.proposal import Band
 
 PART_NAMES = {
     "per_spacing": "1 / spacing",

@@ -10,7 +10,8 @@ from export.report.section_marks import dimensions, level_marks, load_marks, wat
 from export.report.section_members import member_mark
 from export.report.sheet_marks import SMALL, drawing, letters, scale_bar
 from export.report.words import KIND_NAMES, count, fixed, level
-from sections.definition import Curve, GroundLayer, SectionDefinition
+from sections.definition import GroundLayer, SectionDefinition
+from sections.member import Curve
 
 LEFT, TOP = 96.0, 112.0
 MOST_HEIGHT = 760.0

@@ -5,7 +5,7 @@ from __future__ import annotations
 from export.report.markup import Html
 from export.report.tables import table
 from export.report.words import NOT_GIVEN, figure
-from sections.model import ChosenSection
+from sections.proposal import ChosenSection
 
 INDICES: dict[str, tuple[str, str, bool | None]] = {
     "basal_safety": ("Factor of safety against basal heave", "", False),

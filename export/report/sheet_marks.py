@@ -7,7 +7,7 @@ from math import atan2, degrees, hypot
 from export.report.markup import Html, join, tag
 from export.report.scale import LETTERS, WIDTH, View, multiples, round_step
 from export.report.words import fixed
-from ingest.model import Point
+from ingest.members import Point
 
 SMALL = 12.0
 

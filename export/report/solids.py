@@ -8,7 +8,7 @@ from math import cos, pi, sin
 
 import numpy as np
 
-from ingest.model import Point, Point3
+from ingest.members import Point, Point3
 from sections.model import Floats
 
 ROUND_SIDES = 8

@@ -8,7 +8,7 @@ from export.report.markup import Html, join, tag
 from export.report.scale import path_data
 from export.report.sheet_marks import SMALL, letters
 from export.report.words import VERDICT_NAMES
-from ingest.model import Point
+from ingest.members import Point
 
 TWO_STROKES = ("under_states", "not_two_dimensional")
 BEST_FIRST = ("holds", "over_states", "undecided", "not_assessed", "under_states", "not_two_dimensional")

@@ -6,7 +6,7 @@ from collections.abc import Iterable, Sequence
 from math import floor, log10
 
 from ingest.trail import Source
-from sections.model import Represents, Unrepresented, Verdict
+from sections.proposal import Represents, Unrepresented, Verdict
 
 NARROW = "\u202f"
 MINUS = "\u2212"

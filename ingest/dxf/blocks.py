@@ -17,7 +17,7 @@ from ingest.dxf.linework import layer_of
 from ingest.dxf.placing import Matrix
 from ingest.dxf.sketch import Batch, Left, Sketch, settle
 from ingest.dxf.text import decode, sketch_text
-from ingest.model import Point3
+from ingest.members import Point3
 
 DEEPEST = 64
 """Blocks nested deeper than this are a fault of the file or an attack."""

@@ -10,7 +10,8 @@ from typing import Any
 import numpy as np
 
 from ingest.dxf.curves import SAGITTA, Floats, flatten_conic
-from ingest.model import Part, Point3
+from ingest.members import Point3
+from ingest.parts import Part
 
 _HOW = "cut at the insert's clipping outline"
 

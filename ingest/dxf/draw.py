@@ -30,7 +30,7 @@ from ingest.dxf.placing import IDENTITY, Placing, place
 from ingest.dxf.sketch import Batch, Left, Sketch, settle
 from ingest.dxf.text import decode
 from ingest.errors import InputError
-from ingest.model import Part
+from ingest.parts import Part
 
 CHUNK = 5_000
 MOST_PARTS = 3_000_000

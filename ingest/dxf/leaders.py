@@ -8,7 +8,7 @@ from dataclasses import replace
 import numpy as np
 
 from ingest.dxf.annotation import Leader
-from ingest.model import Part
+from ingest.parts import Part
 
 REACH = 4.0
 """A leader belongs to a text at most this many letter heights from its end (judgement)."""

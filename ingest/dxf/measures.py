@@ -12,7 +12,7 @@ import numpy as np
 
 from ingest.dxf.blocks import DEEPEST, copies, insert_matrices, plus, times, turn_point
 from ingest.dxf.placing import IDENTITY, Matrix
-from ingest.model import Point3
+from ingest.members import Point3
 from ingest.units import FOOT, INCH, METRES
 
 MOST_LOOKED_AT = 5_000

@@ -11,7 +11,8 @@ import numpy as np
 
 from ingest.dxf.curves import SAGITTA, Floats, flatten_conic
 from ingest.dxf.sketch import OUT_OF_REACH, Batch, Sketch
-from ingest.model import Form, Part, Point3
+from ingest.members import Point3
+from ingest.parts import Form, Part
 from ingest.trail import Source
 
 FARTHEST = 1e8

@@ -18,7 +18,7 @@ from ingest.dxf.loading import let_go, load_document, quiet
 from ingest.dxf.measures import take_measures
 from ingest.dxf.report import Report, report_losses
 from ingest.dxf.tagscan import Tags
-from ingest.model import FileParts
+from ingest.parts import FileParts
 
 RELEASES = {
     "AC1002": "R2.5", "AC1003": "R2.6", "AC1004": "R9", "AC1006": "R10", "AC1009": "R12", "AC1012": "R13",

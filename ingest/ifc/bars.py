@@ -16,7 +16,8 @@ from ingest.ifc.frames import Triple
 from ingest.ifc.plan import is_flat, is_upright, prism, profile_upright
 from ingest.ifc.profiles import Profile
 from ingest.ifc.shapes import Extrusion, HalfSpace, Line, Sweep
-from ingest.model import BarSection, Part, Point3
+from ingest.members import BarSection, Point3
+from ingest.parts import Part
 
 Floats = NDArray[np.float64]
 

@@ -15,7 +15,7 @@ from ingest.ifc.plates import HALF_FULL, element_prisms, filled, prism_parts
 from ingest.ifc.shapes import Extrusion, Line, Sweep
 from ingest.ifc.strips import FITS, Strip, find_strip, length_of_line
 from ingest.ifc.walls import hint_of, wall_parts
-from ingest.model import Part
+from ingest.parts import Part
 
 
 def any_parts(element: Element, sections: SectionTable) -> tuple[Part, ...]:

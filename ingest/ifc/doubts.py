@@ -8,7 +8,7 @@ import numpy as np
 
 from ingest.ifc.georeference import Georeference
 from ingest.ifc.units import ProjectUnits
-from ingest.model import Part
+from ingest.parts import Part
 from ingest.trail import Assumption, Finding, Question, Reading, Severity
 
 LEAST_EXTENT = 1.0

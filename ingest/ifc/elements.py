@@ -15,7 +15,8 @@ from ingest.ifc.classes import Group
 from ingest.ifc.profiles import Moments, Profile, moments
 from ingest.ifc.relations import MaterialUse
 from ingest.ifc.shapes import Line
-from ingest.model import BarSection, Form, Part, Point3
+from ingest.members import BarSection, Point3
+from ingest.parts import Form, Part
 from ingest.trail import Source
 
 Floats = NDArray[np.float64]

@@ -10,7 +10,8 @@ from ingest.ifc.elements import Element, NoPart, SectionTable
 from ingest.ifc.meshes import mesh_parts
 from ingest.ifc.plan import prism
 from ingest.ifc.shapes import Line
-from ingest.model import Borehole, Layer, Part
+from ingest.model import Borehole, Layer
+from ingest.parts import Part
 
 Floats = NDArray[np.float64]
 

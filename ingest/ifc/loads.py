@@ -12,7 +12,7 @@ from ingest.ifc.properties import number_text
 from ingest.ifc.relations import of_type
 from ingest.ifc.shapes import Line
 from ingest.ifc.units import ProjectUnits
-from ingest.model import Form, Part
+from ingest.parts import Form, Part
 
 Entity = Any
 Floats = NDArray[np.float64]

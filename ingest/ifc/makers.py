@@ -11,7 +11,7 @@ from ingest.ifc.ground import ground_parts
 from ingest.ifc.loads import load_part
 from ingest.ifc.plates import plate_parts
 from ingest.ifc.walls import wall_parts
-from ingest.model import Part
+from ingest.parts import Part
 
 Maker = Callable[[Element, SectionTable], tuple[Part, ...]]
 

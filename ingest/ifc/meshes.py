@@ -5,7 +5,7 @@ from __future__ import annotations
 from ingest.ifc.bodies import Placed
 from ingest.ifc.elements import Element
 from ingest.ifc.facets import Facets
-from ingest.model import Part
+from ingest.parts import Part
 
 
 def mesh_parts(element: Element) -> tuple[Part, ...]:

@@ -13,7 +13,7 @@ from ingest.ifc.fits import mesh_volume
 from ingest.ifc.meshes import mesh_parts
 from ingest.ifc.plan import Prism, areal, join_prisms, prism
 from ingest.ifc.shapes import Line
-from ingest.model import Part
+from ingest.parts import Part
 
 SAME_LEVEL = 0.001
 """Levels within this are one, m."""

@@ -23,7 +23,8 @@ from ingest.ifc.opening import Opened, open_model
 from ingest.ifc.proxies import read_only
 from ingest.ifc.representations import NO_GEOMETRY
 from ingest.ifc.unreadable import UNREADABLE
-from ingest.model import Borehole, FileParts, Part
+from ingest.model import Borehole
+from ingest.parts import FileParts, Part
 
 Floats: TypeAlias = NDArray[np.float64]
 

@@ -15,7 +15,8 @@ from ingest.ifc.plan import Prism, is_flat, is_upright, prism, profile_upright
 from ingest.ifc.plates import element_prism, element_prisms, mesh_words, part_from_footprint, prism_parts
 from ingest.ifc.shapes import Extrusion, Line, Sweep
 from ingest.ifc.strips import FITS, Strip, arc_steps, find_strip
-from ingest.model import Part, Point3
+from ingest.members import Point3
+from ingest.parts import Part
 
 Floats = NDArray[np.float64]
 

@@ -26,7 +26,7 @@ from sections.criteria.supports_gap import supports_gap
 from sections.criteria.supports_skew import supports_skew
 from sections.criteria.wall_change import wall_change
 from sections.criteria.water import water_gradient
-from sections.model import CriterionResult, FoundPit
+from sections.found import CriterionResult, FoundPit
 
 Criterion = Callable[[Site, FoundPit, Limits], CriterionResult]
 

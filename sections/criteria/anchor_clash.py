@@ -9,10 +9,10 @@ from __future__ import annotations
 import numpy as np
 
 from ingest.model import Limits, Site
-from sections.along import distance_along
 from sections.criteria.reentrant import corners_pointing_in
 from sections.criteria.sheet import Sheet
-from sections.model import CriterionResult, FoundPit
+from sections.found import CriterionResult, FoundPit
+from sections.pit.along import distance_along
 
 CODE = "anchor_clash"
 

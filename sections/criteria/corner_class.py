@@ -12,10 +12,11 @@ from dataclasses import dataclass
 import numpy as np
 
 from ingest.model import Limits, Site
-from sections.along import ACUTE, INSIDE, ORTHOGONAL, REENTRANT, STRAIGHT_FROM, WallEnds, find_ends
 from sections.criteria.corner_table import DEPTH_RANGE, DISTANCE, LENGTH, NEAR, SHORT, WALL_RANGE, hull_between
 from sections.criteria.sheet import MOMENTS, WALL_OUTPUTS, Sheet
-from sections.model import Bools, CriterionResult, Floats, FoundPit, Stations
+from sections.found import CriterionResult, FoundPit, Stations
+from sections.model import Bools, Floats
+from sections.pit.along import ACUTE, INSIDE, ORTHOGONAL, REENTRANT, STRAIGHT_FROM, WallEnds, find_ends
 
 CODE = "corner_class"
 SILENCE = {

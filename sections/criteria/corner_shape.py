@@ -12,10 +12,11 @@ import numpy as np
 from numpy.typing import ArrayLike
 
 from ingest.model import Limits, Site
-from sections.along import find_ends
 from sections.criteria.plane_strain_ratio import find_plane_strain_ratio
 from sections.criteria.sheet import MOVEMENTS, Sheet
-from sections.model import CriterionResult, Floats, FoundPit
+from sections.found import CriterionResult, FoundPit
+from sections.model import Floats
+from sections.pit.along import find_ends
 
 CODE = "corner_shape"
 C_NUMERATOR, C_DENOMINATORS = 0.015, (0.015, 0.15)

@@ -10,9 +10,10 @@ from __future__ import annotations
 import numpy as np
 
 from ingest.model import Limits, Site
-from sections.along import distance_along, steps_of
 from sections.criteria.sheet import WALL_OUTPUTS, Sheet
-from sections.model import CriterionResult, Floats, FoundPit
+from sections.found import CriterionResult, FoundPit
+from sections.model import Floats
+from sections.pit.along import distance_along, steps_of
 
 CODE = "floor_step"
 REACH = 2.0

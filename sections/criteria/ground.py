@@ -9,10 +9,11 @@ from __future__ import annotations
 import numpy as np
 
 from ingest.model import Limits, Site
-from sections.basal import PRONE, find_basal_safety
 from sections.criteria.sheet import MOMENTS, WALL_OUTPUTS, Sheet
-from sections.ground import layers_along, nearest_borehole
-from sections.model import CriterionResult, Floats, FoundPit
+from sections.found import CriterionResult, FoundPit
+from sections.model import Floats
+from sections.pit.ground import layers_along, nearest_borehole
+from sections.verdicts.basal import PRONE, find_basal_safety
 
 CODE = "ground"
 STEEP = 15.0

@@ -9,10 +9,10 @@ from __future__ import annotations
 import numpy as np
 
 from ingest.model import Limits, Site
-from sections.along import is_rectangle
-from sections.basal import find_clay, heave_ratio
 from sections.criteria.sheet import Sheet
-from sections.model import CriterionResult, FoundPit
+from sections.found import CriterionResult, FoundPit
+from sections.pit.along import is_rectangle
+from sections.verdicts.basal import find_clay, heave_ratio
 
 CODE = "heave_shape"
 

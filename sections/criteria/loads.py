@@ -12,10 +12,12 @@ from dataclasses import dataclass
 
 import numpy as np
 
-from ingest.model import Limits, Load, Site
+from ingest.members import Load
+from ingest.model import Limits, Site
 from sections.criteria.sheet import WALL_OUTPUTS, Sheet
-from sections.model import Bools, CriterionResult, Floats, FoundPit
-from sections.verdict import share_weighted
+from sections.found import CriterionResult, FoundPit
+from sections.model import Bools, Floats
+from sections.verdicts.verdict import share_weighted
 
 CODE = "loads"
 NEAREST = 0.1

@@ -9,9 +9,10 @@ from __future__ import annotations
 import numpy as np
 
 from ingest.model import Limits, Site
-from sections.along import cover_of
 from sections.criteria.sheet import Sheet
-from sections.model import Bools, CriterionResult, Floats, FoundPit, SupportRow
+from sections.found import CriterionResult, FoundPit, SupportRow
+from sections.model import Bools, Floats
+from sections.pit.along import cover_of
 
 CODE = "opposite_wall"
 BOTH_ENDS = ("strut",)

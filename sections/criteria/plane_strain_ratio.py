@@ -13,11 +13,12 @@ import numpy as np
 from numpy.typing import ArrayLike
 
 from ingest.model import Limits, Site
-from sections.along import REENTRANT, bay_of, cover_of, find_ends, is_rectangle
-from sections.basal import find_basal_safety, find_clay
 from sections.criteria.sheet import MOVEMENTS, Sheet
-from sections.model import Bools, CriterionResult, Floats, FoundPit
-from sections.wall_bending import EI_at
+from sections.found import CriterionResult, FoundPit
+from sections.model import Bools, Floats
+from sections.pit.along import REENTRANT, bay_of, cover_of, find_ends, is_rectangle
+from sections.verdicts.basal import find_basal_safety, find_clay
+from sections.verdicts.wall_bending import EI_at
 
 CODE = "plane_strain_ratio"
 MIDDLE = 0.05

@@ -10,9 +10,10 @@ from __future__ import annotations
 import numpy as np
 
 from ingest.model import Limits, Site
-from sections.along import GENTLE, STRAIGHT, bay_of, distance_along, outward_turns
 from sections.criteria.sheet import WALL_OUTPUTS, Sheet
-from sections.model import CriterionResult, Floats, FoundPit
+from sections.found import CriterionResult, FoundPit
+from sections.model import Floats
+from sections.pit.along import GENTLE, STRAIGHT, bay_of, distance_along, outward_turns
 
 CODE = "reentrant"
 GENTLE_HIGH = 1.2

@@ -11,8 +11,9 @@ import numpy as np
 from ingest.model import RING_OUTPUTS, Limits, Site
 from sections.criteria.shape import HOOPLESS
 from sections.criteria.sheet import Sheet
-from sections.model import CriterionResult, Floats, FoundPit
-from sections.wall_changes import kinds_at
+from sections.found import CriterionResult, FoundPit
+from sections.model import Floats
+from sections.pit.wall_changes import kinds_at
 
 CODE = "ring_thrust"
 

@@ -14,12 +14,13 @@ from typing import Any
 import numpy as np
 
 from ingest.model import OUTPUTS, Limits, Site
-from sections.along import distance_along, gaps_of
 from sections.criteria.sheet import WALL_OUTPUTS, Sheet
-from sections.margins import peak_factor
-from sections.model import Bools, CriterionResult, Floats, FoundPit, Ints, Mechanism, Stations
+from sections.found import CriterionResult, FoundPit, Stations
+from sections.model import Bools, Floats, Ints, Mechanism
+from sections.pit.along import distance_along, gaps_of
 from sections.screening.run import VariantRatios, run_variant
 from sections.screening.scene import BEAM_EI, WALER_EI, Scene, Variant, make_scene
+from sections.verdicts.margins import peak_factor
 
 CODE = "screening"
 CARRIES: tuple[Mechanism, ...] = ("corner", "supports", "wall_change", "floor_step", "opposite_wall")

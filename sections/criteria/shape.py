@@ -11,8 +11,8 @@ import numpy as np
 
 from ingest.model import Limits, Site
 from sections.criteria.sheet import WALL_OUTPUTS, Sheet
-from sections.model import CriterionResult, FoundPit
-from sections.wall_changes import kinds_at
+from sections.found import CriterionResult, FoundPit
+from sections.pit.wall_changes import kinds_at
 
 CODE = "shape"
 HOOPLESS = ("contiguous", "king_post", "sheet", "none")

@@ -8,7 +8,8 @@ from typing import TYPE_CHECKING, overload
 import numpy as np
 
 from ingest.model import OUTPUTS
-from sections.model import Bools, CriterionResult, Floats, Ints, Mechanism, Stations
+from sections.found import CriterionResult, Stations
+from sections.model import Bools, Floats, Ints, Mechanism
 
 if TYPE_CHECKING:
     from numpy.typing import ArrayLike

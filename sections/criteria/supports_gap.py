@@ -10,9 +10,10 @@ from __future__ import annotations
 import numpy as np
 
 from ingest.model import Limits, Site
-from sections.along import beside_gap, cover_of, distance_along
 from sections.criteria.sheet import WALL_OUTPUTS, Sheet
-from sections.model import Bools, CriterionResult, Floats, FoundPit, SupportRow
+from sections.found import CriterionResult, FoundPit, SupportRow
+from sections.model import Bools, Floats
+from sections.pit.along import beside_gap, cover_of, distance_along
 
 CODE = "supports_gap"
 

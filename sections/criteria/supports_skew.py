@@ -9,10 +9,11 @@ from __future__ import annotations
 import numpy as np
 
 from ingest.model import Limits, Site
-from sections.along import cover_of
 from sections.criteria.opposite_wall import row_skews
 from sections.criteria.sheet import WALL_OUTPUTS, Sheet
-from sections.model import CriterionResult, Floats, FoundPit, SupportRow
+from sections.found import CriterionResult, FoundPit, SupportRow
+from sections.model import Floats
+from sections.pit.along import cover_of
 
 CODE = "supports_skew"
 STEEPEST = 40.0

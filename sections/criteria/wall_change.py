@@ -9,10 +9,10 @@ from __future__ import annotations
 import numpy as np
 
 from ingest.model import Limits, Site
-from sections.along import FREE, distance_along, find_ends
 from sections.criteria.sheet import WALL_OUTPUTS, Sheet
-from sections.model import CriterionResult, FoundPit
-from sections.wall_changes import changes_of, kinds_at
+from sections.found import CriterionResult, FoundPit
+from sections.pit.along import FREE, distance_along, find_ends
+from sections.pit.wall_changes import changes_of, kinds_at
 
 CODE = "wall_change"
 REACH = 1.0

@@ -12,11 +12,12 @@ from dataclasses import dataclass
 import numpy as np
 
 from ingest.model import Limits, Site
-from sections.along import ORTHOGONAL, WallEnds, distance_along, find_ends, steps_of
 from sections.criteria.sheet import Sheet
-from sections.ground import downwards, layers_along, water_along
-from sections.model import Bools, CriterionResult, Floats, FoundPit
-from sections.wall_changes import kinds_at, toe_steps_of
+from sections.found import CriterionResult, FoundPit
+from sections.model import Bools, Floats
+from sections.pit.along import ORTHOGONAL, WallEnds, distance_along, find_ends, steps_of
+from sections.pit.ground import downwards, layers_along, water_along
+from sections.pit.wall_changes import kinds_at, toe_steps_of
 
 CODE = "water_gradient"
 TIGHT = ("diaphragm", "secant", "sheet", "concrete")

@@ -6,7 +6,8 @@ from dataclasses import dataclass
 
 import numpy as np
 
-from sections.model import Floats, FoundPit, Ints
+from sections.found import FoundPit
+from sections.model import Floats, Ints
 
 COLUMN_STEP = 1.0
 """Largest distance between columns, m; an eighth of the excavated depth where that is less."""

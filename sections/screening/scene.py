@@ -8,15 +8,17 @@ from functools import cached_property
 
 import numpy as np
 
-from ingest.model import Material, Site
-from sections.model import Bools, Floats, FoundPit, Ints, SupportRow, Wall
+from ingest.members import Material
+from ingest.model import Site
+from sections.found import FoundPit, SupportRow
+from sections.model import Bools, Floats, Ints, Wall
 from sections.screening.grid import Grid, column_at, make_grid, node_at
 from sections.screening.limits import PressureLimits
 from sections.screening.pattern import Pattern, make_pattern
 from sections.screening.soil import Soil, find_limits, read_soil, unbalanced
 from sections.screening.supports import Beams, Members
 from sections.screening.wall import FoldedWall
-from sections.smear_wall import circle_inertia
+from sections.smearing.wall import circle_inertia
 
 OVER_DIG = 0.5
 """Dig below a support level before it is installed, m (common practice, no source)."""

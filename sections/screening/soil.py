@@ -7,8 +7,9 @@ from dataclasses import dataclass
 import numpy as np
 
 from ingest.model import Site, Stratum
-from sections.ground import downwards, layers_along, water_along
-from sections.model import Bools, Floats, FoundPit, Ints
+from sections.found import FoundPit
+from sections.model import Bools, Floats, Ints
+from sections.pit.ground import downwards, layers_along, water_along
 from sections.screening.grid import Grid
 
 WATER = 9.81

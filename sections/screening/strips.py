@@ -9,8 +9,9 @@ from dataclasses import dataclass, replace
 
 import numpy as np
 
-from sections.along import cover_of
-from sections.model import Bools, Floats, Ints, SupportRow
+from sections.found import SupportRow
+from sections.model import Bools, Floats, Ints
+from sections.pit.along import cover_of
 from sections.screening.grid import facet_at
 from sections.screening.limits import PressureLimits, excess, settle
 from sections.screening.scene import Scene

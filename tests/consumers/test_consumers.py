@@ -23,10 +23,12 @@ from space_frame import Frame
 
 from export.cli import main
 from export.section_json import section_text
-from ingest.model import Material, Point, Site, Stratum, Support
-from sections.cut import Cut
-from sections.define import Judged, define_section
-from sections.model import Circle, FoundPit, Structural, Wall
+from ingest.members import Material, Point, Support
+from ingest.model import Site, Stratum
+from sections.found import FoundPit
+from sections.model import Circle, Structural, Wall
+from sections.section.cut import Cut
+from sections.section.define import Judged, define_section
 
 Json = dict[str, Any]
 SAMPLES = Path(__file__).parents[2] / "samples"

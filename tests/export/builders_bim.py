@@ -10,7 +10,8 @@ from builders_pit import chosen
 from ingest.model import InputFile, ModelPlace, Registered
 from ingest.trail import Finding, Question, Reading, Source
 from sections import definition as d
-from sections.model import ProposalFrame
+from sections import member as member_rows
+from sections.proposal import ProposalFrame
 
 MODEL = "first_pit.ifc"
 STRUT_ID = "1hHHlGup5OGhbLufmE_v4k"
@@ -55,14 +56,14 @@ RADIUS, THICKNESS, DEPTH = 6.0, 0.8, 15.0
 def ring_job() -> Job:
     """A round shaft of radius 6 m about (115, 210): wall 0.8 m thick and 15 m deep, one ring beam."""
     job = model_job()
-    wall = d.SectionMember(
+    wall = member_rows.SectionMember(
         id="P1-wall-1", role="wall", side="right", material="C30", form="beam",
-        points=((RADIUS, 0.0), (RADIUS, -DEPTH)), ends=(), real=d.RealMember(thickness=THICKNESS),
-        section=d.PerRadian(EA_vertical_kN_per_m=3.0e7, thickness=THICKNESS), smear=(), back=(),
+        points=((RADIUS, 0.0), (RADIUS, -DEPTH)), ends=(), real=member_rows.RealMember(thickness=THICKNESS),
+        section=member_rows.PerRadian(EA_vertical_kN_per_m=3.0e7, thickness=THICKNESS), smear=(), back=(),
     )  # fmt: skip
     beam = replace(
         wall, id="P1-waler-1", role="waler", form="ring", points=((RADIUS, -3.0),),
-        real=d.RealMember(EA_kN=33.0e6 * 0.25), section=d.PerRadian(),
+        real=member_rows.RealMember(EA_kN=33.0e6 * 0.25), section=member_rows.PerRadian(),
     )  # fmt: skip
     one = replace(
         job.definitions[0], kind="axisymmetric", line=((115.0, 210.0), (135.0, 210.0)), members=(wall, beam), loads=(),

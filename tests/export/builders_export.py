@@ -11,7 +11,9 @@ from builders_site import CENTRES, CORNERS, DRAWING, LENGTH, STRUT_EA, site
 from ingest.model import Limits, Site
 from ingest.trail import Assumption, LedgerEntry, Source
 from sections import definition as d
+from sections import member as member_rows
 from sections import model as m
+from sections import proposal as proposal_rows
 
 __all__ = ["CENTRES", "CORNERS", "HOSTILE", "STRUT_EA", "Job", "bare_job", "empty_job", "first_pit_job", "showcase_job"]
 
@@ -21,7 +23,7 @@ class Job:
     """What the engine hands over to the export room."""
 
     site: Site
-    proposal: m.Proposal
+    proposal: proposal_rows.Proposal
     definitions: tuple[d.SectionDefinition, ...]
 
 
@@ -29,11 +31,11 @@ def first_pit_job() -> Job:
     """The first pit with its two sections."""
     s1 = section(1, ((115.0, 182.0), (115.0, 238.0)), 20.0, (15.0, 65.0))
     s2 = section(2, ((82.0, 210.0), (148.0, 210.0)), 30.0, (90.0, 40.0))
-    proposal = m.Proposal(
-        limits=Limits(), frame=m.ProposalFrame(offset=(0.0, 0.0, 0.0), rotation_deg=0.0, crs=None), pits=(pit(),),
+    proposal = proposal_rows.Proposal(
+        limits=Limits(), frame=proposal_rows.ProposalFrame(offset=(0.0, 0.0, 0.0), rotation_deg=0.0, crs=None), pits=(pit(),),
         sections=(chosen(s1), chosen(s2)),
         unrepresented=tuple(
-            m.Unrepresented(
+            proposal_rows.Unrepresented(
                 pit="P1", start=(at - 1.5) % LENGTH, to=at + 1.5, reason="within 1.5 m of a corner",
                 what_to_do="read the wall as held by its neighbour; detail by hand",
             )
@@ -81,12 +83,12 @@ def showcase_job() -> Job:
     """The first pit bent to show what it does not have: every verdict word, and names that try to be more than text."""
     job = first_pit_job()
     table = job.proposal.stations["P1"]
-    words: tuple[tuple[float, m.VerdictWord, float | None, float | None], ...] = (
+    words: tuple[tuple[float, proposal_rows.VerdictWord, float | None, float | None], ...] = (
         (15.0, "holds", 0.93, 1.05), (30.0, "over_states", 0.6, 0.95), (45.0, "undecided", 0.8, 1.35),
         (60.0, "under_states", 1.2, 1.7), (80.0, "not_two_dimensional", 0.4, 2.6), (101.0, "not_assessed", None, None),
     )  # fmt: skip
     rows = [next(w for w in words if c < w[0]) for c in table.chainage]
-    every = m.StationOutput(
+    every = proposal_rows.StationOutput(
         low=tuple(r[2] for r in rows),
         high=tuple(r[3] for r in rows),
         verdict=tuple(r[1] for r in rows),
@@ -113,16 +115,16 @@ def showcase_job() -> Job:
 def with_anchors(definition: d.SectionDefinition) -> d.SectionDefinition:
     """The second section with anchors in place of its strut, and water."""
     walls = definition.members[:2]
-    anchor = d.SectionMember(
+    anchor = member_rows.SectionMember(
         id="P1-anchor-1", role="anchor", side="left", material=None, form="bar", points=((18.0, -1.5), (6.0, -8.0)),
-        ends=(d.End(to=walls[0].id, at=(18.0, -1.5), joint="pinned"),
-              d.End(to="ground", at=(6.0, -8.0), joint="fixed")),
-        real=d.RealMember(length=13.65, spacing=2.5, inclination=28.4, free_length=8.0, bond_length=5.65,
+        ends=(member_rows.End(to=walls[0].id, at=(18.0, -1.5), joint="pinned"),
+              member_rows.End(to="ground", at=(6.0, -8.0), joint="fixed")),
+        real=member_rows.RealMember(length=13.65, spacing=2.5, inclination=28.4, free_length=8.0, bond_length=5.65,
                           preload_kN=400.0, count=8),
-        section=d.PerMetre(preload_kN_per_m=160.0, resists="tension"),
-        smear=(d.Smear(quantity="preload", real_key="preload_kN", section_key="preload_kN_per_m", factor=0.4,
-                       parts=d.SmearParts(per_spacing=0.4)),),
-        back=(d.Back(quantity="N", from_unit="kN/m", factor=2.5, gives="force of one anchor", unit="kN"),),
+        section=member_rows.PerMetre(preload_kN_per_m=160.0, resists="tension"),
+        smear=(member_rows.Smear(quantity="preload", real_key="preload_kN", section_key="preload_kN_per_m", factor=0.4,
+                       parts=member_rows.SmearParts(per_spacing=0.4)),),
+        back=(member_rows.Back(quantity="N", from_unit="kN/m", factor=2.5, gives="force of one anchor", unit="kN"),),
     )  # fmt: skip
     water = (
         d.Water(id="w1", side="left", line=((0.0, -2.0), (18.0, -2.0)), kind="retained"),

@@ -8,6 +8,7 @@ from ingest.model import OUTPUTS
 from ingest.trail import Assumption, Finding, NotAssessed, Question, Reading
 from sections import definition as d
 from sections import model as m
+from sections import proposal as proposal_rows
 
 
 def deflection_band(distance: float) -> tuple[float, float]:
@@ -31,22 +32,22 @@ def to_corner(chainage: float) -> float:
     return min(abs(chainage - mark) for mark in marks)
 
 
-def stations() -> m.StationTable:
+def stations() -> proposal_rows.StationTable:
     chainage = tuple(i * STEP for i in range(int(LENGTH / STEP)))
     bands = [deflection_band(to_corner(c)) for c in chainage]
-    blank = m.StationOutput(
+    blank = proposal_rows.StationOutput(
         low=(None,) * len(chainage),
         high=(None,) * len(chainage),
         verdict=("not_assessed",) * len(chainage),
         dominant=(None,) * len(chainage),
     )
-    deflection = m.StationOutput(
+    deflection = proposal_rows.StationOutput(
         low=tuple(b[0] for b in bands),
         high=tuple(b[1] for b in bands),
         verdict=tuple(word(*b) for b in bands),  # type: ignore[misc]
         dominant=("corner.class_table",) * len(chainage),
     )
-    return m.StationTable(
+    return proposal_rows.StationTable(
         chainage=chainage,
         floor=(-6.0,) * len(chainage),
         retained=(0.0,) * len(chainage),
@@ -119,21 +120,21 @@ def pit() -> m.Pit:
     )  # fmt: skip
 
 
-def verdict(output: str, at: float) -> m.Verdict:
+def verdict(output: str, at: float) -> proposal_rows.Verdict:
     if output != "wall_deflection":
-        return m.Verdict(
+        return proposal_rows.Verdict(
             low=None, high=None, verdict="not_assessed", provisional=True, dominant=None, stage=None,
             sentence="No criterion speaks of this output: a waler runs along the wall, so neither class applies.",
         )  # fmt: skip
     low, high = deflection_band(to_corner(at))
-    return m.Verdict(
+    return proposal_rows.Verdict(
         low=low, high=high, verdict=word(low, high), provisional=True, dominant="corner.class_table",  # type: ignore[arg-type]
         stage="2", sentence=f"The real demand is {low:.2f} to {high:.2f} times the 2D value.",
     )  # fmt: skip
 
 
-def section_wall(at: float, side: str, member_id: str) -> m.SectionWall:
-    return m.SectionWall(
+def section_wall(at: float, side: str, member_id: str) -> proposal_rows.SectionWall:
+    return proposal_rows.SectionWall(
         pit="P1",
         at=at,
         side=side,
@@ -142,8 +143,8 @@ def section_wall(at: float, side: str, member_id: str) -> m.SectionWall:
     )
 
 
-def chosen(definition: d.SectionDefinition) -> m.ChosenSection:
-    return m.ChosenSection(
+def chosen(definition: d.SectionDefinition) -> proposal_rows.ChosenSection:
+    return proposal_rows.ChosenSection(
         id=definition.id, file=f"sections/{definition.id}.json", kind=definition.kind, line=definition.line,
         score=definition.score, severity={"depth": HE, "surcharge": 150.0}, walls=definition.walls,
         verdicts=definition.verdicts, represents=definition.represents,

@@ -7,51 +7,53 @@ from builders_site import CENTRES, E_CONCRETE, E_STEEL, HE, PILE_A, PILE_I, STRU
 
 from ingest.model import GOVERNING, OUTPUTS
 from sections import definition as d
+from sections import member as member_rows
 from sections import model as m
+from sections import proposal as proposal_rows
 
 
-def wall_member(n: int, side: str, x: float) -> d.SectionMember:
+def wall_member(n: int, side: str, x: float) -> member_rows.SectionMember:
     EA, EI = E_CONCRETE * PILE_A, E_CONCRETE * PILE_I
-    return d.SectionMember(
+    return member_rows.SectionMember(
         id=f"P1-wall-{n}", role="wall", side=side, material="C30", form="beam", points=((x, 0.0), (x, -12.0)),  # type: ignore[arg-type]
-        ends=(d.End(to="ground", at=(x, -12.0), joint="free"),),
-        real=d.RealMember(EA_kN=EA, EI_kNm2=EI, length=12.0, spacing=CENTRES, diameter=D, centres=CENTRES,
+        ends=(member_rows.End(to="ground", at=(x, -12.0), joint="free"),),
+        real=member_rows.RealMember(EA_kN=EA, EI_kNm2=EI, length=12.0, spacing=CENTRES, diameter=D, centres=CENTRES,
                           count=30, E_kPa=E_CONCRETE, weight_kN_per_m=25 * PILE_A),
-        section=d.PerMetre(EA_kN_per_m=EA / CENTRES, EI_kNm2_per_m=EI / CENTRES,
+        section=member_rows.PerMetre(EA_kN_per_m=EA / CENTRES, EI_kNm2_per_m=EI / CENTRES,
                            weight_kN_per_m2=25 * PILE_A / CENTRES, thickness=D * 3**0.5 / 2,
                            E_kPa=EA / CENTRES / (D * 3**0.5 / 2)),
         smear=(
-            d.Smear(quantity="axial stiffness", real_key="EA_kN", section_key="EA_kN_per_m", factor=1 / CENTRES,
-                    parts=d.SmearParts(per_spacing=1 / CENTRES)),
-            d.Smear(quantity="bending stiffness", real_key="EI_kNm2", section_key="EI_kNm2_per_m", factor=1 / CENTRES,
-                    parts=d.SmearParts(per_spacing=1 / CENTRES)),
+            member_rows.Smear(quantity="axial stiffness", real_key="EA_kN", section_key="EA_kN_per_m", factor=1 / CENTRES,
+                    parts=member_rows.SmearParts(per_spacing=1 / CENTRES)),
+            member_rows.Smear(quantity="bending stiffness", real_key="EI_kNm2", section_key="EI_kNm2_per_m", factor=1 / CENTRES,
+                    parts=member_rows.SmearParts(per_spacing=1 / CENTRES)),
         ),
         back=(
-            d.Back(quantity="M", from_unit="kNm/m", factor=CENTRES, gives="moment of one pile", unit="kNm",
+            member_rows.Back(quantity="M", from_unit="kNm/m", factor=CENTRES, gives="moment of one pile", unit="kNm",
                    valid_if="piles of one size at equal centres; the mean over one bay of supports"),
-            d.Back(quantity="V", from_unit="kN/m", factor=CENTRES, gives="shear of one pile", unit="kN"),
+            member_rows.Back(quantity="V", from_unit="kN/m", factor=CENTRES, gives="shear of one pile", unit="kN"),
         ),
         sources=(source("100"),),
     )  # fmt: skip
 
 
-def strut_member(n: int, x0: float, x1: float, walls: tuple[str, str]) -> d.SectionMember:
+def strut_member(n: int, x0: float, x1: float, walls: tuple[str, str]) -> member_rows.SectionMember:
     spacing = 5.0
-    return d.SectionMember(
+    return member_rows.SectionMember(
         id=f"P1-strut-{n}", role="strut", side="both", material="S355", form="bar",
         points=((x0, -1.5), (x1, -1.5)),
-        ends=(d.End(to=walls[0], at=(x0, -1.5), joint="pinned"), d.End(to=walls[1], at=(x1, -1.5), joint="pinned")),
-        real=d.RealMember(EA_kN=STRUT_EA, length=x1 - x0, spacing=spacing, skew=0.0, inclination=0.0,
+        ends=(member_rows.End(to=walls[0], at=(x0, -1.5), joint="pinned"), member_rows.End(to=walls[1], at=(x1, -1.5), joint="pinned")),
+        real=member_rows.RealMember(EA_kN=STRUT_EA, length=x1 - x0, spacing=spacing, skew=0.0, inclination=0.0,
                           count=6 if n == 1 else 4, diameter=0.508, E_kPa=E_STEEL),
-        section=d.PerMetre(EA_kN_per_m=STRUT_EA / spacing, resists="compression",
+        section=member_rows.PerMetre(EA_kN_per_m=STRUT_EA / spacing, resists="compression",
                            k_effective_kN_per_m_per_m=STRUT_EA / spacing / (x1 - x0)),
         smear=(
-            d.Smear(quantity="axial stiffness", real_key="EA_kN", section_key="EA_kN_per_m", factor=1 / spacing,
-                    parts=d.SmearParts(per_spacing=1 / spacing)),
+            member_rows.Smear(quantity="axial stiffness", real_key="EA_kN", section_key="EA_kN_per_m", factor=1 / spacing,
+                    parts=member_rows.SmearParts(per_spacing=1 / spacing)),
         ),
         back=(
-            d.Back(quantity="N", from_unit="kN/m", factor=spacing, gives="axial force of one strut", unit="kN",
-                   also=(d.AlsoGives(gives="thrust along the waler", factor=0.0),), valid_if="equal spacing"),
+            member_rows.Back(quantity="N", from_unit="kN/m", factor=spacing, gives="axial force of one strut", unit="kN",
+                   also=(member_rows.AlsoGives(gives="thrust along the waler", factor=0.0),), valid_if="equal spacing"),
         ),
         sources=(source("201"),), assumptions=("A2",),
     )  # fmt: skip
@@ -85,7 +87,7 @@ def materials() -> dict[str, d.SectionMaterial]:
 
 
 def stages(x0: float, x1: float, members: tuple[str, str, str], loads: tuple[str, ...]) -> tuple[d.SectionStage, ...]:
-    def box(top: float, base: float) -> d.Curve:
+    def box(top: float, base: float) -> member_rows.Curve:
         return ((x0, top), (x1, top), (x1, base), (x0, base))
 
     left, right, strut = members
@@ -98,16 +100,16 @@ def stages(x0: float, x1: float, members: tuple[str, str, str], loads: tuple[str
     )
 
 
-def criteria(wall_id: str, at: float) -> tuple[m.Band, ...]:
+def criteria(wall_id: str, at: float) -> tuple[proposal_rows.Band, ...]:
     low, high = deflection_band(to_corner(at))
     return (
-        m.Band(
+        proposal_rows.Band(
             code="corner.class_table", mechanism="corner", output="wall_deflection", wall=wall_id, low=low, high=high,
             assessed=True, basis="range over 45 computed cases of one class", reference="own oracle, class table",
             inputs={"distance to corner, m": to_corner(at), "excavated depth, m": HE, "class": "jointed"},
             sentence=f"{to_corner(at):.1f} m from the nearer corner at {HE:.1f} m depth the corner props the wall.",
         ),
-        m.Band(
+        proposal_rows.Band(
             code="corner.class_table", mechanism="corner", output="wall_moment_excavated_face", wall=wall_id, low=None,
             high=None, assessed=False, basis="", reference="own oracle, class table", inputs={},
             sentence="Not assessed: a waler runs along the wall, so it is of neither class.",
@@ -142,7 +144,7 @@ def section(n: int, line: tuple[m.Point, m.Point], span: float, ats: tuple[float
     return d.SectionDefinition(
         id=f"S{n}", kind="plane_strain", line=line, score=None,
         represents=tuple(
-            m.Represents(pit="P1", start=a + 1.5, to=b - 1.5, provisional=GOVERNING[1:]) for a, b in around
+            proposal_rows.Represents(pit="P1", start=a + 1.5, to=b - 1.5, provisional=GOVERNING[1:]) for a, b in around
         ),
         verdicts={o: verdict(o, ats[0]) for o in OUTPUTS}, walls=walls,
         half=d.Half(is_half=False, at_x=None, basis="the footing breaks the symmetry" if n == 1 else "not halved"),

@@ -10,20 +10,8 @@ from __future__ import annotations
 
 from math import pi
 
-from ingest.model import (
-    BarSection,
-    Borehole,
-    Frame,
-    InputFile,
-    Layer,
-    Load,
-    Pile,
-    Plate,
-    Registered,
-    Site,
-    Support,
-    Waler,
-)
+from ingest.members import BarSection, Load, Pile, Plate, Support, Waler
+from ingest.model import Borehole, Frame, InputFile, Layer, Registered, Site
 from ingest.trail import Source
 
 D, CENTRES, E_CONCRETE, E_STEEL = 0.75, 1.0, 33.0e6, 210.0e6

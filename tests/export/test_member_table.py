@@ -8,7 +8,7 @@ import json
 
 from export.member_table import ADDED, COLUMNS, members_json, write_governing, write_members
 from ingest.model import NOTICE, ResultRow
-from sections.members import Governing, MemberForce
+from sections.section.members import Governing, MemberForce
 
 
 def force(**more: object) -> MemberForce:

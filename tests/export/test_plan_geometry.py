@@ -13,7 +13,8 @@ from hypothesis import strategies as st
 from export.report.along import Perimeter, stretches, worst_words
 from export.report.plan_site import to_world
 from export.report.scale import RATIOS, clip, fit, round_ratio, round_step, units_per_metre
-from sections.model import Pit, ProposalFrame, StationOutput, StationTable
+from sections.model import Pit
+from sections.proposal import ProposalFrame, StationOutput, StationTable
 
 LENGTHS = st.floats(0.01, 1e5)
 

@@ -16,8 +16,8 @@ from export.report.plan import plan_file
 from export.report.severity_table import INDICES, severity_table
 from export.report.verdict_marks import BEST_FIRST
 from ingest.model import NOTICE
-from sections.model import WORST_FIRST
-from sections.severity import ORDER
+from sections.proposal import WORST_FIRST
+from sections.verdicts.severity import ORDER
 
 SHA = "ab" * 32
 

@@ -12,8 +12,9 @@ from builders_export import CORNERS, Job, bare_job, empty_job, first_pit_job, sh
 
 from export.section_json import read_proposal, read_section
 from export.writer import write_all
-from ingest.model import Frame, Point
-from sections.model import Proposal, ProposalFrame
+from ingest.members import Point
+from ingest.model import Frame
+from sections.proposal import Proposal, ProposalFrame
 
 EXPECTED = {
     "assumptions.csv",

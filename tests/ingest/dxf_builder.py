@@ -9,7 +9,7 @@ from typing import Any
 import ezdxf
 
 from ingest.dxf.reader import read_dxf
-from ingest.model import FileParts, Part
+from ingest.parts import FileParts, Part
 
 Draw = Callable[[Any, Any], None]
 

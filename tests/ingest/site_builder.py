@@ -8,7 +8,9 @@ from typing import Any
 import ezdxf
 
 from ingest.brief import Brief, read_brief
-from ingest.model import FileParts, Part, Point3, Site
+from ingest.members import Point3
+from ingest.model import Site
+from ingest.parts import FileParts, Part
 from ingest.site import read_site, site_of
 from ingest.trail import Source
 

@@ -11,7 +11,7 @@ import pytest
 
 from ingest.ags import read_ags
 from ingest.errors import InputError
-from ingest.model import FileParts
+from ingest.parts import FileParts
 
 HOLES = """"GROUP","PROJ"
 "HEADING","PROJ_ID"

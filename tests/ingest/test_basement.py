@@ -11,7 +11,9 @@ import pytest
 
 from ingest.brief import Brief
 from ingest.errors import InputError
-from ingest.model import FileParts, Part, Point3, Site
+from ingest.members import Point3
+from ingest.model import Site
+from ingest.parts import FileParts, Part
 from ingest.site import read_site, site_of
 from ingest.trail import Source
 

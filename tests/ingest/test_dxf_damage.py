@@ -15,7 +15,7 @@ from dxf_builder import assert_account_closes, save
 
 from ingest.dxf.reader import read_dxf
 from ingest.errors import InputError
-from ingest.model import FileParts
+from ingest.parts import FileParts
 
 
 def draw_pit(doc: Any, space: Any) -> None:

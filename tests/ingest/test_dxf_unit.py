@@ -11,7 +11,7 @@ from dxf_builder import read
 from ingest.dxf.drawing_unit import INSUNITS
 from ingest.dxf.measures import written_length
 from ingest.errors import InputError
-from ingest.model import FileParts
+from ingest.parts import FileParts
 
 
 def draw_pit(scale: float, *, letters: bool = True) -> Any:

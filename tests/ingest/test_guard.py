@@ -15,7 +15,7 @@ from guard_builder import good_ags, good_dxf, good_ifc, is_clear
 
 from ingest.errors import InputError
 from ingest.guard import kind_of, read_guarded, read_here
-from ingest.model import FileParts
+from ingest.parts import FileParts
 
 MAKERS: dict[str, Callable[[Path], None]] = {"dxf": good_dxf, "ifc": good_ifc, "ags": good_ags}
 

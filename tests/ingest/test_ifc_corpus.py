@@ -11,7 +11,7 @@ import pytest
 
 from ingest.errors import InputError
 from ingest.ifc.reader import read_ifc
-from ingest.model import FileParts, Part
+from ingest.parts import FileParts, Part
 
 pytestmark = pytest.mark.corpus
 approx = pytest.approx

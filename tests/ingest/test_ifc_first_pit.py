@@ -11,7 +11,7 @@ from types import ModuleType
 import pytest
 
 from ingest.ifc.reader import read_ifc
-from ingest.model import FileParts
+from ingest.parts import FileParts
 
 approx = pytest.approx
 SAMPLES = Path(__file__).parents[2] / "samples"

@@ -18,7 +18,7 @@ from ifc_builder import IfcBuilder
 from numpy.typing import NDArray
 
 from ingest.ifc.reader import read_ifc
-from ingest.model import Part
+from ingest.parts import Part
 
 CHILD = Path(__file__).parent / "kernel_child.py"
 FOLDER = Path(os.environ.get("CUTWORTHY_CORPUS", "")) / "ifc"

@@ -9,7 +9,7 @@ import pytest
 from ifc_builder import IfcBuilder
 
 from ingest.ifc.reader import read_ifc
-from ingest.model import FileParts
+from ingest.parts import FileParts
 
 
 def adds_up(read: FileParts) -> None:

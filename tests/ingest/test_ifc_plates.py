@@ -10,7 +10,7 @@ import shapely
 from ifc_builder import IfcBuilder
 
 from ingest.ifc.reader import read_ifc
-from ingest.model import FileParts, Part
+from ingest.parts import FileParts, Part
 
 approx = pytest.approx
 

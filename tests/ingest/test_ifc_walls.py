@@ -9,7 +9,7 @@ import pytest
 from ifc_builder import IfcBuilder
 
 from ingest.ifc.reader import read_ifc
-from ingest.model import Part
+from ingest.parts import Part
 
 approx = pytest.approx
 

@@ -12,7 +12,8 @@ import pytest
 from ingest.brief import Brief
 from ingest.ifc.georeference import Georeference, map_matrix
 from ingest.ifc.reader import read_ifc
-from ingest.model import FileParts, ModelPlace
+from ingest.model import ModelPlace
+from ingest.parts import FileParts
 from ingest.register import lay_files, model_places
 
 FIRST_PIT = Path(__file__).parents[2] / "samples" / "first_pit_ifc" / "first_pit.ifc"

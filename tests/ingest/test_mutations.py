@@ -15,7 +15,7 @@ import pytest
 
 from ingest.errors import InputError
 from ingest.guard import kind_of, read_guarded
-from ingest.model import FileParts
+from ingest.parts import FileParts
 
 LARGEST = 1_000_000
 """Files above this size are left out, to keep the run within the hour."""

@@ -12,8 +12,8 @@ from hypothesis import given, settings
 from hypothesis import strategies as st
 
 from ingest.brief import Brief, read_brief
-from ingest.model import FileParts, Part
 from ingest.outlines import distance_between, find_placements
+from ingest.parts import FileParts, Part
 from ingest.site import site_of
 from ingest.trail import Source
 

@@ -8,7 +8,9 @@ from pathlib import Path
 import pytest
 from site_builder import brief_of, part, parts_of
 
-from ingest.model import BarSection, Part, Point3, Site
+from ingest.members import BarSection, Point3
+from ingest.model import Site
+from ingest.parts import Part
 from ingest.site import site_of
 
 # UC 305x305x118: 314.5 mm deep, 307.4 mm wide (BS 4-1, recalled).

@@ -5,7 +5,8 @@ from __future__ import annotations
 import pytest
 
 from ingest.brief import Brief
-from ingest.model import BarSection, Part, Point3
+from ingest.members import BarSection, Point3
+from ingest.parts import Part
 from ingest.roles import RoleGiven, find_roles
 from ingest.trail import Source
 from ingest.words import find_meanings, split_words

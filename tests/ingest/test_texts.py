@@ -7,7 +7,9 @@ from typing import Any
 import pytest
 
 from ingest.brief import Brief
-from ingest.model import FileParts, Part, Point3, Site
+from ingest.members import Point3
+from ingest.model import Site
+from ingest.parts import FileParts, Part
 from ingest.site import site_of
 from ingest.texts import Note, read_note
 from ingest.trail import Source

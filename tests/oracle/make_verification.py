@@ -1,4 +1,7 @@
-"""Write tests/VERIFICATION.md from the frozen figures and from runs of the screening: `python tests/oracle/make_verification.py`."""
+"""Write tests/VERIFICATION.md from the frozen figures and from runs of the screening.
+
+Run by hand: `python tests/oracle/make_verification.py`.
+"""
 
 from __future__ import annotations
 
@@ -12,7 +15,7 @@ from known import hetenyi_beam, navier_plate, ring_under_pressure, thick_cylinde
 from scenes import BY_NAME, STAGED  # noqa: E402
 from verdicts import FIGURES, MESH, NAMES, Compared, compare_all, frozen  # noqa: E402
 
-from sections.margins import MARGINS, margins_at  # noqa: E402
+from sections.verdicts.margins import MARGINS, margins_at  # noqa: E402
 
 TARGET = Path(__file__).parents[1] / "VERIFICATION.md"
 HEAD = """# Verification of the screening

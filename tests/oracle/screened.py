@@ -9,9 +9,11 @@ from pathlib import Path
 import numpy as np
 from scenes import CENTRES, DIAMETER, E_WALL, NU, REST, THICKNESS, WEIGHT, Scene
 
-from ingest.model import Floor, Load, Material, Site, Stratum, Support
-from sections.find import describe_pits
-from sections.model import Circle, Floats, FoundPit, Structural, Wall
+from ingest.members import Load, Material, Support
+from ingest.model import Floor, Site, Stratum
+from sections.found import FoundPit
+from sections.model import Circle, Floats, Structural, Wall
+from sections.pit.find import describe_pits
 from sections.screening.run import run_variant
 from sections.screening.scene import Scene as Screened
 from sections.screening.scene import Variant, make_scene

@@ -17,10 +17,11 @@ from screened import Screening, base_variant, chainages, screen
 
 from ingest.model import OUTPUTS, Limits
 from sections.criteria.screening import band_of, variants_of
-from sections.margins import margins_at
-from sections.model import WORST_FIRST, Bools, Floats
+from sections.model import Bools, Floats
+from sections.proposal import WORST_FIRST
 from sections.screening.run import run_variant
-from sections.verdict import combine_arrays, words_of
+from sections.verdicts.margins import margins_at
+from sections.verdicts.verdict import combine_arrays, words_of
 
 FIGURES = json.loads(Path(__file__).with_name("figures.json").read_text())
 NAMES = OUTPUTS[:4]

@@ -4,9 +4,9 @@ from __future__ import annotations
 
 import numpy as np
 
-from ingest.model import Point
-from sections.cut import Cut, CutWall
-from sections.model import FoundPit
+from ingest.members import Point
+from sections.found import FoundPit
+from sections.section.cut import Cut, CutWall
 
 
 def make_cut(pit: FoundPit, start: Point, end: Point, at: list[float], kind: str = "plane_strain") -> Cut:

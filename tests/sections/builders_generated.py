@@ -8,10 +8,11 @@ from dataclasses import replace
 import numpy as np
 from pit_generator import make_scene
 
-from ingest.model import BarSection, Load, Material, Site, Stratum, Support
+from ingest.members import BarSection, Load, Material, Support
+from ingest.model import Site, Stratum
 from ingest.trail import Source
-from sections.find import find_pits
-from sections.model import FoundPit
+from sections.found import FoundPit
+from sections.pit.find import find_pits
 
 EA = 210e6 * 0.02473061737
 CONCRETE = Material(id="concrete", kind="concrete", E=32e6, unit_weight=25.0)

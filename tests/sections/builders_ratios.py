@@ -10,9 +10,11 @@ from dataclasses import dataclass, replace
 
 import numpy as np
 
-from ingest.model import Point, Role, Site, Support
+from ingest.members import Point, Role, Support
+from ingest.model import Site
+from sections import found as found_rows
 from sections import model as m
-from sections.chainage import cast, find_sides, locate, normal_at, point_at, side_of
+from sections.pit.chainage import cast, find_sides, locate, normal_at, point_at, side_of
 
 RECTANGLE = ((100.0, 200.0), (130.0, 200.0), (130.0, 220.0), (100.0, 220.0))
 ELL = ((0.0, 0.0), (60.0, 0.0), (60.0, 30.0), (30.0, 30.0), (30.0, 60.0), (0.0, 60.0))
@@ -53,12 +55,12 @@ def polygon_pit(
     turn: float = 0.0,
     shift: Point = (0.0, 0.0),
     **channels: object,
-) -> tuple[Site, m.FoundPit]:
+) -> tuple[Site, found_rows.FoundPit]:
     """A pit of straight walls. `channels` overrides fields of its stations (scalars or arrays)."""
     axis = _moved(np.asarray(corners, dtype=float), turn, shift)
     lengths = np.hypot(*np.diff(np.vstack([axis, axis[:1]]) if closed else axis, axis=0).T)
     at = np.concatenate([[0.0], np.cumsum(lengths)])
-    shape = m.PitShape(
+    shape = found_rows.PitShape(
         id="P1",
         closed=closed,
         axis=axis,
@@ -86,12 +88,12 @@ def ring_pit(
     floor: float = -10.0,
     step: float = 0.5,
     **channels: object,
-) -> tuple[Site, m.FoundPit]:
+) -> tuple[Site, found_rows.FoundPit]:
     """A round pit about (0, 0), chainage from due east."""
     n = 720
     angle = 2 * np.pi * np.arange(n) / n
     length = 2 * np.pi * radius
-    shape = m.PitShape(
+    shape = found_rows.PitShape(
         id="P1",
         closed=True,
         axis=radius * np.column_stack([np.cos(angle), np.sin(angle)]),
@@ -125,7 +127,7 @@ def diaphragm(**fields: object) -> m.Wall:
     )
 
 
-def spot(found: m.FoundPit, chainage: float) -> int:
+def spot(found: found_rows.FoundPit, chainage: float) -> int:
     """Index of the station at a chainage."""
     index = int(np.argmin(np.abs(found.stations.chainage - chainage)))
     assert abs(found.stations.chainage[index] - chainage) < 1e-6, f"no station at {chainage}"
@@ -166,13 +168,13 @@ def _corners(axis: m.Floats, at: m.Floats, closed: bool) -> tuple[m.Corner, ...]
 
 def _found(
     site: Site,
-    shape: m.PitShape,
+    shape: found_rows.PitShape,
     rows: Sequence[Row],
     ground: float,
     floor: float,
     step: float,
     channels: dict[str, object],
-) -> tuple[Site, m.FoundPit]:
+) -> tuple[Site, found_rows.FoundPit]:
     supports: list[Support] = list(site.supports)
     held = [_support_row(shape, row, supports, j) for j, row in enumerate(rows)]
     chainage = np.arange(0.0, shape.length - 1e-6, step)
@@ -192,11 +194,11 @@ def _found(
         circle=shape.circle,
         members=tuple(row.member for row in held),
     )
-    found = m.FoundPit(pit=pit, shape=shape, stations=stations, rows=tuple(held))
+    found = found_rows.FoundPit(pit=pit, shape=shape, stations=stations, rows=tuple(held))
     return replace(site, supports=tuple(supports)), found
 
 
-def _zones(shape: m.PitShape) -> tuple[m.Zone, ...]:
+def _zones(shape: found_rows.PitShape) -> tuple[m.Zone, ...]:
     sides = find_sides(shape)
     ends = [(start, (start + length) % shape.length) for start, length in zip(sides.start, sides.length, strict=True)]
     return tuple(
@@ -205,7 +207,7 @@ def _zones(shape: m.PitShape) -> tuple[m.Zone, ...]:
     )
 
 
-def _support_row(shape: m.PitShape, row: Row, supports: list[Support], number: int) -> m.SupportRow:
+def _support_row(shape: found_rows.PitShape, row: Row, supports: list[Support], number: int) -> found_rows.SupportRow:
     first = len(supports)
     for k, (head, far) in enumerate(row.ends):
         supports.append(
@@ -237,7 +239,7 @@ def _support_row(shape: m.PitShape, row: Row, supports: list[Support], number: i
         along=(),
         sources=(),
     )
-    return m.SupportRow(
+    return found_rows.SupportRow(
         member=member,
         supports=tuple(range(first, first + len(row.ends))),
         head_at=head_at,
@@ -248,7 +250,7 @@ def _support_row(shape: m.PitShape, row: Row, supports: list[Support], number: i
     )
 
 
-def _tributary(shape: m.PitShape, at: m.Floats) -> m.Floats:
+def _tributary(shape: found_rows.PitShape, at: m.Floats) -> m.Floats:
     """Half the gap to each neighbour; an end member also holds the wall up to its corner."""
     width = np.full(len(at), np.nan)
     if np.all(np.isnan(at)):
@@ -264,13 +266,13 @@ def _tributary(shape: m.PitShape, at: m.Floats) -> m.Floats:
 
 
 def _stations(
-    shape: m.PitShape,
+    shape: found_rows.PitShape,
     chainage: m.Floats,
     ground: float,
     floor: float,
-    rows: Sequence[m.SupportRow],
+    rows: Sequence[found_rows.SupportRow],
     channels: dict[str, object],
-) -> m.Stations:
+) -> found_rows.Stations:
     n = len(chainage)
     sides = find_sides(shape)
     side, local = side_of(sides, chainage)
@@ -311,7 +313,7 @@ def _stations(
         else np.broadcast_to(np.asarray(value, dtype=bool if name in flags else kinds.get(name, np.float64)), n).copy()
         for name, value in base.items()
     }
-    return m.Stations(
+    return found_rows.Stations(
         pit=shape.id,
         closed=shape.closed,
         chainage=chainage,
@@ -327,7 +329,7 @@ def _stations(
     )
 
 
-def _held(sides: object, side: m.Ints, rows: Sequence[m.SupportRow], n: int) -> tuple[tuple[int, ...], ...]:
+def _held(sides: object, side: m.Ints, rows: Sequence[found_rows.SupportRow], n: int) -> tuple[tuple[int, ...], ...]:
     held: list[list[int]] = [[] for _ in range(n)]
     for j, row in enumerate(rows):
         for ends in (row.head_at, row.far_at):

@@ -6,7 +6,7 @@ import numpy as np
 from scipy.integrate import quad
 
 from ingest import concrete, steel
-from sections import footing, load_repeats, loads, yielding_wall
+from sections.smearing import footing, load_repeats, loads, yielding_wall
 
 
 def point_load_resultants(Q, x, H):

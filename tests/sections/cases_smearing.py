@@ -6,14 +6,16 @@ from math import cos, pi, radians, sin
 
 import numpy as np
 
-from sections import anchors, bearing_row, chain, king_posts, opposite_wall, overdig, ring, smear, smear_wall
-from sections.definition import RealMember
-from sections.hand_over_ring import load_per_radian, ring_line_load, ring_over_footing
-from sections.smear_ring import ring_spacing, smear_ring_pile_wall
-from sections.smear_ring_supports import smear_diametral_struts, smear_ring_anchors, smear_ring_beam
-from sections.smear_rows import smear_corner_strut, smear_support
-from sections.thrust_line import find_thrust_line
-from sections.wall_rows import post, round_pile, smear_continuous_wall, smear_pile_wall, smear_sheet_wall
+from sections.member import RealMember
+from sections.smearing import anchors, bearing_row, chain, king_posts, opposite_wall, overdig, ring
+from sections.smearing import member as smear
+from sections.smearing import wall as smear_wall
+from sections.smearing.hand_over_ring import load_per_radian, ring_line_load, ring_over_footing
+from sections.smearing.ring_supports import smear_diametral_struts, smear_ring_anchors, smear_ring_beam
+from sections.smearing.ring_wall import ring_spacing, smear_ring_pile_wall
+from sections.smearing.support_rows import smear_corner_strut, smear_support
+from sections.smearing.thrust_line import find_thrust_line
+from sections.smearing.wall_rows import post, round_pile, smear_continuous_wall, smear_pile_wall, smear_sheet_wall
 
 
 def real_member(skew, inclination, spacing, **more):

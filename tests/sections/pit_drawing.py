@@ -7,7 +7,8 @@ from dataclasses import replace
 
 import numpy as np
 
-from ingest.model import BarSection, Pile, Site, Support, WallPiece
+from ingest.members import BarSection, Pile, Support, WallPiece
+from ingest.model import Site
 
 PILE_KINDS = ("contiguous", "secant", "king_post")
 LINE_KINDS = ("diaphragm", "sheet")

@@ -4,8 +4,8 @@ from __future__ import annotations
 
 import numpy as np
 
-from ingest.model import Pile, WallPiece
-from sections.perimeter import find_shapes
+from ingest.members import Pile, WallPiece
+from sections.perimeter.perimeter import find_shapes
 
 BOX = ((0.0, 0.0), (30.0, 0.0), (30.0, 20.0), (0.0, 20.0))
 

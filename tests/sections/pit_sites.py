@@ -7,10 +7,12 @@ from dataclasses import replace
 
 import numpy as np
 
-from ingest.model import BarSection, Load, Point, Site, Stratum, Support
+from ingest.members import BarSection, Load, Point, Support
+from ingest.model import Site, Stratum
 from ingest.trail import Source
-from sections.find import describe_pits
-from sections.model import Circle, Corner, Floats, FoundPit, PitShape, Run, Wall
+from sections.found import FoundPit, PitShape
+from sections.model import Circle, Corner, Floats, Run, Wall
+from sections.pit.find import describe_pits
 
 CHS = BarSection(designation="CHS 508x16", A=0.02473061737)
 PILES = Wall(kind="contiguous", count=100, centres=1.0, diameter=0.75, top=0.0, toe=-12.0)

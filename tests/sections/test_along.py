@@ -8,7 +8,8 @@ import numpy as np
 import pytest
 from builders_ratios import ELL, Row, piles, polygon_pit, ring_pit, spot, struts_across
 
-from sections.along import (
+from sections.model import Arc, Run
+from sections.pit.along import (
     CURVE,
     FREE,
     INSIDE,
@@ -22,8 +23,7 @@ from sections.along import (
     gaps_of,
     is_rectangle,
 )
-from sections.model import Arc, Run
-from sections.wall_changes import changes_of, toe_steps_of
+from sections.pit.wall_changes import changes_of, toe_steps_of
 
 
 def test_the_wall_of_a_rectangle_ends_at_its_corners() -> None:

@@ -11,8 +11,9 @@ from hypothesis import strategies as st
 from row_rules import assert_rows_hold, back
 from scipy.optimize import minimize
 
-from sections import anchors, chain, opposite_wall, overdig, smear
-from sections.definition import RealMember
+from sections.member import RealMember
+from sections.smearing import anchors, chain, opposite_wall, overdig
+from sections.smearing import member as smear
 
 points = st.tuples(*[st.floats(-10, 10)] * 3)
 CHS_EA = 5193429.648

@@ -23,16 +23,19 @@ from builders_ratios import (
 from hypothesis import given, settings
 from hypothesis import strategies as st
 
-from ingest.model import Borehole, Frame, Layer, Limits, LineDecision, Load, Receptor, Site, Stratum
-from sections.candidates import Candidate, cut_of, find_candidates
-from sections.choice import Choice, choose
-from sections.cover_programme import SCALE, TIE, Cover, solve_cover
-from sections.judged import JudgedPit, judge_stations
-from sections.likeness import find_likeness, fits, misfit, nearest_station, tied_to
-from sections.model import Axis, FoundPit, Represents, Run, Zone
-from sections.standing import find_standing
-from sections.stretches import cell_edges, cell_lengths, find_stretches
-from sections.verdict import HOLDS, NOT_2D, NOT_ASSESSED, OVER, UNDECIDED, UNDER
+from ingest.members import Load, Receptor
+from ingest.model import Borehole, Frame, Layer, Limits, LineDecision, Site, Stratum
+from sections.found import FoundPit
+from sections.model import Axis, Run, Zone
+from sections.proposal import Represents
+from sections.verdicts.candidates import Candidate, cut_of, find_candidates
+from sections.verdicts.choice import Choice, choose
+from sections.verdicts.cover_programme import SCALE, TIE, Cover, solve_cover
+from sections.verdicts.judged import JudgedPit, judge_stations
+from sections.verdicts.likeness import find_likeness, fits, misfit, nearest_station, tied_to
+from sections.verdicts.standing import find_standing
+from sections.verdicts.stretches import cell_edges, cell_lengths, find_stretches
+from sections.verdicts.verdict import HOLDS, NOT_2D, NOT_ASSESSED, OVER, UNDECIDED, UNDER
 
 LIMITS = Limits()
 STRUTS = (

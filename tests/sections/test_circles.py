@@ -8,8 +8,9 @@ from hypothesis import given
 from hypothesis import strategies as st
 from pit_lines import BOX, lines, only
 
-from ingest.model import Pile, Site
-from sections.circle_fit import fit_circle
+from ingest.members import Pile
+from ingest.model import Site
+from sections.perimeter.circle_fit import fit_circle
 
 
 def around(radius, turns, centre=(0.0, 0.0)):

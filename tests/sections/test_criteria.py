@@ -20,7 +20,8 @@ from builders_ratios import (
     struts_along,
 )
 
-from ingest.model import OUTPUTS, Borehole, Layer, Limits, Load, Material, Receptor, Site, Stratum
+from ingest.members import Load, Material, Receptor
+from ingest.model import OUTPUTS, Borehole, Layer, Limits, Site, Stratum
 from sections.criteria import CRITERIA, RING_CRITERIA
 from sections.criteria.anchor_clash import anchor_clash
 from sections.criteria.corner_class import corner_class
@@ -38,9 +39,10 @@ from sections.criteria.supports_gap import supports_gap
 from sections.criteria.supports_skew import supports_skew
 from sections.criteria.wall_change import wall_change
 from sections.criteria.water import water_gradient
-from sections.loads import area_ratios
-from sections.model import Arc, Circle, CriterionResult, FoundPit, Run, Step
-from sections.severity import find_severity, severity_at
+from sections.found import CriterionResult, FoundPit
+from sections.model import Arc, Circle, Run, Step
+from sections.smearing.loads import area_ratios
+from sections.verdicts.severity import find_severity, severity_at
 
 LIMITS = Limits()
 W, EXC, RET, FORCE = OUTPUTS[:4]

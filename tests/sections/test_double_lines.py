@@ -6,10 +6,11 @@ import numpy as np
 import pytest
 from pit_lines import BOX, lines, only
 
-from ingest.model import Site, WallPiece
+from ingest.members import WallPiece
+from ingest.model import Site
 from ingest.trail import Source
-from sections.double_lines import centre_lines
-from sections.perimeter import find_shapes
+from sections.perimeter.double_lines import centre_lines
+from sections.perimeter.perimeter import find_shapes
 
 
 def faces(*ends, drawn="face", **more):

@@ -10,9 +10,11 @@ from hypothesis import given, settings
 from hypothesis import strategies as st
 from pit_sites import PANEL, PILES, box, first_pit_struts, footing, found, rectangle, shape_of, site_of, strut
 
-from ingest.model import Borehole, Column, Floor, Layer, Load, Pile, Plate, Receptor, Stratum, Support, Waler
-from sections.find import describe_pits, find_pits
-from sections.model import Circle, Stations
+from ingest.members import Column, Load, Pile, Plate, Receptor, Support, Waler
+from ingest.model import Borehole, Floor, Layer, Stratum
+from sections.found import Stations
+from sections.model import Circle
+from sections.pit.find import describe_pits, find_pits
 
 RING = [(12.0 * np.cos(t), 12.0 * np.sin(t)) for t in np.radians(np.arange(0.0, 360.0, 3.0))]
 SHAPES = (

@@ -6,8 +6,9 @@ import numpy as np
 import pytest
 from pit_sites import PANEL, box, found, rectangle, shape_of, site_of
 
-from ingest.model import Floor, Plate
-from sections.floors import find_floors, find_steps, floor_at_wall
+from ingest.members import Plate
+from ingest.model import Floor
+from sections.pit.floors import find_floors, find_steps, floor_at_wall
 
 
 def at(pit, chainage):

@@ -11,8 +11,8 @@ from scipy.interpolate import LinearNDInterpolator
 from scipy.spatial import ConvexHull, Delaunay
 
 from ingest.model import Borehole, Layer, Stratum
-from sections.ground import borehole_tops, find_bedding, layers_along, nearest_borehole, water_along
-from sections.tin import level_at, make_surface
+from sections.pit.ground import borehole_tops, find_bedding, layers_along, nearest_borehole, water_along
+from sections.pit.tin import level_at, make_surface
 
 CODES = (
     Stratum(name="made ground", from_boreholes="MG"),

@@ -10,8 +10,9 @@ from hypothesis import given, settings
 from hypothesis import strategies as st
 from pit_sites import PANEL, PILES, anchor, box, footing, found, moved, moved_support, shape_of, strut
 
-from ingest.model import Frame, Support
-from sections.model import FoundPit
+from ingest.members import Support
+from ingest.model import Frame
+from sections.found import FoundPit
 
 ELL = [(0.0, 0.0), (40.0, 0.0), (40.0, 18.0), (22.0, 18.0), (22.0, 36.0), (0.0, 36.0)]
 

@@ -17,9 +17,9 @@ from pit_sites import (
     strut,
 )
 
-from ingest.model import BarSection, Pile, Plate, Waler
+from ingest.members import BarSection, Pile, Plate, Waler
 from sections.model import Circle
-from sections.spacing import bay_spacings, regular_spacing, spacing_changes
+from sections.pit.spacing import bay_spacings, regular_spacing, spacing_changes
 
 
 def by_id(pit, name):
@@ -259,7 +259,7 @@ def test_supports_without_level_or_section_keep_their_gap_in_the_record():
 def test_struts_of_two_pits_that_share_a_wall_go_each_to_its_own_pit():
     from pit_sites import site_of
 
-    from sections.find import describe_pits
+    from sections.pit.find import describe_pits
 
     west, east = shape_of(rectangle(20.0, 20.0)), shape_of(rectangle(20.0, 20.0, west=120.0), pit="P2")
     struts = (strut((100.0, 210.0), (120.0, 210.0)), strut((120.0, 210.0), (140.0, 210.0)))

@@ -9,9 +9,11 @@ import numpy as np
 import pytest
 from pit_sites import PANEL, PILES, anchor, box, moved, moved_support, shape_of, site_of, strut
 
-from ingest.model import Floor, Point, Support
-from sections.find import describe_pits
-from sections.model import FoundPit, Wall
+from ingest.members import Point, Support
+from ingest.model import Floor
+from sections.found import FoundPit
+from sections.model import Wall
+from sections.pit.find import describe_pits
 
 PLANS = {
     "rectangle": lambda r: [(0.0, 0.0), (a := r(25, 60), 0.0), (a, b := r(14, 30)), (0.0, b)],

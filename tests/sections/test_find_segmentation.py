@@ -10,7 +10,7 @@ import ruptures
 from hypothesis import given
 from hypothesis import strategies as st
 
-from sections.segmentation import alike_stretches, group_alike, segment
+from sections.pit.segmentation import alike_stretches, group_alike, segment
 
 STEPS = np.array([1.0, 1, 1, 1, 5, 5, 5, 5, 2, 2])
 NOISY = np.array([10, 10.2, 9.9, 10.1, 12, 12.1, 11.9, 12, 12.05, 8, 8.1, 7.9])

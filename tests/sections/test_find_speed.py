@@ -7,9 +7,10 @@ import time
 import numpy as np
 from pit_sites import PILES, anchor, box, footing, shape_of, site_of, strut
 
-from ingest.model import Borehole, Layer, Pile, Site, Stratum
-from sections.find import describe_pits
-from sections.model import PitShape
+from ingest.members import Pile
+from ingest.model import Borehole, Layer, Site, Stratum
+from sections.found import PitShape
+from sections.pit.find import describe_pits
 
 
 def made(base: float) -> tuple[Layer, Layer]:

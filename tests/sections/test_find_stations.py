@@ -10,9 +10,9 @@ from hypothesis import given
 from hypothesis import strategies as st
 from pit_sites import PANEL, PILES, box, first_pit_struts, footing, found, rectangle, shape_of, strut
 
-from ingest.model import Load, Receptor
-from sections.chainage import cast, find_sides, locate, normal_at, point_at, side_of, within
+from ingest.members import Load, Receptor
 from sections.model import Arc, Circle
+from sections.pit.chainage import cast, find_sides, locate, normal_at, point_at, side_of, within
 
 ELL = [(0.0, 0.0), (40.0, 0.0), (40.0, 20.0), (20.0, 20.0), (20.0, 40.0), (0.0, 40.0)]
 

@@ -12,9 +12,9 @@ from hypothesis import strategies as st
 from pit_sites import PANEL, PILES, box, first_pit_struts, footing, found, moved, rectangle, shape_of, strut
 
 from ingest.model import Floor, Limits
-from sections.mirror import cut_mirrors
 from sections.model import Circle
-from sections.symmetry import mirrored, overlap_at, plan_axes
+from sections.pit.mirror import cut_mirrors
+from sections.pit.symmetry import mirrored, overlap_at, plan_axes
 
 
 def polygon(n, start=0.0):

@@ -20,7 +20,8 @@ from pit_sites import (
     strut,
 )
 
-from ingest.model import BarSection, Borehole, Floor, Layer, Stratum
+from ingest.members import BarSection
+from ingest.model import Borehole, Floor, Layer, Stratum
 from sections.model import Circle
 
 

@@ -17,8 +17,8 @@ from pit_sites import CHS, found, rectangle, shape_of, site_of, strut
 
 from export.cli import main
 from sections.definition import Implied
-from sections.implied import imply
-from sections.section_supports import support_members
+from sections.section.implied import imply
+from sections.section.supports import support_members
 
 KERNEL = Path(__file__).parents[1] / "ingest" / "kernel_child.py"
 PIT = Path(__file__).parents[2] / "samples" / "first_pit"

@@ -11,12 +11,15 @@ from builders_ratios import ELL, Row, column, diaphragm, piles, polygon_pit, rin
 from hypothesis import given, settings
 from hypothesis import strategies as st
 
-from ingest.model import GOVERNING, OUTPUTS, Limits, Load, Site, Stratum
+from ingest.members import Load
+from ingest.model import GOVERNING, OUTPUTS, Limits, Site, Stratum
 from sections.criteria import CRITERIA
-from sections.judged import JudgedPit, judge_stations
-from sections.margins import margins_at
-from sections.model import WORST_FIRST, CriterionResult, FoundPit, Run, Step
-from sections.verdict import HOLDS, NOT_2D, NOT_ASSESSED, OVER, UNDECIDED, UNDER
+from sections.found import CriterionResult, FoundPit
+from sections.model import Run, Step
+from sections.proposal import WORST_FIRST
+from sections.verdicts.judged import JudgedPit, judge_stations
+from sections.verdicts.margins import margins_at
+from sections.verdicts.verdict import HOLDS, NOT_2D, NOT_ASSESSED, OVER, UNDECIDED, UNDER
 
 W, EXC, RET, FORCE = OUTPUTS[:4]
 STRUTS = (
@@ -324,7 +327,7 @@ def test_dropping_an_input_never_narrows_a_band_nor_raises_a_score(drop: str) ->
 
 
 def test_the_rows_of_criteria_combine_to_the_verdict_by_hand() -> None:
-    from sections.verdict import combine
+    from sections.verdicts.verdict import combine
 
     judged = judge_stations(*monolithic_pit())
     i = spot(judged.found, 3.0)

@@ -10,9 +10,9 @@ from hypothesis import given, settings
 from hypothesis import strategies as st
 from scipy.integrate import dblquad, quad
 
-from sections import load_repeats, loads, yielding_wall
-from sections.footing import hand_over_footing, settlement_pressure, stress_ratio
-from sections.hand_over import (
+from sections.smearing import load_repeats, loads, yielding_wall
+from sections.smearing.footing import hand_over_footing, settlement_pressure, stress_ratio
+from sections.smearing.hand_over import (
     hand_over_area,
     hand_over_line,
     hand_over_perpendicular_line,

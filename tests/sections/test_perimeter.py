@@ -6,8 +6,9 @@ import numpy as np
 import pytest
 from pit_lines import BOX, angles, lines, only, rows
 
-from ingest.model import Frame, Pile, Site, Support, WallPiece
-from sections.perimeter import find_shapes
+from ingest.members import Pile, Support, WallPiece
+from ingest.model import Frame, Site
+from sections.perimeter.perimeter import find_shapes
 
 
 def test_the_first_pit_has_its_hundred_piles_four_corners_and_one_run():

@@ -8,8 +8,9 @@ import numpy as np
 import pytest
 from pit_lines import BOX, angles, lines, only, rows
 
-from ingest.model import Floor, Pile, Plate, Site, WallPiece
-from sections.perimeter import find_shapes
+from ingest.members import Pile, Plate, WallPiece
+from ingest.model import Floor, Site
+from sections.perimeter.perimeter import find_shapes
 
 
 def test_gaps_and_overlaps_of_20_mm_close_without_turning_the_sides():

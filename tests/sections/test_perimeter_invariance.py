@@ -12,8 +12,9 @@ from hypothesis import given, settings
 from hypothesis import strategies as st
 from pit_lines import lines, rows
 
-from ingest.model import BarSection, Frame, Site, WallPiece
-from sections.perimeter import find_shapes
+from ingest.members import BarSection, WallPiece
+from ingest.model import Frame, Site
+from sections.perimeter.perimeter import find_shapes
 
 ELL = [(0.0, 0.0), (33.0, 0.0), (33.0, 14.0), (15.0, 14.0), (15.0, 27.0), (2.0, 24.0)]
 BOW = [(10 * math.cos(t), 10 * math.sin(t)) for t in np.linspace(-math.pi / 2, math.pi / 2, 60)]

@@ -8,7 +8,7 @@ import pytest
 from pit_comparison import differences
 from pit_generator import make_scene
 
-from sections.perimeter import find_shapes
+from sections.perimeter.perimeter import find_shapes
 
 
 def faults(seeds):

@@ -8,7 +8,7 @@ import pytest
 from pit_lines import rows
 
 from ingest.model import Site
-from sections.perimeter import find_shapes
+from sections.perimeter.perimeter import find_shapes
 
 
 def seconds(site):

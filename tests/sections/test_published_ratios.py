@@ -13,16 +13,16 @@ from hypothesis import given
 from hypothesis import strategies as st
 
 from ingest.model import Limits
-from sections import severity as sv
-from sections.basal import bearing_factor, heave_ratio, safety_deep, safety_wide
 from sections.criteria.corner_shape import bell_shape, bell_width, error_function_shape, reach_of_share, shape_offset
 from sections.criteria.loads import area_ratio
 from sections.criteria.plane_strain_ratio import plane_strain_ratio_formula, system_stiffness, valid_for
 from sections.criteria.water import hydraulic_band, round_band
-from sections.loads import area_ratios
-from sections.margins import peak_factor
-from sections.opposite_wall import force_ratio, support_share
-from sections.verdict import words_of
+from sections.smearing.loads import area_ratios
+from sections.smearing.opposite_wall import force_ratio, support_share
+from sections.verdicts import severity as sv
+from sections.verdicts.basal import bearing_factor, heave_ratio, safety_deep, safety_wide
+from sections.verdicts.margins import peak_factor
+from sections.verdicts.verdict import words_of
 
 VALUES = tomllib.loads((Path(__file__).parent / "check_values_ratios.toml").read_text())["value"]
 PLACES = np.array([0.0, 0.05, 0.1, 0.2, 0.3, 0.5])
@@ -90,7 +90,7 @@ def test_check_value_is_met(v: dict[str, Any]) -> None:
     assert got == pytest.approx(v["expect"], rel=1e-8, abs=rounded), v["source"]
     if "word" in v:
         low, high = np.array([[v["expect"][0]]]), np.array([[v["expect"][1]]])
-        from sections.model import WORST_FIRST
+        from sections.proposal import WORST_FIRST
 
         assert WORST_FIRST[int(words_of(low, high, Limits())[0, 0])] == v["word"]
 

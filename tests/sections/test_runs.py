@@ -8,8 +8,9 @@ import numpy as np
 import pytest
 from pit_lines import BOX, lines, only, rows
 
-from ingest.model import BarSection, Pile, Site, Source, WallPiece
-from sections.perimeter import find_shapes
+from ingest.members import BarSection, Pile, WallPiece
+from ingest.model import Site, Source
+from sections.perimeter.perimeter import find_shapes
 
 
 def bounds(shape):

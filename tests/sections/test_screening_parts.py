@@ -10,9 +10,10 @@ from hypothesis import given, settings
 from hypothesis import strategies as st
 from scipy import sparse
 
-from ingest.model import Floor, Material, Pile, Site, Stratum, WallPiece
-from sections.find import find_pits
-from sections.model import FoundPit
+from ingest.members import Material, Pile, WallPiece
+from ingest.model import Floor, Site, Stratum
+from sections.found import FoundPit
+from sections.pit.find import find_pits
 from sections.screening.hermite import line_matrices
 from sections.screening.limits import PressureLimits, excess, settle
 from sections.screening.loss import lose_each, lose_members

@@ -10,10 +10,12 @@ from hypothesis import Phase, given, settings
 from hypothesis import strategies as st
 from pit_sites import anchor, box, moved, moved_support, rectangle, shape_of, strut
 
-from ingest.model import OUTPUTS, Limits, Load, Material, Point, Site, Stratum, Support
+from ingest.members import Load, Material, Point, Support
+from ingest.model import OUTPUTS, Limits, Site, Stratum
 from sections.criteria.screening import screening
-from sections.find import describe_pits
-from sections.model import FoundPit, Wall
+from sections.found import FoundPit
+from sections.model import Wall
+from sections.pit.find import describe_pits
 from sections.screening.run import VariantRatios, run_variant
 from sections.screening.scene import Scene, Variant, make_scene
 

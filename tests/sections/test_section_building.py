@@ -12,12 +12,13 @@ from shapely import Polygon
 from shapely.ops import unary_union
 
 from ingest.model import Site, Stage, Stratum
-from sections.cut import Cut, crossings
-from sections.definition import PerMetre, RealMember, SectionMaterial, SectionMember
-from sections.implied import grade, imply
-from sections.section_balance import at_rest_thrust, list_actions
-from sections.section_ground import layer_outlines, soil_material
-from sections.section_stages import DigProfile, Prop, dig_profile, plan_stages
+from sections.definition import SectionMaterial
+from sections.member import PerMetre, RealMember, SectionMember
+from sections.section.balance import at_rest_thrust, list_actions
+from sections.section.cut import Cut, crossings
+from sections.section.ground import layer_outlines, soil_material
+from sections.section.implied import grade, imply
+from sections.section.stages import DigProfile, Prop, dig_profile, plan_stages
 
 SQUARE = ((0.0, 0.0), (4.0, 0.0), (4.0, 4.0), (0.0, 4.0))
 

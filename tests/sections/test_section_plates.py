@@ -6,9 +6,9 @@ import pytest
 from builders_cut import make_cut
 from pit_sites import box, found, rectangle, shape_of, site_of
 
-from ingest.model import Material, Plate, Point
+from ingest.members import Material, Plate, Point
 from ingest.trail import Source
-from sections.section_plates import SlabParts, slab_parts
+from sections.section.plates import SlabParts, slab_parts
 
 NAMES = {"left": "P1-wall-1", "right": "P1-wall-2"}
 CONCRETE = Material(id="C30", kind="concrete", E=33e6, unit_weight=25.0)

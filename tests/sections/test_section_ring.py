@@ -8,10 +8,10 @@ import pytest
 from builders_cut import make_cut
 from pit_sites import anchor, found, shape_of, site_of, strut
 
-from ingest.model import Load, Material, Point
-from sections.cut import Cut
+from ingest.members import Load, Material, Point
 from sections.model import Circle, Structural, Wall
-from sections.section_ring import RingParts, ring_parts
+from sections.section.cut import Cut
+from sections.section.ring import RingParts, ring_parts
 
 R, CENTRE = 10.0, (50.0, 50.0)
 CONCRETE = Material(id="C30", kind="concrete", E=33e6, unit_weight=25.0)

@@ -8,12 +8,13 @@ import pytest
 from builders_cut import make_cut
 from pit_sites import PANEL, PILES, anchor, footing, found, rectangle, shape_of, site_of, strut
 
-from ingest.model import Material, Point, Site, Support
-from sections.cut import Cut
-from sections.definition import PerMetre, RealMember, SectionMember
-from sections.model import FoundPit
-from sections.section_balance import balance_section
-from sections.section_supports import support_members
+from ingest.members import Material, Point, Support
+from ingest.model import Site
+from sections.found import FoundPit
+from sections.member import PerMetre, RealMember, SectionMember
+from sections.section.balance import balance_section
+from sections.section.cut import Cut
+from sections.section.supports import support_members
 
 EA = 210e6 * 0.02473061737  # CHS 508 x 16, E 210 GPa
 NAMES = {"left": "P1-wall-1", "right": "P1-wall-2"}

@@ -10,12 +10,13 @@ import pytest
 from builders_cut import make_cut
 from pit_sites import PANEL, PILES, found, rectangle, shape_of, site_of
 
-from ingest.model import BarSection, Material, Pile, Site
-from sections.cut import Cut
-from sections.definition import SectionMember
+from ingest.members import BarSection, Material, Pile
+from ingest.model import Site
+from sections.member import SectionMember
 from sections.model import Structural, Wall
-from sections.section_bearing import bearing_members
-from sections.section_walls import wall_member
+from sections.section.bearing_piles import bearing_members
+from sections.section.cut import Cut
+from sections.section.walls import wall_member
 
 STEEL = Material(id="steel", kind="steel", E=210e6, unit_weight=78.5)
 CONCRETE = Material(id="C30", kind="concrete", E=33e6, unit_weight=25.0)

@@ -12,10 +12,10 @@ from hypothesis import strategies as st
 from row_rules import also, assert_rows_hold, back
 from scipy.integrate import quad
 
-from sections import smear
-from sections.definition import RealMember
-from sections.smear_checks import check_arching, check_skew, check_spacing, may_be_smeared
-from sections.smear_rows import smear_corner_strut, smear_support
+from sections.member import RealMember
+from sections.smearing import member as smear
+from sections.smearing.checks import check_arching, check_skew, check_spacing, may_be_smeared
+from sections.smearing.support_rows import smear_corner_strut, smear_support
 
 skews = st.floats(-80.0, 80.0)
 inclinations = st.floats(-80.0, 80.0)

@@ -11,19 +11,19 @@ from hypothesis import strategies as st
 from row_rules import also, assert_rows_hold, back
 from scipy.integrate import quad
 
-from sections import hand_over_ring, ring
-from sections.definition import RealMember
-from sections.smear_ring import ring_spacing, secant_hoop, smear_ring_pile_wall, smear_ring_wall
-from sections.smear_ring_supports import (
+from sections.member import RealMember
+from sections.smearing import hand_over_ring, ring
+from sections.smearing.ring_supports import (
     smear_diametral_struts,
     smear_ring_anchors,
     smear_ring_beam,
     smear_ring_bearing_piles,
     smear_ring_slab,
 )
-from sections.smear_wall import overlap
-from sections.thrust_line import check_worth_trying, find_thrust_line, two_runs_agree
-from sections.wall_rows import round_pile
+from sections.smearing.ring_wall import ring_spacing, secant_hoop, smear_ring_pile_wall, smear_ring_wall
+from sections.smearing.thrust_line import check_worth_trying, find_thrust_line, two_runs_agree
+from sections.smearing.wall import overlap
+from sections.smearing.wall_rows import round_pile
 
 radii = st.floats(3.0, 60.0)
 counts = st.integers(3, 200)

@@ -11,9 +11,10 @@ from hypothesis import strategies as st
 from row_rules import also, assert_rows_hold, back
 from shapely import Point, unary_union
 
-from sections import bearing_row, king_posts, smear_wall
-from sections.definition import RealMember
-from sections.wall_rows import (
+from sections.member import RealMember
+from sections.smearing import bearing_row, king_posts
+from sections.smearing import wall as smear_wall
+from sections.smearing.wall_rows import (
     post,
     round_pile,
     smear_bearing_row,

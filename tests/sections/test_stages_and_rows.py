@@ -6,13 +6,15 @@ import numpy as np
 import pytest
 import shapely
 
-from ingest.model import Floor, Limits, Load, Site, Stage
-from sections.buried_rows import end_at_steps
-from sections.column_loads import LoadRow, row_load
+from ingest.members import Load
+from ingest.model import Floor, Limits, Site, Stage
 from sections.definition import Water
-from sections.floors import FloorPlan
-from sections.model import Member, PitShape, Step, SupportRow
-from sections.section_stages import AT_END, DigProfile, Prop, plan_stages
+from sections.found import PitShape, SupportRow
+from sections.model import Member, Step
+from sections.pit.floors import FloorPlan
+from sections.section.buried_rows import end_at_steps
+from sections.section.column_loads import LoadRow, row_load
+from sections.section.stages import AT_END, DigProfile, Prop, plan_stages
 
 DIG = DigProfile(steps=(((10.0, 30.0), -6.0),), ground=0.0)
 STRUT = Prop(id="P1-strut-1", level=-1.5, preload=None, names=frozenset())

@@ -13,9 +13,11 @@ from hypothesis import given, settings
 from hypothesis import strategies as st
 
 from ingest.model import OUTPUTS, Limits
-from sections.margins import MARGINS, StationMargins
-from sections.model import WORST_FIRST, CriterionResult, Mechanism, Verdict
-from sections.verdict import (
+from sections.found import CriterionResult
+from sections.model import Mechanism
+from sections.proposal import WORST_FIRST, Verdict
+from sections.verdicts.margins import MARGINS, StationMargins
+from sections.verdicts.verdict import (
     HOLDS,
     NOT_2D,
     NOT_ASSESSED,

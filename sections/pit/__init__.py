@@ -1,0 +1,1 @@
+"""Pit: what lies along the wall, zone by zone and station by station."""

@@ -1,0 +1,1 @@
+"""Section: one chosen cut turned into a section definition, and results turned back to members."""

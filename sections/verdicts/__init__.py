@@ -1,0 +1,1 @@
+"""Verdicts: bands combined, words found, cuts chosen."""
