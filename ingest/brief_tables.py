@@ -1,7 +1,4 @@
-"""The tables of the brief, one class each: names, types, units and ranges as the contract has them.
-
-Lengths m, forces kN, stresses kPa, angles degrees, levels in the model's datum, plan coordinates world.
-"""
+"""The tables of the brief, one class each, with their units (m, kN, kPa, degrees, world plan) and ranges."""
 
 from __future__ import annotations
 

@@ -1,4 +1,4 @@
-"""What is proposed: verdicts, chosen sections, the stretches they stand for, and the whole as `proposal.json` holds it."""
+"""What is proposed: verdicts, chosen sections, what they stand for, and the whole as `proposal.json` holds it."""
 
 from __future__ import annotations
 
