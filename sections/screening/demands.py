@@ -57,7 +57,7 @@ def wall_demands(
 
 
 def _profiles(wall: FoldedWall, answer: Answer, share: float) -> tuple[Floats, Floats]:
-    """Deflection and moment down each facet (ns, nz): the mean of its ends plus a share of h times the change of turn."""
+    """Deflection and moment down each facet (ns, nz): mean of its ends plus a share of h times the change of turn."""
     ends, normals, length = wall.ends, wall.normals, np.hypot(*wall.chords.T)
     w = [np.einsum("sd,sdz->sz", normals, answer.value[ends[:, i], :2]) for i in (0, 1)]
     slope = [np.einsum("sd,sdz->sz", normals, answer.slope[ends[:, i], :2]) for i in (0, 1)]

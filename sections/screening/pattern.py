@@ -1,4 +1,4 @@
-"""Where the wall's elements go in the sparse matrix, and the order it is factorised in: one for all stages and readings.
+"""Where the wall's elements go in the sparse matrix, and the order of factorisation: one for all stages and readings.
 
 Unknowns are numbered column by column, in each by part (two plan movements, turn), node and value or slope. A column
 meets its two neighbours, a node those above and below, so every place in the matrix follows by counting.

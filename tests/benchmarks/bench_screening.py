@@ -59,6 +59,11 @@ def bare(made: scenes.Scene, plain: Scene) -> float:
     return best(lambda: solving.factors_of(matrix))
 
 
+def say(line: str) -> None:
+    """Write a line."""
+    sys.stdout.write(line + "\n")
+
+
 def main() -> None:
     """Print the table."""
     for strong in (False, True):
@@ -72,10 +77,10 @@ def main() -> None:
         for each in runs:
             running.run_variant(made, each)
         band = time.perf_counter() - start
-        print(
+        say(
             f"limits {'on' if strong else 'off'}: {made.found.shape.length:.0f} m, {len(made.site.supports)} supports, "
-            f"factorisation {base:.2f} s; one stage {one / base:.2f} x that; {len(made.stages)} stages {staged / one:.1f} "
-            f"x one stage; band of {len(runs)} variants {band / one:.1f} x one stage"
+            f"factorisation {base:.2f} s; one stage {one / base:.2f} x that; "
+            f"{len(made.stages)} stages {staged / one:.1f} x one stage; band of {len(runs)} variants {band / one:.1f} x one stage"
         )
     sizes, took = (100.0, 200.0, 400.0), []
     for perimeter in sizes:
@@ -83,7 +88,7 @@ def main() -> None:
         made = dataclasses.replace(made, stages=made.stages[-1:])
         took.append(best(lambda scene=made, plain=plain: running.run_variant(scene, base_variant(plain))))
     growth = np.polyfit(np.log(sizes), np.log(took), 1)[0]
-    print(f"growth exponent over perimeters {sizes}: {growth:.2f}")
+    say(f"growth exponent over perimeters {sizes}: {growth:.2f}")
 
 
 if __name__ == "__main__":

@@ -1,4 +1,4 @@
-"""The screening of a scene: the same pit as a site, run through the product, one stage, ratios at the block's facets."""
+"""The screening of a scene: the same pit as a site, through the product, one stage, ratios at the block's facets."""
 
 from __future__ import annotations
 

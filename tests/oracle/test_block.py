@@ -15,7 +15,7 @@ def test_the_bore_of_a_thick_cylinder_opens_as_lame_says() -> None:
 
 
 def test_a_simply_supported_square_plate_sags_as_navier_says() -> None:
-    # Navier's series: w = 0.0040624 q a4/D in the middle (Timoshenko & Woinowsky-Krieger 1959, table 8: 0.00406, recalled).
+    # Navier's series: w = 0.0040624 q a4/D (Timoshenko & Woinowsky-Krieger 1959, table 8: 0.00406, recalled).
     assert navier_plate() == pytest.approx(0.0040624, rel=1e-3)
 
 

@@ -55,7 +55,7 @@ def test_no_station_where_the_block_warns_is_called_holds_or_over_states() -> No
 
 
 def test_the_mesh_error_is_as_stated() -> None:
-    # the same scene on elements two thirds as large; at least a metre from the corners, where the block has no sharp answer
+    # the same scene on elements two thirds as large; beside the corners the block has no sharp answer
     for name in FIGURES["refined"]:
         points, coarse = frozen(BY_NAME[name])
         finer, fine = frozen(BY_NAME[name], "refined")
@@ -93,8 +93,8 @@ def test_the_ratio_of_maxima_over_stages_agrees_too(name: str) -> None:
 
 
 def test_a_wall_moves_less_at_its_corners_than_in_its_middle_and_the_long_side_more_than_the_short() -> None:
-    # Order of movements in published cases (Ou, Chiou & Wu 1996; Lee et al. 1998; Ou, Shiau & Wang 2000; abstracts seen):
-    # a corner reduces the deflection; a special-shaped station pit of 2022 (abstract seen): the long side moves more.
+    # Published cases, abstracts seen. Ou, Chiou & Wu 1996, Lee et al. 1998, Ou, Shiau & Wang 2000: a corner reduces the
+    # deflection. A special-shaped station pit of 2022: the long side moves more.
     for name in ("square_panels", "long_panels", "short_rows", "long_rows", "cantilever"):
         c = compared(name)
         for ratio in (c.block, c.screening):
