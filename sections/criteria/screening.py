@@ -72,14 +72,12 @@ def _silent(stations: Stations, why: str) -> CriterionResult:
 
 def _stages(scene: Scene, base: VariantRatios) -> tuple[tuple[str, ...], Ints]:
     """Names of the stages, and which governs the real demand of the first variant at each station and output."""
-    last = len(scene.stages) - 1
-    names = [f"dig to {dig:.2f}" if k < last else "final dig" for k, (dig, _) in enumerate(scene.stages)]
     stations, grid = scene.found.stations, scene.grid
     facet = np.clip(np.searchsorted(grid.chainage, stations.chainage, side="right") - 1, 0, len(grid.station) - 1)
     index = np.full((len(stations.chainage), len(OUTPUTS)), -1)
     for o, name in enumerate(WALL_OUTPUTS):
         index[:, OUTPUTS.index(name)] = base.stage_real[facet, o]
-    return tuple(names), index.astype(np.int64)
+    return scene.stage_names, index.astype(np.int64)
 
 
 def variants_of(scene: Scene) -> tuple[Variant, ...]:

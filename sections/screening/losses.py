@@ -26,7 +26,7 @@ def find_losses(scene: Scene, variant: Variant) -> tuple[SupportLoss, ...]:
     members, rows = members_of(scene, variant)
     if len(members) > MOST:
         return ()
-    dig_to, rows_in = scene.stages[-1]
+    dig_to, rows_in = max(scene.stages, key=lambda stage: (sum(stage[1]), -stage[0]))
     wall, _ = wall_of(scene, variant, dig_to)
     model = factorise(wall, members, beams_of(scene, variant, rows_in))
     movement = model.solve(model.load)

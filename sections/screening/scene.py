@@ -16,12 +16,11 @@ from sections.screening.grid import Grid, column_at, make_grid, node_at
 from sections.screening.limits import PressureLimits
 from sections.screening.pattern import Pattern, make_pattern
 from sections.screening.soil import Soil, find_limits, read_soil, unbalanced
+from sections.screening.stages import ScreenStage, lay_stages
 from sections.screening.supports import Beams, Members
 from sections.screening.wall import FoldedWall
 from sections.smearing.wall import circle_inertia
 
-OVER_DIG = 0.5
-"""Dig below a support level before it is installed, m (common practice, no source)."""
 BEAM_EI = 1.0e6
 """EI of a capping beam that may be there, kNm2 (judgement)."""
 WALER_EI = (5.0e4, 1.0e6)
@@ -58,7 +57,8 @@ class Scene:
     """(ns,) kNm2/m."""
     EA: Floats
     on: Bools
-    stages: tuple[tuple[float, tuple[bool, ...]], ...]
+    stages: tuple[ScreenStage, ...]
+    stage_names: tuple[str, ...] = ()
     """Per stage the level dug to (no deeper than the floor) and which rows are in."""
 
     @cached_property
@@ -84,7 +84,7 @@ def make_scene(site: Site, found: FoundPit) -> tuple[Scene | None, str]:
     lacking = [row.member.id for row in found.rows if any(site.supports[i].EA is None for i in row.supports)]
     if lacking:
         return None, f"axial stiffness of {', '.join(lacking)} is not given"
-    stages = _stages(found)
+    stages, names = lay_stages(site, found)
     levels = [site.supports[i].head[2] for row in found.rows for i in row.supports]
     levels += [level for level, _ in stages] + [s.top_level for s in site.strata if s.top_level is not None]
     grid = make_grid(found, np.array(levels, float))
@@ -96,7 +96,17 @@ def make_scene(site: Site, found: FoundPit) -> tuple[Scene | None, str]:
     top, toe = stations.top[grid.station], stations.toe[grid.station]
     on = (middle[None, :] < top[:, None]) & (middle[None, :] > toe[:, None])
     return (
-        Scene(site=site, found=found, grid=grid, soil=soil, EI=bending[run], EA=stretching[run], on=on, stages=stages),
+        Scene(
+            site=site,
+            found=found,
+            grid=grid,
+            soil=soil,
+            EI=bending[run],
+            EA=stretching[run],
+            on=on,
+            stages=stages,
+            stage_names=names,
+        ),
         "",
     )
 
@@ -130,18 +140,6 @@ def _run_stiffness(
         if post and post.I and post.A:
             return material.E * post.I / spacing * factor, material.E * post.A / spacing
     return None
-
-
-def _stages(found: FoundPit) -> tuple[tuple[float, tuple[bool, ...]], ...]:
-    """Digs from the top down: before each support level, then the whole depth with every support in."""
-    levels = [row.member.level if row.member.level is not None else float("inf") for row in found.rows]
-    lowest = float(np.min(found.stations.floor))
-    stages = []
-    for level in sorted({round(level, 3) for level in levels if np.isfinite(level)}, reverse=True):
-        dig = level - OVER_DIG
-        if dig > lowest:
-            stages.append((dig, tuple(other > level + 1e-3 for other in levels)))
-    return (*stages, (lowest, tuple(True for _ in levels)))
 
 
 def wall_of(scene: Scene, variant: Variant, dig_to: float) -> tuple[FoldedWall, PressureLimits]:
