@@ -9,12 +9,9 @@ from ingest.members import Material
 from ingest.model import Site
 from ingest.trail import Assumption, Finding, NotAssessed
 from sections.definition import (
-    Action,
     Ground,
-    Implied,
     RingAxis,
     SectionDefinition,
-    SectionLoad,
     SectionMaterial,
     SectionStage,
     SupportLoss,
@@ -29,6 +26,7 @@ from sections.section.frame import borehole_distance, local_point, mirrors, mode
 from sections.section.ground import layers_of_cut, soil_material, surface_line, water_lines
 from sections.section.implied import imply
 from sections.section.loads import load_rows, load_stages
+from sections.section.parts import SectionParts
 from sections.section.plates import slab_parts
 from sections.section.ring import ring_parts
 from sections.section.stages import DigProfile, Prop, dig_profile, plan_stages
@@ -66,19 +64,6 @@ def wall_names(cut: Cut) -> dict[str, str]:
     return names
 
 
-@dataclass(frozen=True, kw_only=True)
-class _Parts:
-    """Members and loads of a section of either kind."""
-
-    members: tuple[SectionMember, ...]
-    props: tuple[Prop, ...]
-    loads: tuple[SectionLoad, ...]
-    implied: tuple[Implied, ...]
-    assumptions: tuple[Assumption, ...]
-    findings: tuple[Finding, ...]
-    actions: tuple[Action, ...] = ()
-
-
 def define_section(site: Site, cut: Cut, judged: Judged) -> SectionDefinition:
     """Build the definition of a section.
 
@@ -93,7 +78,7 @@ def define_section(site: Site, cut: Cut, judged: Judged) -> SectionDefinition:
     """
     names = wall_names(cut)
     ring = cut.kind == "axisymmetric"
-    parts = _ring(site, cut, names) if ring else _plane(site, cut, names, judged.stands_for)
+    parts = ring_parts(site, cut, names[cut.walls[0].side]) if ring else _plane(site, cut, names, judged.stands_for)
     extent, extent_notes = model_extent(cut)
     layers, columns, ground_notes = layers_of_cut(site, cut, extent.z[0])
     water = water_lines(site, cut)
@@ -129,14 +114,14 @@ def define_section(site: Site, cut: Cut, judged: Judged) -> SectionDefinition:
     )
 
 
-def _plane(site: Site, cut: Cut, names: dict[str, str], stands_for: float | None) -> _Parts:
+def _plane(site: Site, cut: Cut, names: dict[str, str], stands_for: float | None) -> SectionParts:
     made = [wall_member(site, wall, names[wall.side]) for wall in cut.walls]
     supports, props, refused = support_members(site, cut, names)
     slabs = slab_parts(site, cut, names)
     piles, pile_notes = bearing_members(site, cut)
     loads, load_notes = load_rows(site, cut, stands_for)
     members = (*(member for member, _ in made), *supports, *slabs.members, *piles)
-    return _Parts(
+    return SectionParts(
         members=members,
         props=(*props, *slabs.props),
         loads=loads,
@@ -144,18 +129,6 @@ def _plane(site: Site, cut: Cut, names: dict[str, str], stands_for: float | None
         actions=slabs.actions,
         assumptions=tuple(a for _, (taken, _) in made for a in taken),
         findings=(*(f for _, (_, seen) in made for f in seen), *refused, *slabs.findings, *pile_notes, *load_notes),
-    )
-
-
-def _ring(site: Site, cut: Cut, names: dict[str, str]) -> _Parts:
-    parts = ring_parts(site, cut, names[cut.walls[0].side])
-    return _Parts(
-        members=parts.members,
-        props=parts.props,
-        loads=parts.loads,
-        implied=parts.implied,
-        assumptions=parts.assumptions,
-        findings=parts.findings,
     )
 
 

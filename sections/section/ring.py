@@ -2,37 +2,24 @@
 
 from __future__ import annotations
 
-from dataclasses import dataclass, replace
+from dataclasses import replace
 
 from ingest.members import Material
 from ingest.model import Site
 from ingest.trail import Assumption, Finding
-from sections.definition import Implied, SectionLoad
 from sections.member import Curve, End, PerRadian, RealMember, SectionMember
 from sections.model import Run
 from sections.section.cut import Cut, CutWall
+from sections.section.parts import SectionParts
 from sections.section.ring_beams import beams_and_slabs
 from sections.section.ring_loads import ring_loads
 from sections.section.ring_supports import ring_supports
-from sections.section.stages import Prop
 from sections.section.walls import displaced, uncracked
 from sections.smearing.ring_wall import SmearedRing, ring_spacing, smear_ring_pile_wall, smear_ring_wall
 from sections.smearing.wall_rows import round_pile
 
 
-@dataclass(frozen=True, kw_only=True)
-class RingParts:
-    """What makes up an axisymmetric section."""
-
-    members: tuple[SectionMember, ...]
-    props: tuple[Prop, ...]
-    loads: tuple[SectionLoad, ...]
-    implied: tuple[Implied, ...]
-    assumptions: tuple[Assumption, ...]
-    findings: tuple[Finding, ...]
-
-
-def ring_parts(site: Site, cut: Cut, name: str) -> RingParts:
+def ring_parts(site: Site, cut: Cut, name: str) -> SectionParts:
     """Turn the members and loads round a ring into those of its axisymmetric section.
 
     Args:
@@ -45,7 +32,7 @@ def ring_parts(site: Site, cut: Cut, name: str) -> RingParts:
     supports, props, notes = ring_supports(site, cut, wall, name)
     beams, held, told = beams_and_slabs(site, cut, wall, name)
     loads, implied, unsaid = ring_loads(site, cut, wall)
-    return RingParts(
+    return SectionParts(
         members=(member, *supports, *beams),
         props=(*props, *held),
         loads=loads,
