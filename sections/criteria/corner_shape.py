@@ -3,7 +3,7 @@
 Roboski & Finno 2006: d(x)/d_max = 1 - 0.5 erfc(2.8 (x + a)/(0.5 L - den)). Two versions circulate, with 0.015 and
 with 0.15 in the denominator; neither is taken over the other, the band spans both until someone reads the paper. The
 shape of Mu & Huang 2016 nearly vanishes at the corner and serves as a lower bound only. All constants are recalled or
-seen in a second-hand copy. Times the plane strain ratio it gives the ratio along the wall (project rule). A cross-check.
+seen at second hand. Times the plane strain ratio it gives the ratio along the wall (project rule). A cross-check.
 """
 
 from __future__ import annotations
