@@ -11,7 +11,8 @@ from pit_sites import anchor, found, shape_of, site_of, strut
 from ingest.members import Load, Material, Point
 from sections.model import Circle, Structural, Wall
 from sections.section.cut import Cut
-from sections.section.ring import RingParts, ring_parts
+from sections.section.parts import SectionParts
+from sections.section.ring import ring_parts
 
 R, CENTRE = 10.0, (50.0, 50.0)
 CONCRETE = Material(id="C30", kind="concrete", E=33e6, unit_weight=25.0)
@@ -25,7 +26,7 @@ def on_ring(degrees: float, radius: float = R) -> Point:
     return CENTRE[0] + radius * cos(radians(degrees)), CENTRE[1] + radius * sin(radians(degrees))
 
 
-def ring(wall: Wall = PILES, **more: object) -> tuple[Cut, RingParts]:
+def ring(wall: Wall = PILES, **more: object) -> tuple[Cut, SectionParts]:
     corners = [on_ring(a) for a in range(0, 360, 3)]
     circle = Circle(centre=CENTRE, radius=R, deviation=0.0, sides=None)
     site = site_of(materials=(CONCRETE,), **more)
