@@ -138,7 +138,10 @@ def _add_members(command: argparse.ArgumentParser) -> None:
         "sections", nargs="+", metavar="SECTION.json", help="section definitions the results belong to"
     )
     command.add_argument(
-        "results", metavar="RESULTS.csv", help="columns section,stage,member,quantity,value,unit; others survive"
+        "results",
+        metavar="RESULTS.csv",
+        help="columns section,stage,member,quantity,value,unit (others survive); N, M positive for tension, M on the "
+        "excavated face",
     )
     command.add_argument("--out", metavar="CSV", help="file to write (default: standard output)")
 

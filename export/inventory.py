@@ -137,12 +137,27 @@ def summarise(proposal: Proposal, folder: Path) -> str:
         lines += [f"  {finding.where}: {finding.text}" for finding in proposal.findings if finding.severity != "note"]
     lines += [
         "",
-        f"{len(proposal.questions)} questions, {len(proposal.assumptions)} assumptions to confirm",
+        _to_look_at(proposal),
         f"Report: {folder}/report.html",
         "",
         NOTICE,
     ]
     return "\n".join(lines)
+
+
+def _to_look_at(proposal: Proposal) -> str:
+    findings = [finding for finding in proposal.findings if finding.severity != "note"]
+    counts = (
+        (len(proposal.questions), "question"),
+        (len(findings), "finding to look at"),
+        (len(proposal.assumptions), "assumption to confirm"),
+    )
+    return ", ".join(f"{n} {words if n == 1 else _plural(words)}" for n, words in counts)
+
+
+def _plural(words: str) -> str:
+    first, *rest = words.split(" ")
+    return " ".join([f"{first}s", *rest])
 
 
 def represented(proposal: Proposal, pit: str) -> tuple[float, float]:

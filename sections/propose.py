@@ -62,7 +62,9 @@ def propose(site: Site, progress: Tell = _silent) -> tuple[Proposal, tuple[Secti
         row, definition = define_chosen(site, founds, judged, one, f"S{number}", losses[one.candidate.pit])
         rows.append(row)
         definitions.append(definition)
-    return _assemble(site, founds, plane, choice, rows, definitions), tuple(definitions)
+    round_ = {one.candidate.pit for one in choice.chosen if one.candidate.kind == "axisymmetric"} if choice else set()
+    shown = [rings[i] if i in round_ else one for i, one in enumerate(plane)]
+    return _assemble(site, founds, shown, choice, rows, definitions), tuple(definitions)
 
 
 def _assemble(
@@ -75,6 +77,7 @@ def _assemble(
 ) -> Proposal:
     """Put the proposal together, each finding, question and assumption once."""
     assumptions = (
+        *_dry(site, founds),
         *site.assumptions,
         *(a for found in founds for a in found.assumptions),
         *(a for one in definitions for a in one.assumptions),
@@ -97,6 +100,21 @@ def _assemble(
         assumptions=_by_id(assumptions),
         findings=_by_id(findings),
         not_assessed=_not_assessed(site, choice),
+    )
+
+
+def _dry(site: Site, founds: Sequence[FoundPit]) -> tuple[Assumption, ...]:
+    """Water outside that nobody told of is an assumption to sign, wherever a wall retains."""
+    if site.water_retained is not None or not founds or any(hole.water is not None for hole in site.boreholes):
+        return ()
+    return (
+        Assumption(
+            id="water-outside",
+            code="water-outside",
+            about="the water outside",
+            text="No water stands behind the wall: neither its pressure nor flow under the toe is in any section",
+            basis="[levels] water_retained is not given and no borehole tells of water",
+        ),
     )
 
 

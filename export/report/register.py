@@ -19,7 +19,7 @@ Definitions = Sequence[SectionDefinition]
 LIMIT_WORDS = {
     "ratio_low": ("below this a band over-states", ""),
     "ratio_high": ("above this a band is not safe to rely on", ""),
-    "ratio_narrow": ("still represents provisionally up to here", ""),
+    "ratio_narrow": ("still represents provisionally up to here, before the model's own margin", ""),
     "plan": ("gap or overlap that still closes a wall line", "m"),
     "level": ("levels closer than this are alike", "m"),
     "spacing_ratio": ("spacings within this fraction are alike", ""),

@@ -10,7 +10,7 @@ from sections.proposal import ChosenSection
 INDICES: dict[str, tuple[str, str, bool | None]] = {
     "basal_safety": ("Factor of safety against basal heave", "", False),
     "excavated_depth": ("Excavated depth", "m", True),
-    "surcharge": ("Surcharge", "kPa", True),
+    "surcharge": ("Uniform surcharge (footings and line loads apart)", "kPa", True),
     "stability_number": ("Stability number, γH/su", "", True),
     "system_stiffness_by_water": ("System stiffness, EI/(γw h⁴)", "", False),
     "system_stiffness_by_soil": ("System stiffness, EI/(γ h⁴)", "", False),

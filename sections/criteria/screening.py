@@ -58,7 +58,7 @@ def screening(site: Site, found: FoundPit, limits: Limits) -> CriterionResult:
         "corner",
         basis=BASIS,
         reference=REFERENCE,
-        settled_by=f"{widest(runs)}: of all that is not known it widens the band most",
+        settled_by=widest(runs),
         carries=CARRIES,
         silence={"wall_moment_retained_face": ROW_FACE},
         stages=_stages(scene, runs[0]),
@@ -149,12 +149,21 @@ def _near_gap(found: FoundPit) -> Bools:
     return np.asarray(distance_along(found, gaps) <= spacing + 1e-9)
 
 
+SETTLES = {
+    "continuity": "drawings of the wall's joints and capping beam ([[walls]] continuity, capping_beam)",
+    "support chain": "the stiffness of what packs the supports ([[supports]] packing_stiffness)",
+    "ground modulus": "the modulus of the ground ([[strata]] E)",
+    "EI of the waler": "the bending stiffness of the waler ([[supports]] waler_EI)",
+}
+"""What an engineer can look up, by the unknown. How far the ground spreads load along the wall is no input at all."""
+
+
 def widest(runs: list[VariantRatios]) -> str:
-    """The one unknown whose range moves the deflection ratio most, in words."""
+    """What would narrow the band most, in words that fit behind "settled by"."""
     base = runs[0].ratio[:, 0]
     names = [run.variant.name.split(" (")[0].split(":")[0] for run in runs]
     moved = dict.fromkeys(names[1:], 0.0)
     for name, run in zip(names[1:], runs[1:], strict=True):
         moved[name] = max(moved[name], float(np.nanmean(np.abs(run.ratio[:, 0] - base))))
-    ordered = sorted(moved.items(), key=lambda pair: (-pair[1], pair[0]))
-    return ordered[0][0] if ordered else "measured margins"
+    ordered = [name for name, _ in sorted(moved.items(), key=lambda pair: (-pair[1], pair[0])) if name in SETTLES]
+    return SETTLES[ordered[0]] if ordered else "a computation in three dimensions"

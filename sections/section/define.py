@@ -4,6 +4,7 @@ from __future__ import annotations
 
 from collections.abc import Sequence
 from dataclasses import dataclass
+from typing import Literal
 
 from ingest.members import Material
 from ingest.model import Site
@@ -145,8 +146,15 @@ def _structural(material: Material) -> SectionMaterial:
         kind=material.kind,
         unit_weight=material.unit_weight,
         E=E,
-        standing={name: "missing" if value is None else "given" for name, value in given.items()},
+        standing={name: _standing(name, value, material.basis) for name, value in given.items()},
     )
+
+
+def _standing(name: str, value: object, basis: str) -> Literal["given", "assumed", "missing"]:
+    """A modulus worked out from a class is not one that was given."""
+    if value is None:
+        return "missing"
+    return "assumed" if name == "E" and basis not in ("", "brief") else "given"
 
 
 def _dig(site: Site, cut: Cut) -> DigProfile | None:

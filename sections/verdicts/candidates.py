@@ -214,8 +214,9 @@ def _spoke(found: FoundPit, pit: int, station: int, why: tuple[str, ...]) -> Can
     circle = found.shape.circle
     centre = np.array(found.shape.axis.mean(axis=0) if circle is None else circle.centre)
     out = found.stations.xy[station] - centre
-    radius = float(np.hypot(*out))
-    end = centre + out / radius * (radius + BEHIND * _depth(found, station))
+    # One ring has one radius, that of equal perimeter, whichever way the cut looks.
+    radius = found.shape.length / (2 * np.pi)
+    end = centre + out / np.hypot(*out) * (radius + BEHIND * _depth(found, station))
     return Candidate(
         pit=pit, kind="axisymmetric", stations=(station,), at=(radius,), line=(_point(centre), _point(end)), why=why
     )

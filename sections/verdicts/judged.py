@@ -17,6 +17,7 @@ from sections.verdicts.sentences import Said, build_sentence
 from sections.verdicts.verdict import (
     NOT_2D,
     NOT_ASSESSED,
+    UNDECIDED,
     Combined,
     combine_results,
     find_dominant,
@@ -151,7 +152,7 @@ class JudgedPit:
             stage=self._stage(i, o),
             decides=self._unspoken(i, o) if chief is None or unmeasured else self._criterion_sentence(chief, i, o),
             gaps=gaps,
-            settled_by=UNMEASURED if unmeasured else "" if chief is None else chief.settled_by,
+            settled_by=UNMEASURED if unmeasured else self._settled_by(chief, i, o),
             by_class=any(r.by_class_only and r.assessed[i, o] for r in self.results),
             provisional=self._why_provisional(i, o),
         )
@@ -166,6 +167,13 @@ class JudgedPit:
             margin=None if low is None else (float(c.e_low[i, o]), float(c.e_high[i, o])),
             margin_measured=not bool(c.not_measured[i, o]),
         )
+
+    def _settled_by(self, chief: CriterionResult | None, i: int, o: int) -> str:
+        """What would settle the verdict; where only the model's own margin carries the band past the limit, that."""
+        by_margin = self.combined.word[i, o] == UNDECIDED and self.combined.bare_high[i, o] <= self.limits.ratio_high
+        if by_margin:
+            return "a computation in three dimensions: the margin of this tool's own model decides, no input would"
+        return "" if chief is None else chief.settled_by
 
     def _stage(self, i: int, o: int) -> str:
         """Stage that governs: that of the computation which takes them one by one, else the final dig."""
