@@ -93,17 +93,3 @@ def test_a_child_loads_only_what_its_reader_needs(kind: str, heavy: set[str]) ->
         [sys.executable, "-c", code], cwd=home, capture_output=True, text=True, check=True
     ).stdout.split()
     assert not heavy & set(loaded)
-
-
-def test_a_child_is_up_in_half_a_second_or_four_times_an_import_of_numpy(tmp_path: Path) -> None:
-    path = tmp_path / "site.ags"
-    good_ags(path)
-    numpy = min(seconds(lambda: subprocess.run([sys.executable, "-c", "import numpy"], check=True)) for _ in range(3))
-    child = min(seconds(lambda: read_guarded(path, "ags")) for _ in range(3))
-    assert child < max(0.5, 4 * numpy)
-
-
-def seconds(work: Callable[[], object]) -> float:
-    start = time.monotonic()
-    work()
-    return time.monotonic() - start
