@@ -6,9 +6,11 @@ import hashlib
 from collections.abc import Callable
 from pathlib import Path
 
+import ezdxf
+
 from ingest.dxf.account import list_raw, open_account
 from ingest.dxf.consistency import find_contradictions
-from ingest.dxf.damage import check_bytes, read_bytes
+from ingest.dxf.damage import SEND_AGAIN, check_bytes, read_bytes
 from ingest.dxf.draw import Drawer
 from ingest.dxf.drawing_unit import Declared, find_unit
 from ingest.dxf.georeference import describe_georeference
@@ -18,6 +20,7 @@ from ingest.dxf.loading import let_go, load_document, quiet
 from ingest.dxf.measures import take_measures
 from ingest.dxf.report import Report, report_losses
 from ingest.dxf.tagscan import Tags
+from ingest.errors import InputError
 from ingest.parts import FileParts
 
 RELEASES = {
@@ -25,6 +28,10 @@ RELEASES = {
     "AC1014": "R14", "AC1015": "R2000", "AC1018": "R2004", "AC1021": "R2007", "AC1024": "R2010", "AC1027": "R2013",
     "AC1032": "R2018",
 }  # fmt: skip
+
+
+DAMAGED = (KeyError, AttributeError, IndexError, TypeError, ezdxf.DXFError)
+"""What the library raises late on a drawing that it has opened."""
 
 
 def read_dxf(
@@ -49,7 +56,14 @@ def read_dxf(
         InputError: When the file cannot be read, is cut short or damaged, or holds more than memory can.
     """
     with quiet():
-        return _read(path, length_unit, ignore_layers, progress)
+        try:
+            return _read(path, length_unit, ignore_layers, progress)
+        except DAMAGED as error:
+            # The library loads some damaged drawings and trips over them later, a missing modelspace for one.
+            problem = (
+                f"is damaged: it was opened, but what it holds does not fit together ({type(error).__name__}: {error})"
+            )
+            raise InputError(path.name, "", problem, SEND_AGAIN) from error
 
 
 def _read(

@@ -16,6 +16,7 @@ Draw = Callable[[Any, Any], None]
 
 def save(folder: Path, draw: Draw, *, units: int | None = 6, version: str = "R2010", binary: bool = False) -> Path:
     """Write a drawing; `draw` gets the document and its modelspace, `units` is $INSUNITS."""
+    ezdxf.options.write_fixed_meta_data_for_testing = True
     document = ezdxf.new(version)
     if units is None:
         document.header.reset_version = None

@@ -372,3 +372,14 @@ def test_a_hundred_damaged_copies_are_refused_or_read_with_their_losses_told(
     # whole entities cut out between two tags leave no trace without a second source
     assert len(silent) <= 0.05 * lost, silent
     assert all(name == "piece lost" for _, name in silent)
+
+
+def test_a_drawing_whose_modelspace_is_gone_is_one_clear_error(tmp_path: Path) -> None:
+    path = save(tmp_path, draw_pit)
+    data = path.read_bytes()
+    marked = data.replace(b"\nModel\n", b"\nMddel\n")
+    assert marked != data
+    path.write_bytes(marked)
+    with pytest.raises(InputError) as caught:
+        read_dxf(path)
+    assert caught.value.remedy
