@@ -2,7 +2,7 @@
 
 from __future__ import annotations
 
-from collections.abc import Callable, Sequence
+from collections.abc import Callable, Mapping, Sequence
 from dataclasses import replace
 from typing import TypeVar
 
@@ -54,12 +54,14 @@ def propose(site: Site, progress: Tell = _silent) -> tuple[Proposal, tuple[Secti
     progress("choose the cuts", 2, 4)
     choice = choose(site, plane, rings=rings) if founds else None
     losses = [_losses(site, found) for found in founds]
+    severity = [find_severity(site, found) for found in founds]
     rows: list[ChosenSection] = []
     definitions: list[SectionDefinition] = []
     for number, one in enumerate(choice.chosen if choice else (), start=1):
         progress("define sections", number, len(choice.chosen if choice else ()))
         judged = rings[one.candidate.pit] if one.candidate.kind == "axisymmetric" else plane[one.candidate.pit]
-        row, definition = define_chosen(site, founds, judged, one, f"S{number}", losses[one.candidate.pit])
+        pit = one.candidate.pit
+        row, definition = define_chosen(site, founds, judged, one, f"S{number}", losses[pit], severity[pit])
         rows.append(row)
         definitions.append(definition)
     round_ = {one.candidate.pit for one in choice.chosen if one.candidate.kind == "axisymmetric"} if choice else set()
@@ -124,7 +126,8 @@ def define_chosen(
     judged: JudgedPit,
     chosen: Chosen,
     name: str,
-    losses: tuple[SupportLoss, ...] = (),
+    losses: tuple[SupportLoss, ...],
+    severity: Mapping[str, Floats],
 ) -> tuple[ChosenSection, SectionDefinition]:
     """Define one chosen cut and list it as the proposal does."""
     cut = cut_of(chosen.candidate, founds)
@@ -157,7 +160,7 @@ def define_chosen(
         kind=chosen.candidate.kind,
         line=definition.line,
         score=score,
-        severity=severity_at(find_severity(site, judged.found), cut.walls[0].station),
+        severity=severity_at(severity, cut.walls[0].station),
         walls=walls,
         verdicts=verdicts,
         represents=chosen.represents,

@@ -10,9 +10,10 @@ from ingest.members import Material, Support
 from ingest.model import Site
 from ingest.trail import Finding
 from sections.found import SupportRow
-from sections.member import Curve, End, PerRadian, RealMember, SectionMember
+from sections.member import Curve, End, PerRadian, SectionMember
 from sections.model import Floats
 from sections.section.cut import Cut, CutWall
+from sections.section.real_support import real_support
 from sections.section.stages import Prop
 from sections.smearing.member import Direction, find_direction
 from sections.smearing.ring_supports import smear_diametral_struts, smear_ring_anchors
@@ -71,31 +72,12 @@ def _all_round(at: Floats, length: float) -> bool:
     return len(at) > 2 and float(np.max(gaps)) <= EVEN_GAPS * length / len(at)
 
 
-def _real(row: SupportRow, support: Support, material: Material | None, direction: Direction) -> RealMember:
-    area, E = support.section.A if support.section else None, material.E if material else None
-    return RealMember(
-        EA_kN=support.EA,
-        length=float(np.linalg.norm(np.subtract(support.far, support.head))),
-        skew=direction.skew,
-        inclination=direction.inclination,
-        count=row.member.count,
-        preload_kN=support.preload,
-        weight_kN_per_m=support.weight,
-        A_m2=area if area is not None else support.EA / E if support.EA and E else None,
-        free_length=support.free_length,
-        bond_length=support.bond_length,
-        bond_diameter=support.bond_diameter,
-        thermal_range_K=support.thermal_range,
-        k_packing_kN_per_m=support.packing_stiffness,
-    )
-
-
 def _anchors(
     cut: Cut, wall: CutWall, row: SupportRow, support: Support, material: Material | None, name: str
 ) -> tuple[SectionMember, list[Finding]]:
     out = np.subtract(support.head[:2], cut.start)
     direction = find_direction(support.head, support.far, (float(-out[1]), float(out[0])))
-    real = _real(row, support, material, direction)
+    real = real_support(support, material, direction, row.member.count)
     length = real.free_length or real.length or 0.0
     level = support.head[2]
     end = (wall.x + length * direction.normal_part, level - length * direction.vertical_part)
@@ -111,7 +93,7 @@ def _struts(
     cut: Cut, wall: CutWall, row: SupportRow, supports: Sequence[Support], material: Material | None, name: str
 ) -> tuple[SectionMember, list[Finding]]:
     where, support = row.member.id, supports[0]
-    real = _real(row, support, material, Direction())
+    real = real_support(support, material, Direction(), row.member.count)
     offsets = [_offset(one, cut) for one in supports]
     smeared = smear_diametral_struts(
         real, radius=wall.x, diameters=row.member.count, nu=NU_DISC, offset=float(np.sqrt(np.mean(np.square(offsets))))

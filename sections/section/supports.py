@@ -12,6 +12,7 @@ from ingest.model import Limits, Site
 from ingest.trail import Finding
 from sections.member import PerMetre, RealMember, SectionMember
 from sections.section.cut import Cut
+from sections.section.real_support import real_support
 from sections.section.rows_at_cut import RowAtCut, rows_at, wall_of_other_end, why_no_corner_strut
 from sections.section.stages import Prop
 from sections.section.support_drawing import draw_bond, draw_support, from_both_ends
@@ -93,26 +94,14 @@ def _finding(met: RowAtCut, code: str, text: str) -> Finding:
 
 
 def _real(met: RowAtCut, material: Material | None) -> RealMember:
-    support, member = met.support, met.row.member
-    E = material.E if material else None
-    area = support.section.A if support.section else None
-    return RealMember(
-        EA_kN=support.EA,
-        EI_kNm2=support.EI,
-        length=float(np.linalg.norm(np.subtract(support.far, support.head))),
+    """The real member with its spacing at this cut; corner struts are drawn level."""
+    real = real_support(met.support, material, met.direction, met.row.member.count)
+    return replace(
+        real,
+        EI_kNm2=met.support.EI,
         spacing=met.tributary,
-        spacing_range=member.spacing_range,
-        skew=met.direction.skew,
-        inclination=0.0 if met.role == "corner_strut" else met.direction.inclination,
-        count=member.count,
-        preload_kN=support.preload,
-        weight_kN_per_m=support.weight,
-        A_m2=area if area is not None else support.EA / E if support.EA and E else None,
-        free_length=support.free_length,
-        bond_length=support.bond_length,
-        bond_diameter=support.bond_diameter,
-        thermal_range_K=support.thermal_range,
-        k_packing_kN_per_m=support.packing_stiffness,
+        spacing_range=met.row.member.spacing_range,
+        inclination=0.0 if met.role == "corner_strut" else real.inclination,
     )
 
 
