@@ -32,10 +32,10 @@ def write_members(forces: Sequence[MemberForce]) -> str:
     A further column that bears the name of an added one keeps its values under `given_<name>`.
     """
     extra = list(dict.fromkeys(key for force in forces for key in force.row.extra))
-    heads = (*COLUMNS, *(f"given_{key}" if key in ADDED else key for key in extra), *ADDED)
+    heads = (*COLUMNS, *(f"given_{key}" if key in (*ADDED, "notice") else key for key in extra), *ADDED, "notice")
     rows: list[tuple[Cell, ...]] = []
     for force in forces:
-        rows.append((*_given(force).values(), *(force.row.extra.get(key) for key in extra), *_made(force)))
+        rows.append((*_given(force).values(), *(force.row.extra.get(key) for key in extra), *_made(force), NOTICE))
     return csv_text(Sheet("members", heads, tuple(rows)))
 
 

@@ -42,7 +42,7 @@ def read(text: str) -> list[dict[str, str]]:
 
 def test_input_columns_come_first_then_further_ones_then_what_was_worked_out() -> None:
     text = write_members([force()])
-    assert text.splitlines()[0].split(",") == [*COLUMNS, "note", "given_factor", *ADDED]
+    assert text.splitlines()[0].split(",") == [*COLUMNS, "note", "given_factor", *ADDED, "notice"]
 
 
 def test_minus_100_kn_per_m_at_5_m_is_minus_500_kn_per_strut() -> None:
@@ -80,3 +80,9 @@ def test_the_json_says_the_same_under_the_notice() -> None:
     assert tree["notice"] == NOTICE
     assert tree["members"][0]["member_value"] == -500.0
     assert tree["members"][0]["extra"]["factor"] == "mine"
+
+
+def test_every_row_of_the_member_table_carries_the_notice() -> None:
+    head, *rows = csv.reader(write_members([force(), force()]).splitlines())
+    assert head[-1] == "notice"
+    assert [row[-1] for row in rows] == [NOTICE, NOTICE]
